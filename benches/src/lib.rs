@@ -1,0 +1,1 @@
+//! Speed of meshing, factorising, assembling and whole field solves.

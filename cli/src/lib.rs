@@ -1,0 +1,1 @@
+//! Induction heating of bodies of revolution: from a job file to fields, electrical numbers and heating curves.

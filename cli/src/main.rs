@@ -1,0 +1,3 @@
+//! The program `coilwright`.
+
+fn main() {}

@@ -1,0 +1,1 @@
+//! Outlines to triangles: sized, layered, curved meshes of meridian sections.

@@ -1,0 +1,1 @@
+//! Axisymmetric eddy currents and transient heat by finite elements.

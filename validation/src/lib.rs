@@ -1,0 +1,1 @@
+//! Checks against published and analytical results.
