@@ -1,1 +1,13 @@
 //! Axisymmetric eddy currents and transient heat by finite elements.
+//!
+//! A validated [`model::Model`] in SI units goes in, [`results::Results`] come out; nothing here prints, reads the
+//! clock or touches a file. Lengths are metres, temperatures kelvin, phasors peak values with `e^{+jwt}`; names that
+//! end in `_rms` hold rms values.
+
+pub mod constants;
+pub mod error;
+pub mod linalg;
+pub mod material;
+pub mod model;
+pub mod observe;
+pub mod results;
