@@ -6,6 +6,7 @@
 
 pub mod constants;
 pub mod error;
+pub mod fem;
 pub mod linalg;
 pub mod material;
 pub mod model;
