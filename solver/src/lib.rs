@@ -8,6 +8,7 @@ pub mod constants;
 pub mod error;
 pub mod fem;
 pub mod linalg;
+pub mod magnetics;
 pub mod material;
 pub mod model;
 pub mod observe;
