@@ -20,8 +20,8 @@ pub struct PerAmpere {
 /// A scaled state.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Scaled {
-    /// Coil current, amperes (peak).
-    pub current_a_peak: f64,
+    /// Coil current in amperes (peak), or applied field in A/m (peak).
+    pub peak: f64,
     /// Limit that was reached, if one was.
     pub limited_by: Option<SupplyLimit>,
 }
@@ -67,14 +67,14 @@ fn limited(wanted: f64, limits: Limits, per: &PerAmpere) -> Scaled {
         (SupplyLimit::Current, limits.current_a_rms.map(|a| a * rms)),
         (SupplyLimit::Power, limits.power_w.map(|w| (w / per.terminal_power_w).sqrt())),
     ];
-    let mut out = Scaled { current_a_peak: wanted, limited_by: None };
+    let mut out = Scaled { peak: wanted, limited_by: None };
     for (limit, bound) in bounds {
-        if let Some(bound) = bound.filter(|b| *b < out.current_a_peak) {
-            out = Scaled { current_a_peak: bound, limited_by: Some(limit) };
+        if let Some(bound) = bound.filter(|b| *b < out.peak) {
+            out = Scaled { peak: bound, limited_by: Some(limit) };
         }
     }
-    if out.current_a_peak.is_infinite() {
-        out.current_a_peak = 0.0;
+    if out.peak.is_infinite() {
+        out.peak = 0.0;
     }
     out
 }
@@ -93,7 +93,7 @@ mod tests {
     #[test]
     fn each_hold_gives_what_it_holds() {
         let free = Limits::default();
-        let peak = |hold| scale(hold, free, &PER).unwrap().current_a_peak;
+        let peak = |hold| scale(hold, free, &PER).unwrap().peak;
         assert!((peak(Hold::CoilCurrent(100.0)) - 141.421_356_237).abs() < 1e-6);
         assert!((peak(Hold::CoilVoltage(10.0)) * 0.05 / 2f64.sqrt() - 10.0).abs() < 1e-12);
         assert!((peak(Hold::WorkpiecePower(4.0)).powi(2) * 0.01 - 4.0).abs() < 1e-12);
@@ -106,7 +106,7 @@ mod tests {
         let limits = Limits { voltage_v_rms: Some(5.0), current_a_rms: Some(120.0), power_w: Some(1e6) };
         let s = scale(Hold::CoilCurrent(200.0), limits, &PER).unwrap();
         assert_eq!(s.limited_by, Some(SupplyLimit::Voltage));
-        assert!((s.current_a_peak * 0.05 / 2f64.sqrt() - 5.0).abs() < 1e-12);
+        assert!((s.peak * 0.05 / 2f64.sqrt() - 5.0).abs() < 1e-12);
     }
 
     #[test]

@@ -185,7 +185,8 @@ fn turn_losses(operator: &Operator, regions: &[RegionName], by_region: &[f64]) -
         .collect()
 }
 
-fn terminals(impedance: Complex64, omega: f64, peak: f64) -> Terminals {
+/// What is seen at an impedance carrying `peak` amperes (peak) at angular frequency `omega`.
+pub fn terminals(impedance: Complex64, omega: f64, peak: f64) -> Terminals {
     let current = peak / std::f64::consts::SQRT_2;
     let (power, reactive) = (impedance.re * current * current, impedance.im * current * current);
     Terminals {
