@@ -1,1 +1,4 @@
 //! Axisymmetric eddy currents and transient heat by finite elements.
+
+pub mod constants;
+pub mod material;
