@@ -6,7 +6,6 @@ use mesher::{Drawing, Layers, Outline, Region, RegionId};
 
 use crate::constants::skin_depth;
 use crate::error::SolveError;
-use crate::magnetics::properties::relative_permeability;
 use crate::model::{ConductorKind, MeshSettings, Mirrors, Model, Part};
 use crate::results::RegionName;
 
@@ -126,7 +125,7 @@ pub fn skin_depth_at(model: &Model, part: &Part, t_k: f64) -> f64 {
     if sigma <= 0.0 {
         return f64::INFINITY;
     }
-    skin_depth(model.drive.frequency_hz(), sigma, relative_permeability(&part.material, t_k))
+    skin_depth(model.drive.frequency_hz(), sigma, part.material.relative_permeability(t_k))
 }
 
 fn hottest_k(model: &Model) -> f64 {

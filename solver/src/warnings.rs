@@ -3,7 +3,6 @@
 use mesher::Outline;
 
 use crate::constants::ZERO_CELSIUS_K;
-use crate::magnetics::properties::relative_permeability;
 use crate::model::{ConductorKind, Model, Part, Role};
 use crate::overview::Meshed;
 use crate::results::{Electrical, Warning, WarningKind};
@@ -68,7 +67,7 @@ pub fn before_solve(model: &Model, meshed: &Meshed) -> Vec<Warning> {
 }
 
 fn part_warnings(model: &Model, part: &Part, out: &mut Warnings) {
-    let mu = relative_permeability(&part.material, part.start_k);
+    let mu = part.material.relative_permeability(part.start_k);
     if mu > 1.0 {
         let text = format!(
             "part `{}`: relative permeability {mu:.1} at the start, the same at every field strength; saturation is not \

@@ -41,7 +41,7 @@ pub fn run(model: &Model, observer: &dyn Observer) -> Result<Results, SolveError
             let solved = solver.solve(0.0, &StartTemperatures)?;
             let state = solver.scaled(solved, model.supply_hold(), 0.0)?;
             recorder.watch(&solver, &state, 1.0);
-            recorder.state("field", &solver, &state, 1.0);
+            recorder.state("field", 0.0, &solver, &state, 1.0);
             recorder.snapshot("field", 0.0, &solver, &state, 1.0, Vec::new());
             Outcome::Complete
         }

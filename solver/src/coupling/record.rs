@@ -116,8 +116,8 @@ impl<'a> Recorder<'a> {
     }
 
     /// Adds an electrical state to the table.
-    pub(super) fn state(&mut self, label: &str, solver: &FieldSolver<'_>, field: &FieldState, factor: f64) {
-        let state = self.make_state(label, solver, field, factor);
+    pub(super) fn state(&mut self, label: &str, time_s: f64, solver: &FieldSolver<'_>, field: &FieldState, factor: f64) {
+        let state = State { time_s, ..self.make_state(label, solver, field, factor) };
         let peak = field.scaled.peak * factor.sqrt();
         self.turns = field.numbers.turns(solver.operator(), self.model, peak);
         self.states.push(state);
@@ -274,7 +274,7 @@ impl<'a> Recorder<'a> {
                     now.state.time_s
                 );
                 self.warnings.add(WarningKind::Curie, text);
-                self.state(&format!("{place} of {} at Curie", part.name), run.solver, &now.losses.last, now.factor);
+                self.state(&format!("{place} of {} at Curie", part.name), now.state.time_s, run.solver, &now.losses.last, now.factor);
             }
         }
     }
@@ -282,7 +282,7 @@ impl<'a> Recorder<'a> {
     /// End of a stage: a state and a map.
     pub(super) fn end(&mut self, run: &HeatRun<'_, '_>, now: &Progress, label: &str) {
         self.counts.field_solves = run.solver.solves();
-        self.state(label, run.solver, &now.losses.last, now.factor);
+        self.state(label, now.state.time_s, run.solver, &now.losses.last, now.factor);
         self.map(run, label, &now.losses.last, now.factor, &now.state);
         for t in run.heat.part_temperatures(&now.state) {
             let part = &self.model.parts[t.part];

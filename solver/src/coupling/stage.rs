@@ -23,7 +23,7 @@ const REDO_LIMIT: usize = 8;
 const FIRST_RISE_K: f64 = 5.0;
 /// Shortest interval, seconds.
 const SHORTEST_INTERVAL_S: f64 = 1e-4;
-/// Longest time a stage can be told to last, seconds, where nothing else bounds it.
+/// A goal counts as met at the start of a stage when the gauge is this close, kelvin.
 const GAUGE_MET_K: f64 = 0.01;
 
 /// Temperatures of the heated parts as the magnetics asks for them.
@@ -103,7 +103,7 @@ impl<'a, 'b> HeatRun<'a, 'b> {
         let hold = self.base_hold(&self.heating.stages[0]);
         let first = self.solve(&state, hold)?;
         recorder.watch(self.solver, &first, 1.0);
-        recorder.state("start", self.solver, &first, 1.0);
+        recorder.state("start", 0.0, self.solver, &first, 1.0);
         recorder.start(&self, &state, &first);
         let mut now = Progress {
             control: StepControl::new(self.heating.step_tolerance_k),
@@ -276,7 +276,7 @@ impl<'a, 'b> HeatRun<'a, 'b> {
             for k in 0..stride {
                 let w = losses[k] * self.volumes_m3[e * stride + k];
                 let sigma = material.electrical_conductivity_s_per_m(kelvin[k]);
-                let mu = crate::magnetics::properties::relative_permeability(material, kelvin[k]);
+                let mu = material.relative_permeability(kelvin[k]);
                 let rho = (last.properties.sigma(triangle)[k] / sigma).ln();
                 let nu = (last.properties.nu(triangle)[k] * mu * crate::constants::MU_0).ln();
                 sum += w * (rho * rho + nu * nu);

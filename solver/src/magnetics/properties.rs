@@ -1,10 +1,7 @@
 //! Conductivity and reluctivity at quadrature points, from material data and temperatures.
 
-use std::sync::Arc;
-
 use crate::constants::MU_0;
 use crate::fem::space::Space;
-use crate::material::Material;
 use crate::model::{ConductorKind, Model};
 use crate::results::RegionName;
 
@@ -63,7 +60,7 @@ impl PointProperties {
                     }
                     for (k, &t) in range.zip(&kelvin) {
                         out.sigma_s_per_m[k] = part.material.electrical_conductivity_s_per_m(t);
-                        out.nu_m_per_h[k] = 1.0 / (MU_0 * relative_permeability(&part.material, t));
+                        out.nu_m_per_h[k] = 1.0 / (MU_0 * part.material.relative_permeability(t));
                     }
                 }
             }
@@ -80,9 +77,4 @@ impl PointProperties {
     pub fn nu(&self, e: usize) -> &[f64] {
         &self.nu_m_per_h[e * self.stride..(e + 1) * self.stride]
     }
-}
-
-/// Relative permeability of a material at a temperature, linear in the field; 1 for what is not magnetic.
-pub fn relative_permeability(material: &Arc<Material>, t_k: f64) -> f64 {
-    material.magnetic.as_ref().map_or(1.0, |m| m.relative_permeability(t_k))
 }
