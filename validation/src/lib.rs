@@ -1,1 +1,3 @@
 //! Checks against published and analytical results.
+
+pub mod closed_form;
