@@ -10,6 +10,7 @@ use solver::model::{
 };
 
 use crate::check::CaseError;
+use crate::closed_form::MU0;
 
 /// Temperature of every body that is not heated, kelvin.
 pub const START_K: f64 = 293.15;
@@ -111,5 +112,5 @@ fn device(parts: Vec<Part>, coils: Vec<Coil>, mirrors: Mirrors) -> Model {
 
 /// Resistivity in ohm m that gives a skin depth in metres at a frequency in hertz.
 pub fn resistivity_for(depth_m: f64, frequency_hz: f64, relative_permeability: f64) -> f64 {
-    depth_m * depth_m * std::f64::consts::PI * frequency_hz * 4e-7 * std::f64::consts::PI * relative_permeability
+    depth_m * depth_m * std::f64::consts::PI * frequency_hz * MU0 * relative_permeability
 }

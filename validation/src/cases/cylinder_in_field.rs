@@ -9,7 +9,7 @@ use solver::model::{Mirrors, Model};
 use solver::observe::Silent;
 
 use crate::check::{CaseError, Check};
-use crate::closed_form::cylinder_power_per_length;
+use crate::closed_form::cylinder::AxialCylinder;
 use crate::models;
 
 const RADIUS_M: f64 = 0.03;
@@ -36,7 +36,8 @@ pub fn model(ratio: f64, relative_permeability: f64) -> Result<Model, CaseError>
 pub fn reference_w(ratio: f64, relative_permeability: f64) -> Result<f64, CaseError> {
     let resistivity = models::resistivity_for(RADIUS_M / ratio, FREQUENCY_HZ, relative_permeability);
     let peak = FIELD_A_PER_M_RMS * std::f64::consts::SQRT_2;
-    Ok(LENGTH_M * cylinder_power_per_length(RADIUS_M, resistivity, relative_permeability, FREQUENCY_HZ, peak)?)
+    let bar = AxialCylinder::new(RADIUS_M, resistivity, relative_permeability, FREQUENCY_HZ)?;
+    Ok(LENGTH_M * bar.power_per_length(peak))
 }
 
 /// Solves the model and returns the power of its first part, watts.
