@@ -4,6 +4,7 @@ use std::sync::Arc;
 
 use mesher::{Mesh, NodeSet, Point, RegionId};
 
+use super::assemble::map_elements;
 use super::element::ElementPoints;
 use super::reference::{MAX_NODES, Reference};
 
@@ -124,6 +125,19 @@ impl Space {
         let mut corners = [[0.0; 2]; MAX_NODES];
         let n = self.corners(e, &mut corners);
         out.fill(&self.reference, &corners[..n]);
+    }
+
+    /// Volume of each of `regions` regions, m^3.
+    pub fn volume_by_region(&self, regions: usize) -> Vec<f64> {
+        let volumes = map_elements(self.element_count(), |e, points| {
+            self.fill(e, points);
+            points.points().iter().map(|p| p.volume).sum::<f64>()
+        });
+        let mut out = vec![0.0; regions];
+        for (e, v) in volumes.into_iter().enumerate() {
+            out[self.region(e).0 as usize] += v;
+        }
+        out
     }
 
     /// Element and reference coordinates of a point, or `None` outside the space.
