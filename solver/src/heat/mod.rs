@@ -20,7 +20,7 @@ mod problem;
 mod state;
 mod step;
 
-pub use control::{StepControl, Verdict};
+pub use control::StepControl;
 pub use problem::HeatProblem;
 pub use state::{HeatState, interpolate};
 pub use step::{StepFailure, StepOutcome};

@@ -6,10 +6,12 @@
 //! nearly vanished, which bracketing finds for certain. A factor is kept while it contracts the residual fast.
 //! Source: J. Nocedal, S. J. Wright, Numerical Optimization, 2nd ed., Springer 2006, chapter 3.
 
+use std::sync::Arc;
+
 use super::operator::{Operator, Terms};
 use super::step::StepFailure;
 use crate::fem::assemble::Scatter;
-use crate::linalg::{Factor, LinalgError, Plan, SymmetricMatrix, checked_solve};
+use crate::linalg::{Factor, Plan, SymmetricMatrix, checked_solve};
 
 /// Largest change of a node's temperature in one iteration, kelvin.
 pub(super) const LARGEST_UPDATE_K: f64 = 40.0;
@@ -56,9 +58,9 @@ pub(super) struct StageSolution {
 
 /// What a stage is solved with.
 pub(super) struct Solver<'a> {
-    pub(super) operator: Operator<'a>,
+    pub(super) operator: &'a Operator,
     pub(super) scatter: &'a Scatter,
-    pub(super) plan: &'a std::sync::Arc<Plan>,
+    pub(super) plan: &'a Arc<Plan>,
     /// Entries off the diagonal that couple a held unknown.
     pub(super) held_slots: &'a [u32],
     pub(super) is_held: &'a [bool],
@@ -134,10 +136,9 @@ impl Solver<'_> {
     fn limit(&self, stage: &Stage, now: &Trial) -> f64 {
         let stored: f64 = now.terms.storage.iter().map(|s| s.abs()).sum();
         let moved = stored + stage.weight * now.terms.flows.size();
-        let pattern = &self.tangent.matrix.pattern;
-        let diagonal = pattern.starts().iter().map(|&slot| slot);
-        let rounding: f64 =
-            diagonal.zip(&now.temperature).map(|(slot, t)| self.tangent.matrix.values[slot] * t.abs()).sum();
+        let matrix = &self.tangent.matrix;
+        let diagonal = matrix.pattern.starts().iter().map(|&slot| matrix.values.get(slot).copied().unwrap_or(0.0));
+                let rounding: f64 = diagonal.zip(&now.temperature).map(|(d, t)| d * t.abs()).sum();
         TOLERANCE * moved + ROUNDING * f64::EPSILON * rounding
     }
 
@@ -223,7 +224,7 @@ impl Solver<'_> {
 impl Tangent {
     /// An empty tangent on the plan's pattern.
     pub(super) fn new(plan: &Plan) -> Self {
-        Self { matrix: SymmetricMatrix::zeros(std::sync::Arc::clone(plan.pattern())), factor: None }
+        Self { matrix: SymmetricMatrix::zeros(Arc::clone(plan.pattern())), factor: None }
     }
 }
 
@@ -239,9 +240,4 @@ pub(super) fn held_slots(plan: &Plan, is_held: &[bool]) -> Vec<u32> {
         }
     }
     slots
-}
-
-/// The kind of failure of a plan, with its system named.
-pub(super) fn heat_system(source: LinalgError) -> crate::error::SolveError {
-    crate::error::SolveError::Linear { system: "heat", time_s: 0.0, source }
 }

@@ -13,14 +13,15 @@ use crate::fem::reference::{MAX_NODES, MAX_POINTS};
 use crate::fem::space::Space;
 use crate::material::Material;
 
-/// Everything the element integrals need; borrowed from the problem.
-pub(super) struct Operator<'a> {
-    pub(super) space: &'a Space,
-    pub(super) geometry: &'a Geometry,
-    pub(super) boundary: &'a Boundary,
-    pub(super) parts: &'a [HeatedPart],
+/// Everything the element integrals need.
+#[derive(Debug)]
+pub(super) struct Operator {
+    pub(super) space: Space,
+    pub(super) geometry: Geometry,
+    pub(super) boundary: Boundary,
+    pub(super) parts: Vec<HeatedPart>,
     /// Position in `parts` of each element's part.
-    pub(super) part_of: &'a [u32],
+    pub(super) part_of: Vec<u32>,
     pub(super) ambient_k: f64,
 }
 
@@ -64,7 +65,7 @@ struct Local {
     flows: Flows,
 }
 
-impl Operator<'_> {
+impl Operator {
     /// Storage against `enthalpy` (`rho h_n` in J/m^3 a point) and rate with `source` (W/m^3 a point) at `t`.
     pub(super) fn terms(&self, t: &[f64], enthalpy: &[f64], source: &[f64]) -> Terms {
         let locals =
@@ -202,7 +203,7 @@ impl Operator<'_> {
         }
     }
 
-    fn material(&self, e: usize) -> &Material {
+    pub(super) fn material(&self, e: usize) -> &Material {
         &self.parts[self.part_of[e] as usize].material
     }
 

@@ -6,7 +6,7 @@ use mesher::{Mesh, NodeSet, Point, RegionId};
 
 use super::boundary::Boundary;
 use super::geometry::Geometry;
-use super::newton::{Solver, Tangent, heat_system, held_slots};
+use super::newton::{Solver, Tangent, held_slots};
 use super::operator::Operator;
 use super::parts::{HeatedPart, device_factor, heated_parts};
 use super::state::HeatState;
@@ -25,13 +25,8 @@ const GAUGE_SLACK: f64 = 0.3;
 /// Conduction in the heated parts of a model.
 #[derive(Debug)]
 pub struct HeatProblem {
-    space: Space,
-    geometry: Geometry,
-    boundary: Boundary,
-    parts: Vec<HeatedPart>,
-    part_of: Vec<u32>,
+    operator: Operator,
     gauges: Vec<(usize, [f64; 2])>,
-    ambient_k: f64,
     device_factor: f64,
     scatter: Scatter,
     plan: Arc<Plan>,
@@ -66,36 +61,33 @@ impl HeatProblem {
             (0..space.element_count()).map(|e| position(e).unwrap_or(0) as u32).collect();
         let boundary = Boundary::new(&space, |e| &model.parts[parts[part_of[e] as usize].index]);
         let gauges = place_gauges(&space, &parts, &part_of, model)?;
+        let ambient_k = model.heating.as_ref().map_or(model.start_k, |h| h.ambient_k);
 
+        let linear = |source| SolveError::Linear { system: "heat", time_s: 0.0, source };
         let pattern = Pattern::from_cliques(space.len(), elements(&space));
-        let scatter = Scatter::new(&pattern, elements(&space)).map_err(heat_system)?;
-        let plan = Plan::new(Arc::new(pattern), Some(space.points()), &[]).map_err(heat_system)?;
+        let scatter = Scatter::new(&pattern, elements(&space)).map_err(linear)?;
+        let plan = Plan::new(Arc::new(pattern), Some(space.points()), &[]).map_err(linear)?;
         let mut is_held = vec![false; space.len()];
         boundary.held.iter().for_each(|&(unknown, _)| is_held[unknown as usize] = true);
-        let mut problem = Self {
+        let operator = Operator { space, geometry, boundary, parts, part_of, ambient_k };
+        let start = start_temperatures(&operator);
+        Ok(Self {
+            gauges,
+            device_factor: device_factor(model.mirrors),
+            scatter,
             held_slots: held_slots(&plan, &is_held),
             tangent: Tangent::new(&plan),
             plan: Arc::new(plan),
-            start: start_temperatures(&space, &geometry, &parts, &part_of, &boundary),
-            start_enthalpy: Vec::new(),
-            ambient_k: model.heating.as_ref().map_or(model.start_k, |h| h.ambient_k),
-            device_factor: device_factor(model.mirrors),
-            space,
-            geometry,
-            boundary,
-            parts,
-            part_of,
-            gauges,
-            scatter,
             is_held,
-        };
-        problem.start_enthalpy = problem.operator().enthalpy(&problem.start);
-        Ok(problem)
+            start_enthalpy: operator.enthalpy(&start),
+            start,
+            operator,
+        })
     }
 
     /// The space of the temperatures.
     pub fn space(&self) -> &Space {
-        &self.space
+        &self.operator.space
     }
 
     /// State before anything happened: each part at its own temperature, held faces at theirs.
@@ -103,30 +95,30 @@ impl HeatProblem {
     /// Where parts of different temperature touch, the shared nodes are at the mean by volume.
     pub fn start(&self) -> HeatState {
         let density = |p: &HeatedPart| p.material.density_kg_per_m3;
-        let workpieces = self.parts.iter().filter(|p| p.is_workpiece);
+        let workpieces = self.operator.parts.iter().filter(|p| p.is_workpiece);
         let workpiece_mass_kg = workpieces.map(|p| density(p) * p.volume_m3).sum();
         HeatState {
             time_s: 0.0,
             temperature_k: self.start.clone(),
             enthalpy_j_per_m3: self.start_enthalpy.clone(),
-            rate_k_per_s: vec![0.0; self.space.len()],
+            rate_k_per_s: vec![0.0; self.operator.space.len()],
             energy: EnergyBalance { workpiece_mass_kg, ..EnergyBalance::default() },
         }
     }
 
     /// Temperature of each gauge in the order of the model, kelvin.
     pub fn gauge_values(&self, t: &[f64]) -> Vec<f64> {
-        self.gauges.iter().map(|&(e, x)| self.space.value_at(e, x, t)).collect()
+        self.gauges.iter().map(|&(e, x)| self.operator.space.value_at(e, x, t)).collect()
     }
 
     /// Index in the model of the part element `e` belongs to.
     pub fn part_of_element(&self, e: usize) -> usize {
-        self.parts[self.part_of[e] as usize].index
+        self.operator.parts[self.operator.part_of[e] as usize].index
     }
 
     /// Indices in the model of the heated parts that have elements, rising.
     pub fn part_indices(&self) -> Vec<usize> {
-        self.parts.iter().map(|p| p.index).collect()
+        self.operator.parts.iter().map(|p| p.index).collect()
     }
 
     /// Volume in m^3 of a heated part of the whole device; `None` if the part is not heated.
@@ -145,7 +137,7 @@ impl HeatProblem {
         let means = self.means(t);
         let row = |(part, mean_k): (&HeatedPart, f64)| {
             let over = || part.nodes.iter().map(|&n| t[n as usize]);
-            let [outer, inner] = part.across.map(|(e, x)| self.space.value_at(e, x, t));
+            let [outer, inner] = part.across.map(|(e, x)| self.operator.space.value_at(e, x, t));
             PartTemperatures {
                 part: part.index,
                 mean_k,
@@ -154,7 +146,7 @@ impl HeatProblem {
                 surface_minus_core_k: outer - inner,
             }
         };
-        self.parts.iter().zip(means).map(row).collect()
+        self.operator.parts.iter().zip(means).map(row).collect()
     }
 
     /// Coolest and hottest node of a heated part, as unknowns of the space; `None` if the part is not heated.
@@ -165,34 +157,49 @@ impl HeatProblem {
     }
 
     /// Writes the temperature in kelvin at each quadrature point of element `e`.
-    pub fn temperature_at_points(&self, t: &[f64], e: usize, out: &mut [f64]) {
-        self.operator().at_points(e, t, out);
+    pub fn temperature_at_points(&self, state: &HeatState, e: usize, out: &mut [f64]) {
+        self.operator.at_points(e, &state.temperature_k, out);
+    }
+
+    /// Fastest heating in K/s that a source in W/m^3 at the quadrature points would cause without conduction.
+    pub fn largest_heating_rate_k_per_s(&self, state: &HeatState, source: &[f64]) -> f64 {
+        let count = self.operator.geometry.points();
+        let mut t = vec![0.0; count];
+        let mut largest = 0.0_f64;
+        for (e, values) in source.chunks_exact(count).enumerate().take(self.operator.part_of.len()) {
+            let material = self.operator.material(e);
+            self.operator.at_points(e, &state.temperature_k, &mut t);
+            for (p, &t) in values.iter().zip(&t) {
+                largest = largest.max(p / (material.density_kg_per_m3 * material.enthalpy.slope(t)));
+            }
+        }
+        largest
     }
 
     /// Integral over the whole device of a density given at the quadrature points, one value a heated part in the order
     /// of the model: watts for a source in W/m^3.
     pub fn part_integrals(&self, density: &[f64]) -> Vec<f64> {
-        let count = self.geometry.points();
-        let mut sums = vec![0.0; self.parts.len()];
-        for (e, values) in density.chunks_exact(count).enumerate().take(self.part_of.len()) {
-            let products = values.iter().zip(self.geometry.volume(e)).map(|(v, w)| v * w);
-            sums[self.part_of[e] as usize] += self.device_factor * products.sum::<f64>();
+        let count = self.operator.geometry.points();
+        let mut sums = vec![0.0; self.operator.parts.len()];
+        for (e, values) in density.chunks_exact(count).enumerate().take(self.operator.part_of.len()) {
+            let products = values.iter().zip(self.operator.geometry.volume(e)).map(|(v, w)| v * w);
+            sums[self.operator.part_of[e] as usize] += self.device_factor * products.sum::<f64>();
         }
         sums
     }
 
     fn part(&self, index: usize) -> Option<&HeatedPart> {
-        self.parts.iter().find(|p| p.index == index)
+        self.operator.parts.iter().find(|p| p.index == index)
     }
 
     fn means(&self, t: &[f64]) -> Vec<f64> {
-        let count = self.geometry.points();
-        let mut values = vec![0.0; self.geometry.len()];
+        let count = self.operator.geometry.points();
+        let mut values = vec![0.0; self.operator.geometry.len()];
         for (e, row) in values.chunks_exact_mut(count).enumerate() {
-            self.operator().at_points(e, t, row);
+            self.operator.at_points(e, t, row);
         }
         let sums = self.part_integrals(&values);
-        sums.iter().zip(&self.parts).map(|(sum, p)| sum / p.volume_m3).collect()
+        sums.iter().zip(&self.operator.parts).map(|(sum, p)| sum / p.volume_m3).collect()
     }
 
     /// Recomputes the stored energies from the enthalpy of the temperatures.
@@ -201,15 +208,11 @@ impl HeatProblem {
         let sums = self.part_integrals(&taken);
         energy.stored_j = sums.iter().sum();
         energy.workpiece_stored_j =
-            sums.iter().zip(&self.parts).filter(|(_, p)| p.is_workpiece).map(|(sum, _)| sum).sum();
+            sums.iter().zip(&self.operator.parts).filter(|(_, p)| p.is_workpiece).map(|(sum, _)| sum).sum();
     }
 
-    pub(super) fn geometry(&self) -> &Geometry {
-        &self.geometry
-    }
-
-    pub(super) fn held(&self) -> &[(u32, f64)] {
-        &self.boundary.held
+    pub(super) fn operator(&self) -> &Operator {
+        &self.operator
     }
 
     pub(super) fn device_factor(&self) -> f64 {
@@ -219,32 +222,15 @@ impl HeatProblem {
     /// Position of quadrature point `q` of element `e`, metres.
     pub(super) fn position(&self, e: usize, q: usize) -> Point {
         let mut corners = [[0.0; 2]; MAX_NODES];
-        let n = self.space.corners(e, &mut corners);
-        let p = point_values(&self.space.reference().shapes()[q], 1.0, &corners[..n]);
+        let space = self.space();
+        let n = space.corners(e, &mut corners);
+        let p = point_values(&space.reference().shapes()[q], 1.0, &corners[..n]);
         [p.r, p.z]
-    }
-
-    pub(super) fn operator(&self) -> Operator<'_> {
-        Operator {
-            space: &self.space,
-            geometry: &self.geometry,
-            boundary: &self.boundary,
-            parts: &self.parts,
-            part_of: &self.part_of,
-            ambient_k: self.ambient_k,
-        }
     }
 
     pub(super) fn solver(&mut self) -> Solver<'_> {
         Solver {
-            operator: Operator {
-                space: &self.space,
-                geometry: &self.geometry,
-                boundary: &self.boundary,
-                parts: &self.parts,
-                part_of: &self.part_of,
-                ambient_k: self.ambient_k,
-            },
+            operator: &self.operator,
             scatter: &self.scatter,
             plan: &self.plan,
             held_slots: &self.held_slots,
@@ -259,13 +245,8 @@ fn elements(space: &Space) -> impl Iterator<Item = &[u32]> {
 }
 
 /// Start temperature of each node: the mean by volume over its elements, and held faces at theirs.
-fn start_temperatures(
-    space: &Space,
-    geometry: &Geometry,
-    parts: &[HeatedPart],
-    part_of: &[u32],
-    boundary: &Boundary,
-) -> Vec<f64> {
+fn start_temperatures(operator: &Operator) -> Vec<f64> {
+    let Operator { space, geometry, boundary, parts, part_of, .. } = operator;
     // Offsets from the first part, so that nodes of parts at one temperature are at exactly that.
     let base = parts.first().map_or(0.0, |p| p.start_k);
     let (mut sum, mut volume) = (vec![0.0; space.len()], vec![0.0; space.len()]);

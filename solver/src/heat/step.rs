@@ -141,17 +141,17 @@ impl HeatProblem {
         let times = [state.time_s + GAMMA * dt, state.time_s + dt];
         let sources = [self.source_at(times[0], source)?, self.source_at(times[1], source)?];
         let weight = GAMMA * dt;
+        let guess = self.guess(state, weight);
         let mut solver = self.solver();
 
         let enthalpy = &state.enthalpy_j_per_m3;
         let stage = Stage { time_s: times[0], weight, enthalpy, source: &sources[0], known: &[] };
-        let guess = guess(state, weight);
         let first = solver.solve(&stage, guess, true)?;
 
         let known: Vec<f64> = first.terms.rate.iter().map(|r| (1.0 - GAMMA) * dt * r).collect();
         let stage = Stage { time_s: times[1], weight, enthalpy, source: &sources[1], known: &known };
-        let guess = state.temperature_k.iter().zip(&first.temperature).map(|(a, b)| a + (b - a) / GAMMA);
-        let second = solver.solve(&stage, guess.collect(), false)?;
+        let ahead = state.temperature_k.iter().zip(&first.temperature).map(|(a, b)| a + (b - a) / GAMMA);
+        let second = solver.solve(&stage, ahead.collect(), false)?;
 
         let rates = second.terms.rate.iter().zip(&first.terms.rate);
         let error = solver.filtered(times[1], rates.map(|(b, a)| weight * (b - a)).collect())?;
@@ -170,20 +170,31 @@ impl HeatProblem {
         let (expected, found) = (self.space().len(), state.temperature_k.len());
         if expected != found
             || state.rate_k_per_s.len() != expected
-            || state.enthalpy_j_per_m3.len() != self.geometry().len()
+            || state.enthalpy_j_per_m3.len() != self.operator().geometry.len()
         {
             return Err(StepFailure::ForeignState { expected, found });
         }
         Ok(())
     }
 
+    /// Temperatures at the first stage, `ahead_s` seconds on, if they went on changing as they did.
+    fn guess(&self, state: &HeatState, ahead_s: f64) -> Vec<f64> {
+        let pairs = state.temperature_k.iter().zip(&state.rate_k_per_s);
+        let step = |rate: &f64| (ahead_s * rate).clamp(-LARGEST_UPDATE_K, LARGEST_UPDATE_K);
+        let mut guess: Vec<f64> = pairs.map(|(t, rate)| t + step(rate)).collect();
+        for &(unknown, t) in &self.operator().boundary.held {
+            guess[unknown as usize] = t;
+        }
+        guess
+    }
+
     fn source_at(&self, time_s: f64, source: &dyn Fn(f64, &mut [f64])) -> Result<Vec<f64>, StepFailure> {
-        let mut values = vec![0.0; self.geometry().len()];
+        let mut values = vec![0.0; self.operator().geometry.len()];
         source(time_s, &mut values);
         match values.iter().position(|v| !v.is_finite()) {
             None => Ok(values),
             Some(at) => {
-                let count = self.geometry().points();
+                let count = self.operator().geometry.points();
                 let [r_m, z_m] = self.position(at / count, at % count);
                 Err(StepFailure::SourceNotFinite { time_s, r_m, z_m, value: values[at] })
             }
@@ -191,11 +202,8 @@ impl HeatProblem {
     }
 
     fn next_state(&self, from: &HeatState, dt: f64, first: &StageSolution, second: StageSolution) -> HeatState {
-        let held = self.held();
-        let mut temperature_k = second.temperature;
-        for &(unknown, t) in held {
-            temperature_k[unknown as usize] = t;
-        }
+        let held = &self.operator().boundary.held;
+        let temperature_k = second.temperature;
         let enthalpy_j_per_m3 = self.operator().enthalpy(&temperature_k);
         let rates = temperature_k.iter().zip(&first.temperature);
         let rate_k_per_s = rates.map(|(b, a)| (b - a) / ((1.0 - GAMMA) * dt)).collect();
@@ -217,12 +225,6 @@ impl HeatProblem {
         energy.through_flux_faces_j += through(|f| f.through_flux_faces);
         energy.through_held_faces_j -= device * inward;
     }
-}
-
-/// Temperatures at the first stage if they went on changing as they did; held unknowns keep theirs.
-fn guess(state: &HeatState, ahead_s: f64) -> Vec<f64> {
-    let pairs = state.temperature_k.iter().zip(&state.rate_k_per_s);
-    pairs.map(|(t, rate)| t + (ahead_s * rate).clamp(-LARGEST_UPDATE_K, LARGEST_UPDATE_K)).collect()
 }
 
 /// Largest size among values; NaN if any is.
