@@ -41,11 +41,6 @@ impl Geometry {
         self.volume.len()
     }
 
-    /// Volumes of all quadrature points.
-    pub(super) fn volumes(&self) -> &[f64] {
-        &self.volume
-    }
-
     /// Volumes of the points of element `e`.
     pub(super) fn volume(&self, e: usize) -> &[f64] {
         &self.volume[e * self.points..(e + 1) * self.points]

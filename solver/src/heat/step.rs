@@ -12,7 +12,7 @@
 
 use std::f64::consts::FRAC_1_SQRT_2;
 
-use super::newton::{LARGEST_UPDATE_K, Solver, Stage, StageSolution};
+use super::newton::{LARGEST_UPDATE_K, Stage, StageSolution};
 use super::operator::Flows;
 use super::problem::HeatProblem;
 use super::state::HeatState;
