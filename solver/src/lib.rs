@@ -1,1 +1,3 @@
 //! Axisymmetric eddy currents and transient heat by finite elements.
+
+pub mod linalg;
