@@ -173,7 +173,7 @@ fn tube_passes_its_flux_from_bore_to_outside_as_the_logarithm_says() {
     body.gauges = vec![[inner, 0.002], [outer, 0.002]];
     let mut problem = body.problem();
     let start = problem.start();
-    let before = advance(&mut problem, start, seconds(10.0), 0.5, &no_source).0;
+    let before = advance(&mut problem, start, seconds(40.0), 0.5, &no_source).0;
     let after = problem.step(&before, 10.0, &no_source).unwrap().state;
     let gauges = problem.gauge_values(&after.temperature_k);
     let expected = flux * inner * (outer / inner).ln() / CONDUCTIVITY;
