@@ -136,7 +136,10 @@ impl Segment {
                     .into());
                 }
             }
-            if self.value(middle) <= 0.5 * (b - a) * self.steepest(a, b) {
+            // Taylor: f(middle + x) >= f - |f'| x - max|f''| x^2 / 2.
+            let half = 0.5 * (b - a);
+            let fall = half * (self.slope(middle).abs() + 0.5 * half * self.most_curved(a, b));
+            if self.value(middle) <= fall {
                 pending.extend([(middle, b), (a, middle)]);
             }
         }
@@ -149,15 +152,17 @@ impl Segment {
         }
     }
 
-    /// An upper bound of `|slope|` between two temperatures of the segment, per kelvin.
-    fn steepest(&self, a_k: f64, b_k: f64) -> f64 {
+    /// An upper bound of the magnitude of the second derivative between two temperatures of the segment, per kelvin squared.
+    fn most_curved(&self, a_k: f64, b_k: f64) -> f64 {
         let (a, b) = (a_k - self.zero_k, b_k - self.zero_k);
         let largest = a.abs().max(b.abs());
-        let powers = self.polynomial.iter().enumerate().skip(1).rev();
-        let polynomial = powers.fold(0.0, |sum, (k, c)| sum * largest + k as f64 * c.abs());
+        let powers = self.polynomial.iter().enumerate().skip(2).rev();
+        let polynomial = powers.fold(0.0, |sum, (k, c)| {
+            sum * largest + (k * (k - 1)) as f64 * c.abs()
+        });
         let pole = self.pole.map_or(0.0, |p| {
             let distance = (a - p.at).abs().min((b - p.at).abs());
-            p.numerator.abs() / (distance * distance)
+            2.0 * p.numerator.abs() / distance.powi(3)
         });
         polynomial + pole
     }
