@@ -107,7 +107,9 @@ fn a_mistyped_name_gets_the_nearest_one() {
     ] {
         assert_eq!(library.suggest(typed), Some(meant), "{typed}");
     }
-    assert_eq!(library.suggest("xyzzyplugh"), None);
+    for nothing_like_it in ["xyzzyplugh", "", "q"] {
+        assert_eq!(library.suggest(nothing_like_it), None, "{nothing_like_it}");
+    }
 }
 
 #[test]

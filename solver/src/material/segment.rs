@@ -3,8 +3,7 @@
 //!
 //! Source of the form: EN 1993-1-2:2005, 3.4.1.2, whose specific heat of steel near 735 °C is written with such poles.
 
-use super::error::{MaterialError, MaterialFault};
-use crate::constants::ZERO_CELSIUS_K;
+use super::error::{MaterialError, MaterialFault, celsius};
 
 /// How many pieces a segment is cut into at most to show that it stays positive.
 const PIECES: usize = 4096;
@@ -53,7 +52,7 @@ impl Segment {
                 return Err(MaterialFault::NotFinite { value }.into());
             }
         }
-        let (from_c, to_c) = (from_k - ZERO_CELSIUS_K, to_k - ZERO_CELSIUS_K);
+        let (from_c, to_c) = (celsius(from_k), celsius(to_k));
         if from_k < 0.0 {
             return Err(MaterialFault::BelowAbsoluteZero { at_c: from_c }.into());
         }
@@ -64,7 +63,7 @@ impl Segment {
             && p.at >= from_k - zero_k
             && p.at <= to_k - zero_k
         {
-            let at_c = p.at + zero_k - ZERO_CELSIUS_K;
+            let at_c = celsius(p.at + zero_k);
             return Err(MaterialFault::PoleInside { at_c, from_c, to_c }.into());
         }
         Ok(Self {
@@ -131,7 +130,7 @@ impl Segment {
                     return Err(MaterialFault::NotPositive {
                         value,
                         unit,
-                        at_c: Some(t - ZERO_CELSIUS_K),
+                        at_c: Some(celsius(t)),
                     }
                     .into());
                 }
@@ -145,10 +144,7 @@ impl Segment {
         }
         match pending.pop() {
             None => Ok(()),
-            Some((a, _)) => Err(MaterialFault::PositivityUnclear {
-                at_c: a - ZERO_CELSIUS_K,
-            }
-            .into()),
+            Some((a, _)) => Err(MaterialFault::PositivityUnclear { at_c: celsius(a) }.into()),
         }
     }
 
