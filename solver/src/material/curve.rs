@@ -3,7 +3,7 @@
 //! Convention: SI values over kelvin. Outside the range of the data the end value is held. At a temperature where two
 //! segments meet the upper one counts, as EN 1993-1-2 has it.
 
-use super::error::{MaterialError, MaterialFault};
+use super::error::{MaterialError, MaterialFault, celsius};
 use super::segment::Segment;
 use super::source::Source;
 use crate::constants::ZERO_CELSIUS_K;
@@ -57,12 +57,12 @@ impl Curve {
         for (row, &(t, value)) in points.iter().enumerate() {
             finite(t)?;
             finite(value)?;
-            let at_c = t - ZERO_CELSIUS_K;
+            let at_c = celsius(t);
             if t < 0.0 {
                 return Err(MaterialFault::BelowAbsoluteZero { at_c }.into());
             }
             if row > 0 && t <= points[row - 1].0 {
-                let previous_c = points[row - 1].0 - ZERO_CELSIUS_K;
+                let previous_c = celsius(points[row - 1].0);
                 return Err(MaterialFault::RowsNotRising {
                     row: row + 1,
                     at_c,
@@ -95,7 +95,7 @@ impl Curve {
         for i in 1..segments.len() {
             let (end, begin) = (segments[i - 1].range_k().1, segments[i].range_k().0);
             if end != begin {
-                let (end_c, begin_c) = (end - ZERO_CELSIUS_K, begin - ZERO_CELSIUS_K);
+                let (end_c, begin_c) = (celsius(end), celsius(begin));
                 return Err(MaterialFault::SegmentsApart { end_c, begin_c }.into());
             }
             integral[i] = integral[i - 1] + segments[i - 1].integral(end);
@@ -236,7 +236,7 @@ impl Curve {
             Form::Table { t_k, value, .. } => match value.iter().position(|&v| v <= 0.0) {
                 None => Ok(()),
                 Some(i) => {
-                    let at_c = Some(t_k[i] - ZERO_CELSIUS_K);
+                    let at_c = Some(celsius(t_k[i]));
                     Err(MaterialFault::NotPositive {
                         value: value[i],
                         unit,

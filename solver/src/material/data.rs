@@ -124,6 +124,10 @@ impl TemperatureUnit {
     }
 
     /// Whether this is the scale taken where none is named.
+    #[allow(
+        clippy::trivially_copy_pass_by_ref,
+        reason = "the serialiser passes a reference"
+    )]
     fn is_default(&self) -> bool {
         *self == Self::default()
     }

@@ -5,12 +5,14 @@
 //! strictly rising function of temperature. Outside the range of the specific heat `h` continues linearly.
 
 use super::curve::{Curve, REFERENCE_K};
-use super::error::{MaterialError, MaterialFault, Property};
+use super::error::{MaterialError, MaterialFault, Property, celsius};
 use super::source::Source;
-use crate::constants::ZERO_CELSIUS_K;
 
 /// Narrowest melting range in kelvin.
 const LEAST_RANGE_K: f64 = 1.0;
+
+/// A relative Newton step that is round-off of `h(T)`.
+const ROUND_OFF: f64 = 4.0 * f64::EPSILON;
 
 /// Newton or bisection steps at most; bisection alone needs about 60.
 const MOST_STEPS: usize = 120;
@@ -57,10 +59,7 @@ impl Melting {
         positive(self.liquidus_k, "K", Property::Liquidus)?;
         positive(self.latent_heat_j_per_kg, "J/kg", Property::LatentHeat)?;
         if self.liquidus_k < self.solidus_k {
-            let (solidus_c, liquidus_c) = (
-                self.solidus_k - ZERO_CELSIUS_K,
-                self.liquidus_k - ZERO_CELSIUS_K,
-            );
+            let (solidus_c, liquidus_c) = (celsius(self.solidus_k), celsius(self.liquidus_k));
             let fault = MaterialFault::LiquidusBelowSolidus {
                 solidus_c,
                 liquidus_c,
@@ -125,9 +124,9 @@ impl Enthalpy {
 
     /// Enthalpy in J/kg at `t_k` in kelvin.
     pub fn value(&self, t_k: f64) -> f64 {
-        let latent = self.fusion.map_or(0.0, |(begin, end, heat)| {
-            heat * ((t_k - begin) / (end - begin)).clamp(0.0, 1.0)
-        });
+        let latent = self
+            .fusion
+            .map_or(0.0, |(_, _, heat)| heat * self.liquid_fraction(t_k));
         self.specific_heat.integral(t_k) + latent
     }
 
@@ -152,11 +151,11 @@ impl Enthalpy {
     /// Every `h` has one, because `h(T)` rises strictly and is continued linearly; far below the data it may lie under
     /// absolute zero. NaN in, NaN out.
     pub fn temperature(&self, h: f64) -> f64 {
-        let last = self.knots_k.len() - 1;
-        let above = self.knots_h.partition_point(|&knot| knot <= h);
         if h.is_nan() {
             return h;
         }
+        let last = self.knots_k.len() - 1;
+        let above = self.knots_h.partition_point(|&knot| knot <= h);
         if above == 0 {
             return self.knots_k[0]
                 + (h - self.knots_h[0]) / self.specific_heat.value(self.knots_k[0]);
@@ -175,21 +174,21 @@ impl Enthalpy {
         let mut t = low + share * (high - low);
         for _ in 0..MOST_STEPS {
             let excess = self.value(t) - h;
-            if excess == 0.0 {
-                return t;
-            }
             if excess > 0.0 {
                 high = t;
             } else {
                 low = t;
             }
             let newton = t - excess / self.slope(t);
+            if (newton - t).abs() <= ROUND_OFF * t {
+                return newton.clamp(self.knots_k[i], self.knots_k[i + 1]);
+            }
             let next = if newton > low && newton < high {
                 newton
             } else {
                 low.midpoint(high)
             };
-            if (next - t).abs() <= f64::EPSILON * t.abs() || next <= low || next >= high {
+            if next <= low || next >= high {
                 return next;
             }
             t = next;

@@ -4,6 +4,8 @@
 
 use std::fmt;
 
+use crate::constants::ZERO_CELSIUS_K;
+
 /// A property of a material, named by its key in a file.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
 pub enum Property {
@@ -281,5 +283,10 @@ fn place(material: Option<&str>, property: Option<Property>) -> String {
 }
 
 fn at(at_c: Option<f64>) -> String {
-    at_c.map_or_else(String::new, |t| format!(" at {t:.6} °C"))
+    at_c.map_or_else(String::new, |t| format!(" at {t} °C"))
+}
+
+/// Temperature in °C for a message, without the rounding of the conversion.
+pub(super) fn celsius(t_k: f64) -> f64 {
+    ((t_k - ZERO_CELSIUS_K) * 1e6).round() / 1e6
 }

@@ -116,7 +116,7 @@ impl Library {
         let distances =
             spellings.map(|s| (strsim::damerau_levenshtein(&wanted, &key(s)), s.as_str()));
         let (distance, spelling) = distances.min_by_key(|(distance, _)| *distance)?;
-        (distance <= most).then_some(spelling)
+        (distance <= most && distance < wanted.chars().count()).then_some(spelling)
     }
 }
 

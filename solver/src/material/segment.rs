@@ -3,8 +3,7 @@
 //!
 //! Source of the form: EN 1993-1-2:2005, 3.4.1.2, whose specific heat of steel near 735 °C is written with such poles.
 
-use super::error::{MaterialError, MaterialFault};
-use crate::constants::ZERO_CELSIUS_K;
+use super::error::{MaterialError, MaterialFault, celsius};
 
 /// How many pieces a segment is cut into at most to show that it stays positive.
 const PIECES: usize = 4096;
@@ -53,7 +52,7 @@ impl Segment {
                 return Err(MaterialFault::NotFinite { value }.into());
             }
         }
-        let (from_c, to_c) = (from_k - ZERO_CELSIUS_K, to_k - ZERO_CELSIUS_K);
+        let (from_c, to_c) = (celsius(from_k), celsius(to_k));
         if from_k < 0.0 {
             return Err(MaterialFault::BelowAbsoluteZero { at_c: from_c }.into());
         }
@@ -64,7 +63,7 @@ impl Segment {
             && p.at >= from_k - zero_k
             && p.at <= to_k - zero_k
         {
-            let at_c = p.at + zero_k - ZERO_CELSIUS_K;
+            let at_c = celsius(p.at + zero_k);
             return Err(MaterialFault::PoleInside { at_c, from_c, to_c }.into());
         }
         Ok(Self {
@@ -131,33 +130,35 @@ impl Segment {
                     return Err(MaterialFault::NotPositive {
                         value,
                         unit,
-                        at_c: Some(t - ZERO_CELSIUS_K),
+                        at_c: Some(celsius(t)),
                     }
                     .into());
                 }
             }
-            if self.value(middle) <= 0.5 * (b - a) * self.steepest(a, b) {
+            // Taylor: f(middle + x) >= f - |f'| x - max|f''| x^2 / 2.
+            let half = 0.5 * (b - a);
+            let fall = half * (self.slope(middle).abs() + 0.5 * half * self.most_curved(a, b));
+            if self.value(middle) <= fall {
                 pending.extend([(middle, b), (a, middle)]);
             }
         }
         match pending.pop() {
             None => Ok(()),
-            Some((a, _)) => Err(MaterialFault::PositivityUnclear {
-                at_c: a - ZERO_CELSIUS_K,
-            }
-            .into()),
+            Some((a, _)) => Err(MaterialFault::PositivityUnclear { at_c: celsius(a) }.into()),
         }
     }
 
-    /// An upper bound of `|slope|` between two temperatures of the segment, per kelvin.
-    fn steepest(&self, a_k: f64, b_k: f64) -> f64 {
+    /// An upper bound of the magnitude of the second derivative between two temperatures of the segment, per kelvin squared.
+    fn most_curved(&self, a_k: f64, b_k: f64) -> f64 {
         let (a, b) = (a_k - self.zero_k, b_k - self.zero_k);
         let largest = a.abs().max(b.abs());
-        let powers = self.polynomial.iter().enumerate().skip(1).rev();
-        let polynomial = powers.fold(0.0, |sum, (k, c)| sum * largest + k as f64 * c.abs());
+        let powers = self.polynomial.iter().enumerate().skip(2).rev();
+        let polynomial = powers.fold(0.0, |sum, (k, c)| {
+            sum * largest + (k * (k - 1)) as f64 * c.abs()
+        });
         let pole = self.pole.map_or(0.0, |p| {
             let distance = (a - p.at).abs().min((b - p.at).abs());
-            p.numerator.abs() / (distance * distance)
+            2.0 * p.numerator.abs() / distance.powi(3)
         });
         polynomial + pole
     }

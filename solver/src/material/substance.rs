@@ -1,7 +1,9 @@
 //! A material as the solver uses it: validated, SI, kelvin.
 
 use super::curve::Curve;
-use super::data::MaterialData;
+use super::data::{
+    CurveData, EmissivityData, MagneticData, MaterialData, MeltingData, QuantityData, Written,
+};
 use super::enthalpy::{Enthalpy, Melting};
 use super::error::{MaterialError, MaterialFault, Property};
 use super::magnetic::Magnetic;
@@ -97,28 +99,16 @@ impl MaterialData {
 type Reader = fn(&serde_json::Value) -> Result<(), String>;
 
 const PARTS: [(Property, Reader); 7] = [
-    (
-        Property::Density,
-        reads::<super::data::Written<String, super::data::QuantityData>>,
-    ),
-    (
-        Property::Resistivity,
-        reads::<super::data::Written<String, super::data::CurveData>>,
-    ),
+    (Property::Density, reads::<Written<String, QuantityData>>),
+    (Property::Resistivity, reads::<Written<String, CurveData>>),
     (
         Property::ThermalConductivity,
-        reads::<super::data::Written<String, super::data::CurveData>>,
+        reads::<Written<String, CurveData>>,
     ),
-    (
-        Property::SpecificHeat,
-        reads::<super::data::Written<String, super::data::CurveData>>,
-    ),
-    (
-        Property::Emissivity,
-        reads::<super::data::Written<f64, super::data::EmissivityData>>,
-    ),
-    (Property::Melting, reads::<super::data::MeltingData>),
-    (Property::Magnetic, reads::<super::data::MagneticData>),
+    (Property::SpecificHeat, reads::<Written<String, CurveData>>),
+    (Property::Emissivity, reads::<Written<f64, EmissivityData>>),
+    (Property::Melting, reads::<MeltingData>),
+    (Property::Magnetic, reads::<MagneticData>),
 ];
 
 fn reads<T: serde::de::DeserializeOwned>(value: &serde_json::Value) -> Result<(), String> {

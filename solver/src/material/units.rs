@@ -1,6 +1,6 @@
 //! Engineers' units of material data and their factors to SI. Temperatures are written in °C, K or °F.
 
-use super::error::{MaterialError, MaterialFault};
+use super::error::{MaterialError, MaterialFault, celsius};
 use crate::constants::ZERO_CELSIUS_K;
 
 /// A physical dimension of material data: its SI unit, the units accepted in words, and their factors.
@@ -132,7 +132,7 @@ pub(super) fn parse_temperature(text: &str) -> Result<f64, MaterialError> {
     };
     if kelvin < 0.0 {
         return Err(MaterialFault::BelowAbsoluteZero {
-            at_c: kelvin - ZERO_CELSIUS_K,
+            at_c: celsius(kelvin),
         }
         .into());
     }
