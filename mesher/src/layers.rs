@@ -15,7 +15,7 @@ use crate::ids::{Point, distance};
 use crate::noding::Graph;
 use crate::note::{MeshNote, NoteReason};
 use crate::plan::{Cell, Tag};
-use crate::size_field::{Gaps, SizeField, SizeSource, sources_of};
+use crate::size_field::{Gaps, SizeField, SizeSource, cusp_sources, sources_of};
 use columns::{Chain, chains};
 use loops::loops_of;
 use positions::divide_surfaces;
@@ -57,7 +57,8 @@ impl Strips {
 
     /// Sources of the size field: the strips' own edges, and the stretches they leave alone.
     pub(crate) fn sources(&self, graph: &Graph, sizes: &[f64], gaps: &Gaps) -> Vec<SizeSource> {
-        let mut out = self.inner.clone();
+        let mut out = cusp_sources(graph, sizes);
+        out.extend(&self.inner);
         for (i, stretch) in graph.stretches.iter().enumerate() {
             if self.divisions[i].is_none() {
                 sources_of(i, stretch, sizes[i], gaps, &mut out);
