@@ -1,5 +1,6 @@
 //! The whole way from a drawing to a checked mesh. Convention: arcs are divided finer and finer until the mesh passes its check.
 
+use crate::check::LEAST_RATIO;
 use crate::drawing::{Drawing, Limits, OUTSIDE};
 use crate::error::MeshError;
 use crate::ids::{CurveId, NO_TRIANGLE, Point};
@@ -7,7 +8,6 @@ use crate::layers;
 use crate::mesh::{Bend, Curve, Edge, Mesh, Shape};
 use crate::noding::{CUSP, Graph, node};
 use crate::note::{MeshNote, NoteReason};
-use crate::check::LEAST_RATIO;
 use crate::plan::Plan;
 use crate::refine::{Budget, Sizes, refine};
 use crate::size_field::{Gaps, SizeField, sources, wanted};

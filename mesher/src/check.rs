@@ -136,6 +136,7 @@ fn jacobian([a, b, c]: [Point; 3], bulge: [Point; 3], l: [f64; 3]) -> f64 {
     // Derivatives of the three edge bubbles L0 L1, L1 L2, L2 L0 with L0 = 1 - L1 - L2.
     let by_one = [l[0] - l[1], l[2], -l[2]];
     let by_two = [-l[1], l[1], l[0] - l[2]];
-    let column = |side: Point, by: [f64; 3]| [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>());
+    let column =
+        |side: Point, by: [f64; 3]| [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>());
     cross(column(sub(b, a), by_one), column(sub(c, a), by_two))
 }

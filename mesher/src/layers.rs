@@ -129,7 +129,11 @@ fn describe(drawing: &Drawing, graph: &Graph, chains: &[Chain], emitted: &mut em
     let strips = &mut emitted.result;
     for (i, stretch) in graph.stretches.iter().enumerate() {
         let Some(chain) = &strips.divisions[i] else { continue };
-        let first = stretch.sides.iter().filter_map(|&s| drawing.region_of(s)?.layers).fold(f64::INFINITY, |a, l| a.min(l.first));
+        let first = stretch
+            .sides
+            .iter()
+            .filter_map(|&s| drawing.region_of(s)?.layers)
+            .fold(f64::INFINITY, |a, l| a.min(l.first));
         for pair in chain.windows(2) {
             let ends = [pair[0], pair[1]].map(|v| strips.point(graph, v));
             let length = distance(ends[0], ends[1]);

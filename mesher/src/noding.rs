@@ -69,8 +69,7 @@ impl Nodes {
 pub(crate) fn node(drawing: &Drawing) -> Graph {
     let tolerance = 1e-9 * drawing.extent();
     let sources = sources(drawing);
-    let mut nodes =
-        Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
+    let mut nodes = Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
     for source in &sources {
         nodes.place(source.span.start);
     }
@@ -131,9 +130,8 @@ fn keep_used(points: &[Point], stretches: &mut [Stretch]) -> Vec<Point> {
 
 fn sources(drawing: &Drawing) -> Vec<Source> {
     let domain = drawing.domain.spans().iter().enumerate();
-    let mut all: Vec<Source> = domain
-        .map(|(i, &span)| Source { span, domain_piece: Some(i), region_piece: None })
-        .collect();
+    let mut all: Vec<Source> =
+        domain.map(|(i, &span)| Source { span, domain_piece: Some(i), region_piece: None }).collect();
     for (k, region) in drawing.regions.iter().enumerate() {
         let pieces = region.outline.spans().iter().enumerate();
         all.extend(pieces.map(|(i, &span)| Source { span, domain_piece: None, region_piece: Some((k, i)) }));

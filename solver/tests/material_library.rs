@@ -12,50 +12,23 @@ fn every_property_of_every_material_has_a_source() {
     for material in library().unwrap().materials() {
         let name = &material.name;
         assert!(stands(&material.density_source), "{name}: density");
-        assert!(
-            stands(material.conductivity.source()),
-            "{name}: thermal conductivity"
-        );
-        assert!(
-            stands(material.specific_heat.source()),
-            "{name}: specific heat"
-        );
-        assert!(
-            material
-                .resistivity
-                .as_ref()
-                .is_none_or(|c| stands(c.source())),
-            "{name}: resistivity"
-        );
-        assert_eq!(
-            material.emissivity.is_some(),
-            material.emissivity_source.is_some(),
-            "{name}: emissivity"
-        );
-        assert!(
-            material.emissivity_source.as_ref().is_none_or(stands),
-            "{name}: emissivity"
-        );
-        assert!(
-            material.melting.as_ref().is_none_or(|m| stands(&m.source)),
-            "{name}: melting"
-        );
-        assert!(
-            material.magnetic.as_ref().is_none_or(|m| stands(&m.source)),
-            "{name}: magnetic"
-        );
+        assert!(stands(material.conductivity.source()), "{name}: thermal conductivity");
+        assert!(stands(material.specific_heat.source()), "{name}: specific heat");
+        assert!(material.resistivity.as_ref().is_none_or(|c| stands(c.source())), "{name}: resistivity");
+        assert_eq!(material.emissivity.is_some(), material.emissivity_source.is_some(), "{name}: emissivity");
+        assert!(material.emissivity_source.as_ref().is_none_or(stands), "{name}: emissivity");
+        assert!(material.melting.as_ref().is_none_or(|m| stands(&m.source)), "{name}: melting");
+        assert!(material.magnetic.as_ref().is_none_or(|m| stands(&m.source)), "{name}: magnetic");
         assert!(!material.description.is_empty(), "{name}: description");
     }
 }
 
 #[test]
 fn a_library_value_without_a_source_is_refused() {
-    let text = r#"[{ "name": "x", "density": "1000 kg/m3", "thermal_conductivity": "1 W/m/K", "specific_heat": "1 J/kg/K" }]"#;
+    let text =
+        r#"[{ "name": "x", "density": "1000 kg/m3", "thermal_conductivity": "1 W/m/K", "specific_heat": "1 J/kg/K" }]"#;
     let error = Library::read(&[text]).unwrap_err().to_string();
-    assert!(
-        error.contains("material `x`, `density`") && error.contains("source"),
-        "{error}"
-    );
+    assert!(error.contains("material `x`, `density`") && error.contains("source"), "{error}");
 }
 
 #[test]
@@ -83,11 +56,7 @@ fn materials_answer_to_their_aliases_whatever_the_case_and_spacing() {
         ("brass", "brass 70/30"),
         ("Refractory  Castable", "refractory castable"),
     ] {
-        assert_eq!(
-            library.find(alias).map(|m| m.name.as_str()),
-            Some(name),
-            "{alias}"
-        );
+        assert_eq!(library.find(alias).map(|m| m.name.as_str()), Some(name), "{alias}");
     }
     assert!(library.find("unobtainium").is_none());
     assert!(library.find("").is_none());
@@ -143,36 +112,13 @@ fn the_library_holds_what_a_forge_a_hardening_shop_and_a_foundry_need() {
     ] {
         assert!(names.contains(&name), "{name}");
     }
-    for metal in [
-        "copper",
-        "C22",
-        "C45",
-        "42CrMo4",
-        "1.4301",
-        "1.4016",
-        "aluminium",
-        "iron",
-        "nickel",
-        "tungsten",
-    ] {
-        assert!(
-            library.find(metal).unwrap().melting.is_some(),
-            "{metal} melts"
-        );
+    for metal in ["copper", "C22", "C45", "42CrMo4", "1.4301", "1.4016", "aluminium", "iron", "nickel", "tungsten"] {
+        assert!(library.find(metal).unwrap().melting.is_some(), "{metal} melts");
     }
     for ferromagnet in ["C22", "C45", "42CrMo4", "1.4016", "iron", "nickel"] {
-        assert!(
-            library.find(ferromagnet).unwrap().magnetic.is_some(),
-            "{ferromagnet} is magnetic"
-        );
+        assert!(library.find(ferromagnet).unwrap().magnetic.is_some(), "{ferromagnet} is magnetic");
     }
-    for insulator in [
-        "air",
-        "alumina",
-        "mica",
-        "refractory castable",
-        "insulation wool",
-    ] {
+    for insulator in ["air", "alumina", "mica", "refractory castable", "insulation wool"] {
         let material = library.find(insulator).unwrap();
         assert!(material.resistivity.is_none(), "{insulator} insulates");
         assert_eq!(material.electrical_conductivity_s_per_m(500.0), 0.0);
@@ -220,13 +166,8 @@ fn pure_metals_follow_the_wiedemann_franz_law_from_room_temperature_on() {
     for name in ["copper", "aluminium", "iron", "nickel", "tungsten"] {
         let material = library().unwrap().find(name).unwrap();
         for t in [300.0, 400.0, 600.0, 800.0] {
-            let lorenz = material.conductivity.value(t)
-                * material.resistivity.as_ref().unwrap().value(t)
-                / t;
-            assert!(
-                (lorenz / 2.44e-8 - 1.0).abs() < 0.35,
-                "{name} at {t} K: Lorenz number {lorenz:.3e}"
-            );
+            let lorenz = material.conductivity.value(t) * material.resistivity.as_ref().unwrap().value(t) / t;
+            assert!((lorenz / 2.44e-8 - 1.0).abs() < 0.35, "{name} at {t} K: Lorenz number {lorenz:.3e}");
         }
     }
 }

@@ -204,7 +204,8 @@ fn add_surface(graph: &Graph, strips: &Strips, chain: &mut Chain, k: usize) {
             let j = &whole.junctions[junction];
             let away = if side == 1 { t * length } else { (1.0 - t) * length };
             height = height.min(climb(j, side, away, &whole.depths, graph.tolerance));
-            let step = (1..j.feet[side].len()).find(|&level| j.matched && at_foot(j, side, level, away, graph.tolerance));
+            let step =
+                (1..j.feet[side].len()).find(|&level| j.matched && at_foot(j, side, level, away, graph.tolerance));
             if let (Some(level), Some(apex)) = (step, step.and_then(|l| j.apex[l])) {
                 if same(points[level], apex, graph.tolerance) {
                     points[level] = apex;

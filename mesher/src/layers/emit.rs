@@ -111,9 +111,10 @@ impl Emitter<'_> {
             let Some(outline) = outline.filter(|_| junction.style == Style::Steps) else { continue };
             let mut run = Vec::new();
             for level in 1..junction.apex.len() {
-                let top = chain.columns.iter().position(|c| {
-                    c.height == level && c.steps.iter().any(|s| s.junction == k && s.level == level)
-                });
+                let top = chain
+                    .columns
+                    .iter()
+                    .position(|c| c.height == level && c.steps.iter().any(|s| s.junction == k && s.level == level));
                 match top {
                     Some(c) => run.push(ids[c][level]),
                     None => break,
@@ -153,8 +154,11 @@ impl Emitter<'_> {
             if level + 1 == common && a.len() == b.len() {
                 self.source(upper);
             }
-            let corners =
-                if a[level] == b[level] { [a[level], b[level + 1], a[level + 1], a[level + 1]] } else { [a[level], b[level], b[level + 1], a[level + 1]] };
+            let corners = if a[level] == b[level] {
+                [a[level], b[level + 1], a[level + 1], a[level + 1]]
+            } else {
+                [a[level], b[level], b[level + 1], a[level + 1]]
+            };
             self.cell(corners, pole, c, pair.columns);
         }
         if a.len() == b.len() || a[common] == b[common] {

@@ -74,7 +74,10 @@ pub(super) fn junction(before: &Use, after: &Use, depths: &[f64]) -> Junction {
                 let t = |p: Point| u.span.project(p);
                 apex.iter().map(|a| a.map(|p| length * if from_end { 1.0 - t(p) } else { t(p) })).collect()
             };
-            [if before.bare { Vec::new() } else { foot(before, true) }, if after.bare { Vec::new() } else { foot(after, false) }]
+            [
+                if before.bare { Vec::new() } else { foot(before, true) },
+                if after.bare { Vec::new() } else { foot(after, false) },
+            ]
         }
         _ => [Vec::new(), Vec::new()],
     };

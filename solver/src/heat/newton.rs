@@ -116,8 +116,7 @@ impl Solver<'_> {
 
     fn trial(&self, stage: &Stage, temperature: Vec<f64>) -> Result<Trial, StepFailure> {
         let terms = self.operator.terms(&temperature, stage.enthalpy, stage.source);
-        let mut residual: Vec<f64> =
-            terms.storage.iter().zip(&terms.rate).map(|(s, r)| s - stage.weight * r).collect();
+        let mut residual: Vec<f64> = terms.storage.iter().zip(&terms.rate).map(|(s, r)| s - stage.weight * r).collect();
         for (r, known) in residual.iter_mut().zip(stage.known) {
             *r -= known;
         }
@@ -138,7 +137,7 @@ impl Solver<'_> {
         let moved = stored + stage.weight * now.terms.flows.size();
         let matrix = &self.tangent.matrix;
         let diagonal = matrix.pattern.starts().iter().map(|&slot| matrix.values.get(slot).copied().unwrap_or(0.0));
-                let rounding: f64 = diagonal.zip(&now.temperature).map(|(d, t)| d * t.abs()).sum();
+        let rounding: f64 = diagonal.zip(&now.temperature).map(|(d, t)| d * t.abs()).sum();
         TOLERANCE * moved + ROUNDING * f64::EPSILON * rounding
     }
 

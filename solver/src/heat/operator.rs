@@ -68,8 +68,7 @@ struct Local {
 impl Operator {
     /// Storage against `enthalpy` (`rho h_n` in J/m^3 a point) and rate with `source` (W/m^3 a point) at `t`.
     pub(super) fn terms(&self, t: &[f64], enthalpy: &[f64], source: &[f64]) -> Terms {
-        let locals =
-            map_elements(self.space.element_count(), |e, _| self.local_terms(e, t, enthalpy, source));
+        let locals = map_elements(self.space.element_count(), |e, _| self.local_terms(e, t, enthalpy, source));
         let n = self.space.len();
         let mut terms = Terms { storage: vec![0.0; n], rate: vec![0.0; n], flows: Flows::default() };
         for (e, local) in locals.iter().enumerate() {
@@ -85,12 +84,9 @@ impl Operator {
     fn local_terms(&self, e: usize, t: &[f64], enthalpy: &[f64], source: &[f64]) -> Local {
         let material = self.material(e);
         let (nodal, nodes) = self.nodal(e, t);
-        let mut out =
-            Local { storage: [0.0; MAX_NODES], rate: [0.0; MAX_NODES], flows: Flows::default() };
+        let mut out = Local { storage: [0.0; MAX_NODES], rate: [0.0; MAX_NODES], flows: Flows::default() };
         let first = e * self.geometry.points();
-        for (q, (shape, &volume)) in
-            self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate()
-        {
+        for (q, (shape, &volume)) in self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate() {
             let gradients = self.geometry.gradient(e, q);
             let (mut at, mut slope) = (0.0, [0.0; 2]);
             for i in 0..nodes {
@@ -106,8 +102,8 @@ impl Operator {
             let k = volume * material.conductivity.value(at);
             for i in 0..nodes {
                 out.storage[i] += stored * shape.value[i];
-                out.rate[i] += supplied * shape.value[i]
-                    - k * (gradients[i][0] * slope[0] + gradients[i][1] * slope[1]);
+                out.rate[i] +=
+                    supplied * shape.value[i] - k * (gradients[i][0] * slope[0] + gradients[i][1] * slope[1]);
             }
             out.flows.supplied += supplied;
         }
@@ -143,8 +139,7 @@ impl Operator {
         add_blocks(scatter, values, |e, _, block: &mut Block<f64>| {
             let material = self.material(e);
             let (nodal, nodes) = self.nodal(e, t);
-            for (q, (shape, &volume)) in
-                self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate()
+            for (q, (shape, &volume)) in self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate()
             {
                 let at: f64 = shape.value[..nodes].iter().zip(&nodal).map(|(v, t)| v * t).sum();
                 let gradients = self.geometry.gradient(e, q);
@@ -154,8 +149,7 @@ impl Operator {
                 for i in 0..nodes {
                     let (mass, flow) = (capacity * shape.value[i], gradients[i].map(|g| k * g));
                     for j in 0..=i {
-                        block[slot] +=
-                            mass * shape.value[j] + flow[0] * gradients[j][0] + flow[1] * gradients[j][1];
+                        block[slot] += mass * shape.value[j] + flow[0] * gradients[j][0] + flow[1] * gradients[j][1];
                         slot += 1;
                     }
                 }

@@ -57,8 +57,7 @@ impl HeatProblem {
         let geometry = Geometry::new(&space);
         let parts = heated_parts(&space, &geometry, model, &owner_of);
         let position = |e| parts.iter().position(|p| owner_of(space.region(e)) == Some(p.index));
-        let part_of: Vec<u32> =
-            (0..space.element_count()).map(|e| position(e).unwrap_or(0) as u32).collect();
+        let part_of: Vec<u32> = (0..space.element_count()).map(|e| position(e).unwrap_or(0) as u32).collect();
         let boundary = Boundary::new(&space, |e| &model.parts[parts[part_of[e] as usize].index]);
         let gauges = place_gauges(&space, &parts, &part_of, model)?;
         let ambient_k = model.heating.as_ref().map_or(model.start_k, |h| h.ambient_k);

@@ -49,11 +49,7 @@ impl<T: Scalar> Panel<'_, T> {
     fn eliminate_columns(&mut self, start: usize, end: usize) -> Result<(), BadPivot> {
         let width = end - start;
         if width <= NARROW {
-            return Arch::new().dispatch(Narrow {
-                panel: self,
-                start,
-                end,
-            });
+            return Arch::new().dispatch(Narrow { panel: self, start, end });
         }
         let middle = start + (width / 2).next_multiple_of(NARROW);
         self.eliminate_columns(start, middle)?;
@@ -66,24 +62,10 @@ impl<T: Scalar> Panel<'_, T> {
         let (height, rows) = (self.height, self.height - middle);
         let (done, open) = self.values.split_at_mut(middle * height);
         let corner = start * height + middle;
-        let lower = MatRef::from_column_major_slice_with_stride(
-            &done[corner..],
-            rows,
-            middle - start,
-            height,
-        );
-        let scaled = MatRef::from_column_major_slice_with_stride(
-            &self.scaled[corner..],
-            end - middle,
-            middle - start,
-            height,
-        );
-        let target = MatMut::from_column_major_slice_with_stride_mut(
-            &mut open[middle..],
-            rows,
-            end - middle,
-            height,
-        );
+        let lower = MatRef::from_column_major_slice_with_stride(&done[corner..], rows, middle - start, height);
+        let scaled =
+            MatRef::from_column_major_slice_with_stride(&self.scaled[corner..], end - middle, middle - start, height);
+        let target = MatMut::from_column_major_slice_with_stride_mut(&mut open[middle..], rows, end - middle, height);
         subtract_product(target, lower, scaled);
     }
 
@@ -96,17 +78,11 @@ impl<T: Scalar> Panel<'_, T> {
             let scaled = &mut self.scaled[column * height + column..(column + 1) * height];
             let ratio = lower[0].size() / self.references[column];
             if !lower[0].finite() {
-                return Err(BadPivot {
-                    column,
-                    ratio: f64::NAN,
-                });
+                return Err(BadPivot { column, ratio: f64::NAN });
             }
             // 0/0 is refused as well, and reported as zero.
             if ratio.is_nan() || ratio < self.limit {
-                return Err(BadPivot {
-                    column,
-                    ratio: ratio.max(0.0),
-                });
+                return Err(BadPivot { column, ratio: ratio.max(0.0) });
             }
             scaled.copy_from_slice(lower);
             let reciprocal = lower[0].reciprocal();
@@ -114,11 +90,7 @@ impl<T: Scalar> Panel<'_, T> {
             for value in &mut lower[1..] {
                 *value *= reciprocal;
             }
-            for (offset, target) in open
-                .chunks_exact_mut(height)
-                .take(end - column - 1)
-                .enumerate()
-            {
+            for (offset, target) in open.chunks_exact_mut(height).take(end - column - 1).enumerate() {
                 let row = offset + 1;
                 add_multiple(&mut target[column + row..], -lower[row], &scaled[row..]);
             }
@@ -133,18 +105,8 @@ impl<T: Scalar> Panel<'_, T> {
         if order == 0 || pivots == 0 {
             return;
         }
-        let lower = MatRef::from_column_major_slice_with_stride(
-            &self.values[pivots..],
-            order,
-            pivots,
-            height,
-        );
-        let scaled = MatRef::from_column_major_slice_with_stride(
-            &self.scaled[pivots..],
-            order,
-            pivots,
-            height,
-        );
+        let lower = MatRef::from_column_major_slice_with_stride(&self.values[pivots..], order, pivots, height);
+        let scaled = MatRef::from_column_major_slice_with_stride(&self.scaled[pivots..], order, pivots, height);
         let target = MatMut::from_column_major_slice_mut(border, order, order);
         subtract_symmetric(target, lower, scaled);
     }
@@ -183,18 +145,12 @@ fn subtract_product<T: Scalar>(target: MatMut<'_, T>, a: MatRef<'_, T>, b: MatRe
         let half = (rows / 2).next_multiple_of(8);
         let (top, bottom) = target.split_at_row_mut(half);
         let (a_top, a_bottom) = a.split_at_row(half);
-        rayon::join(
-            || subtract_product(top, a_top, b),
-            || subtract_product(bottom, a_bottom, b),
-        );
+        rayon::join(|| subtract_product(top, a_top, b), || subtract_product(bottom, a_bottom, b));
     } else {
         let half = (cols / 2).next_multiple_of(8);
         let (left, right) = target.split_at_col_mut(half);
         let (b_left, b_right) = b.split_at_row(half);
-        rayon::join(
-            || subtract_product(left, a, b_left),
-            || subtract_product(right, a, b_right),
-        );
+        rayon::join(|| subtract_product(left, a, b_left), || subtract_product(right, a, b_right));
     }
 }
 

@@ -33,11 +33,7 @@ impl<T: Scalar> Factor<T> {
     /// As [`Factor::refactor`].
     pub fn new(plan: &Arc<Plan>, values: &[T]) -> Result<Self, LinalgError> {
         let storage = vec![T::ZERO; plan.panel_values()];
-        let mut factor = Self {
-            plan: Arc::clone(plan),
-            values: storage,
-            complete: false,
-        };
+        let mut factor = Self { plan: Arc::clone(plan), values: storage, complete: false };
         factor.refactor(values)?;
         Ok(factor)
     }
@@ -54,18 +50,10 @@ impl<T: Scalar> Factor<T> {
         let plan = Arc::clone(&self.plan);
         check_length(Datum::MatrixValues, plan.pattern().nnz(), values.len())?;
         if let Some(index) = values.iter().position(|value| !value.finite()) {
-            return Err(LinalgError::NotFinite {
-                what: Datum::MatrixValues,
-                index,
-            });
+            return Err(LinalgError::NotFinite { what: Datum::MatrixValues, index });
         }
         let references = pivot_references(&plan, values);
-        let task = Task {
-            plan: &plan,
-            matrix: values,
-            references: &references,
-            limit: pivot_limit(plan.n()),
-        };
+        let task = Task { plan: &plan, matrix: values, references: &references, limit: pivot_limit(plan.n()) };
         task.siblings(&plan.roots, &mut self.values)?;
         self.complete = true;
         Ok(())
@@ -79,10 +67,7 @@ impl<T: Scalar> Factor<T> {
 
 impl<T> fmt::Debug for Factor<T> {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        f.debug_struct("Factor")
-            .field("plan", &self.plan)
-            .field("complete", &self.complete)
-            .finish_non_exhaustive()
+        f.debug_struct("Factor").field("plan", &self.plan).field("complete", &self.complete).finish_non_exhaustive()
     }
 }
 
@@ -98,10 +83,7 @@ fn pivot_limit(n: usize) -> f64 {
 /// columns are scaled together, and is not zero merely because the diagonal is.
 fn pivot_references<T: Scalar>(plan: &Plan, values: &[T]) -> Vec<f64> {
     let pattern = plan.pattern();
-    let diagonal: Vec<f64> = pattern.starts()[..plan.n()]
-        .iter()
-        .map(|&slot| values[slot].size())
-        .collect();
+    let diagonal: Vec<f64> = pattern.starts()[..plan.n()].iter().map(|&slot| values[slot].size()).collect();
     let mut sizes = diagonal.clone();
     for col in 0..plan.n() {
         let first = pattern.starts()[col];
@@ -115,10 +97,7 @@ fn pivot_references<T: Scalar>(plan: &Plan, values: &[T]) -> Vec<f64> {
             }
         }
     }
-    plan.order
-        .iter()
-        .map(|&unknown| sizes[unknown as usize])
-        .collect()
+    plan.order.iter().map(|&unknown| sizes[unknown as usize]).collect()
 }
 
 /// What all fronts of one factorisation share.
@@ -133,11 +112,7 @@ struct Task<'a, T> {
 impl<T: Scalar> Task<'_, T> {
     /// Factorises sibling subtrees, whose panels fill `panels`; returns their border blocks in order.
     fn siblings(&self, fronts: &[u32], panels: &mut [T]) -> Result<Vec<Vec<T>>, LinalgError> {
-        let work = |list: &[u32]| {
-            list.iter()
-                .map(|&k| self.plan.fronts[k as usize].work)
-                .sum::<f64>()
-        };
+        let work = |list: &[u32]| list.iter().map(|&k| self.plan.fronts[k as usize].work).sum::<f64>();
         let [.., last] = fronts else {
             return Ok(Vec::new());
         };
@@ -154,10 +129,7 @@ impl<T: Scalar> Task<'_, T> {
             let blocks = self.siblings(left, left_panels)?;
             (Ok(blocks), self.siblings(right, right_panels))
         } else {
-            rayon::join(
-                || self.siblings(left, left_panels),
-                || self.siblings(right, right_panels),
-            )
+            rayon::join(|| self.siblings(left, left_panels), || self.siblings(right, right_panels))
         };
         let mut blocks = blocks?;
         blocks.append(&mut more?);
@@ -189,12 +161,7 @@ impl<T: Scalar> Task<'_, T> {
     }
 
     /// Assembles one front from the matrix and its children's blocks, and eliminates its pivots.
-    fn front(
-        &self,
-        front: &Front,
-        panel: &mut [T],
-        children: Vec<Vec<T>>,
-    ) -> Result<Vec<T>, LinalgError> {
+    fn front(&self, front: &Front, panel: &mut [T], children: Vec<Vec<T>>) -> Result<Vec<T>, LinalgError> {
         panel.fill(T::ZERO);
         let mut border = vec![T::ZERO; front.border * front.border];
         for &[slot, place] in &self.plan.scatter[front.entries.clone()] {
@@ -216,16 +183,9 @@ impl<T: Scalar> Task<'_, T> {
         panel.eliminate().map_err(|bad| {
             let unknown = self.plan.order[front.first + bad.column] as usize;
             if bad.ratio.is_nan() {
-                LinalgError::NotFinite {
-                    what: Datum::Pivots,
-                    index: unknown,
-                }
+                LinalgError::NotFinite { what: Datum::Pivots, index: unknown }
             } else {
-                LinalgError::ZeroPivot {
-                    unknown,
-                    ratio: bad.ratio,
-                    limit: self.limit,
-                }
+                LinalgError::ZeroPivot { unknown, ratio: bad.ratio, limit: self.limit }
             }
         })?;
         panel.update_border(&mut border);
@@ -234,13 +194,7 @@ impl<T: Scalar> Task<'_, T> {
 }
 
 /// Adds a child's block (lower triangle) into a front; `relative` are its rows in the front, rising.
-fn add_block<T: Scalar>(
-    front: &Front,
-    relative: &[u32],
-    block: &[T],
-    panel: &mut [T],
-    border: &mut [T],
-) {
+fn add_block<T: Scalar>(front: &Front, relative: &[u32], block: &[T], panel: &mut [T], border: &mut [T]) {
     let order = relative.len();
     for (column, &target) in relative.iter().enumerate() {
         let (target, rows) = (target as usize, &relative[column..]);
@@ -248,10 +202,7 @@ fn add_block<T: Scalar>(
         let (destination, shift) = if target < front.pivots {
             (&mut panel[target * front.height()..][..front.height()], 0)
         } else {
-            (
-                &mut border[(target - front.pivots) * front.border..][..front.border],
-                front.pivots,
-            )
+            (&mut border[(target - front.pivots) * front.border..][..front.border], front.pivots)
         };
         let last = rows[rows.len() - 1] as usize;
         if last - target == rows.len() - 1 {

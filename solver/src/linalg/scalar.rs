@@ -101,9 +101,6 @@ impl Scalar for Complex64 {
 
     #[inline(always)]
     fn plus_product(self, a: Self, b: Self) -> Self {
-        Self::new(
-            self.re + (a.re * b.re - a.im * b.im),
-            self.im + (a.re * b.im + a.im * b.re),
-        )
+        Self::new(self.re + (a.re * b.re - a.im * b.im), self.im + (a.re * b.im + a.im * b.re))
     }
 }

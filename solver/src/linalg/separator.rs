@@ -67,25 +67,16 @@ pub(super) fn bisect(part: &Part) -> Bisection {
     let n = part.n();
     let circles = n > CIRCLES_ABOVE;
     let (centre, lifted) = lift(&part.points, circles);
-    let normal = best_normal(
-        part,
-        &lifted,
-        if circles { NORMALS.len() } else { STRAIGHT },
-    );
-    let mut keys: Vec<(f64, u32)> = lifted
-        .iter()
-        .zip(0..)
-        .map(|(&p, v)| (dot(p, normal), v))
-        .collect();
+    let normal = best_normal(part, &lifted, if circles { NORMALS.len() } else { STRAIGHT });
+    let mut keys: Vec<(f64, u32)> = lifted.iter().zip(0..).map(|(&p, v)| (dot(p, normal), v)).collect();
     let by_key = |a: &(f64, u32), b: &(f64, u32)| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1));
     keys.select_nth_unstable_by(n / 2, by_key);
     let mut sides = vec![1_u8; n];
     for &(_, v) in &keys[..n / 2] {
         sides[v as usize] = 0;
     }
-    let separator: Vec<u32> = (0..n as u32)
-        .filter(|&v| sides[v as usize] == 1 && part.own(v as usize).any(|w| sides[w] == 0))
-        .collect();
+    let separator: Vec<u32> =
+        (0..n as u32).filter(|&v| sides[v as usize] == 1 && part.own(v as usize).any(|w| sides[w] == 0)).collect();
     for &v in &separator {
         sides[v as usize] = SEPARATOR;
     }
@@ -96,12 +87,7 @@ pub(super) fn bisect(part: &Part) -> Bisection {
             break;
         }
     }
-    Bisection {
-        sides: refinement.sides,
-        sizes: refinement.sizes,
-        normal,
-        centre,
-    }
+    Bisection { sides: refinement.sides, sizes: refinement.sizes, normal, centre }
 }
 
 fn dot(a: [f64; 3], b: [f64; 3]) -> f64 {
@@ -115,11 +101,7 @@ fn lift(points: &[[f64; 2]], to_sphere: bool) -> ([f64; 2], Vec<[f64; 3]>) {
     let centre = [mean(0), mean(1)];
     let square = |p: &[f64; 2]| (p[0] - centre[0]).powi(2) + (p[1] - centre[1]).powi(2);
     let spread = (points.iter().map(square).sum::<f64>() / n).sqrt();
-    let scale = if spread > 0.0 && spread.is_finite() {
-        1.0 / spread
-    } else {
-        1.0
-    };
+    let scale = if spread > 0.0 && spread.is_finite() { 1.0 / spread } else { 1.0 };
     let lifted = points.iter().map(|p| {
         let (x, y) = ((p[0] - centre[0]) * scale, (p[1] - centre[1]) * scale);
         if !to_sphere {
@@ -281,11 +263,7 @@ impl<'a> Refinement<'a> {
         for k in first..self.pulled.len() {
             self.offer(self.pulled[k]);
         }
-        self.moves.push(Move {
-            vertex,
-            side,
-            pulled: self.pulled.len() - first,
-        });
+        self.moves.push(Move { vertex, side, pulled: self.pulled.len() - first });
     }
 
     /// Undoes all moves beyond the first `kept` and gathers the separator anew.

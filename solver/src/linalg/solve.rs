@@ -26,11 +26,7 @@ impl<T: Scalar> Factor<T> {
         }
         if n == 0 || !rhs.len().is_multiple_of(n) {
             let expected = rhs.len().next_multiple_of(n.max(1));
-            return Err(LinalgError::Size {
-                what: Datum::RightHandSide,
-                expected,
-                found: rhs.len(),
-            });
+            return Err(LinalgError::Size { what: Datum::RightHandSide, expected, found: rhs.len() });
         }
         self.solve_columns(rhs, n);
         Ok(())
@@ -42,34 +38,21 @@ impl<T: Scalar> Factor<T> {
             Arch::new().dispatch(One { factor: self, rhs });
         } else {
             let (left, right) = rhs.split_at_mut(rhs.len() / n / 2 * n);
-            rayon::join(
-                || self.solve_columns(left, n),
-                || self.solve_columns(right, n),
-            );
+            rayon::join(|| self.solve_columns(left, n), || self.solve_columns(right, n));
         }
     }
 
     #[inline(always)]
     fn solve_one(&self, rhs: &mut [T]) {
         let plan = &self.plan;
-        let mut x: Vec<T> = plan
-            .order
-            .iter()
-            .map(|&unknown| rhs[unknown as usize])
-            .collect();
+        let mut x: Vec<T> = plan.order.iter().map(|&unknown| rhs[unknown as usize]).collect();
         let mut local: Vec<T> = Vec::new();
         for front in &plan.fronts {
-            let (pivots, rows) = (
-                front.first..front.first + front.pivots,
-                &plan.rows[front.rows.clone()],
-            );
+            let (pivots, rows) = (front.first..front.first + front.pivots, &plan.rows[front.rows.clone()]);
             local.clear();
             local.extend_from_slice(&x[pivots.clone()]);
             local.resize(front.height(), T::ZERO);
-            for (k, column) in self.values[front.panel.clone()]
-                .chunks_exact(front.height())
-                .enumerate()
-            {
+            for (k, column) in self.values[front.panel.clone()].chunks_exact(front.height()).enumerate() {
                 let (done, open) = local.split_at_mut(k + 1);
                 add_multiple(open, -done[k], &column[k + 1..]);
             }
@@ -79,18 +62,11 @@ impl<T: Scalar> Factor<T> {
             }
         }
         for front in plan.fronts.iter().rev() {
-            let (pivots, rows) = (
-                front.first..front.first + front.pivots,
-                &plan.rows[front.rows.clone()],
-            );
+            let (pivots, rows) = (front.first..front.first + front.pivots, &plan.rows[front.rows.clone()]);
             local.clear();
             local.extend_from_slice(&x[pivots.clone()]);
             local.extend(rows.iter().map(|&row| x[row as usize]));
-            for (k, column) in self.values[front.panel.clone()]
-                .chunks_exact(front.height())
-                .enumerate()
-                .rev()
-            {
+            for (k, column) in self.values[front.panel.clone()].chunks_exact(front.height()).enumerate().rev() {
                 let (done, open) = local.split_at_mut(k + 1);
                 done[k] = done[k] * column[k] - dot(&column[k + 1..], open);
             }
@@ -122,12 +98,7 @@ impl<T: Scalar> WithSimd for One<'_, T> {
 fn dot<T: Scalar>(a: &[T], b: &[T]) -> T {
     let mut sums = [T::ZERO; 4];
     let (a_blocks, b_blocks) = (a.chunks_exact(4), b.chunks_exact(4));
-    let tail: T = a_blocks
-        .remainder()
-        .iter()
-        .zip(b_blocks.remainder())
-        .map(|(&a, &b)| a * b)
-        .sum();
+    let tail: T = a_blocks.remainder().iter().zip(b_blocks.remainder()).map(|(&a, &b)| a * b).sum();
     for (a, b) in a_blocks.zip(b_blocks) {
         for k in 0..4 {
             sums[k] = sums[k].plus_product(a[k], b[k]);

@@ -46,12 +46,7 @@ impl Melting {
                 return Err(MaterialError::from(MaterialFault::NotFinite { value }).of(property));
             }
             if value <= 0.0 {
-                return Err(MaterialError::from(MaterialFault::NotPositive {
-                    value,
-                    unit,
-                    at_c: None,
-                })
-                .of(property));
+                return Err(MaterialError::from(MaterialFault::NotPositive { value, unit, at_c: None }).of(property));
             }
             Ok(())
         };
@@ -60,10 +55,7 @@ impl Melting {
         positive(self.latent_heat_j_per_kg, "J/kg", Property::LatentHeat)?;
         if self.liquidus_k < self.solidus_k {
             let (solidus_c, liquidus_c) = (celsius(self.solidus_k), celsius(self.liquidus_k));
-            let fault = MaterialFault::LiquidusBelowSolidus {
-                solidus_c,
-                liquidus_c,
-            };
+            let fault = MaterialFault::LiquidusBelowSolidus { solidus_c, liquidus_c };
             return Err(MaterialError::from(fault).of(Property::Liquidus));
         }
         Ok(())
@@ -87,9 +79,7 @@ impl Enthalpy {
     /// # Errors
     /// A specific heat that is not greater than zero everywhere; melting data that contradict themselves.
     pub fn new(specific_heat: &Curve, melting: Option<&Melting>) -> Result<Self, MaterialError> {
-        specific_heat
-            .check_positive("J/kg/K")
-            .map_err(|e| e.of(Property::SpecificHeat))?;
+        specific_heat.check_positive("J/kg/K").map_err(|e| e.of(Property::SpecificHeat))?;
         let mut knots_k = specific_heat.knots_k();
         let mut fusion = None;
         if let Some(melting) = melting {
@@ -103,30 +93,17 @@ impl Enthalpy {
         }
         knots_k.sort_by(f64::total_cmp);
         knots_k.dedup();
-        let mut enthalpy = Self {
-            specific_heat: specific_heat.clone(),
-            fusion,
-            knots_k,
-            knots_h: Vec::new(),
-        };
-        enthalpy.knots_h = enthalpy
-            .knots_k
-            .iter()
-            .map(|&t| enthalpy.value(t))
-            .collect();
+        let mut enthalpy = Self { specific_heat: specific_heat.clone(), fusion, knots_k, knots_h: Vec::new() };
+        enthalpy.knots_h = enthalpy.knots_k.iter().map(|&t| enthalpy.value(t)).collect();
         if let Some(&value) = enthalpy.knots_h.iter().find(|h| !h.is_finite()) {
-            return Err(
-                MaterialError::from(MaterialFault::NotFinite { value }).of(Property::SpecificHeat)
-            );
+            return Err(MaterialError::from(MaterialFault::NotFinite { value }).of(Property::SpecificHeat));
         }
         Ok(enthalpy)
     }
 
     /// Enthalpy in J/kg at `t_k` in kelvin.
     pub fn value(&self, t_k: f64) -> f64 {
-        let latent = self
-            .fusion
-            .map_or(0.0, |(_, _, heat)| heat * self.liquid_fraction(t_k));
+        let latent = self.fusion.map_or(0.0, |(_, _, heat)| heat * self.liquid_fraction(t_k));
         self.specific_heat.integral(t_k) + latent
     }
 
@@ -141,9 +118,7 @@ impl Enthalpy {
 
     /// Liquid part of the mass at `t_k`, 0 to 1; 0 for a material without melting data.
     pub fn liquid_fraction(&self, t_k: f64) -> f64 {
-        self.fusion.map_or(0.0, |(begin, end, _)| {
-            ((t_k - begin) / (end - begin)).clamp(0.0, 1.0)
-        })
+        self.fusion.map_or(0.0, |(begin, end, _)| ((t_k - begin) / (end - begin)).clamp(0.0, 1.0))
     }
 
     /// Temperature in kelvin at which the enthalpy is `h` in J/kg: the inverse of [`Enthalpy::value`] to round-off.
@@ -157,12 +132,10 @@ impl Enthalpy {
         let last = self.knots_k.len() - 1;
         let above = self.knots_h.partition_point(|&knot| knot <= h);
         if above == 0 {
-            return self.knots_k[0]
-                + (h - self.knots_h[0]) / self.specific_heat.value(self.knots_k[0]);
+            return self.knots_k[0] + (h - self.knots_h[0]) / self.specific_heat.value(self.knots_k[0]);
         }
         if above > last {
-            return self.knots_k[last]
-                + (h - self.knots_h[last]) / self.specific_heat.value(self.knots_k[last]);
+            return self.knots_k[last] + (h - self.knots_h[last]) / self.specific_heat.value(self.knots_k[last]);
         }
         self.between(above - 1, h)
     }
@@ -183,11 +156,7 @@ impl Enthalpy {
             if (newton - t).abs() <= ROUND_OFF * t {
                 return newton.clamp(self.knots_k[i], self.knots_k[i + 1]);
             }
-            let next = if newton > low && newton < high {
-                newton
-            } else {
-                low.midpoint(high)
-            };
+            let next = if newton > low && newton < high { newton } else { low.midpoint(high) };
             if next <= low || next >= high {
                 return next;
             }

@@ -42,13 +42,9 @@ impl RangeNote {
     /// On which side, and by how much.
     pub fn side(&self) -> RangeUse {
         if self.used_k < self.range_k.0 {
-            RangeUse::Below {
-                by_k: self.range_k.0 - self.used_k,
-            }
+            RangeUse::Below { by_k: self.range_k.0 - self.used_k }
         } else {
-            RangeUse::Above {
-                by_k: self.used_k - self.range_k.1,
-            }
+            RangeUse::Above { by_k: self.used_k - self.range_k.1 }
         }
     }
 }
@@ -86,12 +82,7 @@ impl Material {
             let Some(range_k) = curve.and_then(Curve::range_k) else {
                 continue;
             };
-            let note = |used_k| RangeNote {
-                material: self.name.clone(),
-                property,
-                used_k,
-                range_k,
-            };
+            let note = |used_k| RangeNote { material: self.name.clone(), property, used_k, range_k };
             if t_min_k < range_k.0 - ROUNDING_K {
                 notes.push(note(t_min_k));
             }

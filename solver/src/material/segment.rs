@@ -43,10 +43,7 @@ impl Segment {
         pole: Option<Pole>,
     ) -> Result<Self, MaterialError> {
         let pole_numbers = pole.iter().flat_map(|p| [p.numerator, p.at]);
-        let numbers = [from_k, to_k, zero_k]
-            .into_iter()
-            .chain(polynomial.iter().copied())
-            .chain(pole_numbers);
+        let numbers = [from_k, to_k, zero_k].into_iter().chain(polynomial.iter().copied()).chain(pole_numbers);
         for value in numbers {
             if !value.is_finite() {
                 return Err(MaterialFault::NotFinite { value }.into());
@@ -66,13 +63,7 @@ impl Segment {
             let at_c = celsius(p.at + zero_k);
             return Err(MaterialFault::PoleInside { at_c, from_c, to_c }.into());
         }
-        Ok(Self {
-            from_k,
-            to_k,
-            zero_k,
-            polynomial,
-            pole,
-        })
+        Ok(Self { from_k, to_k, zero_k, polynomial, pole })
     }
 
     /// Begin and end in kelvin.
@@ -92,10 +83,7 @@ impl Segment {
         let x = t_k - self.zero_k;
         let powers = self.polynomial.iter().enumerate().skip(1).rev();
         let polynomial = powers.fold(0.0, |sum, (k, a)| sum * x + k as f64 * a);
-        polynomial
-            - self
-                .pole
-                .map_or(0.0, |p| p.numerator / ((x - p.at) * (x - p.at)))
+        polynomial - self.pole.map_or(0.0, |p| p.numerator / ((x - p.at) * (x - p.at)))
     }
 
     /// Exact integral from the begin of the segment to `t_k` (inside it), in the unit of the property times kelvin.
@@ -107,10 +95,7 @@ impl Segment {
         };
         let polynomial = antiderivative(x) - antiderivative(x0);
         // ln((x - p)/(x0 - p)): the ratio is positive because the pole is outside the segment.
-        polynomial
-            + self
-                .pole
-                .map_or(0.0, |p| p.numerator * ((x - x0) / (x0 - p.at)).ln_1p())
+        polynomial + self.pole.map_or(0.0, |p| p.numerator * ((x - x0) / (x0 - p.at)).ln_1p())
     }
 
     /// Whether the formula is greater than zero on the whole segment, shown by bounds and not by samples.
@@ -127,12 +112,7 @@ impl Segment {
             for t in [a, middle, b] {
                 let value = self.value(t);
                 if value.is_nan() || value <= 0.0 {
-                    return Err(MaterialFault::NotPositive {
-                        value,
-                        unit,
-                        at_c: Some(celsius(t)),
-                    }
-                    .into());
+                    return Err(MaterialFault::NotPositive { value, unit, at_c: Some(celsius(t)) }.into());
                 }
             }
             // Taylor: f(middle + x) >= f - |f'| x - max|f''| x^2 / 2.
@@ -153,9 +133,7 @@ impl Segment {
         let (a, b) = (a_k - self.zero_k, b_k - self.zero_k);
         let largest = a.abs().max(b.abs());
         let powers = self.polynomial.iter().enumerate().skip(2).rev();
-        let polynomial = powers.fold(0.0, |sum, (k, c)| {
-            sum * largest + (k * (k - 1)) as f64 * c.abs()
-        });
+        let polynomial = powers.fold(0.0, |sum, (k, c)| sum * largest + (k * (k - 1)) as f64 * c.abs());
         let pole = self.pole.map_or(0.0, |p| {
             let distance = (a - p.at).abs().min((b - p.at).abs());
             2.0 * p.numerator.abs() / distance.powi(3)
