@@ -5,9 +5,20 @@
 //! end in `_rms` hold rms values.
 
 pub mod constants;
+pub mod coupling;
 pub mod error;
+pub mod fem;
+pub mod heat;
+pub mod layout;
 pub mod linalg;
+pub mod magnetics;
 pub mod material;
 pub mod model;
 pub mod observe;
+pub mod overview;
 pub mod results;
+pub mod warnings;
+
+pub use coupling::run;
+pub use error::SolveError;
+pub use overview::overview;

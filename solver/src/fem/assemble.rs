@@ -1,0 +1,93 @@
+//! Dense element blocks into a sparse symmetric matrix: blocks in parallel, sums in element order.
+//!
+//! The order of additions does not depend on the number of threads, so results are the same bits for any number.
+
+use rayon::prelude::*;
+
+use super::element::ElementPoints;
+use super::reference::MAX_NODES;
+use crate::linalg::{Pattern, Scalar};
+
+/// Largest number of unknowns an element couples: its nodes and one more (a turn's voltage).
+pub const MAX_BLOCK: usize = MAX_NODES + 1;
+/// Elements a task computes before the next is handed out.
+const CHUNK: usize = 64;
+
+/// Slots of every element's lower triangle in a pattern's value array; made once a pattern.
+#[derive(Debug, Clone)]
+pub struct Scatter {
+    starts: Vec<u32>,
+    slots: Vec<u32>,
+}
+
+impl Scatter {
+    /// Looks up the slots of the unknowns each element couples.
+    pub fn new<'a>(pattern: &Pattern, elements: impl Iterator<Item = &'a [u32]>) -> Self {
+        let (mut starts, mut slots) = (vec![0], Vec::new());
+        for dofs in elements {
+            pattern.clique_slots(dofs, &mut slots);
+            starts.push(slots.len() as u32);
+        }
+        Self { starts, slots }
+    }
+
+    /// Number of elements.
+    pub fn len(&self) -> usize {
+        self.starts.len() - 1
+    }
+
+    /// True without elements.
+    pub fn is_empty(&self) -> bool {
+        self.len() == 0
+    }
+
+    fn of(&self, e: usize) -> &[u32] {
+        &self.slots[self.starts[e] as usize..self.starts[e + 1] as usize]
+    }
+}
+
+/// A dense symmetric block: lower triangle by rows, entry `(i, j)`, `i >= j`, at `i (i + 1) / 2 + j`.
+pub type Block<T> = [T; MAX_BLOCK * (MAX_BLOCK + 1) / 2];
+
+/// Adds the block of every element into `values`.
+///
+/// `block(e, points, out)` fills the leading entries of a block that arrives as zeros.
+pub fn add_blocks<T: Scalar + Default>(
+    scatter: &Scatter,
+    values: &mut [T],
+    block: impl Fn(usize, &mut ElementPoints, &mut Block<T>) + Sync,
+) {
+    let starts: Vec<usize> = (0..scatter.len()).step_by(CHUNK).collect();
+    for group in starts.chunks(64) {
+        let blocks: Vec<Vec<Block<T>>> = group
+            .par_iter()
+            .map(|&start| {
+                let mut points = ElementPoints::default();
+                let end = (start + CHUNK).min(scatter.len());
+                (start..end)
+                    .map(|e| {
+                        let mut out = [T::default(); MAX_BLOCK * (MAX_BLOCK + 1) / 2];
+                        block(e, &mut points, &mut out);
+                        out
+                    })
+                    .collect()
+            })
+            .collect();
+        for (&start, chunk) in group.iter().zip(&blocks) {
+            for (k, block) in chunk.iter().enumerate() {
+                for (&slot, &v) in scatter.of(start + k).iter().zip(block) {
+                    values[slot as usize] += v;
+                }
+            }
+        }
+    }
+}
+
+/// Computes one value an element in parallel; the result is in element order.
+pub fn map_elements<R: Send>(count: usize, f: impl Fn(usize, &mut ElementPoints) -> R + Sync) -> Vec<R> {
+    (0..count)
+        .into_par_iter()
+        .with_min_len(CHUNK)
+        .map_init(ElementPoints::default, |points, e| f(e, points))
+        .collect()
+}

@@ -1,0 +1,239 @@
+//! The field system of one mesh and frequency: pattern and plan once, values and factor as often as properties change.
+
+use std::sync::Arc;
+
+use num_complex::Complex64;
+
+use super::conductor::Turns;
+use super::open_boundary::{Exterior, slice_source};
+use super::properties::PointProperties;
+use super::unit_field::UnitField;
+use crate::error::SolveError;
+use crate::fem::assemble::{Block, Scatter, add_blocks};
+use crate::fem::element::{ElementPoints, PointValues};
+use crate::fem::space::Space;
+use crate::linalg::{Factor, LinalgError, Pattern, Plan, SymmetricMatrix, checked_solve};
+use crate::model::{Drive, Mirrors, Model};
+use crate::results::RegionName;
+
+/// Everything of the field problem that does not change with temperature.
+#[derive(Debug)]
+pub struct Operator {
+    space: Arc<Space>,
+    turns: Turns,
+    omega: f64,
+    copies: f64,
+    border_of_element: Vec<Option<u32>>,
+    exterior: Option<Exterior>,
+    exterior_slots: Vec<u32>,
+    exterior_block: Vec<f64>,
+    scatter: Scatter,
+    plan: Arc<Plan>,
+    matrix: SymmetricMatrix<Complex64>,
+    factor: Option<Factor<Complex64>>,
+    source: Vec<Complex64>,
+}
+
+impl Operator {
+    /// Sets up the system on a space over all regions of the mesh.
+    ///
+    /// # Errors
+    /// A turn on the axis, or a pattern that cannot be planned.
+    pub fn new(
+        space: Arc<Space>,
+        regions: &[RegionName],
+        open_boundary: Option<(f64, f64)>,
+        model: &Model,
+    ) -> Result<Self, SolveError> {
+        let turns = Turns::new(&space, regions, model)?;
+        let n = space.len() + turns.border_count();
+        let half = matches!(model.mirrors, Mirrors::One { .. });
+        let exterior = open_boundary.map(|(radius, z)| Exterior::new(&space, z, radius, half));
+        let border_of_element = borders(&space, &turns);
+        let cliques = element_unknowns(&space, &border_of_element);
+        let ring: &[u32] = exterior.as_ref().map_or(&[], |x| &x.unknowns);
+        let all = cliques.iter().map(Vec::as_slice).chain((!ring.is_empty()).then_some(ring));
+        let pattern = Arc::new(Pattern::from_cliques(n, all));
+        let scatter = Scatter::new(&pattern, cliques.iter().map(Vec::as_slice));
+        let mut exterior_slots = Vec::new();
+        pattern.clique_slots(ring, &mut exterior_slots);
+        let plan = plan(&pattern, &space, ring, n)?;
+        let matrix = SymmetricMatrix { values: vec![Complex64::ZERO; pattern.nnz()], pattern };
+        let mut out = Self {
+            omega: std::f64::consts::TAU * model.drive.frequency_hz(),
+            copies: if half { 2.0 } else { 1.0 },
+            exterior_block: exterior.as_ref().map(Exterior::block).unwrap_or_default(),
+            factor: None,
+            source: vec![Complex64::ZERO; n],
+            space,
+            turns,
+            border_of_element,
+            exterior,
+            exterior_slots,
+            scatter,
+            plan,
+            matrix,
+        };
+        out.set_source(model);
+        Ok(out)
+    }
+
+    /// The space of `u`.
+    pub fn space(&self) -> &Arc<Space> {
+        &self.space
+    }
+
+    /// The turns.
+    pub fn turns(&self) -> &Turns {
+        &self.turns
+    }
+
+    /// Angular frequency in rad/s.
+    pub fn omega(&self) -> f64 {
+        self.omega
+    }
+
+    /// Meshed sections in the whole device: 2 with one mirror plane, else 1.
+    pub fn copies(&self) -> f64 {
+        self.copies
+    }
+
+    /// Number of unknowns.
+    pub fn unknowns(&self) -> usize {
+        self.source.len()
+    }
+
+    /// Border unknown of an element's turn, if it is in a solid turn.
+    pub fn border_of_element(&self, e: usize) -> Option<u32> {
+        self.border_of_element[e]
+    }
+
+    /// Source vector of one ampere (peak) through the coils, or of an applied field of 1 A/m (peak).
+    pub fn source(&self) -> &[Complex64] {
+        &self.source
+    }
+
+    /// Quadratic form `u^H K_ext u` of the field outside the sphere, in A^2 H; zero for a slice.
+    pub fn exterior_form(&self, x: &[Complex64]) -> f64 {
+        let Some(exterior) = &self.exterior else { return 0.0 };
+        let mut sum = 0.0;
+        let mut k = 0;
+        for (i, &a) in exterior.unknowns.iter().enumerate() {
+            for (j, &b) in exterior.unknowns[..=i].iter().enumerate() {
+                let term = self.exterior_block[k] * (x[a as usize].conj() * x[b as usize]).re;
+                sum += if i == j { term } else { 2.0 * term };
+                k += 1;
+            }
+        }
+        sum
+    }
+
+    /// Solves for one ampere (peak) or 1 A/m (peak) with the given properties.
+    ///
+    /// # Errors
+    /// A factorisation that fails, or a solution that does not satisfy its equations.
+    pub fn solve(&mut self, properties: &PointProperties) -> Result<UnitField, LinalgError> {
+        self.assemble(properties);
+        let factor = match self.factor.take() {
+            Some(mut factor) => {
+                factor.refactor(&self.matrix.values)?;
+                factor
+            }
+            None => Factor::new(&self.plan, &self.matrix.values)?,
+        };
+        let solved = checked_solve(&self.matrix, &factor, &self.source)?;
+        self.factor = Some(factor);
+        Ok(UnitField::new(self, properties, solved.x, solved.backward_error))
+    }
+
+    fn assemble(&mut self, properties: &PointProperties) {
+        self.matrix.values.fill(Complex64::ZERO);
+        let (space, borders, omega) = (&self.space, &self.border_of_element, self.omega);
+        add_blocks(&self.scatter, &mut self.matrix.values, |e, points, out| {
+            space.fill(e, points);
+            element_block(points, properties.sigma(e), properties.nu(e), omega, borders[e].is_some(), out);
+        });
+        for (&slot, &k) in self.exterior_slots.iter().zip(&self.exterior_block) {
+            self.matrix.values[slot as usize] += k;
+        }
+    }
+
+    fn set_source(&mut self, model: &Model) {
+        let mut pairs = Vec::new();
+        match model.drive {
+            Drive::Supply { .. } => {
+                for (k, turn) in self.turns.meshed.iter().enumerate() {
+                    let source = self.turns.source(&self.space, k);
+                    pairs.extend(source.into_iter().map(|(i, v)| (i, turn.sign * v)));
+                }
+            }
+            Drive::AppliedField { .. } => match &self.exterior {
+                Some(x) => pairs.extend(x.unknowns.iter().copied().zip(x.applied_field_source())),
+                None => pairs = slice_source(&self.space),
+            },
+        }
+        for (i, v) in pairs {
+            self.source[i as usize] += v;
+        }
+    }
+}
+
+fn borders(space: &Space, turns: &Turns) -> Vec<Option<u32>> {
+    let mut out = vec![None; space.element_count()];
+    for turn in &turns.meshed {
+        for &e in &turn.elements {
+            out[e as usize] = turn.border;
+        }
+    }
+    out
+}
+
+fn element_unknowns(space: &Space, borders: &[Option<u32>]) -> Vec<Vec<u32>> {
+    (0..space.element_count()).map(|e| space.element(e).iter().copied().chain(borders[e]).collect()).collect()
+}
+
+fn plan(pattern: &Arc<Pattern>, space: &Space, ring: &[u32], n: usize) -> Result<Arc<Plan>, SolveError> {
+    let mut coordinates = space.points().to_vec();
+    coordinates.resize(n, [0.0; 2]);
+    let last: Vec<u32> = ring.iter().copied().chain(space.len() as u32..n as u32).collect();
+    Plan::new(Arc::clone(pattern), Some(&coordinates), &last)
+        .map(Arc::new)
+        .map_err(|source| SolveError::Linear { system: "field", time_s: 0.0, source })
+}
+
+/// Lower triangle of `K + j w M` of an element, with the row of its turn's voltage last where it has one.
+fn element_block(
+    points: &ElementPoints,
+    sigma: &[f64],
+    nu: &[f64],
+    omega: f64,
+    border: bool,
+    out: &mut Block<Complex64>,
+) {
+    let n = points.nodes;
+    for ((p, &sigma), &nu) in points.points().iter().zip(sigma).zip(nu) {
+        let (k, m) = (nu * p.volume, omega * sigma * p.volume);
+        let mut slot = 0;
+        for i in 0..n {
+            let (ri, zi) = curl(p, i);
+            let (bz, br, a) = (k * zi, k * ri, m * p.r * p.r * p.value[i]);
+            for j in 0..=i {
+                let (rj, zj) = curl(p, j);
+                out[slot] += Complex64::new(bz * zj + br * rj, a * p.value[j]);
+                slot += 1;
+            }
+        }
+        if border {
+            for j in 0..n {
+                out[slot].im -= m * p.value[j];
+                slot += 1;
+            }
+            out[slot].im += m / (p.r * p.r);
+        }
+    }
+}
+
+/// `(-B_r, B_z)` of basis function `i`: `(r u_z, 2 u + r u_r)`.
+pub fn curl(p: &PointValues, i: usize) -> (f64, f64) {
+    (p.r * p.gradient[i][1], 2.0 * p.value[i] + p.r * p.gradient[i][0])
+}

@@ -1,0 +1,130 @@
+//! The field of a unit drive (1 A peak in the coils, or an applied field of 1 A/m peak) and what follows from it.
+//!
+//! Everything quadratic scales with the square of the drive's peak value, everything linear with the value itself.
+//! Region sums are for the meshed section; [`super::report`] multiplies by the number of sections.
+
+use num_complex::Complex64;
+
+use super::operator::{Operator, curl};
+use super::properties::PointProperties;
+use crate::fem::assemble::map_elements;
+use crate::fem::element::PointValues;
+use crate::model::{ConductorKind, Model};
+use crate::results::RegionName;
+
+/// Solution and losses of a unit drive.
+#[derive(Debug, Clone)]
+pub struct UnitField {
+    /// Unknowns: `u` at the nodes, then `W` of the solid turns.
+    pub x: Vec<Complex64>,
+    /// Quadrature points an element.
+    pub stride: usize,
+    /// Loss density carried by eddy currents at every quadrature point, W/m^3, element-major.
+    pub loss_w_per_m3: Vec<f64>,
+    /// Stored energy of the meshed section and its share of the outside, joules.
+    pub energy_j: f64,
+    /// Componentwise backward error of the solve.
+    pub backward_error: f64,
+    /// Power that the source puts into the meshed section, watts: `1/2 Re(V I*)` without stranded resistances.
+    pub source_power_w: f64,
+}
+
+impl UnitField {
+    /// Derives losses and energy from a solution.
+    pub fn new(operator: &Operator, properties: &PointProperties, x: Vec<Complex64>, backward_error: f64) -> Self {
+        let space = operator.space();
+        let stride = properties.stride;
+        let omega = operator.omega();
+        let rows = map_elements(space.element_count(), |e, points| {
+            space.fill(e, points);
+            let (u, w) = local(operator, &x, e);
+            let mut energy = 0.0;
+            let mut loss = Vec::with_capacity(stride);
+            for ((p, &sigma), &nu) in points.points().iter().zip(properties.sigma(e)).zip(properties.nu(e)) {
+                let field = electric_field(p, &u, w, omega);
+                loss.push(0.5 * sigma * field.norm_sqr());
+                let b = flux_density(p, &u);
+                energy += 0.25 * nu * (b[0].norm_sqr() + b[1].norm_sqr()) * p.volume;
+            }
+            (loss, energy)
+        });
+        let energy: f64 = rows.iter().map(|r| r.1).sum();
+        let exterior = if operator.turns().meshed.is_empty() { 0.0 } else { 0.25 * operator.exterior_form(&x) };
+        let work: f64 = x.iter().zip(operator.source()).map(|(x, b)| (x.conj() * b).im).sum();
+        Self {
+            stride,
+            loss_w_per_m3: rows.into_iter().flat_map(|r| r.0).collect(),
+            energy_j: energy + exterior,
+            backward_error,
+            source_power_w: 0.5 * omega * work,
+            x,
+        }
+    }
+
+    /// Loss densities of an element, one a quadrature point, W/m^3.
+    pub fn loss(&self, e: usize) -> &[f64] {
+        &self.loss_w_per_m3[e * self.stride..(e + 1) * self.stride]
+    }
+
+    /// Eddy-current loss of every region of the meshed section, watts.
+    pub fn loss_by_region(&self, operator: &Operator, regions: usize) -> Vec<f64> {
+        let space = operator.space();
+        let sums = map_elements(space.element_count(), |e, points| {
+            let loss = self.loss(e);
+            if loss.iter().all(|&p| p == 0.0) {
+                return 0.0;
+            }
+            space.fill(e, points);
+            points.points().iter().zip(loss).map(|(p, l)| p.volume * l).sum()
+        });
+        let mut out = vec![0.0; regions];
+        for (e, sum) in sums.into_iter().enumerate() {
+            out[space.region(e).0 as usize] += sum;
+        }
+        out
+    }
+
+    /// Voltage of meshed turn `k`, volts (peak phasor), its stranded resistance included.
+    pub fn turn_voltage(&self, operator: &Operator, k: usize) -> Complex64 {
+        let turn = &operator.turns().meshed[k];
+        let linked: Complex64 =
+            operator.turns().source(operator.space(), k).iter().map(|&(i, v)| self.x[i as usize] * v).sum();
+        let induced = Complex64::I * operator.omega() * linked / turn.share;
+        induced + turn.sign * turn.stranded_resistance_ohm / turn.share
+    }
+}
+
+/// Nodal values of `u` and the `W` of the element's turn.
+pub fn local(operator: &Operator, x: &[Complex64], e: usize) -> (Vec<Complex64>, Complex64) {
+    let u = operator.space().element(e).iter().map(|&n| x[n as usize]).collect();
+    let w = operator.border_of_element(e).map_or(Complex64::ZERO, |b| x[b as usize]);
+    (u, w)
+}
+
+/// `E_phi = -j w (r u - W / r)`, V/m.
+pub fn electric_field(p: &PointValues, u: &[Complex64], w: Complex64, omega: f64) -> Complex64 {
+    let value: Complex64 = u.iter().zip(&p.value).map(|(u, v)| u * v).sum();
+    let drive = if w == Complex64::ZERO { w } else { w / p.r };
+    Complex64::new(0.0, -omega) * (value * p.r - drive)
+}
+
+/// `[B_r, B_z]`, tesla.
+pub fn flux_density(p: &PointValues, u: &[Complex64]) -> [Complex64; 2] {
+    let mut b = [Complex64::ZERO; 2];
+    for (i, u) in u.iter().enumerate() {
+        let (minus_br, bz) = curl(p, i);
+        b[0] -= u * minus_br;
+        b[1] += u * bz;
+    }
+    b
+}
+
+/// Effective conductivity and uniform current density of a stranded turn carrying 1 A peak: `(sigma fill, A/m^2)`.
+pub fn stranded(operator: &Operator, model: &Model, region: &RegionName) -> Option<(f64, f64)> {
+    let RegionName::Turn(c, t, _) = region else { return None };
+    let coil = &model.coils[*c];
+    let ConductorKind::Stranded { fill } = coil.conductor else { return None };
+    let turn = operator.turns().meshed.iter().find(|m| m.coil == *c && m.turn == *t)?;
+    let sigma = coil.material.electrical_conductivity_s_per_m(coil.temperature_k);
+    Some((sigma * fill, turn.sign * turn.share / turn.area_m2))
+}
