@@ -1,11 +1,11 @@
 //! What the reader of a result must know, in words.
 
-use mesher::Outline;
+use mesher::{MeshNote, NoteReason, Outline};
 
 use crate::constants::ZERO_CELSIUS_K;
 use crate::model::{ConductorKind, Model, Part, Role};
 use crate::overview::Meshed;
-use crate::results::{Electrical, Warning, WarningKind};
+use crate::results::{Electrical, RegionName, Warning, WarningKind};
 
 /// A disagreement of the Poynting check that is worth a word; the power of a part is then uncertain by about as much.
 const POYNTING_LIMIT: f64 = 0.02;
@@ -61,9 +61,25 @@ pub fn before_solve(model: &Model, meshed: &Meshed) -> Vec<Warning> {
         part_warnings(model, part, &mut out);
     }
     for note in meshed.mesh.notes() {
-        out.add(WarningKind::Mesh, note.to_string());
+        out.add(WarningKind::Mesh, mesh_note(&meshed.layout.regions, note));
     }
     out.into_vec()
+}
+
+fn mesh_note(regions: &[RegionName], note: &MeshNote) -> String {
+    let place = match regions.get(note.region.0 as usize) {
+        Some(RegionName::Part(_, name)) => format!("part `{name}`"),
+        Some(RegionName::Turn(_, _, coil)) => format!("turns of coil `{coil}`"),
+        Some(RegionName::Air) | None => "air".to_owned(),
+    };
+    match note.reason {
+        NoteReason::LayersCut { placed, wanted } => format!(
+            "{place}: {placed} of {wanted} skin layers fit into the wall or fillet; the skin is resolved less deep there"
+        ),
+        NoteReason::NoStrip { size } => {
+            format!("{place}: no skin layers fit; triangles of {:.3} mm stand in for them", 1e3 * size)
+        }
+    }
 }
 
 fn part_warnings(model: &Model, part: &Part, out: &mut Warnings) {

@@ -6,7 +6,7 @@ use rayon::prelude::*;
 
 use super::element::ElementPoints;
 use super::reference::MAX_NODES;
-use crate::linalg::{Pattern, Scalar};
+use crate::linalg::{LinalgError, Pattern, Scalar};
 
 /// Largest number of unknowns an element couples: its nodes and one more (a turn's voltage).
 pub const MAX_BLOCK: usize = MAX_NODES + 1;
@@ -22,13 +22,17 @@ pub struct Scatter {
 
 impl Scatter {
     /// Looks up the slots of the unknowns each element couples.
-    pub fn new<'a>(pattern: &Pattern, elements: impl Iterator<Item = &'a [u32]>) -> Self {
-        let (mut starts, mut slots) = (vec![0], Vec::new());
+    ///
+    /// # Errors
+    /// A coupling that the pattern does not hold.
+    pub fn new<'a>(pattern: &Pattern, elements: impl Iterator<Item = &'a [u32]>) -> Result<Self, LinalgError> {
+        let (mut starts, mut slots, mut own) = (vec![0], Vec::new(), Vec::new());
         for dofs in elements {
-            pattern.clique_slots(dofs, &mut slots);
+            pattern.clique_slots(dofs, &mut own)?;
+            slots.extend_from_slice(&own);
             starts.push(slots.len() as u32);
         }
-        Self { starts, slots }
+        Ok(Self { starts, slots })
     }
 
     /// Number of elements.

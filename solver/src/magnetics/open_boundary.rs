@@ -11,7 +11,7 @@
 //! Source of `N_n`: NIST Digital Library of Mathematical Functions, 14.17.6. `P_n^1` is taken without the sign
 //! `(-1)^m`; only products of two appear. With a mirror plane the azimuthal field is even and only odd `n` remain.
 
-use mesher::{CurveShape, Point};
+use mesher::{Point, Shape};
 
 use crate::constants::MU_0;
 use crate::fem::edge::Side;
@@ -85,7 +85,7 @@ fn arc_sides(space: &Space) -> Vec<Side> {
         let edge = &mesh.edges()[mesh.triangle_edges()[space.triangle(side.element)][side.edge] as usize];
         edge.curve.is_some_and(|c| {
             let curve = mesh.curve(c);
-            curve.on_domain.is_some() && matches!(curve.shape, CurveShape::Arc { .. })
+            curve.on_domain.is_some() && matches!(curve.shape, Shape::Arc { .. })
         })
     };
     space

@@ -54,10 +54,11 @@ impl Operator {
         let ring: &[u32] = exterior.as_ref().map_or(&[], |x| &x.unknowns);
         let all = cliques.iter().map(Vec::as_slice).chain((!ring.is_empty()).then_some(ring));
         let pattern = Arc::new(Pattern::from_cliques(n, all));
-        let scatter = Scatter::new(&pattern, cliques.iter().map(Vec::as_slice));
+        let refused = |source| SolveError::Linear { system: "field", time_s: 0.0, source };
+        let scatter = Scatter::new(&pattern, cliques.iter().map(Vec::as_slice)).map_err(refused)?;
         let mut exterior_slots = Vec::new();
-        pattern.clique_slots(ring, &mut exterior_slots);
-        let plan = plan(&pattern, &space, ring, n)?;
+        pattern.clique_slots(ring, &mut exterior_slots).map_err(refused)?;
+        let plan = plan(&pattern, &space, ring, n).map_err(refused)?;
         let matrix = SymmetricMatrix { values: vec![Complex64::ZERO; pattern.nnz()], pattern };
         let mut out = Self {
             omega: std::f64::consts::TAU * model.drive.frequency_hz(),
@@ -192,13 +193,11 @@ fn element_unknowns(space: &Space, borders: &[Option<u32>]) -> Vec<Vec<u32>> {
     (0..space.element_count()).map(|e| space.element(e).iter().copied().chain(borders[e]).collect()).collect()
 }
 
-fn plan(pattern: &Arc<Pattern>, space: &Space, ring: &[u32], n: usize) -> Result<Arc<Plan>, SolveError> {
+fn plan(pattern: &Arc<Pattern>, space: &Space, ring: &[u32], n: usize) -> Result<Arc<Plan>, LinalgError> {
     let mut coordinates = space.points().to_vec();
     coordinates.resize(n, [0.0; 2]);
     let last: Vec<u32> = ring.iter().copied().chain(space.len() as u32..n as u32).collect();
-    Plan::new(Arc::clone(pattern), Some(&coordinates), &last)
-        .map(Arc::new)
-        .map_err(|source| SolveError::Linear { system: "field", time_s: 0.0, source })
+    Plan::new(Arc::clone(pattern), Some(&coordinates), &last).map(Arc::new)
 }
 
 /// Lower triangle of `K + j w M` of an element, with the row of its turn's voltage last where it has one.
