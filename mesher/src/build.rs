@@ -6,7 +6,8 @@ use crate::ids::{CurveId, NO_TRIANGLE, Point};
 use crate::layers;
 use crate::mesh::{Bend, Curve, Edge, Mesh, Shape};
 use crate::noding::{Graph, node};
-use crate::note::MeshNote;
+use crate::note::{MeshNote, NoteReason};
+use crate::check::LEAST_RATIO;
 use crate::plan::Plan;
 use crate::refine::{Budget, Sizes, refine};
 use crate::size_field::{Gaps, SizeField, sources, wanted};
@@ -18,6 +19,8 @@ use std::sync::OnceLock;
 /// Largest turn of an edge along an arc, in degrees, at each attempt.
 const TURNS_DEG: [f64; 4] = [30.0, 15.0, 7.5, 3.75];
 const SMOOTHING_PASSES: usize = 5;
+/// Two curves that leave a vertex under a smaller angle, in radians, make a cusp.
+const CUSP: f64 = 0.05;
 
 /// Meshes a drawing. `stop` is asked now and then; if it returns true, meshing ends.
 ///
@@ -76,7 +79,8 @@ fn attempt(
     let budget = Budget { max_triangles: limits.max_triangles, smallest, stop };
     refine(&mut mesh, Sizes { field: &field, caps: &caps }, &plan.tags, plan.nodes, &budget)?;
     smooth(&mut mesh, SMOOTHING_PASSES);
-    let mesh = finish(drawing, graph, &plan, &mesh, notes);
+    let mut mesh = finish(drawing, graph, &plan, &mesh, notes);
+    straighten_cusps(drawing, &mut mesh);
     if mesh.triangles.len() > limits.max_triangles {
         return Err(MeshError::TooManyTriangles { limit: limits.max_triangles, smallest_m: smallest });
     }
@@ -179,6 +183,38 @@ fn finish(drawing: &Drawing, graph: &Graph, plan: &Plan, faces: &Triangulation, 
     let curve_of = curves(graph, plan, &mut mesh);
     add_edges(plan, faces, &triangle_of, &curve_of, &mut mesh);
     mesh
+}
+
+/// Where an arc leaves a vertex along another curve (a fillet that touches a plane, say) no curved element fits: the arc edge
+/// at the tip is left straight, and noted.
+fn straighten_cusps(drawing: &Drawing, mesh: &mut Mesh) {
+    for t in 0..mesh.triangles.len() {
+        if mesh.least_jacobian(t) > LEAST_RATIO {
+            continue;
+        }
+        for e in 0..3 {
+            let own = mesh.triangle_edges[t];
+            let (edge, other) = (own[e] as usize, own[NEXT[e]] as usize);
+            if mesh.edges[edge].curve.is_none() || mesh.edges[other].curve.is_none() || mesh.edges[edge].curve == mesh.edges[other].curve {
+                continue;
+            }
+            let tip = mesh.triangles[t][NEXT[e]];
+            if mesh.angle_between(tip, edge, other) > CUSP {
+                continue;
+            }
+            for edge in [edge, other] {
+                if matches!(mesh.bends[edge], Bend::Straight) {
+                    continue;
+                }
+                mesh.bends[edge] = Bend::Straight;
+                let on = mesh.edges[edge].curve.and_then(|c| mesh.curve(c).on_regions.first().copied());
+                if let Some((index, piece)) = on {
+                    let region = drawing.regions[index].id;
+                    mesh.notes.push(MeshNote { region, index, piece: Some(piece), reason: NoteReason::CuspStraightened });
+                }
+            }
+        }
+    }
 }
 
 /// Fills in the curves; gives the curve of every tag that has one.

@@ -29,7 +29,7 @@ const SAMPLES: [[f64; 3]; 13] = {
 };
 
 /// Least Jacobian of a quadratic map over that of the straight-sided triangle.
-const LEAST_RATIO: f64 = 0.02;
+pub(crate) const LEAST_RATIO: f64 = 0.02;
 
 impl Mesh {
     /// Checks orientation, adjacency, regions, boundary, Jacobians, Euler's formula and the covered area.
