@@ -3,9 +3,9 @@
 use solver::error::SolveError;
 use solver::results::Outcome;
 
+use crate::export::EncodeError;
 use crate::export::folder::OutputError;
 use crate::export::pictures::PictureError;
-use crate::export::EncodeError;
 use crate::job_error::JobError;
 
 /// Exit code of the program.

@@ -16,9 +16,9 @@ pub mod progress;
 use std::any::Any;
 use std::ffi::OsString;
 use std::io::{IsTerminal, Write};
-use std::panic::{catch_unwind, AssertUnwindSafe};
-use std::sync::atomic::{AtomicBool, Ordering};
+use std::panic::{AssertUnwindSafe, catch_unwind};
 use std::sync::Arc;
+use std::sync::atomic::{AtomicBool, Ordering};
 
 use clap::Parser;
 
@@ -104,7 +104,7 @@ fn settle(outcome: Result<Exit, Failure>, err: &mut dyn Write) -> Exit {
 }
 
 /// Turns a panic into a report of a bug.
-fn guarded<'e>(err: &'e mut (dyn Write + Send), work: impl FnOnce(&mut (dyn Write + Send + 'e)) -> Exit) -> Exit {
+fn guarded(err: &mut (dyn Write + Send), work: impl FnOnce(&mut (dyn Write + Send)) -> Exit) -> Exit {
     match catch_unwind(AssertUnwindSafe(|| work(&mut *err))) {
         Ok(exit) => exit,
         Err(payload) => {
@@ -130,7 +130,7 @@ mod tests {
     use std::io;
 
     use super::export::folder::OutputError;
-    use super::{guarded, settle, Exit, Failure};
+    use super::{Exit, Failure, guarded, settle};
 
     #[test]
     fn a_panic_becomes_the_report_of_a_bug() {

@@ -7,7 +7,7 @@ use std::sync::{Mutex, MutexGuard, PoisonError};
 use std::time::{Duration, Instant};
 
 use indicatif::{ProgressBar, ProgressDrawTarget, ProgressStyle};
-use serde_json::{json, Value};
+use serde_json::{Value, json};
 use solver::observe::{Event, Observer};
 
 use crate::args::{How, ProgressChoice};
@@ -155,7 +155,8 @@ impl Inner<'_> {
                 format!("{}t = {}, field solve {index}, {power} in the work", self.stage_prefix(), seconds(*time_s))
             }
             Event::StageStarted { name, time_s, at_most_s, .. } => {
-                let longest = if at_most_s.is_finite() { format!(", at most {}", seconds(*at_most_s)) } else { String::new() };
+                let longest =
+                    if at_most_s.is_finite() { format!(", at most {}", seconds(*at_most_s)) } else { String::new() };
                 let stage = if self.stage.is_empty() { name } else { &self.stage };
                 format!("stage {stage} starts at t = {}{longest}", seconds(*time_s))
             }

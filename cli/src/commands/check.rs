@@ -4,9 +4,7 @@ use std::io::Write;
 use std::sync::atomic::Ordering;
 
 use solver::constants::skin_depth;
-use solver::model::{
-    Coil, ConductorKind, Drive, Gauge, Heating, Hold, Limits, Mirrors, Model, Role, Stage, StageEnd,
-};
+use solver::model::{Coil, ConductorKind, Drive, Gauge, Heating, Hold, Limits, Mirrors, Model, Role, Stage, StageEnd};
 use solver::overview::{Overview, overview};
 
 use super::{on_threads, print, read_job};
@@ -15,7 +13,7 @@ use crate::args::{CheckArguments, How};
 use crate::exit::{Exit, Failure};
 use crate::export::folder::write_file;
 use crate::export::pictures;
-use crate::figures::{columns, count, degc, millimetres, seconds, si, significant};
+use crate::figures::{Page, count, degc, millimetres, row, seconds, si, significant};
 
 /// Litres a minute in a cubic metre a second.
 const L_PER_MIN_IN_M3_PER_S: f64 = 6.0e4;
@@ -41,24 +39,28 @@ pub(super) fn check(
 
 /// What was understood.
 fn account(model: &Model, seen: &Overview) -> String {
-    let mut text = format!("{}\n\n", model.title);
-    text += &parts(model, seen);
-    text += &coils(model);
-    text += &drive(model);
+    let mut page = Page::default();
+    page.line(&model.title);
+    parts(&mut page, model, seen);
+    coils(&mut page, model);
+    drive(&mut page, model);
     if let Some(heating) = &model.heating {
-        text += &stages(model, heating);
+        stages(&mut page, model, heating);
     }
-    text += &mesh(model, seen);
+    mesh(&mut page, model, seen);
     if !seen.warnings.is_empty() {
-        text += &format!("\n{}\n", count(seen.warnings.len(), "warning"));
-        text.extend(seen.warnings.iter().map(|warning| format!("  - {}\n", warning.text)));
+        page.gap();
+        page.line(count(seen.warnings.len(), "warning"));
+        for warning in &seen.warnings {
+            page.line(format!("  - {}", warning.text));
+        }
     }
-    text
+    page.into_text()
 }
 
-fn parts(model: &Model, seen: &Overview) -> String {
+fn parts(page: &mut Page, model: &Model, seen: &Overview) {
     let head = ["part", "role", "material", "mass", "starts at", "skin depth at start", "least skin depth"];
-    let mut rows = vec![head.map(str::to_owned).to_vec()];
+    let mut rows = vec![row(head)];
     for (part, seen) in model.parts.iter().zip(&seen.parts) {
         rows.push(vec![
             part.name.clone(),
@@ -70,7 +72,8 @@ fn parts(model: &Model, seen: &Overview) -> String {
             millimetres(seen.least_skin_depth_m),
         ]);
     }
-    columns(&rows, 3)
+    page.gap();
+    page.table(&rows, 3);
 }
 
 fn role_word(role: Role) -> &'static str {
@@ -83,16 +86,21 @@ fn role_word(role: Role) -> &'static str {
     }
 }
 
-fn coils(model: &Model) -> String {
+fn coils(page: &mut Page, model: &Model) {
     if model.coils.is_empty() {
-        return String::new();
+        return;
     }
     let head =
-        ["coil", "turns", "conductor", "inner diameter", "outer diameter", "height", "from z", "at", "skin depth"];
-    let mut rows = vec![head.map(str::to_owned).to_vec()];
+        ["coil", "conductor", "turns", "inner diameter", "outer diameter", "height", "from z", "at", "skin depth"];
+    let mut rows = vec![row(head)];
     rows.extend(model.coils.iter().map(|coil| coil_row(coil, model.drive.frequency_hz())));
-    let waters: String = model.coils.iter().map(water_line).collect();
-    format!("\n{}{waters}", columns(&rows, 1))
+    page.gap();
+    page.table(&rows, 2);
+    for (coil, water) in model.coils.iter().filter_map(|coil| coil.water.map(|water| (coil, water))) {
+        let flow = significant(water.flow_per_path_m3_per_s * L_PER_MIN_IN_M3_PER_S, 3);
+        let (paths, inlet) = (count(water.paths, "path"), degc(water.inlet_k));
+        page.line(format!("  water of `{}`: {paths}, {flow} l/min each, in at {inlet}", coil.name));
+    }
 }
 
 fn coil_row(coil: &Coil, frequency_hz: f64) -> Vec<String> {
@@ -106,8 +114,8 @@ fn coil_row(coil: &Coil, frequency_hz: f64) -> Vec<String> {
     let reversed = if coil.reversed { ", reversed" } else { "" };
     vec![
         coil.name.clone(),
-        coil.turns.len().to_string(),
         format!("{conductor}, {}{reversed}", coil.material.name),
+        coil.turns.len().to_string(),
         millimetres(2.0 * inner),
         millimetres(2.0 * outer),
         millimetres(top - bottom),
@@ -120,36 +128,24 @@ fn coil_row(coil: &Coil, frequency_hz: f64) -> Vec<String> {
 /// Least and greatest radius, least and greatest height of the bare conductor.
 fn extent(coil: &Coil) -> [f64; 4] {
     let all = [f64::INFINITY, f64::NEG_INFINITY, f64::INFINITY, f64::NEG_INFINITY];
-    coil.turns.iter().map(|turn| turn.outline.bounds()).fold(all, |e, (lo, hi)| {
-        [e[0].min(lo[0]), e[1].max(hi[0]), e[2].min(lo[1]), e[3].max(hi[1])]
-    })
+    coil.turns
+        .iter()
+        .map(|turn| turn.outline.bounds())
+        .fold(all, |e, (lo, hi)| [e[0].min(lo[0]), e[1].max(hi[0]), e[2].min(lo[1]), e[3].max(hi[1])])
 }
 
-fn water_line(coil: &Coil) -> String {
-    coil.water.map_or_else(String::new, |water| {
-        format!(
-            "  water of `{}`: {}, {} l/min each, in at {}\n",
-            coil.name,
-            count(water.paths, "path"),
-            significant(water.flow_per_path_m3_per_s * L_PER_MIN_IN_M3_PER_S, 3),
-            degc(water.inlet_k),
-        )
-    })
-}
-
-fn drive(model: &Model) -> String {
+fn drive(page: &mut Page, model: &Model) {
+    page.gap();
     match &model.drive {
-        Drive::Supply { frequency_hz, hold, limits } => format!(
-            "\nSupply: {}, holds {}{}\n  voltages and currents are rms at the coil terminals, leads excluded\n",
-            si(*frequency_hz, "Hz"),
-            hold_words(*hold, &model.gauges),
-            limit_words(limits),
-        ),
-        Drive::AppliedField { frequency_hz, field_a_per_m_rms } => format!(
-            "\nUniform axial field: {}, {} rms\n",
-            si(*frequency_hz, "Hz"),
-            si(*field_a_per_m_rms, "A/m"),
-        ),
+        Drive::Supply { frequency_hz, hold, limits } => {
+            let hold = hold_words(*hold, &model.gauges);
+            page.line(format!("Supply: {}, holds {hold}{}", si(*frequency_hz, "Hz"), limit_words(limits)));
+            page.line("  voltages and currents are rms at the coil terminals, leads excluded");
+        }
+        Drive::AppliedField { frequency_hz, field_a_per_m_rms } => {
+            let (frequency, field) = (si(*frequency_hz, "Hz"), si(*field_a_per_m_rms, "A/m"));
+            page.line(format!("Uniform axial field: {frequency}, {field} rms"));
+        }
     }
 }
 
@@ -172,15 +168,17 @@ fn limit_words(limits: &Limits) -> String {
     if given.is_empty() { ", no limits given".to_owned() } else { format!(", at most {}", given.join(", ")) }
 }
 
-fn stages(model: &Model, heating: &Heating) -> String {
-    let mut text = format!("\nHeating, ambient {}\n", degc(heating.ambient_k));
-    text.extend(heating.stages.iter().map(|stage| stage_line(stage, &model.gauges)));
+fn stages(page: &mut Page, model: &Model, heating: &Heating) {
+    page.gap();
+    page.line(format!("Heating, ambient {}", degc(heating.ambient_k)));
+    for stage in &heating.stages {
+        page.line(stage_line(stage, &model.gauges));
+    }
     for gauge in &model.gauges {
         let part = model.parts.get(gauge.part).map_or("", |part| &part.name);
         let [r, z] = gauge.at.map(millimetres);
-        text += &format!("  gauge `{}` in `{part}` at r = {r}, z = {z}\n", gauge.name);
+        page.line(format!("  gauge `{}` in `{part}` at r = {r}, z = {z}", gauge.name));
     }
-    text
 }
 
 fn stage_line(stage: &Stage, gauges: &[Gauge]) -> String {
@@ -194,22 +192,25 @@ fn stage_line(stage: &Stage, gauges: &[Gauge]) -> String {
         ),
     };
     let hold = stage.hold.map_or_else(String::new, |hold| format!(", holding {}", hold_words(hold, gauges)));
-    format!("  stage `{}`: {end}{hold}\n", stage.name)
+    format!("  stage `{}`: {end}{hold}", stage.name)
 }
 
-fn mesh(model: &Model, seen: &Overview) -> String {
-    let mirrors = match model.mirrors {
-        Mirrors::None => String::new(),
-        Mirrors::One { z_m } => format!(", half of the device, mirrored at z = {}", millimetres(z_m)),
-        Mirrors::Two { lower_m, upper_m } => {
-            format!(", a slice between mirrors at z = {} and {}", millimetres(lower_m), millimetres(upper_m))
+fn mesh(page: &mut Page, model: &Model, seen: &Overview) {
+    let size = seen.mesh;
+    page.gap();
+    page.line(format!("Mesh: {} triangles of order {}, {} nodes", size.triangles, model.mesh.order, size.nodes));
+    page.line(format!("  smallest angle {:.1} deg, away from the strips along surfaces", size.min_angle_deg));
+    if let Some((radius_m, _)) = seen.section.open_boundary {
+        page.line(format!("  open boundary at a radius of {}", millimetres(radius_m)));
+    }
+    match model.mirrors {
+        Mirrors::None => {}
+        Mirrors::One { z_m } => {
+            page.line(format!("  half of the device, mirrored at z = {}; numbers are for the whole", millimetres(z_m)));
         }
-    };
-    let boundary = seen.section.open_boundary.map_or_else(String::new, |(radius_m, _)| {
-        format!(", open boundary at {}", millimetres(radius_m))
-    });
-    format!(
-        "\nMesh: {} triangles of order {}, {} nodes, smallest angle {:.1} deg{boundary}{mirrors}\n",
-        seen.mesh.triangles, model.mesh.order, seen.mesh.nodes, seen.mesh.min_angle_deg,
-    )
+        Mirrors::Two { lower_m, upper_m } => {
+            let (lower, upper) = (millimetres(lower_m), millimetres(upper_m));
+            page.line(format!("  a slice between mirrors at z = {lower} and {upper}; numbers are for the slice"));
+        }
+    }
 }

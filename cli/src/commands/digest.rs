@@ -1,13 +1,13 @@
 //! The numbers of a run as a person reads them, without opening a file. Voltages and currents are rms.
 
-use solver::results::{Electrical, Outcome, PartNumbers, State};
 use solver::model::Role;
+use solver::results::{Electrical, Outcome, PartNumbers, State};
 
+use crate::export::Finished;
 use crate::export::history::part_name;
 use crate::export::states::limit_word;
-use crate::export::summary::{energy_per_tonne, goals, Goal};
-use crate::export::Finished;
-use crate::figures::{columns, count, degc, seconds, si, significant};
+use crate::export::summary::{Goal, energy_per_tonne, goals};
+use crate::figures::{Page, count, degc, row, seconds, si, significant};
 
 /// W/m^2 in a kW/cm^2.
 const W_PER_M2_IN_KW_PER_CM2: f64 = 1e7;
@@ -15,24 +15,26 @@ const W_PER_M2_IN_KW_PER_CM2: f64 = 1e7;
 /// The digest.
 pub(super) fn digest(run: Finished<'_>) -> String {
     let results = run.results;
-    let mut text = format!("{}: {}\n", results.title, outcome_words(&results.outcome));
-    text += &format!(
-        "{} triangles of order {}, {} unknowns; {}, {}\n",
+    let mut page = Page::default();
+    page.line(format!("{}: {}", results.title, outcome_words(&results.outcome)));
+    page.line(format!(
+        "{} triangles of order {}, {} unknowns; {}, {}",
         results.section.mesh.triangles().len(),
         results.section.nodes.order,
         results.counts.field_unknowns,
         count(results.counts.field_solves, "field solve"),
         count(results.counts.heat_steps, "heat step"),
-    );
-    text += &electrical(&results.states);
+    ));
+    electrical(&mut page, &results.states);
     if let Some(last) = results.states.last() {
-        text += &water(run, &last.electrical);
-        text += &surfaces(run);
+        water(&mut page, run, &last.electrical);
     }
-    text += &heating(run);
-    text += &balances(run);
-    text += &warnings(run);
-    text
+    surfaces(&mut page, run);
+    heating(&mut page, run);
+    energy(&mut page, run);
+    power_balance(&mut page, &results.states);
+    warnings(&mut page, run);
+    page.into_text()
 }
 
 fn outcome_words(outcome: &Outcome) -> String {
@@ -49,19 +51,29 @@ fn outcome_words(outcome: &Outcome) -> String {
 }
 
 /// A table with a row a state.
-fn electrical(states: &[State]) -> String {
+fn electrical(page: &mut Page, states: &[State]) {
     if states.is_empty() {
-        return String::new();
+        return;
     }
     let supplied = states.iter().any(|state| state.electrical.terminals.is_some());
-    let mut head = vec!["state", "time", "frequency", "in the work"];
+    let mut head = row(["state", "time", "frequency", "in the work"]);
     if supplied {
-        head.extend(["coil loss", "efficiency", "power", "voltage", "current", "reactive", "power factor", "limit"]);
+        head.extend(row([
+            "coil loss",
+            "efficiency",
+            "power",
+            "voltage",
+            "current",
+            "reactive",
+            "power factor",
+            "limit",
+        ]));
     }
-    let mut rows = vec![head.into_iter().map(str::to_owned).collect::<Vec<_>>()];
+    let mut rows = vec![head];
     rows.extend(states.iter().map(|state| state_row(state, supplied)));
-    let title = if supplied { "\nAt the coil terminals, rms, leads excluded\n" } else { "\nIn the applied field\n" };
-    title.to_owned() + &columns(&rows, 1)
+    page.gap();
+    page.line(if supplied { "At the coil terminals, rms, leads excluded" } else { "In the applied field" });
+    page.table(&rows, 1);
 }
 
 fn state_row(state: &State, supplied: bool) -> Vec<String> {
@@ -94,27 +106,26 @@ fn dash() -> String {
     "-".to_owned()
 }
 
-fn water(run: Finished<'_>, electrical: &Electrical) -> String {
-    let mut text = String::new();
-    for (coil, model) in electrical.coils.iter().zip(&run.model.coils) {
-        if let (Some(outlet_k), Some(water)) = (coil.water_outlet_k, model.water) {
-            text += &format!(
-                "Water of `{}` at the last state: {} at the outlet, {:.1} K rise in {}\n",
-                coil.name,
-                degc(outlet_k),
-                outlet_k - water.inlet_k,
-                count(water.paths, "path"),
-            );
+fn water(page: &mut Page, run: Finished<'_>, electrical: &Electrical) {
+    let cooled = electrical.coils.iter().zip(&run.model.coils).filter_map(|(coil, model)| {
+        let (outlet_k, water) = coil.water_outlet_k.zip(model.water)?;
+        let (outlet, rise_k, paths) = (degc(outlet_k), outlet_k - water.inlet_k, count(water.paths, "path"));
+        Some(format!("Water of `{}` at the last state: {outlet} at the outlet, {rise_k:.1} K rise, {paths}", coil.name))
+    });
+    let lines: Vec<String> = cooled.collect();
+    if !lines.is_empty() {
+        page.gap();
+        for line in lines {
+            page.line(line);
         }
     }
-    if text.is_empty() { text } else { format!("\n{text}") }
 }
 
 /// Surface power density of the workpieces: first state, last state and greatest.
-fn surfaces(run: Finished<'_>) -> String {
+fn surfaces(page: &mut Page, run: Finished<'_>) {
     let states = &run.results.states;
     let density = |part: &PartNumbers| part.mean_surface_power_density_w_per_m2 / W_PER_M2_IN_KW_PER_CM2;
-    let mut rows = vec![["surface power density, kW/cm2", "first", "last", "greatest"].map(str::to_owned).to_vec()];
+    let mut rows = vec![row(["surface power density, kW/cm2", "first", "last", "greatest"])];
     for (index, part) in run.model.parts.iter().enumerate() {
         if part.role != Role::Workpiece {
             continue;
@@ -126,61 +137,66 @@ fn surfaces(run: Finished<'_>) -> String {
             rows.push(std::iter::once(part.name.clone()).chain(cells).collect());
         }
     }
-    if rows.len() == 1 { String::new() } else { format!("\n{}", columns(&rows, 1)) }
+    if rows.len() > 1 {
+        page.gap();
+        page.table(&rows, 1);
+    }
 }
 
-fn heating(run: Finished<'_>) -> String {
-    let Some(row) = run.results.history.last() else { return String::new() };
-    let mut text = format!("\nHeating, {} simulated\n", seconds(row.time_s));
+fn heating(page: &mut Page, run: Finished<'_>) {
+    let Some(last) = run.results.history.last() else { return };
+    page.gap();
+    page.line(format!("Heating, {} simulated", seconds(last.time_s)));
     for goal in goals(run) {
-        text += &goal_line(&goal);
+        page.line(goal_line(&goal));
     }
-    let gauges = run.model.gauges.iter().zip(&row.gauges_k);
-    for (gauge, kelvin) in gauges {
-        text += &format!("  {} at the end: {}\n", gauge.name, degc(*kelvin));
+    for (gauge, kelvin) in run.model.gauges.iter().zip(&last.gauges_k) {
+        page.line(format!("  {} at the end: {}", gauge.name, degc(*kelvin)));
     }
-    let head = ["at the end", "mean", "coldest", "hottest", "surface - core"].map(str::to_owned).to_vec();
-    let mut rows = vec![head];
-    rows.extend(row.parts.iter().map(|part| {
+    let mut rows = vec![row(["at the end", "mean", "coldest", "hottest", "surface - core"])];
+    rows.extend(last.parts.iter().map(|part| {
         let difference = part.surface_minus_core_k;
         let difference = if difference.is_finite() { format!("{difference:.1} K") } else { dash() };
         vec![part_name(run, part.part).to_owned(), degc(part.mean_k), degc(part.min_k), degc(part.max_k), difference]
     }));
-    text + &columns(&rows, 1)
+    page.table(&rows, 1);
 }
 
 fn goal_line(goal: &Goal) -> String {
-    let target = goal.reaches_degc.map_or_else(dash, |degrees| format!("{} \u{b0}C", significant(degrees, 4)));
+    let target = goal.reaches_degc.map_or_else(dash, |degrees| format!("{degrees:.0} \u{b0}C"));
     match goal.reached_at_s {
-        Some(time_s) => format!("  {} reached {target} at {} (stage `{}`)\n", goal.gauge, seconds(time_s), goal.stage),
-        None => format!("  {} did not reach {target} (stage `{}`)\n", goal.gauge, goal.stage),
+        Some(time_s) => format!("  {} reached {target} at {} (stage `{}`)", goal.gauge, seconds(time_s), goal.stage),
+        None => format!("  {} did not reach {target} (stage `{}`)", goal.gauge, goal.stage),
     }
 }
 
-fn balances(run: Finished<'_>) -> String {
-    let mut text = String::new();
-    if let Some(energy) = &run.results.energy {
-        let lost = energy.radiated_j + energy.convected_j + energy.through_held_faces_j;
-        text += &format!("\nEnergy for {} kg of work\n", significant(energy.workpiece_mass_kg, 4));
-        for (place, value) in energy_per_tonne(energy).0 {
-            let place = if place == "workpiece" { "taken up by the work" } else { "drawn at the coil terminals" };
-            text += &format!("  {place}: {} kWh/t\n", value.map_or_else(dash, |value| significant(value, 4)));
-        }
-        text += &format!("  lost by radiation, convection and held faces: {}\n", si(lost, "J"));
-        text += &format!("  heat balance closes to {:.1e}\n", energy.relative_defect());
-    }
-    let worst = run.results.states.iter().map(|state| state.electrical.power_balance_relative).reduce(f64::max);
+fn energy(page: &mut Page, run: Finished<'_>) {
+    let Some(energy) = &run.results.energy else { return };
+    let lost = energy.radiated_j + energy.convected_j + energy.through_held_faces_j;
+    let [work, terminals] = energy_per_tonne(energy).map(|value| value.map_or_else(dash, |v| significant(v, 4)));
+    page.gap();
+    page.line(format!("Energy for {} kg of work", significant(energy.workpiece_mass_kg, 4)));
+    page.line(format!("  taken up by the work: {work} kWh/t"));
+    page.line(format!("  drawn at the coil terminals: {terminals} kWh/t"));
+    page.line(format!("  lost by radiation, convection and held faces: {}", si(lost, "J")));
+    page.line(format!("  heat balance closes to {:.1e}", energy.relative_defect()));
+}
+
+fn power_balance(page: &mut Page, states: &[State]) {
+    let worst = states.iter().map(|state| state.electrical.power_balance_relative).reduce(f64::max);
     if let Some(worst) = worst {
-        text += &format!("\nPower balance {worst:.1e} at worst: a bookkeeping check that says nothing about accuracy\n");
+        page.gap();
+        page.line(format!("Power balance: {worst:.1e} at worst, a bookkeeping check that says nothing about accuracy"));
     }
-    text
 }
 
-fn warnings(run: Finished<'_>) -> String {
+fn warnings(page: &mut Page, run: Finished<'_>) {
     let warnings = &run.results.warnings;
-    if warnings.is_empty() {
-        return String::new();
+    if !warnings.is_empty() {
+        page.gap();
+        page.line(count(warnings.len(), "warning"));
+        for warning in warnings {
+            page.line(format!("  - {}", warning.text));
+        }
     }
-    let lines: String = warnings.iter().map(|warning| format!("  - {}\n", warning.text)).collect();
-    format!("\n{}\n{lines}", count(warnings.len(), "warning"))
 }

@@ -3,11 +3,11 @@
 use std::io::Write;
 
 use solver::constants::ZERO_CELSIUS_K;
-use solver::material::{library, Curve, Library, Material, Source};
+use solver::material::{Curve, Library, Material, Source, library};
 
 use super::print;
 use crate::exit::{Exit, Failure};
-use crate::figures::{columns, significant};
+use crate::figures::{Page, row, significant};
 
 /// Step of the tabulated temperatures, kelvin.
 const STEP_K: f64 = 50.0;
@@ -35,8 +35,8 @@ fn find<'a>(library: &'a Library, name: &str) -> Result<&'a Material, Failure> {
 
 fn list(library: &Library) -> String {
     let head = ["material", "density", "resistivity", "conductivity", "specific heat", "Curie", "melts", "also called"];
-    let under = ["", "kg/m3", "\u{b0}C", "\u{b0}C", "\u{b0}C", "\u{b0}C", "\u{b0}C", ""];
-    let mut rows = vec![head.map(str::to_owned).to_vec(), under.map(str::to_owned).to_vec()];
+    let degc = "\u{b0}C";
+    let mut rows = vec![row(head), row(["", "kg/m3", degc, degc, degc, degc, degc, ""])];
     rows.extend(library.materials().iter().map(|material| {
         vec![
             material.name.clone(),
@@ -49,8 +49,11 @@ fn list(library: &Library) -> String {
             material.aliases.join(", "),
         ]
     }));
-    let table = columns(&rows, rows[0].len());
-    format!("{table}\nRanges are those of the data. `coilwright materials NAME` tabulates one, with its sources.\n")
+    let mut page = Page::default();
+    page.table(&rows, rows[0].len());
+    page.gap();
+    page.line("Ranges are those of the data. `coilwright materials NAME` tabulates one, with its sources.");
+    page.into_text()
 }
 
 fn degrees(kelvin: f64) -> String {
@@ -63,25 +66,28 @@ fn range(curve: &Curve) -> String {
 }
 
 fn sheet(material: &Material) -> String {
-    let mut text = format!("{}\n", material.name);
+    let mut page = Page::default();
+    page.line(&material.name);
     if !material.aliases.is_empty() {
-        text += &format!("  also called {}\n", material.aliases.join(", "));
+        page.line(format!("  also called {}", material.aliases.join(", ")));
     }
     if !material.description.is_empty() {
-        text += &format!("  {}\n", material.description);
+        page.line(format!("  {}", material.description));
     }
-    text.push('\n');
-    text += &columns(&points(material), 1);
-    text.push('\n');
-    text += &columns(&curve_rows(material), 0);
-    text += "\nSources\n";
+    page.gap();
+    page.table(&points(material), 2);
+    page.gap();
+    page.table(&curve_rows(material), 0);
+    page.gap();
+    page.line("Sources");
     for (property, source) in sources(material) {
-        text += &format!("  {property}: {source}\n");
+        page.line(format!("  {property}: {source}"));
     }
     if let Some(notes) = &material.notes {
-        text += &format!("\nNote: {notes}\n");
+        page.gap();
+        page.line(format!("Note: {notes}"));
     }
-    text
+    page.into_text()
 }
 
 /// Properties that are single numbers.
@@ -106,9 +112,10 @@ fn points(material: &Material) -> Vec<Vec<String>> {
 
 /// The curves over temperature; a dash outside the range of the data.
 fn curve_rows(material: &Material) -> Vec<Vec<String>> {
-    let head = ["\u{b0}C", "resistivity", "conductivity", "specific heat", "relative"];
-    let under = ["", "\u{b5}\u{3a9} m", "W/m/K", "J/kg/K", "permeability"];
-    let mut rows = vec![head.map(str::to_owned).to_vec(), under.map(str::to_owned).to_vec()];
+    let mut rows = vec![
+        row(["\u{b0}C", "resistivity", "conductivity", "specific heat", "relative"]),
+        row(["", "\u{b5}\u{3a9} m", "W/m/K", "J/kg/K", "permeability"]),
+    ];
     for kelvin in temperatures(material) {
         let resistivity = material.resistivity.as_ref().map_or_else(|| "-".to_owned(), |curve| at(curve, kelvin, 1e6));
         rows.push(vec![

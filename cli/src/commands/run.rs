@@ -10,7 +10,7 @@ use super::{digest, on_threads, print, read_job, thread_count};
 use crate::Surroundings;
 use crate::args::{How, RunArguments};
 use crate::exit::{Exit, Failure};
-use crate::export::folder::{inspect, Folder, OutputError};
+use crate::export::folder::{Folder, OutputError, inspect};
 use crate::export::timings::Timings;
 use crate::export::{self, Finished};
 use crate::job::Job;
@@ -35,7 +35,7 @@ pub(super) fn run(
     progress.finish();
     drop(progress);
     let results = solved??;
-    let solve = begun.elapsed() - read;
+    let solve = begun.elapsed().saturating_sub(read);
 
     let finished = Finished { model: &model, results: &results };
     on_threads(how, || write_folder(folder, &job, finished, how, (begun, read, solve)))??;

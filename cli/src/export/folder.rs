@@ -236,9 +236,10 @@ pub fn write_file(path: &Path, bytes: &[u8]) -> Result<(), OutputError> {
     temporary.push(".tmp");
     let temporary = PathBuf::from(temporary);
     let written = fs::File::create(&temporary).and_then(|mut file| file.write_all(bytes));
-    written.map_err(system("written", path)).and_then(|()| {
-        fs::rename(&temporary, path).map_err(system("put in place", path))
-    }).inspect_err(|_| {
-        let _ = fs::remove_file(&temporary);
-    })
+    written
+        .map_err(system("written", path))
+        .and_then(|()| fs::rename(&temporary, path).map_err(system("put in place", path)))
+        .inspect_err(|_| {
+            let _ = fs::remove_file(&temporary);
+        })
 }

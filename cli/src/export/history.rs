@@ -7,12 +7,26 @@ use super::csv_table::Table;
 use super::{EncodeError, Finished};
 
 const ELECTRICAL: [&str; 9] = [
-    "workpiece_power_w", "coil_loss_w", "terminal_power_w", "reactive_power_var", "voltage_v_rms", "current_a_rms",
-    "power_factor", "resistance_ohm", "reactance_ohm",
+    "workpiece_power_w",
+    "coil_loss_w",
+    "terminal_power_w",
+    "reactive_power_var",
+    "voltage_v_rms",
+    "current_a_rms",
+    "power_factor",
+    "resistance_ohm",
+    "reactance_ohm",
 ];
 const ENERGY: [&str; 9] = [
-    "supplied_j", "radiated_j", "convected_j", "through_held_faces_j", "through_flux_faces_j", "stored_j",
-    "workpiece_stored_j", "terminal_j", "heat_balance_relative",
+    "supplied_j",
+    "radiated_j",
+    "convected_j",
+    "through_held_faces_j",
+    "through_flux_faces_j",
+    "stored_j",
+    "workpiece_stored_j",
+    "terminal_j",
+    "heat_balance_relative",
 ];
 
 /// The table as bytes; a header alone without heating.

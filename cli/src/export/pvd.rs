@@ -1,8 +1,8 @@
 //! `run.pvd`: the list of snapshots with their times in seconds, in the collection format of the Visualization Toolkit's
 //! XML files. It names the files relative to itself.
 
-use quick_xml::events::{BytesDecl, Event};
 use quick_xml::Writer;
+use quick_xml::events::{BytesDecl, Event};
 use solver::results::Snapshot;
 
 use super::EncodeError;

@@ -10,9 +10,25 @@ use super::{EncodeError, Finished};
 pub const ALL_COILS: &str = "(all in series)";
 
 const HEADER: [&str; 20] = [
-    "time_s", "state", "coil", "frequency_hz", "voltage_v_rms", "current_a_rms", "power_kw", "reactive_power_kvar",
-    "apparent_power_kva", "power_factor", "quality_factor", "resistance_ohm", "reactance_ohm", "inductance_h",
-    "coil_loss_kw", "water_outlet_degc", "limit_reached", "workpiece_power_kw", "electrical_efficiency",
+    "time_s",
+    "state",
+    "coil",
+    "frequency_hz",
+    "voltage_v_rms",
+    "current_a_rms",
+    "power_kw",
+    "reactive_power_kvar",
+    "apparent_power_kva",
+    "power_factor",
+    "quality_factor",
+    "resistance_ohm",
+    "reactance_ohm",
+    "inductance_h",
+    "coil_loss_kw",
+    "water_outlet_degc",
+    "limit_reached",
+    "workpiece_power_kw",
+    "electrical_efficiency",
     "power_balance_relative",
 ];
 

@@ -2,7 +2,7 @@
 
 use std::time::Duration;
 
-use super::{json_bytes, EncodeError};
+use super::{EncodeError, json_bytes};
 
 /// Wall times of a run.
 #[derive(Debug, Clone, Copy, PartialEq, serde::Serialize)]

@@ -5,7 +5,15 @@ use super::csv_table::Table;
 use super::{EncodeError, Finished};
 
 const HEADER: [&str; 10] = [
-    "coil", "turn", "r_m", "z_m", "copper_length_m", "copper_mass_kg", "current_a_rms", "voltage_v_rms", "loss_w",
+    "coil",
+    "turn",
+    "r_m",
+    "z_m",
+    "copper_length_m",
+    "copper_mass_kg",
+    "current_a_rms",
+    "voltage_v_rms",
+    "loss_w",
     "water_rise_k",
 ];
 

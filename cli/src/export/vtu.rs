@@ -12,11 +12,12 @@
 
 use std::io;
 
-use base64::engine::general_purpose::STANDARD;
 use base64::Engine;
+use base64::engine::general_purpose::STANDARD;
+use mesher::RegionId;
 use num_complex::Complex64;
-use quick_xml::events::{BytesDecl, BytesText, Event};
 use quick_xml::Writer;
+use quick_xml::events::{BytesDecl, BytesText, Event};
 use solver::constants::ZERO_CELSIUS_K;
 use solver::results::{FieldMaps, RegionName, Results, Section, Snapshot};
 
@@ -35,16 +36,11 @@ pub fn snapshot(results: &Results, snapshot: &Snapshot) -> Result<Vec<u8>, Encod
     let section = &results.section;
     let mut xml = Writer::new_with_indent(Vec::new(), b' ', 1);
     xml.write_event(Event::Decl(BytesDecl::new("1.0", None, None)))?;
-    let file = [
-        ("type", "UnstructuredGrid"),
-        ("version", "1.0"),
-        ("byte_order", "LittleEndian"),
-        ("header_type", "UInt64"),
-    ];
+    let file =
+        [("type", "UnstructuredGrid"), ("version", "1.0"), ("byte_order", "LittleEndian"), ("header_type", "UInt64")];
     xml.create_element("VTKFile").with_attributes(file).write_inner_content(|xml| {
         xml.create_element("UnstructuredGrid").write_inner_content(|xml| {
-            xml.create_element("FieldData")
-                .write_inner_content(|xml| single(xml, "TimeValue", snapshot.time_s))?;
+            xml.create_element("FieldData").write_inner_content(|xml| single(xml, "TimeValue", snapshot.time_s))?;
             let points = section.nodes.points.len().to_string();
             let cells = section.mesh.triangles().len().to_string();
             let piece = [("NumberOfPoints", points.as_str()), ("NumberOfCells", cells.as_str())];
@@ -72,10 +68,8 @@ fn geometry(xml: &mut Xml, section: &Section) -> io::Result<()> {
     xml.create_element("Cells").write_inner_content(|xml| {
         let cells = section.mesh.triangles().len();
         let stride = nodes_of_order(nodes.order);
-        let connectivity: Vec<i64> = nodes.elements.iter().map(|&node| i64::from(node)).collect();
-        let offsets: Vec<i64> = (1..=cells).map(|cell| (cell * stride) as i64).collect();
-        integers(xml, "connectivity", &connectivity)?;
-        integers(xml, "offsets", &offsets)?;
+        integers(xml, "connectivity", nodes.elements.iter().map(|&node| u64::from(node)))?;
+        integers(xml, "offsets", (1..=cells).map(|cell| (cell * stride) as u64))?;
         array(xml, "UInt8", "types", 1, &vec![cell_type(nodes.order); cells])
     })?;
     Ok(())
@@ -120,13 +114,9 @@ fn cell_data(xml: &mut Xml, section: &Section, snapshot: &Snapshot) -> io::Resul
     let field: &FieldMaps = &snapshot.field;
     let (order, factor) = (section.nodes.order, snapshot.field_factor);
     let square = factor * factor;
-    let regions: Vec<i64> = section.mesh.regions().iter().map(|region| i64::from(region.0)).collect();
-    integers(xml, "region", &regions)?;
-    let part_of = |region: &i64| match section.regions.get(usize::try_from(*region).unwrap_or(usize::MAX)) {
-        Some(RegionName::Part(part, _)) => *part as i64,
-        _ => NO_PART,
-    };
-    integers(xml, "part", &regions.iter().map(part_of).collect::<Vec<i64>>())?;
+    let regions = section.mesh.regions();
+    integers(xml, "region", regions.iter().map(|region| u64::from(region.0)))?;
+    parts(xml, section)?;
     let loss = means(order, &field.joule_loss_w_per_m3, |&loss| [square * loss]);
     floats(xml, "joule_loss_w_per_m3", 1, &loss)?;
     let current = &field.current_density_a_per_m2;
@@ -137,6 +127,16 @@ fn cell_data(xml: &mut Xml, section: &Section, snapshot: &Snapshot) -> io::Resul
     floats(xml, "B_im_peak_t", 3, &means(order, flux, |b| [factor * b[0].im, factor * b[1].im, 0.0]))?;
     let force = means(order, &field.force_density_n_per_m3, |f| [square * f[0], square * f[1], 0.0]);
     floats(xml, "force_density_n_per_m3", 3, &force)
+}
+
+/// The part each element belongs to.
+fn parts(xml: &mut Xml, section: &Section) -> io::Result<()> {
+    let part_of = |region: &RegionId| match section.regions.get(region.0 as usize) {
+        Some(RegionName::Part(part, _)) => i64::try_from(*part).unwrap_or(NO_PART),
+        _ => NO_PART,
+    };
+    let bytes: Vec<u8> = section.mesh.regions().iter().flat_map(|region| part_of(region).to_le_bytes()).collect();
+    array(xml, "Int64", "part", 1, &bytes)
 }
 
 /// Mean over each element, `n` components a cell, from one value a local node: the integral of the Lagrange basis over a
@@ -173,9 +173,9 @@ fn floats(xml: &mut Xml, name: &str, components: usize, values: &[f64]) -> io::R
     array(xml, "Float64", name, components, &bytes)
 }
 
-fn integers(xml: &mut Xml, name: &str, values: &[i64]) -> io::Result<()> {
-    let bytes: Vec<u8> = values.iter().flat_map(|value| value.to_le_bytes()).collect();
-    array(xml, "Int64", name, 1, &bytes)
+fn integers(xml: &mut Xml, name: &str, values: impl Iterator<Item = u64>) -> io::Result<()> {
+    let bytes: Vec<u8> = values.flat_map(u64::to_le_bytes).collect();
+    array(xml, "UInt64", name, 1, &bytes)
 }
 
 fn array(xml: &mut Xml, kind: &str, name: &str, components: usize, bytes: &[u8]) -> io::Result<()> {
@@ -183,7 +183,8 @@ fn array(xml: &mut Xml, kind: &str, name: &str, components: usize, bytes: &[u8])
     block.extend((bytes.len() as u64).to_le_bytes());
     block.extend(bytes);
     let components = components.to_string();
-    let attributes = [("type", kind), ("Name", name), ("NumberOfComponents", components.as_str()), ("format", "binary")];
+    let attributes =
+        [("type", kind), ("Name", name), ("NumberOfComponents", components.as_str()), ("format", "binary")];
     let text = STANDARD.encode(block);
     xml.create_element("DataArray").with_attributes(attributes).write_text_content(BytesText::from_escaped(text))?;
     Ok(())

@@ -4,8 +4,8 @@
 mod shape;
 
 pub use shape::{
-    CoilEntry, CountNumbers, EndTemperatures, EndedEarly, EnergyNumbers, Goal, MeshNumbers, Named, PartEntry,
-    PartTemperatureEntry, StateNumbers, Summary, TerminalNumbers, Totals, WarningEntry,
+    CoilEntry, CountNumbers, EndTemperatures, EndedEarly, EnergyNumbers, EnergyPerTonne, Goal, MeshNumbers, Named,
+    PartEntry, PartTemperatureEntry, StateNumbers, Summary, TerminalNumbers, Totals, WarningEntry,
 };
 use solver::model::{Gauge, StageEnd};
 use solver::results::{
@@ -14,7 +14,7 @@ use solver::results::{
 
 use super::history::{part_name, stage_name};
 use super::states::limit_word;
-use super::{degc, finite, json_bytes, EncodeError, Finished};
+use super::{EncodeError, Finished, degc, finite, json_bytes};
 
 /// Joules in a kilowatt-hour.
 pub const J_PER_KWH: f64 = 3.6e6;
@@ -122,7 +122,10 @@ fn totals(run: Finished<'_>) -> Option<Totals> {
         coil_loss_w: if electrical.coils.is_empty() { None } else { finite(coil_loss) },
         terminal_power_w: electrical.terminals.and_then(|t| finite(t.power_w)),
         electrical_efficiency: electrical.electrical_efficiency.and_then(finite),
-        energy_kwh_per_t: energy.map(energy_per_tonne),
+        energy_kwh_per_t: energy.map(|energy| {
+            let [workpiece, terminals] = energy_per_tonne(energy);
+            EnergyPerTonne { workpiece, terminals }
+        }),
         power_balance_relative: finite(electrical.power_balance_relative),
     })
 }
@@ -270,11 +273,8 @@ fn energy_numbers(energy: &EnergyBalance) -> EnergyNumbers {
     }
 }
 
-/// Kilowatt-hours a tonne of workpiece, taken up by it and drawn at the coil terminals.
-pub fn energy_per_tonne(energy: &EnergyBalance) -> Named<Option<f64>> {
+/// Kilowatt-hours a tonne of workpiece: taken up by it, and drawn at the coil terminals.
+pub fn energy_per_tonne(energy: &EnergyBalance) -> [Option<f64>; 2] {
     let per_tonne = |joules: f64| finite((joules / J_PER_KWH) / (energy.workpiece_mass_kg / KG_PER_T));
-    Named(vec![
-        ("workpiece".to_owned(), per_tonne(energy.workpiece_stored_j)),
-        ("terminals".to_owned(), per_tonne(energy.terminal_j)),
-    ])
+    [per_tonne(energy.workpiece_stored_j), per_tonne(energy.terminal_j)]
 }

@@ -110,9 +110,18 @@ pub struct Totals {
     /// Workpiece power over terminal power.
     pub electrical_efficiency: Option<f64>,
     /// Energy a tonne, by where it is measured.
-    pub energy_kwh_per_t: Option<Named<Option<f64>>>,
+    pub energy_kwh_per_t: Option<EnergyPerTonne>,
     /// Bookkeeping check of the field solve; holds by construction and says nothing about accuracy.
     pub power_balance_relative: Option<f64>,
+}
+
+/// Energy a tonne of workpiece, by where it is measured.
+#[derive(Debug, Clone, Serialize)]
+pub struct EnergyPerTonne {
+    /// Taken up by the workpieces, from the temperatures alone.
+    pub workpiece: Option<f64>,
+    /// Drawn at the coil terminals.
+    pub terminals: Option<f64>,
 }
 
 /// Electrical numbers of one state.
