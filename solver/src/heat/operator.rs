@@ -1,0 +1,222 @@
+//! The equations: heat taken up, heat flowing in, and the tangent of both, element by element.
+//!
+//! `storage_i = int rho (h(T) - h_n) phi_i` in joules; `rate_i = int p phi_i + boundary - int k(T) grad T . grad phi_i`
+//! in watts. The tangent of `storage - w rate` leaves out the derivative of `k(T)`, which keeps it symmetric and
+//! positive definite; the residual itself leaves out nothing.
+//! Convention: arrays over points are element-major; sums run in element order, for any number of threads.
+
+use super::boundary::{ActiveSide, Boundary, SideLaw, exchange};
+use super::geometry::Geometry;
+use super::parts::HeatedPart;
+use crate::fem::assemble::{Block, Scatter, add_blocks, map_elements};
+use crate::fem::reference::{MAX_NODES, MAX_POINTS};
+use crate::fem::space::Space;
+use crate::material::Material;
+
+/// Everything the element integrals need.
+#[derive(Debug)]
+pub(super) struct Operator {
+    pub(super) space: Space,
+    pub(super) geometry: Geometry,
+    pub(super) boundary: Boundary,
+    pub(super) parts: Vec<HeatedPart>,
+    /// Position in `parts` of each element's part.
+    pub(super) part_of: Vec<u32>,
+    pub(super) ambient_k: f64,
+}
+
+/// Heat flows of the whole section in watts.
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
+pub(super) struct Flows {
+    pub(super) supplied: f64,
+    pub(super) radiated: f64,
+    pub(super) convected: f64,
+    pub(super) through_flux_faces: f64,
+}
+
+impl Flows {
+    fn add(&mut self, other: &Self) {
+        self.supplied += other.supplied;
+        self.radiated += other.radiated;
+        self.convected += other.convected;
+        self.through_flux_faces += other.through_flux_faces;
+    }
+
+    /// Sum of the sizes of the flows, watts.
+    pub(super) fn size(&self) -> f64 {
+        self.supplied.abs() + self.radiated.abs() + self.convected.abs() + self.through_flux_faces.abs()
+    }
+}
+
+/// Both sides of the equations at one temperature field.
+#[derive(Debug, Clone, Default)]
+pub(super) struct Terms {
+    /// Heat taken up since `h_n`, joules, one an unknown.
+    pub(super) storage: Vec<f64>,
+    /// Heat flowing in, watts, one an unknown.
+    pub(super) rate: Vec<f64>,
+    pub(super) flows: Flows,
+}
+
+/// Terms of one element.
+struct Local {
+    storage: [f64; MAX_NODES],
+    rate: [f64; MAX_NODES],
+    flows: Flows,
+}
+
+impl Operator {
+    /// Storage against `enthalpy` (`rho h_n` in J/m^3 a point) and rate with `source` (W/m^3 a point) at `t`.
+    pub(super) fn terms(&self, t: &[f64], enthalpy: &[f64], source: &[f64]) -> Terms {
+        let locals =
+            map_elements(self.space.element_count(), |e, _| self.local_terms(e, t, enthalpy, source));
+        let n = self.space.len();
+        let mut terms = Terms { storage: vec![0.0; n], rate: vec![0.0; n], flows: Flows::default() };
+        for (e, local) in locals.iter().enumerate() {
+            for (i, &unknown) in self.space.element(e).iter().enumerate() {
+                terms.storage[unknown as usize] += local.storage[i];
+                terms.rate[unknown as usize] += local.rate[i];
+            }
+            terms.flows.add(&local.flows);
+        }
+        terms
+    }
+
+    fn local_terms(&self, e: usize, t: &[f64], enthalpy: &[f64], source: &[f64]) -> Local {
+        let material = self.material(e);
+        let (nodal, nodes) = self.nodal(e, t);
+        let mut out =
+            Local { storage: [0.0; MAX_NODES], rate: [0.0; MAX_NODES], flows: Flows::default() };
+        let first = e * self.geometry.points();
+        for (q, (shape, &volume)) in
+            self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate()
+        {
+            let gradients = self.geometry.gradient(e, q);
+            let (mut at, mut slope) = (0.0, [0.0; 2]);
+            for i in 0..nodes {
+                at += shape.value[i] * nodal[i];
+                // Differences first: what is common to the element must not spoil the gradient's last digits.
+                let d = nodal[i] - nodal[0];
+                slope[0] += gradients[i][0] * d;
+                slope[1] += gradients[i][1] * d;
+            }
+            let h = material.density_kg_per_m3 * material.enthalpy.value(at);
+            let stored = volume * (h - enthalpy[first + q]);
+            let supplied = volume * source[first + q];
+            let k = volume * material.conductivity.value(at);
+            for i in 0..nodes {
+                out.storage[i] += stored * shape.value[i];
+                out.rate[i] += supplied * shape.value[i]
+                    - k * (gradients[i][0] * slope[0] + gradients[i][1] * slope[1]);
+            }
+            out.flows.supplied += supplied;
+        }
+        for side in self.boundary.of(e) {
+            self.side_terms(side, &nodal, &mut out);
+        }
+        out
+    }
+
+    fn side_terms(&self, side: &ActiveSide, nodal: &[f64; MAX_NODES], out: &mut Local) {
+        for (surface, value) in &side.points {
+            let inward = match side.law {
+                SideLaw::Flux(flux) => {
+                    out.flows.through_flux_faces += surface * flux;
+                    flux
+                }
+                SideLaw::Exchange { convection, emissivity } => {
+                    let t = side_temperature(side, value, nodal);
+                    let loss = exchange(t, self.ambient_k, convection, emissivity);
+                    out.flows.radiated += surface * loss.radiated;
+                    out.flows.convected += surface * loss.convected;
+                    -(loss.radiated + loss.convected)
+                }
+            };
+            for (&i, v) in side.nodes[..side.count].iter().zip(value) {
+                out.rate[i] += surface * inward * v;
+            }
+        }
+    }
+
+    /// Adds the tangent of `storage - w rate` at `t` to `values`, in J/K; `w` in seconds.
+    pub(super) fn add_tangent(&self, scatter: &Scatter, t: &[f64], w: f64, values: &mut [f64]) {
+        add_blocks(scatter, values, |e, _, block: &mut Block<f64>| {
+            let material = self.material(e);
+            let (nodal, nodes) = self.nodal(e, t);
+            for (q, (shape, &volume)) in
+                self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate()
+            {
+                let at: f64 = shape.value[..nodes].iter().zip(&nodal).map(|(v, t)| v * t).sum();
+                let gradients = self.geometry.gradient(e, q);
+                let capacity = volume * material.density_kg_per_m3 * material.enthalpy.slope(at);
+                let k = w * volume * material.conductivity.value(at);
+                let mut slot = 0;
+                for i in 0..nodes {
+                    let (mass, flow) = (capacity * shape.value[i], gradients[i].map(|g| k * g));
+                    for j in 0..=i {
+                        block[slot] +=
+                            mass * shape.value[j] + flow[0] * gradients[j][0] + flow[1] * gradients[j][1];
+                        slot += 1;
+                    }
+                }
+            }
+            for side in self.boundary.of(e) {
+                self.side_tangent(side, &nodal, w, block);
+            }
+        });
+    }
+
+    fn side_tangent(&self, side: &ActiveSide, nodal: &[f64; MAX_NODES], w: f64, block: &mut Block<f64>) {
+        let SideLaw::Exchange { convection, emissivity } = side.law else { return };
+        let nodes = &side.nodes[..side.count];
+        for (surface, value) in &side.points {
+            let t = side_temperature(side, value, nodal);
+            let weight = w * surface * exchange(t, self.ambient_k, convection, emissivity).slope;
+            for (a, &i) in nodes.iter().enumerate() {
+                for (b, &j) in nodes.iter().enumerate().filter(|&(_, &j)| j <= i) {
+                    block[i * (i + 1) / 2 + j] += weight * value[a] * value[b];
+                }
+            }
+        }
+    }
+
+    /// Enthalpy `rho h(T)` at every quadrature point, J/m^3.
+    pub(super) fn enthalpy(&self, t: &[f64]) -> Vec<f64> {
+        let count = self.geometry.points();
+        let rows = map_elements(self.space.element_count(), |e, _| {
+            let material = self.material(e);
+            let mut row = [0.0; MAX_POINTS];
+            self.at_points(e, t, &mut row[..count]);
+            for v in &mut row[..count] {
+                *v = material.density_kg_per_m3 * material.enthalpy.value(*v);
+            }
+            row
+        });
+        rows.iter().flat_map(|row| &row[..count]).copied().collect()
+    }
+
+    /// Temperature at the quadrature points of element `e`, kelvin.
+    pub(super) fn at_points(&self, e: usize, t: &[f64], out: &mut [f64]) {
+        let (nodal, nodes) = self.nodal(e, t);
+        for (slot, shape) in out.iter_mut().zip(self.space.reference().shapes()) {
+            *slot = shape.value[..nodes].iter().zip(&nodal).map(|(v, t)| v * t).sum();
+        }
+    }
+
+    pub(super) fn material(&self, e: usize) -> &Material {
+        &self.parts[self.part_of[e] as usize].material
+    }
+
+    fn nodal(&self, e: usize, t: &[f64]) -> ([f64; MAX_NODES], usize) {
+        let unknowns = self.space.element(e);
+        let mut nodal = [0.0; MAX_NODES];
+        for (slot, &u) in nodal.iter_mut().zip(unknowns) {
+            *slot = t[u as usize];
+        }
+        (nodal, unknowns.len())
+    }
+}
+
+fn side_temperature(side: &ActiveSide, value: &[f64], nodal: &[f64; MAX_NODES]) -> f64 {
+    side.nodes[..side.count].iter().zip(value).map(|(&i, v)| v * nodal[i]).sum()
+}
