@@ -1,1 +1,5 @@
 //! Induction heating of bodies of revolution: from a job file to fields, electrical numbers and heating curves.
+
+pub mod job;
+pub mod job_error;
+pub mod lower;
