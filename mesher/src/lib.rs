@@ -1,1 +1,37 @@
-//! Outlines to triangles: sized, layered, curved meshes of meridian sections.
+//! Outlines to triangles: sized, layered, curved meshes of meridian sections. Convention: points `[r, z]` in metres; the crate knows no
+//! physics: regions are identities, sizes are lengths. The way from a drawing to a mesh: outlines are noded into a plane graph, strips
+//! of thin layers are laid along the surfaces that ask for them, everything is triangulated under constraints, refined to a size field,
+//! smoothed and checked.
+
+mod build;
+mod check;
+mod constrain;
+mod drawing;
+mod error;
+mod ids;
+mod intersect;
+mod layers;
+mod mesh;
+mod nodes;
+mod noding;
+mod note;
+mod outline;
+mod plan;
+mod predicates;
+mod quality;
+mod refine;
+mod size_field;
+mod smooth;
+mod span;
+mod tree;
+mod triangulate;
+
+pub use build::triangulate;
+pub use drawing::{Drawing, Layers, Limits, Region};
+pub use error::{MeshDefect, MeshError, OutlineError};
+pub use ids::{CurveId, NO_TRIANGLE, Point, RegionId};
+pub use mesh::{Curve, Edge, Mesh, Shape};
+pub use nodes::NodeSet;
+pub use note::{MeshNote, NoteReason};
+pub use outline::{Outline, Piece};
+pub use quality::Quality;

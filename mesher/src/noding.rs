@@ -1,0 +1,198 @@
+//! From overlapping outlines to a plane graph: every crossing and touching becomes a node, coincident stretches become one, what is
+//! outside the domain or painted over is dropped. Convention: two points closer than 1e-9 of the domain's extent are one.
+
+use crate::drawing::{Drawing, OUTSIDE};
+use crate::ids::{Point, along, distance, left_of};
+use crate::intersect::meetings;
+use crate::span::Span;
+use std::collections::HashMap;
+
+/// One stretch of the drawing between two nodes.
+#[derive(Debug, Clone)]
+pub(crate) struct Stretch {
+    pub(crate) span: Span,
+    /// Node indices of start and end.
+    pub(crate) ends: [u32; 2],
+    /// What is to the left and to the right: see [`crate::drawing`].
+    pub(crate) sides: [u32; 2],
+    pub(crate) on_domain: Option<usize>,
+    /// (region index, piece index) of every outline that runs here.
+    pub(crate) on_regions: Vec<(usize, usize)>,
+}
+
+/// The noded drawing.
+#[derive(Debug, Clone)]
+pub(crate) struct Graph {
+    pub(crate) points: Vec<Point>,
+    pub(crate) stretches: Vec<Stretch>,
+    /// Distance under which two points are one, in metres.
+    pub(crate) tolerance: f64,
+}
+
+struct Source {
+    span: Span,
+    domain_piece: Option<usize>,
+    region_piece: Option<(usize, usize)>,
+}
+
+/// Points merged within a tolerance; first come, first kept.
+struct Nodes {
+    points: Vec<Point>,
+    cells: HashMap<(i64, i64), Vec<u32>>,
+    origin: Point,
+    tolerance: f64,
+}
+
+impl Nodes {
+    fn place(&mut self, p: Point) -> u32 {
+        let cell = |x: f64, o: f64| ((x - o) / (4.0 * self.tolerance)).floor() as i64;
+        let (i, j) = (cell(p[0], self.origin[0]), cell(p[1], self.origin[1]));
+        for (a, b) in (-1..=1).flat_map(|a| (-1..=1).map(move |b| (i + a, j + b))) {
+            let near = self.cells.get(&(a, b)).into_iter().flatten();
+            for &id in near {
+                if distance(self.points[id as usize], p) <= 2.0 * self.tolerance {
+                    return id;
+                }
+            }
+        }
+        let id = self.points.len() as u32;
+        self.points.push(p);
+        self.cells.entry((i, j)).or_default().push(id);
+        id
+    }
+}
+
+/// Nodes a drawing.
+pub(crate) fn node(drawing: &Drawing) -> Graph {
+    let tolerance = 1e-9 * drawing.extent();
+    let sources = sources(drawing);
+    let mut nodes =
+        Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
+    for source in &sources {
+        nodes.place(source.span.start);
+    }
+    let cuts = cut(&sources, tolerance);
+    let mut stretches = Vec::new();
+    let mut known: HashMap<[u32; 2], Vec<usize>> = HashMap::new();
+    for (source, cuts) in sources.iter().zip(&cuts) {
+        for part in parts(source, cuts, &mut nodes) {
+            add(drawing, part, source, tolerance, &mut stretches, &mut known);
+        }
+    }
+    for stretch in &mut stretches {
+        stretch.sides = sides(drawing, stretch, tolerance);
+    }
+    stretches.retain(|s| s.sides[0] != s.sides[1]);
+    let points = keep_used(&nodes.points, &mut stretches);
+    Graph { points, stretches, tolerance }
+}
+
+/// Drops nodes at which no stretch ends, and renumbers the rest in the order they are used.
+fn keep_used(points: &[Point], stretches: &mut [Stretch]) -> Vec<Point> {
+    let mut number = vec![u32::MAX; points.len()];
+    let mut kept = Vec::new();
+    for end in stretches.iter_mut().flat_map(|s| s.ends.iter_mut()) {
+        let old = *end as usize;
+        if number[old] == u32::MAX {
+            number[old] = kept.len() as u32;
+            kept.push(points[old]);
+        }
+        *end = number[old];
+    }
+    kept
+}
+
+fn sources(drawing: &Drawing) -> Vec<Source> {
+    let domain = drawing.domain.spans().iter().enumerate();
+    let mut all: Vec<Source> = domain
+        .map(|(i, &span)| Source { span, domain_piece: Some(i), region_piece: None })
+        .collect();
+    for (k, region) in drawing.regions.iter().enumerate() {
+        let pieces = region.outline.spans().iter().enumerate();
+        all.extend(pieces.map(|(i, &span)| Source { span, domain_piece: None, region_piece: Some((k, i)) }));
+    }
+    all
+}
+
+/// Points at which each source is to be cut, its own ends included.
+fn cut(sources: &[Source], tolerance: f64) -> Vec<Vec<Point>> {
+    let mut cuts: Vec<Vec<Point>> = sources.iter().map(|s| vec![s.span.start, s.span.end]).collect();
+    let boxes: Vec<_> = sources.iter().map(|s| s.span.bounds()).collect();
+    for i in 0..sources.len() {
+        for j in i + 1..sources.len() {
+            let ((a, b), (c, d)) = (boxes[i], boxes[j]);
+            if (0..2).any(|k| a[k] > d[k] + tolerance || c[k] > b[k] + tolerance) {
+                continue;
+            }
+            for point in meetings(&sources[i].span, &sources[j].span, tolerance) {
+                cuts[i].push(point);
+                cuts[j].push(point);
+            }
+        }
+    }
+    cuts
+}
+
+/// The stretches of a source between successive nodes.
+fn parts(source: &Source, cuts: &[Point], nodes: &mut Nodes) -> Vec<(Span, [u32; 2])> {
+    let span = &source.span;
+    let mut stops: Vec<(f64, u32)> = cuts
+        .iter()
+        .enumerate()
+        .map(|(i, &p)| (if i < 2 { i as f64 } else { span.project(p) }, nodes.place(p)))
+        .collect();
+    stops.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
+    stops.dedup_by_key(|stop| stop.1);
+    stops
+        .windows(2)
+        .map(|pair| {
+            let [(a, i), (b, j)] = [pair[0], pair[1]];
+            let (start, end) = (nodes.points[i as usize], nodes.points[j as usize]);
+            (span.part(a, b, start, end), [i, j])
+        })
+        .collect()
+}
+
+/// Adds a stretch, or the name of its source to a coincident one; drops it outside the domain.
+fn add(
+    drawing: &Drawing,
+    (span, ends): (Span, [u32; 2]),
+    source: &Source,
+    tolerance: f64,
+    stretches: &mut Vec<Stretch>,
+    known: &mut HashMap<[u32; 2], Vec<usize>>,
+) {
+    let key = [ends[0].min(ends[1]), ends[0].max(ends[1])];
+    let middle = span.at(0.5);
+    let same = known.entry(key).or_default();
+    for &i in same.iter() {
+        let other: &mut Stretch = &mut stretches[i];
+        if distance(other.span.at(0.5), middle) <= 4.0 * tolerance {
+            if let Some(piece) = source.region_piece
+                && !other.on_regions.contains(&piece)
+            {
+                other.on_regions.push(piece);
+            }
+            return;
+        }
+    }
+    if source.domain_piece.is_none() && !drawing.domain.contains(middle) {
+        return;
+    }
+    same.push(stretches.len());
+    stretches.push(Stretch {
+        span,
+        ends,
+        sides: [OUTSIDE; 2],
+        on_domain: source.domain_piece,
+        on_regions: source.region_piece.into_iter().collect(),
+    });
+}
+
+fn sides(drawing: &Drawing, stretch: &Stretch, tolerance: f64) -> [u32; 2] {
+    let normal = left_of(stretch.span.tangent(0.5));
+    let middle = stretch.span.at(0.5);
+    let step = (10.0 * tolerance).min(0.1 * stretch.span.length());
+    let right = if stretch.on_domain.is_some() { OUTSIDE } else { drawing.side_at(along(middle, normal, -step)) };
+    [drawing.side_at(along(middle, normal, step)), right]
+}

@@ -1,0 +1,358 @@
+//! Closed outlines of lines and circular arcs. Convention: points `[r, z]` in metres; an outline is turned counter-clockwise when it
+//! is made, so that its inside is on the left; piece indices refer to that order. Source: elementary plane geometry.
+
+use crate::error::OutlineError;
+use crate::ids::{Point, along, distance, left_of, sub};
+use crate::intersect::meetings;
+use crate::span::{Kind, Span};
+
+/// One stretch of an outline, from the end of the piece before it.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Piece {
+    /// A straight line.
+    Line {
+        /// End point.
+        to: Point,
+    },
+    /// A circular arc.
+    Arc {
+        /// End point.
+        to: Point,
+        /// Centre of the circle.
+        centre: Point,
+        /// Direction of travel.
+        counter_clockwise: bool,
+    },
+}
+
+impl Piece {
+    /// End point, in metres.
+    pub fn to(&self) -> Point {
+        match *self {
+            Self::Line { to } | Self::Arc { to, .. } => to,
+        }
+    }
+
+    fn span(&self, from: Point) -> Span {
+        match *self {
+            Self::Line { to } => Span::line(from, to),
+            Self::Arc { to, centre, counter_clockwise } => Span::arc(from, to, centre, counter_clockwise),
+        }
+    }
+}
+
+/// A closed loop of pieces that does not cross itself, counter-clockwise.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Outline {
+    spans: Vec<Span>,
+    lo: Point,
+    hi: Point,
+}
+
+impl Outline {
+    /// Makes an outline of a start point and the pieces that lead back to it.
+    ///
+    /// # Errors
+    /// If a number is not finite, a piece has no length, an arc's ends are not on one circle, the loop is open, crosses or
+    /// touches itself, or encloses nothing.
+    pub fn new(start: Point, pieces: Vec<Piece>) -> Result<Self, OutlineError> {
+        check_pieces(start, &pieces)?;
+        let mut spans = Vec::with_capacity(pieces.len());
+        let mut from = start;
+        let last = pieces.len() - 1;
+        for (i, piece) in pieces.into_iter().enumerate() {
+            let mut span = piece.span(from);
+            from = piece.to();
+            if i == last {
+                span.end = start;
+            }
+            spans.push(span);
+        }
+        let (lo, hi) = bounds_of(&spans);
+        let extent = distance(lo, hi);
+        let gap = distance(from, start);
+        if gap > 1e-12 * extent {
+            return Err(OutlineError::NotClosed { gap });
+        }
+        let area: f64 = spans.iter().map(|s| s.area_about(start)).sum();
+        if !(area.abs() > 1e-12 * extent * extent) {
+            return Err(OutlineError::NoArea { area: area.abs() });
+        }
+        check_crossings(&spans, 1e-11 * extent)?;
+        if area < 0.0 {
+            spans = spans.iter().rev().map(Span::reversed).collect();
+        }
+        Ok(Self { spans, lo, hi })
+    }
+
+    /// A polygon through the given points, closed by a line from the last to the first.
+    ///
+    /// # Errors
+    /// As [`Outline::new`].
+    pub fn polygon(points: &[Point]) -> Result<Self, OutlineError> {
+        let Some(&start) = points.first() else {
+            return Err(OutlineError::TooFewPieces { count: 0 });
+        };
+        let pieces = points[1..].iter().chain([&start]).map(|&to| Piece::Line { to }).collect();
+        Self::new(start, pieces)
+    }
+
+    /// An upright rectangle between two opposite corners.
+    ///
+    /// # Errors
+    /// If it has no width or no height.
+    pub fn rectangle(lo: Point, hi: Point) -> Result<Self, OutlineError> {
+        Self::polygon(&[lo, [hi[0], lo[1]], hi, [lo[0], hi[1]]])
+    }
+
+    /// An upright rectangle with four quarter-circle fillets of radius `fillet_m`, in metres (0 for sharp corners).
+    ///
+    /// # Errors
+    /// If the fillets do not fit or the rectangle is empty. A fillet may be at most half the shorter side.
+    pub fn rounded_rectangle(lo: Point, hi: Point, fillet_m: f64) -> Result<Self, OutlineError> {
+        if fillet_m == 0.0 {
+            return Self::rectangle(lo, hi);
+        }
+        let half = 0.5 * (hi[0] - lo[0]).min(hi[1] - lo[1]);
+        if !(fillet_m > 0.0 && fillet_m <= half * (1.0 + 1e-12)) {
+            return Err(OutlineError::BadSize { what: "fillet radius", value: fillet_m, limit: half });
+        }
+        let f = fillet_m.min(half);
+        let (a, b, c, d) = (lo[0] + f, hi[0] - f, lo[1] + f, hi[1] - f);
+        let start = [a, lo[1]];
+        let mut pieces = Vec::new();
+        let mut from = start;
+        let corners = [
+            ([b, lo[1]], [hi[0], c], [b, c]),
+            ([hi[0], d], [b, hi[1]], [b, d]),
+            ([a, hi[1]], [lo[0], d], [a, d]),
+            ([lo[0], c], start, [a, c]),
+        ];
+        let least = 1e-9 * half;
+        for (line_end, arc_end, centre) in corners {
+            if distance(from, line_end) > least {
+                pieces.push(Piece::Line { to: line_end });
+            }
+            pieces.push(Piece::Arc { to: arc_end, centre, counter_clockwise: true });
+            from = arc_end;
+        }
+        Self::new(start, pieces)
+    }
+
+    /// A whole circle, as two half circles; it starts at its largest r.
+    ///
+    /// # Errors
+    /// If the radius is not positive and finite.
+    pub fn circle(centre: Point, radius: f64) -> Result<Self, OutlineError> {
+        positive_radius(radius)?;
+        let (right, left) = ([centre[0] + radius, centre[1]], [centre[0] - radius, centre[1]]);
+        let arc = |to| Piece::Arc { to, centre, counter_clockwise: true };
+        Self::new(right, vec![arc(left), arc(right)])
+    }
+
+    /// The half disc `r >= 0` about `(0, centre_z)`: piece 0 is the arc, piece 1 the axis.
+    ///
+    /// # Errors
+    /// If the radius is not positive and finite.
+    pub fn half_disc(centre_z: f64, radius: f64) -> Result<Self, OutlineError> {
+        positive_radius(radius)?;
+        let (low, high) = ([0.0, centre_z - radius], [0.0, centre_z + radius]);
+        let arc = Piece::Arc { to: high, centre: [0.0, centre_z], counter_clockwise: true };
+        Self::new(low, vec![arc, Piece::Line { to: low }])
+    }
+
+    /// The quarter disc `r >= 0, z >= centre_z` about `(0, centre_z)`: piece 0 is the plane, 1 the arc, 2 the axis.
+    ///
+    /// # Errors
+    /// If the radius is not positive and finite.
+    pub fn quarter_disc(centre_z: f64, radius: f64) -> Result<Self, OutlineError> {
+        positive_radius(radius)?;
+        let (origin, right, high) = ([0.0, centre_z], [radius, centre_z], [0.0, centre_z + radius]);
+        let arc = Piece::Arc { to: high, centre: origin, counter_clockwise: true };
+        Self::new(origin, vec![Piece::Line { to: right }, arc, Piece::Line { to: origin }])
+    }
+
+    /// Number of pieces.
+    pub fn len(&self) -> usize {
+        self.spans.len()
+    }
+
+    /// Always false: an outline has pieces.
+    pub fn is_empty(&self) -> bool {
+        self.spans.is_empty()
+    }
+
+    /// Where piece 0 starts, in metres.
+    pub fn start(&self) -> Point {
+        self.spans[0].start
+    }
+
+    /// The pieces, counter-clockwise.
+    pub fn pieces(&self) -> Vec<Piece> {
+        let piece = |s: &Span| match s.kind {
+            Kind::Line => Piece::Line { to: s.end },
+            Kind::Arc { centre, sweep, .. } => Piece::Arc { to: s.end, centre, counter_clockwise: sweep > 0.0 },
+        };
+        self.spans.iter().map(piece).collect()
+    }
+
+    /// The point of piece `piece` at parameter `t` in 0..1 (in proportion to length); `None` if there is no such piece.
+    pub fn point(&self, piece: usize, t: f64) -> Option<Point> {
+        self.spans.get(piece).map(|s| s.at(t))
+    }
+
+    /// Enclosed area in square metres, arcs included exactly.
+    pub fn area(&self) -> f64 {
+        self.spans.iter().map(|s| s.area_about(self.start())).sum()
+    }
+
+    /// Length of the outline in metres.
+    pub fn perimeter(&self) -> f64 {
+        self.spans.iter().map(Span::length).sum()
+    }
+
+    /// Lower and upper corner of the upright box around the outline, in metres.
+    pub fn bounds(&self) -> (Point, Point) {
+        (self.lo, self.hi)
+    }
+
+    /// Whether a point is inside; arcs count exactly, points on the outline go either way.
+    pub fn contains(&self, p: Point) -> bool {
+        if p[0] < self.lo[0] || p[1] < self.lo[1] || p[0] > self.hi[0] || p[1] > self.hi[1] {
+            return false;
+        }
+        self.spans.iter().map(|s| s.crossings(p)).sum::<u32>() % 2 == 1
+    }
+
+    /// Distance of a point from the outline itself, in metres.
+    pub fn distance(&self, p: Point) -> f64 {
+        self.spans.iter().map(|s| s.distance(p)).fold(f64::INFINITY, f64::min)
+    }
+
+    /// Whether the areas of two outlines have more in common than points or edges where they touch.
+    pub fn overlaps(&self, other: &Self) -> bool {
+        let apart = |i: usize| self.hi[i] <= other.lo[i] || other.hi[i] <= self.lo[i];
+        if apart(0) || apart(1) {
+            return false;
+        }
+        let extent = distance(self.lo, self.hi).min(distance(other.lo, other.hi));
+        let tolerance = 1e-9 * extent;
+        self.reaches_into(other, tolerance) || other.reaches_into(self, tolerance)
+    }
+
+    /// Whether a point just inside this outline, next to some stretch of it, is inside the other.
+    fn reaches_into(&self, other: &Self, tolerance: f64) -> bool {
+        self.spans.iter().any(|span| {
+            let mut cuts = vec![0.0, 1.0];
+            for across in &other.spans {
+                cuts.extend(meetings(span, across, tolerance).into_iter().map(|p| span.project(p)));
+            }
+            cuts.sort_by(f64::total_cmp);
+            cuts.windows(2).any(|pair| {
+                if (pair[1] - pair[0]) * span.length() <= 40.0 * tolerance {
+                    return false;
+                }
+                let t = 0.5 * (pair[0] + pair[1]);
+                other.contains(along(span.at(t), left_of(span.tangent(t)), 10.0 * tolerance))
+            })
+        })
+    }
+
+    /// The outline moved by `shift`, in metres.
+    ///
+    /// # Errors
+    /// If the shift is not finite, or so large that the outline is lost in rounding.
+    pub fn translated(&self, shift: Point) -> Result<Self, OutlineError> {
+        let moved = |p: Point| along(p, shift, 1.0);
+        let pieces = self.pieces().into_iter().map(|piece| match piece {
+            Piece::Line { to } => Piece::Line { to: moved(to) },
+            Piece::Arc { to, centre, counter_clockwise } => {
+                Piece::Arc { to: moved(to), centre: moved(centre), counter_clockwise }
+            }
+        });
+        Self::new(moved(self.start()), pieces.collect())
+    }
+
+    pub(crate) fn spans(&self) -> &[Span] {
+        &self.spans
+    }
+}
+
+fn positive_radius(radius: f64) -> Result<(), OutlineError> {
+    if radius > 0.0 && radius.is_finite() {
+        Ok(())
+    } else {
+        Err(OutlineError::BadSize { what: "radius", value: radius, limit: f64::MAX })
+    }
+}
+
+fn bounds_of(spans: &[Span]) -> (Point, Point) {
+    let (mut lo, mut hi) = ([f64::INFINITY; 2], [f64::NEG_INFINITY; 2]);
+    for span in spans {
+        let (a, b) = span.bounds();
+        for i in 0..2 {
+            lo[i] = lo[i].min(a[i]);
+            hi[i] = hi[i].max(b[i]);
+        }
+    }
+    (lo, hi)
+}
+
+fn check_pieces(start: Point, pieces: &[Piece]) -> Result<(), OutlineError> {
+    // Squares of coordinates must stay finite.
+    let finite = |p: Point| p[0].abs() < 1e150 && p[1].abs() < 1e150;
+    let mut from = start;
+    if !finite(start) {
+        return Err(OutlineError::NotFinite { index: 0, point: start });
+    }
+    let arcs = pieces.iter().any(|p| matches!(p, Piece::Arc { .. }));
+    if pieces.len() < if arcs { 2 } else { 3 } {
+        return Err(OutlineError::TooFewPieces { count: pieces.len() });
+    }
+    for (i, piece) in pieces.iter().enumerate() {
+        let to = piece.to();
+        if !finite(to) {
+            return Err(OutlineError::NotFinite { index: i + 1, point: to });
+        }
+        if let Piece::Arc { centre, .. } = *piece {
+            if !finite(centre) {
+                return Err(OutlineError::NotFinite { index: i + 1, point: centre });
+            }
+            let (start_radius, end_radius) = (distance(from, centre), distance(to, centre));
+            if !((start_radius - end_radius).abs() <= 1e-9 * start_radius.max(end_radius)) || start_radius == 0.0 {
+                return Err(OutlineError::NotOnCircle { piece: i, start_radius, end_radius });
+            }
+        }
+        let d = sub(from, to);
+        if d[0] == 0.0 && d[1] == 0.0 {
+            return Err(OutlineError::ZeroLength { piece: i, at: to });
+        }
+        from = to;
+    }
+    Ok(())
+}
+
+fn check_crossings(spans: &[Span], tolerance: f64) -> Result<(), OutlineError> {
+    let boxes: Vec<_> = spans.iter().map(Span::bounds).collect();
+    let n = spans.len();
+    for i in 0..n {
+        for j in i + 1..n {
+            let ((a, b), (c, d)) = (boxes[i], boxes[j]);
+            if (0..2).any(|k| a[k] > d[k] + tolerance || c[k] > b[k] + tolerance) {
+                continue;
+            }
+            let mut shared = Vec::new();
+            if j == i + 1 {
+                shared.push(spans[j].start);
+            }
+            if i == 0 && j == n - 1 {
+                shared.push(spans[0].start);
+            }
+            let strange = |p: &Point| shared.iter().all(|&s| distance(s, *p) > 100.0 * tolerance);
+            if let Some(at) = meetings(&spans[i], &spans[j], tolerance).into_iter().find(strange) {
+                return Err(OutlineError::SelfCrossing { first: i, second: j, at });
+            }
+        }
+    }
+    Ok(())
+}

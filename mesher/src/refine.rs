@@ -1,0 +1,305 @@
+//! Refinement of a constrained triangulation to a size field and a least angle of 28 degrees, by off-centres. Convention: strip cells
+//! are never touched; edges shorter than a share of the wanted size are left alone, so that narrow gaps and small input angles end.
+//! Source: A. Üngör, "Off-centers", 2004; J. R. Shewchuk, "Delaunay refinement algorithms", 2002 (lenses, concentric shells).
+
+use crate::error::MeshError;
+use crate::ids::{Point, along, between, distance, distance_squared, dot, sub};
+use crate::plan::Tag;
+use crate::predicates::{circumcircle, in_circle, orient};
+use crate::size_field::SizeField;
+use crate::triangulate::{LAST, NEXT, NONE, Place, Triangulation};
+use std::collections::VecDeque;
+
+/// Circumradius over shortest edge at 28 degrees: `1 / (2 sin 28)`.
+const RADIUS_EDGE: f64 = 1.065_027_2;
+/// Largest circumradius over the wanted size; an equilateral triangle has 0.577.
+const RADIUS_SIZE: f64 = 0.76;
+/// Edges between lines are not shortened under this share of the wanted size.
+const FLOOR: f64 = 0.12;
+/// Cosine of the lens angle: a point that sees a constrained edge under more than 120 degrees encroaches on it.
+const LENS: f64 = 0.5;
+/// Mark of a vertex that is a node of the drawing.
+const NODE: u32 = u32::MAX;
+
+pub(crate) struct Sizes<'a> {
+    pub(crate) field: &'a SizeField,
+    /// Largest element by side: 0 the domain, `1 + i` region `i`.
+    pub(crate) caps: &'a [f64],
+}
+
+pub(crate) struct Budget<'a> {
+    pub(crate) max_triangles: usize,
+    pub(crate) smallest: f64,
+    pub(crate) stop: &'a dyn Fn() -> bool,
+}
+
+struct Refiner<'a> {
+    mesh: &'a mut Triangulation,
+    sizes: Sizes<'a>,
+    tags: &'a [Tag],
+    /// Wanted size at every vertex.
+    wanted: Vec<f64>,
+    /// Tag of the constraint a vertex lies on, `NODE` for nodes of the drawing, 0 for free ones.
+    on: Vec<u32>,
+    queue: VecDeque<(u32, [u32; 3])>,
+    encroached: Vec<(u32, u32)>,
+}
+
+/// Refines in place. `nodes` is the number of leading points that are nodes of the drawing.
+pub(crate) fn refine(
+    mesh: &mut Triangulation,
+    sizes: Sizes,
+    tags: &[Tag],
+    nodes: usize,
+    budget: &Budget,
+) -> Result<(), MeshError> {
+    let wanted = mesh.points.iter().map(|&p| sizes.field.at(p)).collect();
+    let on = marks(mesh, nodes);
+    let mut refiner =
+        Refiner { mesh, sizes, tags, wanted, on, queue: VecDeque::new(), encroached: Vec::new() };
+    refiner.mesh.fresh = (0..refiner.mesh.faces.len() as u32).collect();
+    refiner.queue_fresh();
+    let mut steps = 0u32;
+    while let Some((face, vertices)) = refiner.queue.pop_front() {
+        if refiner.mesh.faces[face as usize].v != vertices {
+            continue;
+        }
+        steps += 1;
+        if steps.is_multiple_of(512) && (budget.stop)() {
+            return Err(MeshError::Stopped);
+        }
+        if refiner.mesh.points.len() > budget.max_triangles / 2 + nodes + 3 {
+            return Err(MeshError::TooManyTriangles { limit: budget.max_triangles, smallest_m: budget.smallest });
+        }
+        if let Some(target) = refiner.target(face) {
+            refiner.insert(face, vertices, target);
+            refiner.queue_fresh();
+        }
+    }
+    Ok(())
+}
+
+fn marks(mesh: &Triangulation, nodes: usize) -> Vec<u32> {
+    let mut on = vec![0; mesh.points.len()];
+    for face in &mesh.faces {
+        for i in 0..3 {
+            if face.tag[i] != 0 {
+                for v in [face.v[NEXT[i]], face.v[LAST[i]]] {
+                    on[v as usize] = face.tag[i];
+                }
+            }
+        }
+    }
+    on[..nodes].fill(NODE);
+    on
+}
+
+impl Refiner<'_> {
+    fn queue_fresh(&mut self) {
+        for &t in &self.mesh.fresh {
+            let face = &self.mesh.faces[t as usize];
+            if face.side != NONE && face.cell == NONE {
+                self.queue.push_back((t, face.v));
+            }
+        }
+        self.mesh.fresh.clear();
+    }
+
+    /// Wanted size in a face.
+    fn size_of(&self, face: u32) -> f64 {
+        let face = &self.mesh.faces[face as usize];
+        let mean = face.v.iter().map(|&v| self.wanted[v as usize]).sum::<f64>() / 3.0;
+        mean.min(self.sizes.caps[face.side as usize])
+    }
+
+    /// Where a point is to be added for a face that is too large or too sharp.
+    fn target(&self, face: u32) -> Option<Point> {
+        let [a, b, c] = self.mesh.corners(face);
+        let squares = [distance_squared(b, c), distance_squared(c, a), distance_squared(a, b)];
+        let mut i = 0;
+        for k in 1..3 {
+            if squares[k] < squares[i] {
+                i = k;
+            }
+        }
+        let (centre, radius_squared) = circumcircle(a, b, c);
+        let size = self.size_of(face);
+        let large = radius_squared > (RADIUS_SIZE * size).powi(2);
+        let sharp = radius_squared > RADIUS_EDGE * RADIUS_EDGE * squares[i];
+        if !large && (!sharp || self.is_exempt(face, i, squares[i].sqrt(), size)) {
+            return None;
+        }
+        if !centre[0].is_finite() || !centre[1].is_finite() {
+            return None;
+        }
+        Some(self.off_centre(face, i, squares[i].sqrt(), centre))
+    }
+
+    /// Whether the shortest edge of a sharp face is one the drawing forces.
+    fn is_exempt(&self, face: u32, i: usize, shortest: f64, size: f64) -> bool {
+        let f = &self.mesh.faces[face as usize];
+        let (x, y) = (f.v[NEXT[i]], f.v[LAST[i]]);
+        if shortest < 1e-3 * size {
+            return true;
+        }
+        let (on_x, on_y) = (self.on[x as usize], self.on[y as usize]);
+        if on_x == 0 || on_y == 0 {
+            return false;
+        }
+        if shortest < FLOOR * size {
+            return true;
+        }
+        f.tag[i] == 0 && on_x != on_y && on_x != NODE && on_y != NODE && {
+            let ends = |tag: u32| self.tags[tag as usize - 1].ends;
+            matches!((ends(on_x), ends(on_y)), (Some(p), Some(q)) if p.iter().any(|e| q.contains(e)))
+        }
+    }
+
+    /// The circumcentre, or a point nearer to the shortest edge that makes a good triangle with it.
+    fn off_centre(&self, face: u32, i: usize, shortest: f64, centre: Point) -> Point {
+        let f = &self.mesh.faces[face as usize];
+        let (x, y) = (f.v[NEXT[i]], f.v[LAST[i]]);
+        let middle = between(self.mesh.point(x), self.mesh.point(y), 0.5);
+        let out = sub(centre, middle);
+        let depth = dot(out, out).sqrt();
+        let half_angle = (0.5 / RADIUS_EDGE).asin() * 0.5;
+        let mut reach = depth.min(0.95 * 0.5 * shortest / half_angle.tan());
+        let size = 0.5 * (self.wanted[x as usize] + self.wanted[y as usize]);
+        let size = size.min(self.sizes.caps[f.side as usize]);
+        if shortest < 1.5 * size {
+            let leg = size.max(0.75 * shortest);
+            let square = (leg * leg - 0.25 * shortest * shortest).max(0.25 * shortest * shortest);
+            reach = reach.min(square.sqrt());
+        }
+        if reach < depth { along(middle, out, reach / depth) } else { centre }
+    }
+
+    fn insert(&mut self, face: u32, vertices: [u32; 3], target: Point) {
+        let place = self.mesh.locate(target, face, true);
+        let holder = match place {
+            Place::Behind(link) => {
+                if self.split(link) {
+                    self.queue.push_back((face, vertices));
+                }
+                return;
+            }
+            Place::AtVertex(_) => return,
+            Place::Inside(holder) => holder,
+            Place::OnEdge(link) => link >> 2,
+        };
+        let held = self.mesh.faces[holder as usize];
+        if held.cell != NONE || held.side == NONE {
+            return;
+        }
+        self.collect_encroached(holder, target);
+        if self.encroached.is_empty() {
+            self.add(place, held.v, target);
+            return;
+        }
+        let mut changed = false;
+        for (a, b) in std::mem::take(&mut self.encroached) {
+            if let Some(link) = self.mesh.find(a, b) {
+                changed |= self.split(link);
+            }
+        }
+        if changed {
+            self.queue.push_back((face, vertices));
+        }
+    }
+
+    fn add(&mut self, place: Place, around: [u32; 3], p: Point) {
+        let gradation = self.sizes.field.gradation();
+        let bound = around.iter().fold(f64::INFINITY, |least, &v| {
+            least.min(self.wanted[v as usize] + gradation * distance(p, self.mesh.point(v)))
+        });
+        // A point on a constrained edge belongs to it; a free one to nothing.
+        let tag = if let Place::OnEdge(link) = place { self.mesh.tag(link) } else { 0 };
+        if tag != 0 {
+            if let Place::OnEdge(link) = place {
+                self.split(link);
+            }
+            return;
+        }
+        let id = self.mesh.add_point(p);
+        self.wanted.push(self.sizes.field.at_most(p, bound * (1.0 + 1e-12)));
+        self.on.push(0);
+        match place {
+            Place::Inside(face) => self.mesh.insert_inside(face, id),
+            Place::OnEdge(link) => self.mesh.insert_on_edge(link, id),
+            Place::AtVertex(_) | Place::Behind(_) => {}
+        }
+    }
+
+    /// Splits a constrained edge, unless a strip or the floor forbids it.
+    fn split(&mut self, link: u32) -> bool {
+        let face = self.mesh.faces[(link >> 2) as usize];
+        let i = (link & 3) as usize;
+        let (tag, n) = (face.tag[i], face.n[i]);
+        if tag == 0 || n == NONE || face.cell != NONE || self.mesh.faces[(n >> 2) as usize].cell != NONE {
+            return false;
+        }
+        let (a, b) = self.mesh.edge(link);
+        let (pa, pb) = (self.mesh.point(a), self.mesh.point(b));
+        let length = distance(pa, pb);
+        let mean = 0.5 * (self.wanted[a as usize] + self.wanted[b as usize]);
+        if length < 2.0 * FLOOR * mean {
+            return false;
+        }
+        let w = self.mesh.faces[(n >> 2) as usize].v[(n & 3) as usize];
+        let (pv, pw) = (self.mesh.point(face.v[i]), self.mesh.point(w));
+        let fits = |x: Point| {
+            orient(pv, pa, x) > 0.0 && orient(pv, x, pb) > 0.0 && orient(pw, pb, x) > 0.0 && orient(pw, x, pa) > 0.0
+        };
+        let x = self.split_point(tag, a, b, length);
+        if !fits(x) {
+            return false;
+        }
+        let id = self.mesh.add_point(x);
+        self.wanted.push(self.sizes.field.at(x));
+        self.on.push(tag);
+        self.mesh.insert_on_edge(link, id);
+        true
+    }
+
+    /// Middle of an arc; on a line from a node, a power of two from it, so that lines at a small angle split alike.
+    fn split_point(&self, tag: u32, a: u32, b: u32, length: f64) -> Point {
+        let (pa, pb) = (self.mesh.point(a), self.mesh.point(b));
+        let middle = between(pa, pb, 0.5);
+        if let Some((centre, radius)) = self.tags[tag as usize - 1].circle {
+            let out = sub(middle, centre);
+            return along(centre, out, radius / dot(out, out).sqrt());
+        }
+        let at_node = |v: u32| self.on[v as usize] == NODE;
+        if at_node(a) == at_node(b) {
+            return middle;
+        }
+        let share = (0.5 * length).log2().round().exp2() / length;
+        if at_node(a) { between(pa, pb, share) } else { between(pb, pa, share) }
+    }
+
+    /// Constrained edges around the cavity of a new point that see it under too wide an angle.
+    fn collect_encroached(&mut self, holder: u32, x: Point) {
+        self.encroached.clear();
+        let mut open: Vec<u32> = (0..3).map(|i| 4 * holder + i).collect();
+        while let Some(link) = open.pop() {
+            let (a, b) = self.mesh.edge(link);
+            if self.mesh.tag(link) != 0 {
+                let (u, v) = (sub(self.mesh.point(a), x), sub(self.mesh.point(b), x));
+                let d = dot(u, v);
+                if d < 0.0 && d * d >= LENS * LENS * dot(u, u) * dot(v, v) {
+                    self.encroached.push((a, b));
+                }
+                continue;
+            }
+            let n = self.mesh.faces[(link >> 2) as usize].n[(link & 3) as usize];
+            if n == NONE {
+                continue;
+            }
+            let [p, q, r] = self.mesh.corners(n >> 2);
+            if in_circle(p, q, r, x) > 0.0 {
+                let j = (n & 3) as usize;
+                open.extend([(n & !3) | NEXT[j] as u32, (n & !3) | LAST[j] as u32]);
+            }
+        }
+    }
+}
