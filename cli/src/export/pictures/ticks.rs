@@ -55,7 +55,7 @@ pub(super) fn labels(ticks: &[f64]) -> Vec<String> {
 
 fn label(value: f64, step: f64, greatest: f64) -> String {
     if greatest != 0.0 && !(1e-3..1e7).contains(&greatest) {
-        let digits = (greatest / step).log10().ceil().clamp(0.0, 4.0) as usize;
+        let digits = ((greatest.log10() + 1e-9).floor() - (step.log10() + 1e-9).floor()).clamp(0.0, 4.0) as usize;
         return if value == 0.0 { "0".into() } else { format!("{value:.digits$e}") };
     }
     let decimals = if step > 0.0 { (-(step.log10() + 1e-9).floor()).clamp(0.0, 6.0) as usize } else { 0 };

@@ -1,0 +1,281 @@
+//! One property over temperature: a constant, a table (piecewise linear) or segments of formulas as standards write them.
+//!
+//! Convention: SI values over kelvin. Outside the range of the data the end value is held. At a temperature where two
+//! segments meet the upper one counts, as EN 1993-1-2 has it.
+
+use super::error::{MaterialError, MaterialFault};
+use super::segment::Segment;
+use super::source::Source;
+use crate::constants::ZERO_CELSIUS_K;
+
+/// Temperature in kelvin from which integrals are taken: 20 °C.
+pub(super) const REFERENCE_K: f64 = ZERO_CELSIUS_K + 20.0;
+
+/// A property over temperature, in SI over kelvin, with its source.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Curve {
+    form: Form,
+    /// Integral from the reference temperature to the begin of the data.
+    offset: f64,
+    source: Source,
+}
+
+#[derive(Debug, Clone, PartialEq)]
+enum Form {
+    Constant(f64),
+    /// Temperatures in kelvin, values, and the integral from the first row to each row.
+    Table {
+        t_k: Vec<f64>,
+        value: Vec<f64>,
+        integral: Vec<f64>,
+    },
+    /// Segments in ascending order and the integral from the first begin to each begin.
+    Segments {
+        segments: Vec<Segment>,
+        integral: Vec<f64>,
+    },
+}
+
+impl Curve {
+    /// A property that does not depend on temperature.
+    ///
+    /// # Errors
+    /// A value that is not finite.
+    pub fn constant(value: f64) -> Result<Self, MaterialError> {
+        finite(value)?;
+        Ok(Self::from_form(Form::Constant(value)))
+    }
+
+    /// A piecewise linear property through `points`, rows of temperature in kelvin and value.
+    ///
+    /// # Errors
+    /// No rows, numbers that are not finite, temperatures below absolute zero or not rising strictly.
+    pub fn table(points: &[(f64, f64)]) -> Result<Self, MaterialError> {
+        if points.is_empty() {
+            return Err(MaterialFault::EmptyTable.into());
+        }
+        for (row, &(t, value)) in points.iter().enumerate() {
+            finite(t)?;
+            finite(value)?;
+            let at_c = t - ZERO_CELSIUS_K;
+            if t < 0.0 {
+                return Err(MaterialFault::BelowAbsoluteZero { at_c }.into());
+            }
+            if row > 0 && t <= points[row - 1].0 {
+                let previous_c = points[row - 1].0 - ZERO_CELSIUS_K;
+                return Err(MaterialFault::RowsNotRising {
+                    row: row + 1,
+                    at_c,
+                    previous_c,
+                }
+                .into());
+            }
+        }
+        let (t_k, value): (Vec<f64>, Vec<f64>) = points.iter().copied().unzip();
+        let mut integral = vec![0.0; t_k.len()];
+        for i in 1..t_k.len() {
+            integral[i] = integral[i - 1] + 0.5 * (value[i - 1] + value[i]) * (t_k[i] - t_k[i - 1]);
+        }
+        Ok(Self::from_form(Form::Table {
+            t_k,
+            value,
+            integral,
+        }))
+    }
+
+    /// A property given by formulas, each segment beginning where the one before it ended.
+    ///
+    /// # Errors
+    /// No segments, or a gap or overlap between two of them.
+    pub fn segments(segments: Vec<Segment>) -> Result<Self, MaterialError> {
+        if segments.is_empty() {
+            return Err(MaterialFault::NoSegments.into());
+        }
+        let mut integral = vec![0.0; segments.len()];
+        for i in 1..segments.len() {
+            let (end, begin) = (segments[i - 1].range_k().1, segments[i].range_k().0);
+            if end != begin {
+                let (end_c, begin_c) = (end - ZERO_CELSIUS_K, begin - ZERO_CELSIUS_K);
+                return Err(MaterialFault::SegmentsApart { end_c, begin_c }.into());
+            }
+            integral[i] = integral[i - 1] + segments[i - 1].integral(end);
+        }
+        Ok(Self::from_form(Form::Segments { segments, integral }))
+    }
+
+    fn from_form(form: Form) -> Self {
+        let mut curve = Self {
+            form,
+            offset: 0.0,
+            source: Source::unstated(),
+        };
+        curve.offset = -curve.integral(REFERENCE_K);
+        curve
+    }
+
+    /// The same curve with its source.
+    #[must_use]
+    pub fn with_source(mut self, source: Source) -> Self {
+        self.source = source;
+        self
+    }
+
+    /// Where the data come from.
+    pub fn source(&self) -> &Source {
+        &self.source
+    }
+
+    /// First and last temperature of the data in kelvin; `None` for a constant.
+    pub fn range_k(&self) -> Option<(f64, f64)> {
+        match &self.form {
+            Form::Constant(_) => None,
+            Form::Table { t_k, .. } => Some((t_k[0], t_k[t_k.len() - 1])),
+            Form::Segments { segments, .. } => Some((
+                segments[0].range_k().0,
+                segments[segments.len() - 1].range_k().1,
+            )),
+        }
+    }
+
+    /// Value at `t_k` in kelvin; outside the range the end value. NaN in, NaN out.
+    pub fn value(&self, t_k: f64) -> f64 {
+        let t = self.held(t_k);
+        match &self.form {
+            Form::Constant(value) => *value,
+            Form::Table { t_k, value, .. } => {
+                let i = row(t_k.len(), |i| t_k[i], t);
+                let Some(&next) = t_k.get(i + 1) else {
+                    return value[i];
+                };
+                let s = (t - t_k[i]) / (next - t_k[i]);
+                value[i] * (1.0 - s) + value[i + 1] * s
+            }
+            Form::Segments { segments, .. } => {
+                segments[row(segments.len(), |i| segments[i].range_k().0, t)].value(t)
+            }
+        }
+    }
+
+    /// Derivative at `t_k` per kelvin, from the right at a corner; zero outside the range and for a constant.
+    pub fn slope(&self, t_k: f64) -> f64 {
+        if self
+            .range_k()
+            .is_none_or(|(low, high)| !(low..high).contains(&t_k))
+        {
+            return 0.0;
+        }
+        match &self.form {
+            Form::Constant(_) => 0.0,
+            Form::Table {
+                t_k: knots, value, ..
+            } => {
+                let i = row(knots.len(), |i| knots[i], t_k).min(knots.len() - 2);
+                (value[i + 1] - value[i]) / (knots[i + 1] - knots[i])
+            }
+            Form::Segments { segments, .. } => {
+                segments[row(segments.len(), |i| segments[i].range_k().0, t_k)].slope(t_k)
+            }
+        }
+    }
+
+    /// Exact integral of the value from 20 °C to `t_k`, in the unit of the property times kelvin.
+    ///
+    /// It continues linearly outside the range, where the end value is held.
+    pub fn integral(&self, t_k: f64) -> f64 {
+        let t = self.held(t_k);
+        let inside = match &self.form {
+            Form::Constant(value) => return value * (t_k - REFERENCE_K),
+            Form::Table {
+                t_k,
+                value,
+                integral,
+            } => {
+                let i = row(t_k.len(), |i| t_k[i], t);
+                integral[i] + 0.5 * (value[i] + self.value(t)) * (t - t_k[i])
+            }
+            Form::Segments { segments, integral } => {
+                let i = row(segments.len(), |i| segments[i].range_k().0, t);
+                integral[i] + segments[i].integral(t)
+            }
+        };
+        let outside = if t_k == t {
+            0.0
+        } else {
+            self.value(t) * (t_k - t)
+        };
+        self.offset + inside + outside
+    }
+
+    /// Temperatures in kelvin between which the curve is smooth, ascending; empty for a constant.
+    pub(super) fn knots_k(&self) -> Vec<f64> {
+        match &self.form {
+            Form::Constant(_) => Vec::new(),
+            Form::Table { t_k, .. } => t_k.clone(),
+            Form::Segments { segments, .. } => {
+                let first = segments[0].range_k().0;
+                std::iter::once(first)
+                    .chain(segments.iter().map(|s| s.range_k().1))
+                    .collect()
+            }
+        }
+    }
+
+    /// Whether the value is greater than zero everywhere.
+    ///
+    /// # Errors
+    /// A temperature where it is not, with its value in `unit`.
+    pub fn check_positive(&self, unit: &'static str) -> Result<(), MaterialError> {
+        match &self.form {
+            Form::Constant(value) if *value > 0.0 => Ok(()),
+            Form::Constant(value) => Err(MaterialFault::NotPositive {
+                value: *value,
+                unit,
+                at_c: None,
+            }
+            .into()),
+            Form::Table { t_k, value, .. } => match value.iter().position(|&v| v <= 0.0) {
+                None => Ok(()),
+                Some(i) => {
+                    let at_c = Some(t_k[i] - ZERO_CELSIUS_K);
+                    Err(MaterialFault::NotPositive {
+                        value: value[i],
+                        unit,
+                        at_c,
+                    }
+                    .into())
+                }
+            },
+            Form::Segments { segments, .. } => {
+                segments.iter().try_for_each(|s| s.check_positive(unit))
+            }
+        }
+    }
+
+    /// The temperature brought into the range of the data.
+    fn held(&self, t_k: f64) -> f64 {
+        self.range_k()
+            .map_or(t_k, |(low, high)| t_k.clamp(low, high))
+    }
+}
+
+/// Last index `i` with `begin(i) <= t`, at least 0.
+fn row(count: usize, begin: impl Fn(usize) -> f64, t: f64) -> usize {
+    let (mut low, mut high) = (0, count);
+    while high - low > 1 {
+        let middle = low.midpoint(high);
+        if begin(middle) <= t {
+            low = middle;
+        } else {
+            high = middle;
+        }
+    }
+    low
+}
+
+fn finite(value: f64) -> Result<(), MaterialError> {
+    if value.is_finite() {
+        Ok(())
+    } else {
+        Err(MaterialFault::NotFinite { value }.into())
+    }
+}

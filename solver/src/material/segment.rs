@@ -1,0 +1,164 @@
+//! One piece of a formula over temperature: a polynomial plus, where a standard writes one, a simple pole,
+//! `f(x) = a_0 + a_1 x + a_2 x^2 + ... + n / (x - p)`, with `x` in °C or K as the source has it.
+//!
+//! Source of the form: EN 1993-1-2:2005, 3.4.1.2, whose specific heat of steel near 735 °C is written with such poles.
+
+use super::error::{MaterialError, MaterialFault};
+use crate::constants::ZERO_CELSIUS_K;
+
+/// How many pieces a segment is cut into at most to show that it stays positive.
+const PIECES: usize = 4096;
+
+/// The term `numerator / (x - at)` of a segment.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Pole {
+    /// Numerator: the unit of the property times a kelvin.
+    pub numerator: f64,
+    /// Position on the scale of `x`.
+    pub at: f64,
+}
+
+/// A formula on `from_k <= T <= to_k`, in SI; `x = T - zero_k`.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Segment {
+    from_k: f64,
+    to_k: f64,
+    zero_k: f64,
+    polynomial: Vec<f64>,
+    pole: Option<Pole>,
+}
+
+impl Segment {
+    /// A segment between two temperatures in kelvin.
+    ///
+    /// `zero_k` is the zero of the scale of `x`: 273.15 for a formula in °C, 0 for one in kelvin. `polynomial` holds the
+    /// coefficients from the constant upwards.
+    ///
+    /// # Errors
+    /// A number that is not finite, ends below absolute zero or in the wrong order, a pole inside the segment.
+    pub fn new(
+        from_k: f64,
+        to_k: f64,
+        zero_k: f64,
+        polynomial: Vec<f64>,
+        pole: Option<Pole>,
+    ) -> Result<Self, MaterialError> {
+        let pole_numbers = pole.iter().flat_map(|p| [p.numerator, p.at]);
+        let numbers = [from_k, to_k, zero_k]
+            .into_iter()
+            .chain(polynomial.iter().copied())
+            .chain(pole_numbers);
+        for value in numbers {
+            if !value.is_finite() {
+                return Err(MaterialFault::NotFinite { value }.into());
+            }
+        }
+        let (from_c, to_c) = (from_k - ZERO_CELSIUS_K, to_k - ZERO_CELSIUS_K);
+        if from_k < 0.0 {
+            return Err(MaterialFault::BelowAbsoluteZero { at_c: from_c }.into());
+        }
+        if to_k <= from_k {
+            return Err(MaterialFault::SegmentBackwards { from_c, to_c }.into());
+        }
+        if let Some(p) = pole
+            && p.at >= from_k - zero_k
+            && p.at <= to_k - zero_k
+        {
+            let at_c = p.at + zero_k - ZERO_CELSIUS_K;
+            return Err(MaterialFault::PoleInside { at_c, from_c, to_c }.into());
+        }
+        Ok(Self {
+            from_k,
+            to_k,
+            zero_k,
+            polynomial,
+            pole,
+        })
+    }
+
+    /// Begin and end in kelvin.
+    pub fn range_k(&self) -> (f64, f64) {
+        (self.from_k, self.to_k)
+    }
+
+    /// Value at `t_k`, in the unit of the property; the formula continues outside the segment.
+    pub fn value(&self, t_k: f64) -> f64 {
+        let x = t_k - self.zero_k;
+        let polynomial = self.polynomial.iter().rev().fold(0.0, |sum, a| sum * x + a);
+        polynomial + self.pole.map_or(0.0, |p| p.numerator / (x - p.at))
+    }
+
+    /// Derivative at `t_k`, per kelvin.
+    pub fn slope(&self, t_k: f64) -> f64 {
+        let x = t_k - self.zero_k;
+        let powers = self.polynomial.iter().enumerate().skip(1).rev();
+        let polynomial = powers.fold(0.0, |sum, (k, a)| sum * x + k as f64 * a);
+        polynomial
+            - self
+                .pole
+                .map_or(0.0, |p| p.numerator / ((x - p.at) * (x - p.at)))
+    }
+
+    /// Exact integral from the begin of the segment to `t_k` (inside it), in the unit of the property times kelvin.
+    pub fn integral(&self, t_k: f64) -> f64 {
+        let (x, x0) = (t_k - self.zero_k, self.from_k - self.zero_k);
+        let antiderivative = |x: f64| {
+            let terms = self.polynomial.iter().enumerate().rev();
+            terms.fold(0.0, |sum, (k, a)| sum * x + a / (k as f64 + 1.0)) * x
+        };
+        let polynomial = antiderivative(x) - antiderivative(x0);
+        // ln((x - p)/(x0 - p)): the ratio is positive because the pole is outside the segment.
+        polynomial
+            + self
+                .pole
+                .map_or(0.0, |p| p.numerator * ((x - x0) / (x0 - p.at)).ln_1p())
+    }
+
+    /// Whether the formula is greater than zero on the whole segment, shown by bounds and not by samples.
+    ///
+    /// # Errors
+    /// A temperature where it is not, with its value in `unit`; or one near which it could not be shown.
+    pub(super) fn check_positive(&self, unit: &'static str) -> Result<(), MaterialError> {
+        let mut pending = vec![(self.from_k, self.to_k)];
+        for _ in 0..PIECES {
+            let Some((a, b)) = pending.pop() else {
+                return Ok(());
+            };
+            let middle = 0.5 * (a + b);
+            for t in [a, middle, b] {
+                let value = self.value(t);
+                if value.is_nan() || value <= 0.0 {
+                    return Err(MaterialFault::NotPositive {
+                        value,
+                        unit,
+                        at_c: Some(t - ZERO_CELSIUS_K),
+                    }
+                    .into());
+                }
+            }
+            if self.value(middle) <= 0.5 * (b - a) * self.steepest(a, b) {
+                pending.extend([(middle, b), (a, middle)]);
+            }
+        }
+        match pending.pop() {
+            None => Ok(()),
+            Some((a, _)) => Err(MaterialFault::PositivityUnclear {
+                at_c: a - ZERO_CELSIUS_K,
+            }
+            .into()),
+        }
+    }
+
+    /// An upper bound of `|slope|` between two temperatures of the segment, per kelvin.
+    fn steepest(&self, a_k: f64, b_k: f64) -> f64 {
+        let (a, b) = (a_k - self.zero_k, b_k - self.zero_k);
+        let largest = a.abs().max(b.abs());
+        let powers = self.polynomial.iter().enumerate().skip(1).rev();
+        let polynomial = powers.fold(0.0, |sum, (k, c)| sum * largest + k as f64 * c.abs());
+        let pole = self.pole.map_or(0.0, |p| {
+            let distance = (a - p.at).abs().min((b - p.at).abs());
+            p.numerator.abs() / (distance * distance)
+        });
+        polynomial + pole
+    }
+}
