@@ -29,7 +29,7 @@ pub(super) fn check(
     let stop = || surroundings.stop.load(Ordering::Relaxed);
     let seen = on_threads(how, || overview(&model, &stop))??;
     if let Some(path) = &arguments.draw {
-        write_file(path, &pictures::draw_section(&seen.section)?.png)?;
+        write_file(path, &pictures::draw_section(&seen.section, &model.title)?.png)?;
     }
     if !how.quiet {
         print(out, &account(&model, &seen))?;

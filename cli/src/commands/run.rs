@@ -61,7 +61,8 @@ fn write_folder(
         folder.write(&export::pvd::snapshot_name(index), &export::vtu::snapshot(results, snapshot)?)?;
     }
     folder.write("run.pvd", &export::pvd::collection(&results.snapshots)?)?;
-    for picture in export::pictures::draw_all(results)? {
+    let gauges: Vec<String> = run.model.gauges.iter().map(|gauge| gauge.name.clone()).collect();
+    for picture in export::pictures::draw_all_named(results, &gauges)? {
         folder.write(&picture.name, &picture.png)?;
     }
     let write = begun.elapsed().saturating_sub(read + solve);

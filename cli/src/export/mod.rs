@@ -3,6 +3,7 @@
 pub mod csv_table;
 pub mod folder;
 pub mod history;
+pub mod pictures;
 pub mod pvd;
 pub mod states;
 pub mod summary;
