@@ -76,17 +76,23 @@ pub enum JobError {
     #[error("{place}: value {value}: {found} of {what}; write one of {units}")]
     Unit { place: Place, value: String, found: String, what: &'static str, units: String },
     /// A difference of temperatures in a unit that has another zero.
-    #[error("{place}: value {value}: a temperature difference is written in K; a step of 1 °C is 1 K, write \"{number} K\"")]
+    #[error(
+        "{place}: value {value}: a temperature difference is written in K; a step of 1 °C is 1 K, write \"{number} K\""
+    )]
     DifferenceUnit { place: Place, value: String, number: f64 },
     /// A quantity out of its range.
     #[error("{place}: value {value}: {what} must be {range}; correct the number or its unit")]
     OutOfRange { place: Place, value: String, what: &'static str, range: &'static str },
 
     /// A name that is empty or would make paths ambiguous.
-    #[error("{place}: value {value}: a name has 1 to 64 characters without . / \\ [ ] \" , ; control characters or outer spaces; choose another")]
+    #[error(
+        "{place}: value {value}: a name has 1 to 64 characters without . / \\ [ ] \" , ; control characters or outer spaces; choose another"
+    )]
     BadName { place: Place, value: String },
     /// A title that is no line.
-    #[error("{place}: value {value}: a title is one line of 1 to 200 characters; shorten it and put the rest into a \"note\"")]
+    #[error(
+        "{place}: value {value}: a title is one line of 1 to 200 characters; shorten it and put the rest into a \"note\""
+    )]
     BadTitle { place: Place, value: String },
     /// Two items with one name.
     #[error("{place}: value \"{name}\": two {what} have this name; rename one")]
@@ -114,13 +120,17 @@ pub enum JobError {
     #[error("{place}: {found}; write either `{extent}` or `pitch`")]
     WindingExtent { place: Place, found: &'static str, extent: &'static str },
     /// One turn with an extent other than its conductor's.
-    #[error("{place}: value {value}: one turn extends as far as its conductor, {conductor_mm:.4} mm; leave `{extent}` out or correct it")]
+    #[error(
+        "{place}: value {value}: one turn extends as far as its conductor, {conductor_mm:.4} mm; leave `{extent}` out or correct it"
+    )]
     OneTurnExtent { place: Place, value: String, conductor_mm: f64, extent: &'static str },
     /// Turns that would overlap their neighbours.
     #[error("{place}: value {value}: the turns would be {pitch_mm:.4} mm apart, centre to centre, but the conductor is {conductor_mm:.4} mm; {}", pitch_remedy(extent, *.least_mm))]
     TightPitch { place: Place, value: String, pitch_mm: f64, conductor_mm: f64, extent: &'static str, least_mm: f64 },
     /// More turns than can be solved.
-    #[error("{place}: value {count} turns: at most {limit} turns can stand in one job; combine them into fewer, or use `stranded` windows")]
+    #[error(
+        "{place}: value {count} turns: at most {limit} turns can stand in one job; combine them into fewer, or use `stranded` windows"
+    )]
     TooManyTurns { place: Place, count: usize, limit: usize },
     /// A profile that does not begin with a point.
     #[error("{place}: a profile begins with a point; write [r, z] first and the arc after it")]
@@ -135,7 +145,9 @@ pub enum JobError {
     #[error("{place}: the lines before and after this corner run straight on or back; remove the fillet or chamfer")]
     NoCorner { place: Place },
     /// An arc whose ends are not on one circle.
-    #[error("{place}: the arc starts {start_mm:.4} mm and ends {end_mm:.4} mm from its centre; correct the centre or an end")]
+    #[error(
+        "{place}: the arc starts {start_mm:.4} mm and ends {end_mm:.4} mm from its centre; correct the centre or an end"
+    )]
     ArcRadii { place: Place, start_mm: f64, end_mm: f64 },
     /// An outline that is none.
     #[error("{place}: {source}")]
@@ -145,42 +157,60 @@ pub enum JobError {
     #[error("{place}: value r = {r_mm:.4} mm: the part crosses the axis r = 0; keep every r at 0 mm or more")]
     CrossesAxis { place: Place, r_mm: f64 },
     /// A turn that is no ring.
-    #[error("{place}: value r = {r_mm:.4} mm: turn {turn} touches or crosses the axis; a turn is a ring and needs a hole, enlarge its diameter")]
+    #[error(
+        "{place}: value r = {r_mm:.4} mm: turn {turn} touches or crosses the axis; a turn is a ring and needs a hole, enlarge its diameter"
+    )]
     TurnOnAxis { place: Place, turn: usize, r_mm: f64 },
     /// Two parts in one place.
-    #[error("{place}: overlaps part `{other}`: {here} and {there} have an area in common; move or shrink one of them (touching is allowed)")]
+    #[error(
+        "{place}: overlaps part `{other}`: {here} and {there} have an area in common; move or shrink one of them (touching is allowed)"
+    )]
     PartsOverlap { place: Place, other: String, here: String, there: String },
     /// A turn in a part.
     #[error("{place}: turn {turn} ({here}) overlaps part `{part}` ({there}); enlarge the coil or shrink the part")]
     TurnInPart { place: Place, turn: usize, part: String, here: String, there: String },
     /// Two turns in one place.
-    #[error("{place}: turn {turn} ({here}) overlaps turn {other_turn} of coil `{other}` ({there}); move one of them apart")]
+    #[error(
+        "{place}: turn {turn} ({here}) overlaps turn {other_turn} of coil `{other}` ({there}); move one of them apart"
+    )]
     TurnsOverlap { place: Place, turn: usize, other: String, other_turn: usize, here: String, there: String },
 
     /// Planes in the wrong order.
     #[error("{place}: value {value}: the second plane must lie above the first ({lower_mm:.4} mm); swap or move them")]
     PlaneOrder { place: Place, value: String, lower_mm: f64 },
     /// Something without a mirror image.
-    #[error("{place}: {what} has no mirror image across the plane at z = {plane_mm:.4} mm; make the device symmetric, move the plane, or remove `mirror_planes`")]
+    #[error(
+        "{place}: {what} has no mirror image across the plane at z = {plane_mm:.4} mm; make the device symmetric, move the plane, or remove `mirror_planes`"
+    )]
     NotSymmetric { place: Place, what: String, plane_mm: f64 },
     /// Something beyond a slice.
-    #[error("{place}: {what} lies outside the slice from z = {lower_mm:.4} mm to {upper_mm:.4} mm; move or remove it, or move `mirror_planes`")]
+    #[error(
+        "{place}: {what} lies outside the slice from z = {lower_mm:.4} mm to {upper_mm:.4} mm; move or remove it, or move `mirror_planes`"
+    )]
     OutsideSlice { place: Place, what: String, lower_mm: f64, upper_mm: f64 },
 
     /// Nothing to heat.
     #[error("{place}: no part has the role \"workpiece\"; give one part that role")]
     NoWorkpiece { place: Place },
     /// No source of the field.
-    #[error("{place}: there are no coils and no `applied_field`; add a coil, or write \"applied_field\": \"50 kA/m\" into `supply`")]
+    #[error(
+        "{place}: there are no coils and no `applied_field`; add a coil, or write \"applied_field\": \"50 kA/m\" into `supply`"
+    )]
     NoSource { place: Place },
     /// Coils in an applied field.
-    #[error("{place}: an applied field stands instead of coils, `hold` and `limits`, but `{beside}` is given; remove one of the two")]
+    #[error(
+        "{place}: an applied field stands instead of coils, `hold` and `limits`, but `{beside}` is given; remove one of the two"
+    )]
     BesideAppliedField { place: Place, beside: &'static str },
     /// A supply that holds nothing.
-    #[error("{place}: key `hold` is missing; add what the supply keeps constant, such as {{ \"workpiece_power\": \"22 kW\" }}")]
+    #[error(
+        "{place}: key `hold` is missing; add what the supply keeps constant, such as {{ \"workpiece_power\": \"22 kW\" }}"
+    )]
     NoHold { place: Place },
     /// A power that nothing can take up.
-    #[error("{place}: value {value}: no workpiece conducts electricity, so none can take up power; hold `coil_current` or give a conducting material")]
+    #[error(
+        "{place}: value {value}: no workpiece conducts electricity, so none can take up power; hold `coil_current` or give a conducting material"
+    )]
     NothingConducts { place: Place, value: String },
     /// A stage that changes what an applied field holds.
     #[error("{place}: an applied field has no supply whose `hold` a stage could change; remove it from the stage")]
@@ -189,16 +219,24 @@ pub enum JobError {
     #[error("{place}: {found}; write either `for`, or `until` with `at_most`")]
     StageEnd { place: Place, found: &'static str },
     /// A thing that heating needs.
-    #[error("{place}: `{what}` looks at part `{part}`, whose role \"fixture\" is not heated; choose a heated part or another role")]
+    #[error(
+        "{place}: `{what}` looks at part `{part}`, whose role \"fixture\" is not heated; choose a heated part or another role"
+    )]
     GaugeNotHeated { place: Place, what: String, part: String },
     /// A gauge in the air.
-    #[error("{place}: value r = {r_mm:.4} mm, z = {z_mm:.4} mm: not in part `{part}` ({extent}); move the gauge into it")]
+    #[error(
+        "{place}: value r = {r_mm:.4} mm, z = {z_mm:.4} mm: not in part `{part}` ({extent}); move the gauge into it"
+    )]
     GaugeOutside { place: Place, r_mm: f64, z_mm: f64, part: String, extent: String },
     /// A face that is not there.
-    #[error("{place}: value {value}: part `{part}` ({extent}) has no {face} face there; choose a value within it, or another face")]
+    #[error(
+        "{place}: value {value}: part `{part}` ({extent}) has no {face} face there; choose a value within it, or another face"
+    )]
     NoSuchFace { place: Place, value: String, part: String, face: &'static str, extent: String },
     /// A pyrometer with the coordinate of another face.
-    #[error("{place}: {found}; a point on an outer or inner face has `z`, one on a top or bottom face has `r`, write just that")]
+    #[error(
+        "{place}: {found}; a point on an outer or inner face has `z`, one on a top or bottom face has `r`, write just that"
+    )]
     PyrometerPoint { place: Place, found: &'static str },
 }
 

@@ -25,18 +25,18 @@ use serde::{Deserialize, Serialize};
 use serde_json::Value;
 
 pub use coil::{
-    Coil, Conductor, Connection, Helix, Pancake, RectangularTube, RoundTube, RoundWire, Sense, SolidBar, Stranded, Water,
-    Winding,
+    Coil, Conductor, Connection, Helix, Pancake, RectangularTube, RoundTube, RoundWire, Sense, SolidBar, Stranded,
+    Water, Winding,
 };
 pub use heating::{Heating, Pyrometer, PyrometerFace, Stage, Thermocouple, Until};
 pub use part::{
-    Cone, Cylinder, Direction, Disc, FaceCondition, FaceWord, Flux, HeldAt, MaterialRef, Part, ProfileArc, ProfileChamfer,
-    ProfileCurve, ProfileFillet, ProfileStep, Ring, Role, SectionPoint, Shape, Sphere, Surface, Tube,
+    Cone, Cylinder, Direction, Disc, FaceCondition, FaceWord, Flux, HeldAt, MaterialRef, Part, ProfileArc,
+    ProfileChamfer, ProfileCurve, ProfileFillet, ProfileStep, Ring, Role, SectionPoint, Shape, Sphere, Surface, Tube,
 };
 pub use place::Place;
 pub use quantity::Quantity;
-pub use supply::{GaugeHold, Hold, HoldWord, Limits, StageHold, Supply};
 pub(crate) use structure::nearest;
+pub use supply::{GaugeHold, Hold, HoldWord, Limits, StageHold, Supply};
 
 use crate::job_error::JobError;
 use structure::Remark;

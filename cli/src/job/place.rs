@@ -39,6 +39,10 @@ impl Place {
 
 impl fmt::Display for Place {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        if self.key.is_empty() { write!(f, "{}: at the top", self.file) } else { write!(f, "{}: at {}", self.file, self.key) }
+        if self.key.is_empty() {
+            write!(f, "{}: at the top", self.file)
+        } else {
+            write!(f, "{}: at {}", self.file, self.key)
+        }
     }
 }

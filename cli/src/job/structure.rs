@@ -13,8 +13,23 @@ pub(super) type Remark = (String, Value);
 
 /// Keys and words that a later version will know.
 const RESERVED: [&str; 18] = [
-    "mesh_accuracy", "tank", "leads", "inverter_to_terminals", "travel", "feed", "quench_ring", "measured", "fixed_to",
-    "conical", "parallel", "parallel_paths", "parallel paths", "closed_ring", "closed ring", "open_ring", "enclosure",
+    "mesh_accuracy",
+    "tank",
+    "leads",
+    "inverter_to_terminals",
+    "travel",
+    "feed",
+    "quench_ring",
+    "measured",
+    "fixed_to",
+    "conical",
+    "parallel",
+    "parallel_paths",
+    "parallel paths",
+    "closed_ring",
+    "closed ring",
+    "open_ring",
+    "enclosure",
     "contact",
 ];
 
@@ -79,16 +94,25 @@ impl<'a> Walk<'a> {
         }
     }
 
-    fn check_object(&mut self, choices: &[&'a Value], object: &Map<String, Value>, here: &Here) -> Result<(), JobError> {
-        let forms: Vec<&'a Map<String, Value>> = choices.iter().filter_map(|c| c.get("properties")?.as_object()).collect();
+    fn check_object(
+        &mut self,
+        choices: &[&'a Value],
+        object: &Map<String, Value>,
+        here: &Here,
+    ) -> Result<(), JobError> {
+        let forms: Vec<&'a Map<String, Value>> =
+            choices.iter().filter_map(|c| c.get("properties")?.as_object()).collect();
         let Some(best) = best_form(&forms, object) else {
             return Err(wrong_type(choices, &Value::Object(object.clone()), here));
         };
         for key in object.keys().filter(|key| !best.contains_key(*key)) {
             return Err(stray_key(&forms, best, object, key, here));
         }
-        let schema = choices.iter().find(|c| c.get("properties").and_then(Value::as_object).is_some_and(|p| std::ptr::eq(p, best)));
-        let required = schema.and_then(|s| s.get("required")?.as_array()).into_iter().flatten().filter_map(Value::as_str);
+        let schema = choices
+            .iter()
+            .find(|c| c.get("properties").and_then(Value::as_object).is_some_and(|p| std::ptr::eq(p, best)));
+        let required =
+            schema.and_then(|s| s.get("required")?.as_array()).into_iter().flatten().filter_map(Value::as_str);
         for key in required {
             if !object.contains_key(key) {
                 return Err(self.missing(&forms, best, key, here));
@@ -138,7 +162,8 @@ impl<'a> Walk<'a> {
 
 /// The form that shares most keys with the object; the first of equals.
 fn best_form<'a>(forms: &[&'a Map<String, Value>], object: &Map<String, Value>) -> Option<&'a Map<String, Value>> {
-    let shared = |form: &Map<String, Value>| object.keys().filter(|key| *key != "note" && form.contains_key(*key)).count();
+    let shared =
+        |form: &Map<String, Value>| object.keys().filter(|key| *key != "note" && form.contains_key(*key)).count();
     let most = forms.iter().map(|form| shared(form)).max()?;
     forms.iter().find(|form| shared(form) == most).copied()
 }

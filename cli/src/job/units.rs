@@ -12,8 +12,7 @@ use uom::si::f64::{
 };
 use uom::si::frequency::{hertz, kilohertz, megahertz};
 use uom::si::heat_flux_density::{
-    kilowatt_per_square_centimeter, kilowatt_per_square_meter, megawatt_per_square_meter, watt_per_square_centimeter,
-    watt_per_square_meter,
+    kilowatt_per_square_meter, megawatt_per_square_meter, watt_per_square_centimeter, watt_per_square_meter,
 };
 use uom::si::heat_transfer::{kilowatt_per_square_meter_kelvin, watt_per_square_meter_kelvin};
 use uom::si::length::{centimeter, foot, inch, meter, micrometer, millimeter};
@@ -186,7 +185,7 @@ dimension!(
         Unit::new("kW/m2", &[], |v| HeatFluxDensity::new::<kilowatt_per_square_meter>(v).value),
         Unit::new("MW/m2", &[], |v| HeatFluxDensity::new::<megawatt_per_square_meter>(v).value),
         Unit::new("W/cm2", &[], |v| HeatFluxDensity::new::<watt_per_square_centimeter>(v).value),
-        Unit::new("kW/cm2", &[], |v| HeatFluxDensity::new::<kilowatt_per_square_centimeter>(v).value),
+        Unit::new("kW/cm2", &[], |v| 1e3 * HeatFluxDensity::new::<watt_per_square_centimeter>(v).value),
     ]
 );
 

@@ -21,7 +21,8 @@ pub(super) const POSITION: Range = Range { low: -100.0, high: 100.0, words: "fro
 /// Frequencies.
 pub(super) const FREQUENCY: Range = Range { low: 1.0, high: 1e7, words: "from 1 Hz to 10 MHz" };
 /// Temperatures.
-pub(super) const TEMPERATURE: Range = Range { low: 0.0, high: 4000.0, words: "from 0 K to 4000 K (-273.15 °C to 3726.85 °C)" };
+pub(super) const TEMPERATURE: Range =
+    Range { low: 0.0, high: 4000.0, words: "from 0 K to 4000 K (-273.15 °C to 3726.85 °C)" };
 /// Temperatures of water at the inlet.
 pub(super) const WATER: Range = Range { low: 273.15, high: 373.15, words: "from 0 °C to 100 °C" };
 /// Errors allowed in a heat step.

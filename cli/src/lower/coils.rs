@@ -142,7 +142,15 @@ fn helix_centres(helix: &Helix, section: &Section, place: &Place) -> Result<Vec<
     let pitch = read_optional(helix.pitch.as_ref(), &place.key("pitch"), SIZE)?;
     let (middle, gap) = middle_and_gap(&helix.centre, &helix.layer_gap, place)?;
     let extent = length.map(|length| (length.si, length));
-    let row = Row { turns: helix.turns, conductor: section.axial, extent, written_per_extent: 1.0, pitch, key: "length", place };
+    let row = Row {
+        turns: helix.turns,
+        conductor: section.axial,
+        extent,
+        written_per_extent: 1.0,
+        pitch,
+        key: "length",
+        place,
+    };
     let pitch = row.pitch()?;
     let lowest = middle - 0.5 * pitch * f64::from(helix.turns - 1);
     Ok(there_and_back(helix.turns, helix.layers, |layer, turn| {
@@ -169,11 +177,7 @@ fn pancake_centres(pancake: &Pancake, section: &Section, place: &Place) -> Resul
     }))
 }
 
-fn middle_and_gap(
-    centre: &Quantity<Length>,
-    gap: &Quantity<Length>,
-    place: &Place,
-) -> Result<(f64, f64), JobError> {
+fn middle_and_gap(centre: &Quantity<Length>, gap: &Quantity<Length>, place: &Place) -> Result<(f64, f64), JobError> {
     let middle = read(centre, &place.key("centre"), POSITION)?.si;
     Ok((middle, read(gap, &place.key("layer_gap"), GAP)?.si))
 }

@@ -40,7 +40,13 @@ fn part(name: &str, gauge: &str, parts: &[Part], place: &Place) -> Result<usize,
     let Some(index) = parts.iter().position(|part| part.name == name) else {
         let known: Vec<String> = parts.iter().map(|part| part.name.clone()).collect();
         let suggestion = nearest(name, &known);
-        return Err(JobError::UnknownName { place, name: shown(name), what: "part", suggestion, known: known.join(", ") });
+        return Err(JobError::UnknownName {
+            place,
+            name: shown(name),
+            what: "part",
+            suggestion,
+            known: known.join(", "),
+        });
     };
     if !parts[index].role.is_heated() {
         return Err(JobError::GaugeNotHeated { place, what: gauge.to_owned(), part: name.to_owned() });
@@ -118,7 +124,13 @@ fn surface_point(face: PyrometerFace, across: usize, along: &Amount, part: &Part
     let most = met.iter().copied().fold(f64::NEG_INFINITY, f64::max);
     let found = match face {
         PyrometerFace::Outer | PyrometerFace::Outside | PyrometerFace::Top => most,
-        PyrometerFace::Inner | PyrometerFace::Inside => if least > tolerance { least } else { f64::NAN },
+        PyrometerFace::Inner | PyrometerFace::Inside => {
+            if least > tolerance {
+                least
+            } else {
+                f64::NAN
+            }
+        }
         PyrometerFace::Bottom => least,
     };
     let point = if across == 1 { [found, along.si] } else { [along.si, found] };

@@ -32,9 +32,7 @@ pub(super) fn with_permeability(material: &Arc<Material>, relative_permeability:
     let mut changed = Material::clone(material);
     let source = Source { kind: SourceKind::User, text: "relative permeability given in the job".to_owned() };
     changed.magnetic = Some(match changed.magnetic {
-        Some(magnetic) => {
-            Magnetic { relative_permeability_20c: Some(relative_permeability), source, ..magnetic }
-        }
+        Some(magnetic) => Magnetic { relative_permeability_20c: Some(relative_permeability), source, ..magnetic },
         None => Magnetic {
             relative_permeability_20c: Some(relative_permeability),
             saturation_polarisation_t: f64::INFINITY,

@@ -21,7 +21,8 @@ pub(super) fn outline(shape: &Shape, place: &Place) -> Result<Outline, JobError>
         }
         Shape::Disc(s) => {
             let at = place.key("disc");
-            let axial = Axial { extent: s.thickness.as_ref(), key: "thickness", centre: &s.centre, from: &s.from, to: &s.to };
+            let axial =
+                Axial { extent: s.thickness.as_ref(), key: "thickness", centre: &s.centre, from: &s.from, to: &s.to };
             solid(&s.diameter, axial, &at)
         }
         Shape::Tube(s) => {
@@ -31,7 +32,8 @@ pub(super) fn outline(shape: &Shape, place: &Place) -> Result<Outline, JobError>
         }
         Shape::Ring(s) => {
             let at = place.key("ring");
-            let axial = Axial { extent: s.thickness.as_ref(), key: "thickness", centre: &s.centre, from: &s.from, to: &s.to };
+            let axial =
+                Axial { extent: s.thickness.as_ref(), key: "thickness", centre: &s.centre, from: &s.from, to: &s.to };
             hollow(&s.inner_diameter, &s.outer_diameter, axial, &at)
         }
         Shape::Sphere(s) => sphere(s, &place.key("sphere")),

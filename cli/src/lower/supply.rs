@@ -16,7 +16,8 @@ pub(super) fn drive(job: &Job, parts: &[model::Part]) -> Result<model::Drive, Jo
     let frequency_hz = read(&supply.frequency, &place.key("frequency"), FREQUENCY)?.si;
     if let Some(field) = &supply.applied_field {
         let at = place.key("applied_field");
-        let beside = [("coils", !job.coils.is_empty()), ("hold", supply.hold.is_some()), ("limits", supply.limits.is_some())];
+        let beside =
+            [("coils", !job.coils.is_empty()), ("hold", supply.hold.is_some()), ("limits", supply.limits.is_some())];
         if let Some((beside, _)) = beside.into_iter().find(|(_, given)| *given) {
             return Err(JobError::BesideAppliedField { place: at, beside });
         }
@@ -43,7 +44,8 @@ pub(super) fn hold(written: &Hold, parts: &[model::Part], place: &Place) -> Resu
         Hold::CoilVoltage(voltage) => model::Hold::CoilVoltage(read(voltage, &place.key("coil_voltage"), VOLTAGE)?.si),
         Hold::WorkpiecePower(power) => {
             let at = place.key("workpiece_power");
-            let takes_up = |part: &model::Part| part.role == model::Role::Workpiece && part.material.resistivity.is_some();
+            let takes_up =
+                |part: &model::Part| part.role == model::Role::Workpiece && part.material.resistivity.is_some();
             if !parts.iter().any(takes_up) {
                 return Err(JobError::NothingConducts { place: at, value: shown(power.text()) });
             }
