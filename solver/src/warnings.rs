@@ -79,8 +79,8 @@ fn mesh_note(regions: &[RegionName], note: &MeshNote) -> String {
         NoteReason::NoStrip { size } => {
             format!("{place}: no skin layers fit; triangles of {:.3} mm stand in for them", 1e3 * size)
         }
-        NoteReason::ArcStraightened => {
-            format!("{place}: an arc is too tightly curved for its elements and is followed by straight sides")
+        NoteReason::CuspStraightened => {
+            format!("{place}: where an arc touches another curve its edges are meshed straight, which moves the surface a little")
         }
     }
 }
