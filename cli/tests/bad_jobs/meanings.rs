@@ -52,7 +52,7 @@ pub(crate) fn meanings() -> Vec<Bad> {
         bad(
             "turn inside the billet",
             Set("/coils/0/winding/helix/inner_diameter", json!("40 mm")),
-            &["coils.coil", "turn 1", "part `liner`", "enlarge the coil"],
+            &["coils.coil", "turn 2", "part `billet`", "enlarge the coil"],
         ),
         bad(
             "turn in the liner only",
