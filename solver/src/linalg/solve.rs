@@ -3,10 +3,10 @@
 
 use faer::traits::pulp::{Arch, Simd, WithSimd};
 
-use super::dense::add_multiple;
 use super::error::{Datum, LinalgError};
 use super::factor::Factor;
 use super::scalar::Scalar;
+use super::vector::{add_multiple, dot};
 
 impl<T: Scalar> Factor<T> {
     /// Replaces right-hand sides, `n` values each and one after the other, by the solutions.
@@ -50,7 +50,7 @@ impl<T: Scalar> Factor<T> {
     }
 
     #[inline(always)]
-    fn solve_one(&self, rhs: &mut [T]) {
+    fn solve_one<S: Simd>(&self, simd: S, rhs: &mut [T]) {
         let plan = &self.plan;
         let mut x: Vec<T> = plan
             .order
@@ -71,7 +71,7 @@ impl<T: Scalar> Factor<T> {
                 .enumerate()
             {
                 let (done, open) = local.split_at_mut(k + 1);
-                add_multiple(open, -done[k], &column[k + 1..]);
+                add_multiple(simd, open, -done[k], &column[k + 1..]);
             }
             x[pivots].copy_from_slice(&local[..front.pivots]);
             for (&row, &value) in rows.iter().zip(&local[front.pivots..]) {
@@ -92,7 +92,7 @@ impl<T: Scalar> Factor<T> {
                 .rev()
             {
                 let (done, open) = local.split_at_mut(k + 1);
-                done[k] = done[k] * column[k] - dot(&column[k + 1..], open);
+                done[k] = done[k] * column[k] - dot(simd, &column[k + 1..], open);
             }
             x[pivots].copy_from_slice(&local[..front.pivots]);
         }
@@ -112,26 +112,7 @@ impl<T: Scalar> WithSimd for One<'_, T> {
     type Output = ();
 
     #[inline(always)]
-    fn with_simd<S: Simd>(self, _: S) {
-        self.factor.solve_one(self.rhs);
+    fn with_simd<S: Simd>(self, simd: S) {
+        self.factor.solve_one(simd, self.rhs);
     }
-}
-
-/// `sum a_i b_i`, in four interleaved partial sums.
-#[inline(always)]
-fn dot<T: Scalar>(a: &[T], b: &[T]) -> T {
-    let mut sums = [T::ZERO; 4];
-    let (a_blocks, b_blocks) = (a.chunks_exact(4), b.chunks_exact(4));
-    let tail: T = a_blocks
-        .remainder()
-        .iter()
-        .zip(b_blocks.remainder())
-        .map(|(&a, &b)| a * b)
-        .sum();
-    for (a, b) in a_blocks.zip(b_blocks) {
-        for k in 0..4 {
-            sums[k] = sums[k].plus_product(a[k], b[k]);
-        }
-    }
-    (sums[0] + sums[1]) + (sums[2] + sums[3]) + tail
 }
