@@ -80,7 +80,7 @@ fn a_wrong_length_is_refused() {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig::with_cases(40))]
+    #![proptest_config(ProptestConfig { cases: 40, failure_persistence: None, ..ProptestConfig::default() })]
 
     #[test]
     fn products_and_residuals_agree_with_dense_arithmetic(

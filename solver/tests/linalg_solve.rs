@@ -42,7 +42,7 @@ fn edges(n: u32, most: usize) -> impl Strategy<Value = Vec<Edge>> {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig::with_cases(48))]
+    #![proptest_config(ProptestConfig { cases: 48, failure_persistence: None, ..ProptestConfig::default() })]
 
     #[test]
     fn random_accretive_systems_agree_with_lu_for_every_order(
