@@ -53,8 +53,13 @@ impl<T: Scalar> Factor<T> {
             return Err(LinalgError::NotFinite { what: Datum::MatrixValues, index });
         }
         let references = pivot_references(&plan, values);
-        let task = Task { plan: &plan, matrix: values, references: &references, limit: pivot_limit(plan.n()) };
-        task.siblings(&plan.roots, &mut self.values)?;
+        let task = Task {
+            plan: &plan,
+            matrix: values,
+            references: &references,
+            limit: pivot_limit(plan.n()),
+        };
+        task.siblings(&plan.roots, &mut self.values, &mut Workspace::default())?;
         self.complete = true;
         Ok(())
     }
@@ -100,6 +105,27 @@ fn pivot_references<T: Scalar>(plan: &Plan, values: &[T]) -> Vec<f64> {
     plan.order.iter().map(|&unknown| sizes[unknown as usize]).collect()
 }
 
+/// Memory that fronts eliminated one after the other use in turn.
+#[derive(Default)]
+struct Workspace<T> {
+    /// Room for `L D` of a panel; what an earlier front left in it is never read.
+    scaled: Vec<T>,
+    /// Border blocks that were added into their parents.
+    spare: Vec<Vec<T>>,
+}
+
+impl<T: Scalar> Workspace<T> {
+    /// A square block of this order, by columns, with zeros on and below the diagonal.
+    fn lower_zeros(&mut self, order: usize) -> Vec<T> {
+        let mut block = self.spare.pop().unwrap_or_default();
+        block.resize(order * order, T::ZERO);
+        for column in 0..order {
+            block[column * order + column..(column + 1) * order].fill(T::ZERO);
+        }
+        block
+    }
+}
+
 /// What all fronts of one factorisation share.
 #[derive(Clone, Copy)]
 struct Task<'a, T> {
@@ -111,13 +137,22 @@ struct Task<'a, T> {
 
 impl<T: Scalar> Task<'_, T> {
     /// Factorises sibling subtrees, whose panels fill `panels`; returns their border blocks in order.
-    fn siblings(&self, fronts: &[u32], panels: &mut [T]) -> Result<Vec<Vec<T>>, LinalgError> {
-        let work = |list: &[u32]| list.iter().map(|&k| self.plan.fronts[k as usize].work).sum::<f64>();
+    fn siblings(
+        &self,
+        fronts: &[u32],
+        panels: &mut [T],
+        workspace: &mut Workspace<T>,
+    ) -> Result<Vec<Vec<T>>, LinalgError> {
+        let work = |list: &[u32]| {
+            list.iter()
+                .map(|&k| self.plan.fronts[k as usize].work)
+                .sum::<f64>()
+        };
         let [.., last] = fronts else {
             return Ok(Vec::new());
         };
         if fronts.len() == 1 {
-            return Ok(vec![self.subtree(*last as usize, panels)?]);
+            return Ok(vec![self.subtree(*last as usize, panels, workspace)?]);
         }
         let (left, right) = fronts.split_at(fronts.len() / 2);
         let start = |k: u32| {
@@ -126,10 +161,13 @@ impl<T: Scalar> Task<'_, T> {
         };
         let (left_panels, right_panels) = panels.split_at_mut(start(right[0]) - start(left[0]));
         let (blocks, more) = if work(left).min(work(right)) < TASK_WORK {
-            let blocks = self.siblings(left, left_panels)?;
-            (Ok(blocks), self.siblings(right, right_panels))
+            let blocks = self.siblings(left, left_panels, workspace)?;
+            (Ok(blocks), self.siblings(right, right_panels, workspace))
         } else {
-            rayon::join(|| self.siblings(left, left_panels), || self.siblings(right, right_panels))
+            rayon::join(
+                || self.siblings(left, left_panels, workspace),
+                || self.siblings(right, right_panels, &mut Workspace::default()),
+            )
         };
         let mut blocks = blocks?;
         blocks.append(&mut more?);
@@ -137,45 +175,64 @@ impl<T: Scalar> Task<'_, T> {
     }
 
     /// Factorises front `k` with all below it; returns its border block.
-    fn subtree(&self, k: usize, panels: &mut [T]) -> Result<Vec<T>, LinalgError> {
+    fn subtree(
+        &self,
+        k: usize,
+        panels: &mut [T],
+        workspace: &mut Workspace<T>,
+    ) -> Result<Vec<T>, LinalgError> {
         let front = &self.plan.fronts[k];
         if front.work < 2.0 * TASK_WORK {
-            return self.sequence(k, panels);
+            return self.sequence(k, panels, workspace);
         }
         let (below, panel) = panels.split_at_mut(panels.len() - front.panel.len());
-        let blocks = self.siblings(self.plan.children(front), below)?;
-        self.front(front, panel, blocks)
+        let blocks = self.siblings(self.plan.children(front), below, workspace)?;
+        self.front(front, panel, blocks, workspace)
     }
 
     /// As `subtree`, one front after the other.
-    fn sequence(&self, k: usize, panels: &mut [T]) -> Result<Vec<T>, LinalgError> {
+    fn sequence(
+        &self,
+        k: usize,
+        panels: &mut [T],
+        workspace: &mut Workspace<T>,
+    ) -> Result<Vec<T>, LinalgError> {
         let mut stack: Vec<Vec<T>> = Vec::new();
         let mut rest = panels;
         for front in &self.plan.fronts[self.plan.fronts[k].subtree..=k] {
             let (panel, after) = rest.split_at_mut(front.panel.len());
             rest = after;
             let blocks = stack.split_off(stack.len() - front.children.len());
-            stack.push(self.front(front, panel, blocks)?);
+            stack.push(self.front(front, panel, blocks, workspace)?);
         }
         Ok(stack.pop().unwrap_or_default())
     }
 
     /// Assembles one front from the matrix and its children's blocks, and eliminates its pivots.
-    fn front(&self, front: &Front, panel: &mut [T], children: Vec<Vec<T>>) -> Result<Vec<T>, LinalgError> {
+    fn front(
+        &self,
+        front: &Front,
+        panel: &mut [T],
+        children: Vec<Vec<T>>,
+        workspace: &mut Workspace<T>,
+    ) -> Result<Vec<T>, LinalgError> {
         panel.fill(T::ZERO);
-        let mut border = vec![T::ZERO; front.border * front.border];
+        let mut border = workspace.lower_zeros(front.border);
         for &[slot, place] in &self.plan.scatter[front.entries.clone()] {
             panel[place as usize] = self.matrix[slot as usize];
         }
         for (&child, block) in self.plan.children(front).iter().zip(children) {
             let rows = self.plan.fronts[child as usize].rows.clone();
             add_block(front, &self.plan.relative[rows], &block, panel, &mut border);
+            workspace.spare.push(block);
         }
         let columns = front.first..front.first + front.pivots;
-        let mut scaled = vec![T::ZERO; panel.len()];
+        workspace
+            .scaled
+            .resize(workspace.scaled.len().max(panel.len()), T::ZERO);
         let mut panel = Panel {
             values: panel,
-            scaled: &mut scaled,
+            scaled: &mut workspace.scaled,
             height: front.height(),
             references: &self.references[columns],
             limit: self.limit,

@@ -24,7 +24,7 @@ pub(super) struct Front {
     pub(super) pivots: usize,
     /// Number of rows below the pivot block.
     pub(super) border: usize,
-    /// Where its border rows lie in [`Plan::rows`] and [`Plan::relative`].
+    /// Where its border rows lie in [`Plan::relative`].
     pub(super) rows: Range<usize>,
     /// Where its panel, `(pivots + border)` rows by `pivots` columns, lies among the factor's values.
     pub(super) panel: Range<usize>,
@@ -52,8 +52,6 @@ pub struct Plan {
     pub(super) order: Vec<u32>,
     /// Fronts in postorder.
     pub(super) fronts: Vec<Front>,
-    /// Border rows of all fronts, rising within each.
-    pub(super) rows: Vec<u32>,
     /// For each border row of a front, its row in the parent's front.
     pub(super) relative: Vec<u32>,
     /// For each matrix entry: its slot in the pattern, and its place in the panel of its front.
@@ -94,9 +92,19 @@ impl Plan {
         let relative = build.relative_rows();
         let fill = build.fronts.iter().map(|f| f.pivots * (f.pivots + 1) / 2 + f.pivots * f.border).sum();
         let flops = build.fronts.iter().map(operations).sum();
-        let (fronts, rows, scatter) = (build.fronts, build.rows, build.scatter);
+        let (fronts, scatter) = (build.fronts, build.scatter);
         let (children, roots) = (build.children, build.roots);
-        Ok(Self { pattern, order, fronts, rows, relative, scatter, children, roots, fill, flops })
+        Ok(Self {
+            pattern,
+            order,
+            fronts,
+            relative,
+            scatter,
+            children,
+            roots,
+            fill,
+            flops,
+        })
     }
 
     /// Pattern this plan was made for.

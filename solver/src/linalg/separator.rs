@@ -6,8 +6,6 @@
 //! C. M. Fiduccia and R. M. Mattheyses, Proc. 19th DAC (1982) 175-181 (moves with roll-back), in the form for vertex
 //! separators.
 
-use std::collections::BinaryHeap;
-
 use super::dissect::Part;
 
 /// Mark of a separator vertex among the sides 0 and 1.
@@ -117,24 +115,71 @@ fn lift(points: &[[f64; 2]], to_sphere: bool) -> ([f64; 2], Vec<[f64; 3]>) {
 /// Of the first `count` normals, the one whose median plane has the fewest vertices on its edge.
 fn best_normal(part: &Part, lifted: &[[f64; 3]], count: usize) -> [f64; 3] {
     let n = part.n();
-    let stride = (n / 2000).clamp(1, 3);
-    let mut best = (usize::MAX, NORMALS[0]);
-    let mut keys = Vec::with_capacity(n);
+    let stride = (n / 2000).clamp(1, 8);
     let mut sample = Vec::with_capacity(n / stride + 1);
-    for &normal in &NORMALS[..count] {
-        keys.clear();
-        keys.extend(lifted.iter().map(|&p| dot(p, normal)));
+    // Bit k of a vertex: whether it lies beyond the median plane of normal k.
+    let mut beyond = vec![0_u16; n];
+    for (k, &normal) in NORMALS[..count].iter().enumerate() {
         sample.clear();
-        sample.extend(keys.iter().copied().step_by(stride));
+        sample.extend(lifted.iter().step_by(stride).map(|&p| dot(p, normal)));
         let middle = sample.len() / 2;
         let median = *sample.select_nth_unstable_by(middle, f64::total_cmp).1;
-        let crossing = |&v: &usize| keys[v] >= median && part.own(v).any(|w| keys[w] < median);
-        let crossings = (0..n).step_by(stride).filter(crossing).count();
-        if crossings < best.0 {
-            best = (crossings, normal);
+        for (bits, &p) in beyond.iter_mut().zip(lifted) {
+            *bits |= u16::from(dot(p, normal) >= median) << k;
         }
     }
-    best.1
+    let mut crossings = [0_usize; NORMALS.len()];
+    for (v, &bits) in beyond.iter().enumerate() {
+        let common = part.own(v).fold(u16::MAX, |common, w| common & beyond[w]);
+        let mut edge = bits & !common;
+        while edge != 0 {
+            crossings[edge.trailing_zeros() as usize] += 1;
+            edge &= edge - 1;
+        }
+    }
+    let best = (0..count).min_by_key(|&k| (crossings[k], k)).unwrap_or(0);
+    NORMALS[best]
+}
+
+/// Number of buckets of a [`Queue`]; worse moves share the last.
+const BUCKETS: usize = 48;
+
+/// Moves by gain, the best first and of equals the latest; entries may be out of date.
+struct Queue {
+    buckets: Vec<Vec<(i32, u32, u8)>>,
+    best: usize,
+}
+
+impl Queue {
+    fn new() -> Self {
+        Self {
+            buckets: vec![Vec::new(); BUCKETS],
+            best: BUCKETS,
+        }
+    }
+
+    fn push(&mut self, gain: i32, vertex: u32, side: u8) {
+        // No move gains more than the moved vertex itself.
+        let bucket = usize::try_from(1 - gain).unwrap_or(0).min(BUCKETS - 1);
+        self.buckets[bucket].push((gain, vertex, side));
+        self.best = self.best.min(bucket);
+    }
+
+    fn pop(&mut self) -> Option<(i32, u32, u8)> {
+        while self.best < BUCKETS {
+            let found = self.buckets[self.best].pop();
+            if found.is_some() {
+                return found;
+            }
+            self.best += 1;
+        }
+        None
+    }
+
+    fn clear(&mut self) {
+        self.buckets.iter_mut().for_each(Vec::clear);
+        self.best = BUCKETS;
+    }
 }
 
 /// One move, kept for the roll-back.
@@ -153,7 +198,7 @@ struct Refinement<'a> {
     /// Shrinkage of the separator if the vertex moved to side 0 or 1; true for separator vertices only.
     gains: Vec<[i32; 2]>,
     locked: Vec<bool>,
-    queue: BinaryHeap<(i32, u32, u8)>,
+    queue: Queue,
     moves: Vec<Move>,
     pulled: Vec<u32>,
     length: usize,
@@ -167,7 +212,7 @@ impl<'a> Refinement<'a> {
             gains: vec![[0; 2]; sides.len()],
             locked: vec![false; sides.len()],
             sides,
-            queue: BinaryHeap::new(),
+            queue: Queue::new(),
             moves: Vec::new(),
             pulled: Vec::new(),
             length: separator.len(),
@@ -223,8 +268,8 @@ impl<'a> Refinement<'a> {
         }
         self.gains[vertex as usize] = gains;
         if !self.locked[vertex as usize] {
-            self.queue.push((gains[0], vertex, 0));
-            self.queue.push((gains[1], vertex, 1));
+            self.queue.push(gains[0], vertex, 0);
+            self.queue.push(gains[1], vertex, 1);
         }
     }
 
@@ -233,7 +278,7 @@ impl<'a> Refinement<'a> {
         let gain = &mut self.gains[v][usize::from(side)];
         *gain += change;
         if !self.locked[v] {
-            self.queue.push((*gain, v as u32, side));
+            self.queue.push(*gain, v as u32, side);
         }
     }
 
