@@ -79,7 +79,7 @@ fn mesh_note(regions: &[RegionName], note: &MeshNote) -> String {
         NoteReason::NoStrip { size } => {
             format!("{place}: no skin layers fit; triangles of {:.3} mm stand in for them", 1e3 * size)
         }
-        NoteReason::CuspStraightened => {
+        NoteReason::ArcStraightened => {
             format!("{place}: where an arc touches another curve its edges are meshed straight, which moves the surface a little")
         }
     }
