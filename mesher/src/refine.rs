@@ -13,7 +13,7 @@ use std::collections::VecDeque;
 /// Circumradius over shortest edge at 28 degrees: `1 / (2 sin 28)`.
 const RADIUS_EDGE: f64 = 1.065_027_2;
 /// Largest circumradius over the wanted size; an equilateral triangle has 0.577.
-const RADIUS_SIZE: f64 = 0.76;
+const RADIUS_SIZE: f64 = 0.70;
 /// Edges between lines are not shortened under this share of the wanted size.
 const FLOOR: f64 = 0.12;
 /// Cosine of the lens angle: a point that sees a constrained edge under more than 120 degrees encroaches on it.
@@ -53,7 +53,7 @@ pub(crate) fn refine(
     nodes: usize,
     budget: &Budget,
 ) -> Result<(), MeshError> {
-    let wanted = mesh.points.iter().map(|&p| sizes.field.at(p)).collect();
+    let wanted = wanted(mesh, sizes.field);
     let on = marks(mesh, nodes);
     let mut refiner = Refiner {
         mesh,
@@ -87,6 +87,23 @@ pub(crate) fn refine(
         }
     }
     Ok(())
+}
+
+/// Wanted size at every vertex of a face that may be refined; the others are not asked for.
+fn wanted(mesh: &Triangulation, field: &SizeField) -> Vec<f64> {
+    let mut wanted = vec![f64::NAN; mesh.points.len()];
+    for face in mesh
+        .faces
+        .iter()
+        .filter(|f| f.side != NONE && f.cell == NONE)
+    {
+        for v in face.v.map(|v| v as usize) {
+            if wanted[v].is_nan() {
+                wanted[v] = field.at(mesh.points[v]);
+            }
+        }
+    }
+    wanted
 }
 
 fn marks(mesh: &Triangulation, nodes: usize) -> Vec<u32> {

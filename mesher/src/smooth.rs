@@ -5,8 +5,8 @@ use crate::ids::{Point, between, cross, distance_squared, sub};
 use crate::predicates::{circumcircle, in_circle};
 use crate::triangulate::{LAST, NEXT, NONE, Triangulation};
 
-/// Sine squared of the angle above which a vertex is left alone: 42 degrees.
-const GOOD_ENOUGH: f64 = 0.447_735_8;
+/// Sine squared of the angle above which a vertex is left alone: 50 degrees.
+const GOOD_ENOUGH: f64 = 0.586_824;
 
 pub(crate) fn smooth(mesh: &mut Triangulation, passes: usize) {
     let movable = movable(mesh);

@@ -183,7 +183,7 @@ fn a_mirror_plane_clips_a_coil_and_its_strips() {
     let section = coil(Outline::quarter_disc(0.0, 0.5).unwrap(), 12, Some(0.0005));
     let mesh = mesh(&section);
     assert_area(&mesh, BILLET, 0.03 * 0.1);
-    assert!(mesh.vertices().iter().all(|p| p[1] >= 0.0));
+    assert!(mesh.vertices().iter().all(|p| p[0] >= 0.0 && p[1] >= 0.0));
     // The strip ends on the plane: its layers are edges of the plane too.
     let on_plane = |v: u32| mesh.vertices()[v as usize][1] == 0.0;
     let ends = mesh.edges().iter().filter(|e| {
@@ -433,6 +433,19 @@ fn reflex_corners_cones_and_off_centre_cuts_keep_their_areas() {
         assert_area(&mesh, BILLET, area);
         assert!(strip_triangles_of(&mesh, BILLET) > 100);
     }
+    // A circle that touches the axis: two cusps of air.
+    let circle = Outline::circle([0.03, 0.0], 0.03).unwrap();
+    let touching = mesh(&drawing(
+        half_disc(),
+        0.05,
+        vec![region(BILLET, circle, 0.004, 0.004, strip(0.001))],
+    ));
+    assert!(touching.vertices().iter().all(|p| p[0] >= 0.0));
+    let error = (touching.region_area(BILLET) - PI * 0.0009).abs() / (PI * 0.0009);
+    assert!(
+        error < 1e-6,
+        "area error {error:.1e} where arcs were straightened"
+    );
     // A circle cut by the plane z = 0 at half its radius: a segment of 2/3 of a turn.
     let circle = Outline::circle([0.1, 0.015], 0.03).unwrap();
     let domain = Outline::quarter_disc(0.0, 0.5).unwrap();
@@ -478,9 +491,9 @@ fn later_regions_are_painted_over_earlier_ones_and_outside_is_dropped() {
 fn the_angles_away_from_strips_are_good() {
     let mesh = mesh(&coil(half_disc(), 12, None));
     let q = mesh.quality();
-    assert!(q.min_angle_deg > 28.0, "{q:?}");
+    assert!(q.min_angle_deg > 30.0, "{q:?}");
     assert!(q.mean_min_angle_deg > 48.0, "{q:?}");
-    assert!(q.share_below_40 < 0.06, "{q:?}");
+    assert!(q.share_below_40 < 0.04, "{q:?}");
 }
 
 #[test]
