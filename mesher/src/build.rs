@@ -33,20 +33,67 @@ pub fn triangulate(
 ) -> Result<Mesh, MeshError> {
     drawing.check()?;
     let graph = node(drawing);
-    let mut first_refusal = None;
-    for turn_deg in TURNS_DEG {
-        match attempt(drawing, &graph, *limits, stop, f64::to_radians(turn_deg)) {
-            Ok(mesh) => return Ok(mesh),
-            Err(error @ (MeshError::TooClose { .. } | MeshError::Defective(_))) => {
-                first_refusal.get_or_insert(error);
-                if graph.stretches.iter().all(|s| s.span.kind == Kind::Line) {
-                    break;
-                }
-            }
-            Err(error) => return Err(error),
+    match attempts(drawing, &graph, *limits, stop) {
+        Err(refusal @ (MeshError::TooClose { .. } | MeshError::Defective(_))) => {
+            without_strips(drawing, &graph, *limits, stop).ok_or(refusal)
+        }
+        other => other,
+    }
+}
+
+/// Tries finer and finer arcs until a mesh passes its check; the first refusal if none does.
+fn attempts(
+    drawing: &Drawing,
+    graph: &Graph,
+    limits: Limits,
+    stop: &dyn Fn() -> bool,
+) -> Result<Mesh, MeshError> {
+    let straight = graph.stretches.iter().all(|s| s.span.kind == Kind::Line);
+    let finer = if straight { &[] } else { &TURNS_DEG[1..] };
+    let mut result = attempt(drawing, graph, limits, stop, TURNS_DEG[0].to_radians());
+    for turn_deg in finer {
+        if !matches!(
+            result,
+            Err(MeshError::TooClose { .. } | MeshError::Defective(_))
+        ) {
+            break;
+        }
+        let next = attempt(drawing, graph, limits, stop, turn_deg.to_radians());
+        if next.is_ok() || matches!(next, Err(MeshError::Stopped)) {
+            result = next;
         }
     }
-    Err(first_refusal.unwrap_or(MeshError::Stopped))
+    result
+}
+
+/// The last resort where strips make the mesh impossible: small triangles along the surfaces instead, and a note for each region.
+fn without_strips(
+    drawing: &Drawing,
+    graph: &Graph,
+    limits: Limits,
+    stop: &dyn Fn() -> bool,
+) -> Option<Mesh> {
+    let mut bare = drawing.clone();
+    let mut notes = Vec::new();
+    for (index, region) in bare.regions.iter_mut().enumerate() {
+        let Some(layers) = region.layers.take() else {
+            continue;
+        };
+        region.surface_size = region.surface_size.min(layers.first);
+        let reason = NoteReason::NoStrip { size: layers.first };
+        notes.push(MeshNote {
+            region: region.id,
+            index,
+            piece: None,
+            reason,
+        });
+    }
+    if notes.is_empty() {
+        return None;
+    }
+    let mut mesh = attempts(&bare, graph, limits, stop).ok()?;
+    mesh.notes.extend(notes);
+    Some(mesh)
 }
 
 fn attempt(

@@ -186,7 +186,7 @@ fn cut(sources: &[Source], tolerance: f64) -> Vec<Vec<Point>> {
     for i in 0..sources.len() {
         for j in i + 1..sources.len() {
             let ((a, b), (c, d)) = (boxes[i], boxes[j]);
-            if (0..2).any(|k| a[k] > d[k] + tolerance || c[k] > b[k] + tolerance) {
+            if (0..2).any(|k| a[k] > d[k] + 2.0 * tolerance || c[k] > b[k] + 2.0 * tolerance) {
                 continue;
             }
             for point in meetings(&sources[i].span, &sources[j].span, 2.0 * tolerance) {
