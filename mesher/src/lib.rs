@@ -3,6 +3,7 @@
 //! of thin layers are laid along the surfaces that ask for them, everything is triangulated under constraints, refined to a size field,
 //! smoothed and checked.
 
+mod assemble;
 mod build;
 mod check;
 mod constrain;
