@@ -39,7 +39,7 @@ impl Mesh {
     pub fn check(&self) -> Result<(), MeshDefect> {
         for t in 0..self.triangles.len() {
             let [a, b, c] = self.corners(t);
-            if !(orient(a, b, c) > 0.0) {
+            if orient(a, b, c) <= 0.0 {
                 return Err(MeshDefect::Flat { triangle: t, at: a });
             }
         }
@@ -47,13 +47,22 @@ impl Mesh {
         self.check_regions()?;
         for t in 0..self.triangles.len() {
             let ratio = self.least_jacobian(t);
-            if !(ratio > LEAST_RATIO) {
-                return Err(MeshDefect::Inverted { triangle: t, at: self.corners(t)[0], ratio });
+            if ratio <= LEAST_RATIO || ratio.is_nan() {
+                return Err(MeshDefect::Inverted {
+                    triangle: t,
+                    at: self.corners(t)[0],
+                    ratio,
+                });
             }
         }
-        let value = self.vertices.len() as i64 - self.edges.len() as i64 + self.triangles.len() as i64;
-        if value != 1 {
-            return Err(MeshDefect::Euler { value });
+        let (vertices, edges, triangles) =
+            (self.vertices.len(), self.edges.len(), self.triangles.len());
+        if vertices + triangles != edges + 1 {
+            return Err(MeshDefect::Euler {
+                vertices,
+                edges,
+                triangles,
+            });
         }
         self.check_area()
     }
@@ -67,8 +76,11 @@ impl Mesh {
                 used[a as usize] = true;
                 let known = &self.edges[edge as usize];
                 uses[edge as usize] += 1;
-                if known.vertices != [a.min(b), a.max(b)] || !known.triangles.contains(&(t as u32)) {
-                    return Err(MeshDefect::Adjacency { edge: edge as usize });
+                if known.vertices != [a.min(b), a.max(b)] || !known.triangles.contains(&(t as u32))
+                {
+                    return Err(MeshDefect::Adjacency {
+                        edge: edge as usize,
+                    });
                 }
             }
         }
@@ -89,13 +101,13 @@ impl Mesh {
         for (i, edge) in self.edges.iter().enumerate() {
             let curve = edge.curve.map(|id| self.curve(id));
             if edge.triangles[1] == NO_TRIANGLE {
-                if !curve.is_some_and(|c| c.on_domain.is_some()) {
+                if curve.is_none_or(|c| c.on_domain.is_none()) {
                     return Err(MeshDefect::Boundary { edge: i });
                 }
                 continue;
             }
             let regions = edge.triangles.map(|t| self.regions[t as usize]);
-            if regions[0] != regions[1] && !curve.is_some_and(|c| !c.on_regions.is_empty()) {
+            if regions[0] != regions[1] && curve.is_none_or(|c| c.on_regions.is_empty()) {
                 return Err(MeshDefect::RegionLeak { edge: i, regions });
             }
         }
@@ -103,20 +115,35 @@ impl Mesh {
     }
 
     fn check_area(&self) -> Result<(), MeshDefect> {
-        let straight: f64 = (0..self.triangles.len()).map(|t| straight_area(self.corners(t))).sum();
-        let outer = self.edges.iter().zip(&self.bends).filter(|(e, _)| e.triangles[1] == NO_TRIANGLE);
-        let covered = straight + outer.map(|(e, b)| self.segment_area(e, *b, e.triangles[0])).sum::<f64>();
+        let straight: f64 = (0..self.triangles.len())
+            .map(|t| straight_area(self.corners(t)))
+            .sum();
+        let outer = self
+            .edges
+            .iter()
+            .zip(&self.bends)
+            .filter(|(e, _)| e.triangles[1] == NO_TRIANGLE);
+        let covered = straight
+            + outer
+                .map(|(e, b)| self.segment_area(e, *b, e.triangles[0]))
+                .sum::<f64>();
         if (covered - self.domain_area).abs() <= 1e-8 * self.domain_area {
             Ok(())
         } else {
-            Err(MeshDefect::Area { covered, wanted: self.domain_area })
+            Err(MeshDefect::Area {
+                covered,
+                wanted: self.domain_area,
+            })
         }
     }
 
     /// Least Jacobian of the quadratic map of a triangle over that of the straight-sided one; 1 for straight sides.
     pub(crate) fn least_jacobian(&self, triangle: usize) -> f64 {
         let edges = self.triangle_edges[triangle];
-        if edges.iter().all(|&e| matches!(self.bends[e as usize], Bend::Straight)) {
+        if edges
+            .iter()
+            .all(|&e| matches!(self.bends[e as usize], Bend::Straight))
+        {
             return 1.0;
         }
         let corners = self.corners(triangle);
@@ -136,7 +163,8 @@ fn jacobian([a, b, c]: [Point; 3], bulge: [Point; 3], l: [f64; 3]) -> f64 {
     // Derivatives of the three edge bubbles L0 L1, L1 L2, L2 L0 with L0 = 1 - L1 - L2.
     let by_one = [l[0] - l[1], l[2], -l[2]];
     let by_two = [-l[1], l[1], l[0] - l[2]];
-    let column =
-        |side: Point, by: [f64; 3]| [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>());
+    let column = |side: Point, by: [f64; 3]| {
+        [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>())
+    };
     cross(column(sub(b, a), by_one), column(sub(c, a), by_two))
 }

@@ -57,7 +57,9 @@ pub enum OutlineError {
         at: Point,
     },
     /// The pieces enclose nothing.
-    #[error("the outline encloses {area} m2; it must enclose more than 1e-12 of the square of its extent")]
+    #[error(
+        "the outline encloses {area} m2; it must enclose more than 1e-12 of the square of its extent"
+    )]
     NoArea {
         /// Enclosed area in square metres.
         area: f64,
@@ -111,7 +113,9 @@ pub enum MeshError {
     #[error("meshing was stopped on request")]
     Stopped,
     /// The finished mesh did not pass its own check.
-    #[error("the mesh is defective: {0}; enlarge the narrowest gap or the smallest angle of the drawing")]
+    #[error(
+        "the mesh is defective: {0}; enlarge the narrowest gap or the smallest angle of the drawing"
+    )]
     Defective(#[from] MeshDefect),
 }
 
@@ -157,10 +161,16 @@ pub enum MeshDefect {
         ratio: f64,
     },
     /// Vertices - edges + triangles is not 1.
-    #[error("vertices - edges + triangles is {value}; it must be 1 for a domain in one piece without holes")]
+    #[error(
+        "{vertices} vertices - {edges} edges + {triangles} triangles must be 1 for a domain in one piece without holes"
+    )]
     Euler {
-        /// The sum found.
-        value: i64,
+        /// Number of vertices.
+        vertices: usize,
+        /// Number of edges.
+        edges: usize,
+        /// Number of triangles.
+        triangles: usize,
     },
     /// The triangles do not fill the domain.
     #[error("the triangles cover {covered} m2 of the {wanted} m2 of the domain")]

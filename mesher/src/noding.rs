@@ -69,11 +69,17 @@ impl Nodes {
 pub(crate) fn node(drawing: &Drawing) -> Graph {
     let tolerance = 1e-9 * drawing.extent();
     let sources = sources(drawing);
-    let mut nodes = Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
+    let mut nodes = Nodes {
+        points: Vec::new(),
+        cells: HashMap::new(),
+        origin: drawing.domain.bounds().0,
+        tolerance,
+    };
+    let cuts = cut(&sources, tolerance);
+    place_on_domain(&sources, &cuts, &mut nodes);
     for source in &sources {
         nodes.place(source.span.start);
     }
-    let cuts = cut(&sources, tolerance);
     let mut stretches = Vec::new();
     let mut known: HashMap<[u32; 2], Vec<usize>> = HashMap::new();
     for (source, cuts) in sources.iter().zip(&cuts) {
@@ -86,7 +92,11 @@ pub(crate) fn node(drawing: &Drawing) -> Graph {
     }
     stretches.retain(|s| s.sides[0] != s.sides[1]);
     let points = keep_used(&nodes.points, &mut stretches);
-    Graph { points, stretches, tolerance }
+    Graph {
+        points,
+        stretches,
+        tolerance,
+    }
 }
 
 impl Graph {
@@ -128,28 +138,58 @@ fn keep_used(points: &[Point], stretches: &mut [Stretch]) -> Vec<Point> {
     kept
 }
 
+/// Places the corners of the domain, then what meets its outline exactly on it: nothing may lie a rounding error outside.
+fn place_on_domain(sources: &[Source], cuts: &[Vec<Point>], nodes: &mut Nodes) {
+    let domain = || {
+        sources
+            .iter()
+            .zip(cuts)
+            .filter(|(s, _)| s.domain_piece.is_some())
+    };
+    for (source, _) in domain() {
+        nodes.place(source.span.start);
+    }
+    for (source, cuts) in domain() {
+        for &p in cuts {
+            nodes.place(source.span.at(source.span.project(p)));
+        }
+    }
+}
+
 fn sources(drawing: &Drawing) -> Vec<Source> {
     let domain = drawing.domain.spans().iter().enumerate();
-    let mut all: Vec<Source> =
-        domain.map(|(i, &span)| Source { span, domain_piece: Some(i), region_piece: None }).collect();
+    let mut all: Vec<Source> = domain
+        .map(|(i, &span)| Source {
+            span,
+            domain_piece: Some(i),
+            region_piece: None,
+        })
+        .collect();
     for (k, region) in drawing.regions.iter().enumerate() {
         let pieces = region.outline.spans().iter().enumerate();
-        all.extend(pieces.map(|(i, &span)| Source { span, domain_piece: None, region_piece: Some((k, i)) }));
+        all.extend(pieces.map(|(i, &span)| Source {
+            span,
+            domain_piece: None,
+            region_piece: Some((k, i)),
+        }));
     }
     all
 }
 
 /// Points at which each source is to be cut, its own ends included.
 fn cut(sources: &[Source], tolerance: f64) -> Vec<Vec<Point>> {
-    let mut cuts: Vec<Vec<Point>> = sources.iter().map(|s| vec![s.span.start, s.span.end]).collect();
+    let mut cuts: Vec<Vec<Point>> = sources
+        .iter()
+        .map(|s| vec![s.span.start, s.span.end])
+        .collect();
     let boxes: Vec<_> = sources.iter().map(|s| s.span.bounds()).collect();
     for i in 0..sources.len() {
         for j in i + 1..sources.len() {
             let ((a, b), (c, d)) = (boxes[i], boxes[j]);
-            if (0..2).any(|k| a[k] > d[k] + tolerance || c[k] > b[k] + tolerance) {
+            if (0..2).any(|k| a[k] > d[k] + 2.0 * tolerance || c[k] > b[k] + 2.0 * tolerance) {
                 continue;
             }
-            for point in meetings(&sources[i].span, &sources[j].span, tolerance) {
+            for point in meetings(&sources[i].span, &sources[j].span, 2.0 * tolerance) {
                 cuts[i].push(point);
                 cuts[j].push(point);
             }
@@ -164,7 +204,12 @@ fn parts(source: &Source, cuts: &[Point], nodes: &mut Nodes) -> Vec<(Span, [u32;
     let mut stops: Vec<(f64, u32)> = cuts
         .iter()
         .enumerate()
-        .map(|(i, &p)| (if i < 2 { i as f64 } else { span.project(p) }, nodes.place(p)))
+        .map(|(i, &p)| {
+            (
+                if i < 2 { i as f64 } else { span.project(p) },
+                nodes.place(p),
+            )
+        })
         .collect();
     stops.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
     stops.dedup_by_key(|stop| stop.1);
@@ -192,7 +237,7 @@ fn add(
     let same = known.entry(key).or_default();
     for &i in same.iter() {
         let other: &mut Stretch = &mut stretches[i];
-        if distance(other.span.at(0.5), middle) <= 4.0 * tolerance {
+        if distance(other.span.at(0.5), middle) <= 3.0 * tolerance {
             if let Some(piece) = source.region_piece
                 && !other.on_regions.contains(&piece)
             {
@@ -217,7 +262,11 @@ fn add(
 fn sides(drawing: &Drawing, stretch: &Stretch, tolerance: f64) -> [u32; 2] {
     let normal = left_of(stretch.span.tangent(0.5));
     let middle = stretch.span.at(0.5);
-    let step = (10.0 * tolerance).min(0.1 * stretch.span.length());
-    let right = if stretch.on_domain.is_some() { OUTSIDE } else { drawing.side_at(along(middle, normal, -step)) };
+    let step = (2.2 * tolerance).min(0.1 * stretch.span.length());
+    let right = if stretch.on_domain.is_some() {
+        OUTSIDE
+    } else {
+        drawing.side_at(along(middle, normal, -step))
+    };
     [drawing.side_at(along(middle, normal, step)), right]
 }

@@ -36,7 +36,11 @@ impl Piece {
     fn span(&self, from: Point) -> Span {
         match *self {
             Self::Line { to } => Span::line(from, to),
-            Self::Arc { to, centre, counter_clockwise } => Span::arc(from, to, centre, counter_clockwise),
+            Self::Arc {
+                to,
+                centre,
+                counter_clockwise,
+            } => Span::arc(from, to, centre, counter_clockwise),
         }
     }
 }
@@ -75,7 +79,7 @@ impl Outline {
             return Err(OutlineError::NotClosed { gap });
         }
         let area: f64 = spans.iter().map(|s| s.area_about(start)).sum();
-        if !(area.abs() > 1e-12 * extent * extent) {
+        if area.abs() <= 1e-12 * extent * extent || area.is_nan() {
             return Err(OutlineError::NoArea { area: area.abs() });
         }
         check_crossings(&spans, 1e-11 * extent)?;
@@ -83,93 +87,6 @@ impl Outline {
             spans = spans.iter().rev().map(Span::reversed).collect();
         }
         Ok(Self { spans, lo, hi })
-    }
-
-    /// A polygon through the given points, closed by a line from the last to the first.
-    ///
-    /// # Errors
-    /// As [`Outline::new`].
-    pub fn polygon(points: &[Point]) -> Result<Self, OutlineError> {
-        let Some(&start) = points.first() else {
-            return Err(OutlineError::TooFewPieces { count: 0 });
-        };
-        let pieces = points[1..].iter().chain([&start]).map(|&to| Piece::Line { to }).collect();
-        Self::new(start, pieces)
-    }
-
-    /// An upright rectangle between two opposite corners.
-    ///
-    /// # Errors
-    /// If it has no width or no height.
-    pub fn rectangle(lo: Point, hi: Point) -> Result<Self, OutlineError> {
-        Self::polygon(&[lo, [hi[0], lo[1]], hi, [lo[0], hi[1]]])
-    }
-
-    /// An upright rectangle with four quarter-circle fillets of radius `fillet_m`, in metres (0 for sharp corners).
-    ///
-    /// # Errors
-    /// If the fillets do not fit or the rectangle is empty. A fillet may be at most half the shorter side.
-    pub fn rounded_rectangle(lo: Point, hi: Point, fillet_m: f64) -> Result<Self, OutlineError> {
-        if fillet_m == 0.0 {
-            return Self::rectangle(lo, hi);
-        }
-        let half = 0.5 * (hi[0] - lo[0]).min(hi[1] - lo[1]);
-        if !(fillet_m > 0.0 && fillet_m <= half * (1.0 + 1e-12)) {
-            return Err(OutlineError::BadSize { what: "fillet radius", value: fillet_m, limit: half });
-        }
-        let f = fillet_m.min(half);
-        let (a, b, c, d) = (lo[0] + f, hi[0] - f, lo[1] + f, hi[1] - f);
-        let start = [a, lo[1]];
-        let mut pieces = Vec::new();
-        let mut from = start;
-        let corners = [
-            ([b, lo[1]], [hi[0], c], [b, c]),
-            ([hi[0], d], [b, hi[1]], [b, d]),
-            ([a, hi[1]], [lo[0], d], [a, d]),
-            ([lo[0], c], start, [a, c]),
-        ];
-        let least = 1e-9 * half;
-        for (line_end, arc_end, centre) in corners {
-            if distance(from, line_end) > least {
-                pieces.push(Piece::Line { to: line_end });
-            }
-            pieces.push(Piece::Arc { to: arc_end, centre, counter_clockwise: true });
-            from = arc_end;
-        }
-        Self::new(start, pieces)
-    }
-
-    /// A whole circle, as two half circles; it starts at its largest r.
-    ///
-    /// # Errors
-    /// If the radius is not positive and finite.
-    pub fn circle(centre: Point, radius: f64) -> Result<Self, OutlineError> {
-        positive_radius(radius)?;
-        let (right, left) = ([centre[0] + radius, centre[1]], [centre[0] - radius, centre[1]]);
-        let arc = |to| Piece::Arc { to, centre, counter_clockwise: true };
-        Self::new(right, vec![arc(left), arc(right)])
-    }
-
-    /// The half disc `r >= 0` about `(0, centre_z)`: piece 0 is the arc, piece 1 the axis.
-    ///
-    /// # Errors
-    /// If the radius is not positive and finite.
-    pub fn half_disc(centre_z: f64, radius: f64) -> Result<Self, OutlineError> {
-        positive_radius(radius)?;
-        let (low, high) = ([0.0, centre_z - radius], [0.0, centre_z + radius]);
-        let arc = Piece::Arc { to: high, centre: [0.0, centre_z], counter_clockwise: true };
-        Self::new(low, vec![arc, Piece::Line { to: low }])
-    }
-
-    /// The quarter disc `r >= 0, z >= centre_z` about `(0, centre_z)`: piece 0 is the plane, 1 the arc, 2 the axis.
-    ///
-    /// # Errors
-    /// If the radius is not positive and finite.
-    pub fn quarter_disc(centre_z: f64, radius: f64) -> Result<Self, OutlineError> {
-        positive_radius(radius)?;
-        let (origin, right, high) = ([0.0, centre_z], [radius, centre_z], [0.0, centre_z + radius]);
-        let arc = Piece::Arc { to: high, centre: origin, counter_clockwise: true };
-        Self::new(origin, vec![Piece::Line { to: right }, arc, Piece::Line { to: origin }])
     }
 
     /// Number of pieces.
@@ -191,7 +108,11 @@ impl Outline {
     pub fn pieces(&self) -> Vec<Piece> {
         let piece = |s: &Span| match s.kind {
             Kind::Line => Piece::Line { to: s.end },
-            Kind::Arc { centre, sweep, .. } => Piece::Arc { to: s.end, centre, counter_clockwise: sweep > 0.0 },
+            Kind::Arc { centre, sweep, .. } => Piece::Arc {
+                to: s.end,
+                centre,
+                counter_clockwise: sweep > 0.0,
+            },
         };
         self.spans.iter().map(piece).collect()
     }
@@ -226,7 +147,10 @@ impl Outline {
 
     /// Distance of a point from the outline itself, in metres.
     pub fn distance(&self, p: Point) -> f64 {
-        self.spans.iter().map(|s| s.distance(p)).fold(f64::INFINITY, f64::min)
+        self.spans
+            .iter()
+            .map(|s| s.distance(p))
+            .fold(f64::INFINITY, f64::min)
     }
 
     /// Whether the areas of two outlines have more in common than points or edges where they touch.
@@ -245,7 +169,11 @@ impl Outline {
         self.spans.iter().any(|span| {
             let mut cuts = vec![0.0, 1.0];
             for across in &other.spans {
-                cuts.extend(meetings(span, across, tolerance).into_iter().map(|p| span.project(p)));
+                cuts.extend(
+                    meetings(span, across, tolerance)
+                        .into_iter()
+                        .map(|p| span.project(p)),
+                );
             }
             cuts.sort_by(f64::total_cmp);
             cuts.windows(2).any(|pair| {
@@ -253,7 +181,11 @@ impl Outline {
                     return false;
                 }
                 let t = 0.5 * (pair[0] + pair[1]);
-                other.contains(along(span.at(t), left_of(span.tangent(t)), 10.0 * tolerance))
+                other.contains(along(
+                    span.at(t),
+                    left_of(span.tangent(t)),
+                    10.0 * tolerance,
+                ))
             })
         })
     }
@@ -266,23 +198,21 @@ impl Outline {
         let moved = |p: Point| along(p, shift, 1.0);
         let pieces = self.pieces().into_iter().map(|piece| match piece {
             Piece::Line { to } => Piece::Line { to: moved(to) },
-            Piece::Arc { to, centre, counter_clockwise } => {
-                Piece::Arc { to: moved(to), centre: moved(centre), counter_clockwise }
-            }
+            Piece::Arc {
+                to,
+                centre,
+                counter_clockwise,
+            } => Piece::Arc {
+                to: moved(to),
+                centre: moved(centre),
+                counter_clockwise,
+            },
         });
         Self::new(moved(self.start()), pieces.collect())
     }
 
     pub(crate) fn spans(&self) -> &[Span] {
         &self.spans
-    }
-}
-
-fn positive_radius(radius: f64) -> Result<(), OutlineError> {
-    if radius > 0.0 && radius.is_finite() {
-        Ok(())
-    } else {
-        Err(OutlineError::BadSize { what: "radius", value: radius, limit: f64::MAX })
     }
 }
 
@@ -303,24 +233,40 @@ fn check_pieces(start: Point, pieces: &[Piece]) -> Result<(), OutlineError> {
     let finite = |p: Point| p[0].abs() < 1e150 && p[1].abs() < 1e150;
     let mut from = start;
     if !finite(start) {
-        return Err(OutlineError::NotFinite { index: 0, point: start });
+        return Err(OutlineError::NotFinite {
+            index: 0,
+            point: start,
+        });
     }
     let arcs = pieces.iter().any(|p| matches!(p, Piece::Arc { .. }));
     if pieces.len() < if arcs { 2 } else { 3 } {
-        return Err(OutlineError::TooFewPieces { count: pieces.len() });
+        return Err(OutlineError::TooFewPieces {
+            count: pieces.len(),
+        });
     }
     for (i, piece) in pieces.iter().enumerate() {
         let to = piece.to();
         if !finite(to) {
-            return Err(OutlineError::NotFinite { index: i + 1, point: to });
+            return Err(OutlineError::NotFinite {
+                index: i + 1,
+                point: to,
+            });
         }
         if let Piece::Arc { centre, .. } = *piece {
             if !finite(centre) {
-                return Err(OutlineError::NotFinite { index: i + 1, point: centre });
+                return Err(OutlineError::NotFinite {
+                    index: i + 1,
+                    point: centre,
+                });
             }
             let (start_radius, end_radius) = (distance(from, centre), distance(to, centre));
-            if !((start_radius - end_radius).abs() <= 1e-9 * start_radius.max(end_radius)) || start_radius == 0.0 {
-                return Err(OutlineError::NotOnCircle { piece: i, start_radius, end_radius });
+            let apart = (start_radius - end_radius).abs();
+            if apart > 1e-9 * start_radius.max(end_radius) || start_radius == 0.0 {
+                return Err(OutlineError::NotOnCircle {
+                    piece: i,
+                    start_radius,
+                    end_radius,
+                });
             }
         }
         let d = sub(from, to);
@@ -349,8 +295,15 @@ fn check_crossings(spans: &[Span], tolerance: f64) -> Result<(), OutlineError> {
                 shared.push(spans[0].start);
             }
             let strange = |p: &Point| shared.iter().all(|&s| distance(s, *p) > 100.0 * tolerance);
-            if let Some(at) = meetings(&spans[i], &spans[j], tolerance).into_iter().find(strange) {
-                return Err(OutlineError::SelfCrossing { first: i, second: j, at });
+            if let Some(at) = meetings(&spans[i], &spans[j], tolerance)
+                .into_iter()
+                .find(strange)
+            {
+                return Err(OutlineError::SelfCrossing {
+                    first: i,
+                    second: j,
+                    at,
+                });
             }
         }
     }

@@ -5,8 +5,8 @@ use crate::ids::{Point, between, cross, distance_squared, sub};
 use crate::predicates::{circumcircle, in_circle};
 use crate::triangulate::{LAST, NEXT, NONE, Triangulation};
 
-/// Sine squared of the angle above which a vertex is left alone: 42 degrees.
-const GOOD_ENOUGH: f64 = 0.447_735_8;
+/// Sine squared of the angle above which a vertex is left alone: 50 degrees.
+const GOOD_ENOUGH: f64 = 0.586_824;
 
 pub(crate) fn smooth(mesh: &mut Triangulation, passes: usize) {
     let movable = movable(mesh);
@@ -44,7 +44,11 @@ fn move_vertex(mesh: &mut Triangulation, v: u32) {
         ring.push((mesh.point(f.v[NEXT[k]]), mesh.point(f.v[LAST[k]])));
         None
     });
-    let worst = |x: Point| ring.iter().fold(f64::INFINITY, |least, &(a, b)| least.min(sine_squared(x, a, b)));
+    let worst = |x: Point| {
+        ring.iter().fold(f64::INFINITY, |least, &(a, b)| {
+            least.min(sine_squared(x, a, b))
+        })
+    };
     let here = mesh.point(v);
     let before = worst(here);
     if before > GOOD_ENOUGH {
@@ -60,8 +64,16 @@ fn move_vertex(mesh: &mut Triangulation, v: u32) {
     }
     let optimal = [sum[0] / whole, sum[1] / whole];
     let n = ring.len() as f64;
-    let mean = [ring.iter().map(|e| e.0[0]).sum::<f64>() / n, ring.iter().map(|e| e.0[1]).sum::<f64>() / n];
-    let tries = [optimal, between(here, optimal, 0.5), mean, between(here, mean, 0.5)];
+    let mean = [
+        ring.iter().map(|e| e.0[0]).sum::<f64>() / n,
+        ring.iter().map(|e| e.0[1]).sum::<f64>() / n,
+    ];
+    let tries = [
+        optimal,
+        between(here, optimal, 0.5),
+        mean,
+        between(here, mean, 0.5),
+    ];
     if let Some(&better) = tries.iter().find(|&&x| worst(x) > before) {
         mesh.points[v as usize] = better;
     }
@@ -74,7 +86,8 @@ fn flip_all(mesh: &mut Triangulation) -> bool {
         for i in 0..3 {
             let face = &mesh.faces[t as usize];
             let n = face.n[i];
-            if face.side == NONE || face.cell != NONE || face.tag[i] != 0 || n == NONE || n >> 2 < t {
+            if face.side == NONE || face.cell != NONE || face.tag[i] != 0 || n == NONE || n >> 2 < t
+            {
                 continue;
             }
             let w = mesh.faces[(n >> 2) as usize].v[(n & 3) as usize];
@@ -91,9 +104,13 @@ fn flip_all(mesh: &mut Triangulation) -> bool {
 /// Square of the sine of the least angle; -1 if the triangle is not counter-clockwise.
 fn sine_squared(a: Point, b: Point, c: Point) -> f64 {
     let area = cross(sub(b, a), sub(c, a));
-    if !(area > 0.0) {
+    if area <= 0.0 || area.is_nan() {
         return -1.0;
     }
-    let (x, y, z) = (distance_squared(a, b), distance_squared(b, c), distance_squared(c, a));
+    let (x, y, z) = (
+        distance_squared(a, b),
+        distance_squared(b, c),
+        distance_squared(c, a),
+    );
     area * area * x.min(y).min(z) / (x * y * z)
 }

@@ -3,6 +3,7 @@
 //! flips); S. W. Sloan, "A fast algorithm for generating constrained Delaunay triangulations", 1993 (constraints by flips).
 
 use crate::ids::Point;
+use crate::order::{along_curve, bounds};
 use crate::predicates::{in_circle, orient};
 
 pub(crate) const NONE: u32 = u32::MAX;
@@ -27,7 +28,7 @@ pub(crate) struct Face {
 pub(crate) enum Place {
     Inside(u32),
     OnEdge(u32),
-    AtVertex(u32),
+    AtVertex,
     /// Behind this edge, which a walk may not cross.
     Behind(u32),
 }
@@ -55,7 +56,7 @@ impl Triangulation {
             match mesh.locate(points[id as usize], mesh.last, false) {
                 Place::Inside(face) => mesh.insert_inside(face, id),
                 Place::OnEdge(edge) => mesh.insert_on_edge(edge, id),
-                Place::AtVertex(_) | Place::Behind(_) => return Err(id),
+                Place::AtVertex | Place::Behind(_) => return Err(id),
             }
             mesh.fresh.clear();
         }
@@ -74,11 +75,27 @@ impl Triangulation {
             [m[0] + reach, m[1] + reach],
             [m[0] - reach, m[1] + reach],
         ]);
-        let face = |v, n| Face { v, n, tag: [0; 3], side: NONE, cell: NONE };
-        let faces = vec![face([b, b + 1, b + 2], [NONE, 6, NONE]), face([b, b + 2, b + 3], [NONE, NONE, 1])];
+        let face = |v, n| Face {
+            v,
+            n,
+            tag: [0; 3],
+            side: NONE,
+            cell: NONE,
+        };
+        let faces = vec![
+            face([b, b + 1, b + 2], [NONE, 6, NONE]),
+            face([b, b + 2, b + 3], [NONE, NONE, 1]),
+        ];
         let mut face_at = vec![NONE; points.len()];
         face_at[b as usize..].copy_from_slice(&[0, 0, 0, 1]);
-        Self { points, faces, face_at, fresh: Vec::new(), last: 0, stack: Vec::new() }
+        Self {
+            points,
+            faces,
+            face_at,
+            fresh: Vec::new(),
+            last: 0,
+            stack: Vec::new(),
+        }
     }
 
     pub(crate) fn point(&self, v: u32) -> Point {
@@ -132,10 +149,14 @@ impl Triangulation {
                     on = i;
                 }
             }
-            if let Some(&v) = here.v.iter().find(|&&v| self.point(v) == p) {
-                return Place::AtVertex(v);
+            if here.v.iter().any(|&v| self.point(v) == p) {
+                return Place::AtVertex;
             }
-            return if on == 3 { Place::Inside(face) } else { Place::OnEdge(4 * face + on as u32) };
+            return if on == 3 {
+                Place::Inside(face)
+            } else {
+                Place::OnEdge(4 * face + on as u32)
+            };
         }
         Place::Behind(4 * face)
     }
@@ -151,7 +172,12 @@ impl Triangulation {
         let old = self.faces[face as usize];
         let a = self.faces.len() as u32;
         let b = a + 1;
-        let make = |v: [u32; 3], tag: u32| Face { v, n: [NONE; 3], tag: [tag, 0, 0], ..old };
+        let make = |v: [u32; 3], tag: u32| Face {
+            v,
+            n: [NONE; 3],
+            tag: [tag, 0, 0],
+            ..old
+        };
         self.faces[face as usize] = make([p, old.v[1], old.v[2]], old.tag[0]);
         self.faces.push(make([p, old.v[2], old.v[0]], old.tag[1]));
         self.faces.push(make([p, old.v[0], old.v[1]], old.tag[2]));
@@ -176,8 +202,18 @@ impl Triangulation {
         let tag = old.tag[i];
         let (v, a, b) = (old.v[i], old.v[NEXT[i]], old.v[LAST[i]]);
         let t2 = self.faces.len() as u32;
-        self.faces[t as usize] = Face { v: [p, b, v], n: [NONE; 3], tag: [old.tag[NEXT[i]], 0, tag], ..old };
-        self.faces.push(Face { v: [p, v, a], n: [NONE; 3], tag: [old.tag[LAST[i]], tag, 0], ..old });
+        self.faces[t as usize] = Face {
+            v: [p, b, v],
+            n: [NONE; 3],
+            tag: [old.tag[NEXT[i]], 0, tag],
+            ..old
+        };
+        self.faces.push(Face {
+            v: [p, v, a],
+            n: [NONE; 3],
+            tag: [old.tag[LAST[i]], tag, 0],
+            ..old
+        });
         self.link(t, 0, old.n[NEXT[i]]);
         self.link(t2, 0, old.n[LAST[i]]);
         self.link(t, 1, 4 * t2 + 2);
@@ -190,8 +226,18 @@ impl Triangulation {
             let old = self.faces[u as usize];
             let w = old.v[j];
             let u2 = self.faces.len() as u32;
-            self.faces[u as usize] = Face { v: [p, a, w], n: [NONE; 3], tag: [old.tag[NEXT[j]], 0, tag], ..old };
-            self.faces.push(Face { v: [p, w, b], n: [NONE; 3], tag: [old.tag[LAST[j]], tag, 0], ..old });
+            self.faces[u as usize] = Face {
+                v: [p, a, w],
+                n: [NONE; 3],
+                tag: [old.tag[NEXT[j]], 0, tag],
+                ..old
+            };
+            self.faces.push(Face {
+                v: [p, w, b],
+                n: [NONE; 3],
+                tag: [old.tag[LAST[j]], tag, 0],
+                ..old
+            });
             self.link(u, 0, old.n[NEXT[j]]);
             self.link(u2, 0, old.n[LAST[j]]);
             self.link(u, 1, 4 * u2 + 2);
@@ -231,8 +277,18 @@ impl Triangulation {
         let (p, a, b, w) = (one.v[i], one.v[NEXT[i]], one.v[LAST[i]], two.v[j]);
         let (bp, pa) = (NEXT[i], LAST[i]);
         let (aw, wb) = (NEXT[j], LAST[j]);
-        self.faces[t as usize] = Face { v: [p, a, w], n: [NONE; 3], tag: [two.tag[aw], 0, one.tag[pa]], ..one };
-        self.faces[u as usize] = Face { v: [p, w, b], n: [NONE; 3], tag: [two.tag[wb], one.tag[bp], 0], ..two };
+        self.faces[t as usize] = Face {
+            v: [p, a, w],
+            n: [NONE; 3],
+            tag: [two.tag[aw], 0, one.tag[pa]],
+            ..one
+        };
+        self.faces[u as usize] = Face {
+            v: [p, w, b],
+            n: [NONE; 3],
+            tag: [two.tag[wb], one.tag[bp], 0],
+            ..two
+        };
         self.link(t, 0, two.n[aw]);
         self.link(t, 2, one.n[pa]);
         self.link(u, 0, two.n[wb]);
@@ -272,7 +328,11 @@ impl Triangulation {
     }
 
     /// Visits the faces around a vertex with its position in each, until one gives an answer.
-    pub(crate) fn around<T>(&self, v: u32, mut visit: impl FnMut(u32, usize) -> Option<T>) -> Option<T> {
+    pub(crate) fn around<T>(
+        &self,
+        v: u32,
+        mut visit: impl FnMut(u32, usize) -> Option<T>,
+    ) -> Option<T> {
         let start = self.face_at[v as usize];
         if start == NONE {
             return None;
@@ -298,41 +358,80 @@ impl Triangulation {
     }
 }
 
-fn bounds(points: &[Point]) -> (Point, Point) {
-    let (mut lo, mut hi) = ([f64::INFINITY; 2], [f64::NEG_INFINITY; 2]);
-    for p in points {
-        for k in 0..2 {
-            lo[k] = lo[k].min(p[k]);
-            hi[k] = hi[k].max(p[k]);
+#[cfg(test)]
+mod tests {
+    #![allow(clippy::unwrap_used, reason = "tests")]
+
+    use super::{LAST, NEXT, Triangulation};
+    use spade::{ConstrainedDelaunayTriangulation, Point2, Triangulation as _};
+    use std::collections::BTreeSet;
+
+    /// Pseudo-random numbers in 0..1 (constants of D. E. Knuth's MMIX generator).
+    fn numbers(mut state: u64) -> impl FnMut() -> f64 {
+        move || {
+            state = state
+                .wrapping_mul(6_364_136_223_846_793_005)
+                .wrapping_add(1_442_695_040_888_963_407);
+            (state >> 11) as f64 / (1u64 << 53) as f64
         }
     }
-    (lo, hi)
-}
 
-/// Point indices along a space-filling curve, so that each is inserted near the one before it.
-fn along_curve(points: &[Point]) -> Vec<u32> {
-    let (lo, hi) = bounds(points);
-    let scale = 65535.0 / (hi[0] - lo[0]).max(hi[1] - lo[1]).max(f64::MIN_POSITIVE);
-    let key = |p: &Point| hilbert(((p[0] - lo[0]) * scale) as u32, ((p[1] - lo[1]) * scale) as u32);
-    let mut order: Vec<(u64, u32)> = points.iter().enumerate().map(|(i, p)| (key(p), i as u32)).collect();
-    order.sort_unstable();
-    order.into_iter().map(|(_, i)| i).collect()
-}
+    /// Edges between the first `count` vertices.
+    fn edges(mesh: &Triangulation, count: u32) -> BTreeSet<(u32, u32)> {
+        let all = mesh
+            .faces
+            .iter()
+            .flat_map(|f| (0..3).map(|i| (f.v[NEXT[i]], f.v[LAST[i]])));
+        all.filter(|&(a, b)| a < count && b < count)
+            .map(|(a, b)| (a.min(b), a.max(b)))
+            .collect()
+    }
 
-fn hilbert(mut x: u32, mut y: u32) -> u64 {
-    let mut key = 0;
-    let mut s = 1u32 << 15;
-    while s > 0 {
-        let (right, up) = (u32::from(x & s > 0), u32::from(y & s > 0));
-        key += u64::from(s) * u64::from(s) * u64::from((3 * right) ^ up);
-        if up == 0 {
-            if right == 1 {
-                x = 65535 - x;
-                y = 65535 - y;
+    /// Oracle: the general-purpose crate `spade`. Our triangulation lies in a box, so only edges that are both inside its hull and
+    /// away from it must agree; the fan of box edges is ours alone.
+    #[test]
+    fn a_constrained_triangulation_has_the_edges_spade_finds() {
+        for seed in 1..6 {
+            let mut next = numbers(seed);
+            let mut points: Vec<[f64; 2]> = (0..400).map(|_| [next(), next()]).collect();
+            // A frame, so that the hull is the same for both.
+            points.extend((0..20).flat_map(|i| {
+                let t = 1.2 * f64::from(i) / 20.0 - 0.1;
+                [[t, -0.1], [1.1, t], [1.0 - t, 1.1], [-0.1, 1.0 - t]]
+            }));
+            let count = points.len() as u32;
+            let mut ours = Triangulation::new(&points).unwrap();
+            let mut theirs = ConstrainedDelaunayTriangulation::<Point2<f64>>::new();
+            let handles: Vec<_> = points
+                .iter()
+                .map(|p| theirs.insert(Point2::new(p[0], p[1])).unwrap())
+                .collect();
+            for k in (0..400u32).step_by(25) {
+                let (a, b) = (k, k + 13);
+                if theirs.can_add_constraint(handles[a as usize], handles[b as usize]) {
+                    theirs.add_constraint(handles[a as usize], handles[b as usize]);
+                    assert!(ours.constrain(a, b, 1).is_ok());
+                }
             }
-            std::mem::swap(&mut x, &mut y);
+            let found = edges(&ours, count);
+            let wanted: BTreeSet<(u32, u32)> = theirs
+                .undirected_edges()
+                .map(|e| e.vertices().map(|v| v.fix().index() as u32))
+                .map(|[a, b]| (a.min(b), a.max(b)))
+                .collect();
+            let differ: Vec<_> = found.symmetric_difference(&wanted).collect();
+            assert!(
+                differ.is_empty(),
+                "seed {seed}: {} of {} edges differ",
+                differ.len(),
+                wanted.len()
+            );
         }
-        s /= 2;
     }
-    key
+
+    #[test]
+    fn a_coincident_point_is_named() {
+        let points = [[0.0, 0.0], [1.0, 0.0], [0.0, 1.0], [1.0, 0.0]];
+        assert!(matches!(Triangulation::new(&points), Err(1 | 3)));
+    }
 }
