@@ -96,6 +96,41 @@ fn one_unknown_is_a_division() {
 }
 
 #[test]
+fn a_long_chain_is_solved_without_recursion_along_it() {
+    // -x[k-1] + 2 x[k] - x[k+1] = b with x[k] = sin k, whose differences are known in closed form.
+    let n = 300_000;
+    let links: Vec<[u32; 2]> = (1..n).map(|k| [k - 1, k]).collect();
+    let mut matrix = SymmetricMatrix::<f64>::zeros(pattern_of(n as usize, &links));
+    let starts = matrix.pattern.starts().to_vec();
+    for col in 0..n as usize {
+        matrix.values[starts[col]] = 2.0;
+        if starts[col + 1] > starts[col] + 1 {
+            matrix.values[starts[col] + 1] = -1.0;
+        }
+    }
+    let x = |k: i64| (k as f64).sin();
+    let mut rhs: Vec<f64> = (0..i64::from(n))
+        .map(|k| (2.0 - 2.0 * 1_f64.cos()) * x(k))
+        .collect();
+    rhs[0] += x(-1);
+    rhs[n as usize - 1] += x(i64::from(n));
+    let line: Vec<[f64; 2]> = (0..n).map(|k| [f64::from(k), 0.0]).collect();
+    for points in [None, Some(&line[..])] {
+        let factor = Factor::new(&plan(&matrix.pattern, points, &[]), &matrix.values).unwrap();
+        let solved = checked_solve(&matrix, &factor, &rhs).unwrap();
+        assert!(solved.backward_error <= 1e-14);
+        // The condition number is about 4 n^2 / pi^2 = 4e10.
+        let error = solved
+            .x
+            .iter()
+            .zip(0..)
+            .map(|(&found, k)| (found - x(k)).abs())
+            .fold(0.0, f64::max);
+        assert!(error < 1e-5, "error {error:.1e}");
+    }
+}
+
+#[test]
 fn no_unknowns_are_solved_by_nothing() {
     let matrix = SymmetricMatrix::<f64>::zeros(Arc::new(Pattern::from_cliques(0, std::iter::empty())));
     for points in [None, Some(&[][..])] {

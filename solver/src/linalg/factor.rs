@@ -5,6 +5,7 @@
 //! in the same order, so the factor is the same to the last bit for any number of threads.
 
 use std::fmt;
+use std::ops::Range;
 use std::sync::Arc;
 
 use super::dense::Panel;
@@ -181,31 +182,45 @@ impl<T: Scalar> Task<'_, T> {
         panels: &mut [T],
         workspace: &mut Workspace<T>,
     ) -> Result<Vec<T>, LinalgError> {
-        let front = &self.plan.fronts[k];
-        if front.work < 2.0 * TASK_WORK {
-            return self.sequence(k, panels, workspace);
+        let fronts = &self.plan.fronts;
+        let subtree = fronts[k].subtree..k + 1;
+        let mut stack = Vec::new();
+        let heavy = |k: u32| fronts[k as usize].work >= TASK_WORK;
+        let branch = self.plan.branch(k, heavy);
+        if fronts[branch].work < 2.0 * TASK_WORK {
+            self.sequence(subtree, panels, &mut stack, workspace)?;
+            return Ok(stack.pop().unwrap_or_default());
         }
-        let (below, panel) = panels.split_at_mut(panels.len() - front.panel.len());
-        let blocks = self.siblings(self.plan.children(front), below, workspace)?;
-        self.front(front, panel, blocks, workspace)
+        let offset = |k: usize| fronts[k].panel.start - fronts[subtree.start].panel.start;
+        let (before, rest) = panels.split_at_mut(offset(fronts[branch].subtree));
+        let (below, after) = rest.split_at_mut(offset(branch) - before.len());
+        self.sequence(
+            subtree.start..fronts[branch].subtree,
+            before,
+            &mut stack,
+            workspace,
+        )?;
+        stack.append(&mut self.siblings(self.plan.children(&fronts[branch]), below, workspace)?);
+        self.sequence(branch..subtree.end, after, &mut stack, workspace)?;
+        Ok(stack.pop().unwrap_or_default())
     }
 
-    /// As `subtree`, one front after the other.
+    /// Factorises successive fronts, one after the other; `stack` holds the border blocks not yet added to a parent.
     fn sequence(
         &self,
-        k: usize,
+        fronts: Range<usize>,
         panels: &mut [T],
+        stack: &mut Vec<Vec<T>>,
         workspace: &mut Workspace<T>,
-    ) -> Result<Vec<T>, LinalgError> {
-        let mut stack: Vec<Vec<T>> = Vec::new();
+    ) -> Result<(), LinalgError> {
         let mut rest = panels;
-        for front in &self.plan.fronts[self.plan.fronts[k].subtree..=k] {
+        for front in &self.plan.fronts[fronts] {
             let (panel, after) = rest.split_at_mut(front.panel.len());
             rest = after;
             let blocks = stack.split_off(stack.len() - front.children.len());
             stack.push(self.front(front, panel, blocks, workspace)?);
         }
-        Ok(stack.pop().unwrap_or_default())
+        Ok(())
     }
 
     /// Assembles one front from the matrix and its children's blocks, and eliminates its pivots.

@@ -32,6 +32,7 @@ mod scalar;
 mod separator;
 mod solve;
 mod supernodes;
+mod sweep;
 mod vector;
 
 pub use checked_solve::{BACKWARD_ERROR_LIMIT, Solved, checked_solve};

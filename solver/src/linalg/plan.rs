@@ -132,6 +132,21 @@ impl Plan {
         &self.children[front.children.clone()]
     }
 
+    /// First front from `k` down that has not exactly one heavy child: above it there is nothing to do in parallel.
+    pub(super) fn branch(&self, k: usize, heavy: impl Fn(u32) -> bool) -> usize {
+        let mut branch = k;
+        loop {
+            let mut children = self
+                .children(&self.fronts[branch])
+                .iter()
+                .filter(|&&child| heavy(child));
+            match (children.next(), children.next()) {
+                (Some(&only), None) => branch = only as usize,
+                _ => return branch,
+            }
+        }
+    }
+
     /// Values of the factor, panels one after the other.
     pub(super) fn panel_values(&self) -> usize {
         self.fronts.last().map_or(0, |front| front.panel.end)

@@ -5,15 +5,13 @@
 //! in parallel when the plan says they are large, so the result is the same to the last bit for any number of threads.
 //! Convention: inside, right-hand sides are taken in groups, and the values of one unknown for a group lie together.
 
-use std::ops::Range;
-
-use faer::traits::pulp::{Arch, Simd, WithSimd};
+use faer::traits::pulp::Arch;
 
 use super::error::{Datum, LinalgError};
 use super::factor::Factor;
-use super::plan::{Front, Plan};
+use super::plan::Front;
 use super::scalar::Scalar;
-use super::vector::{add_multiple, dot};
+use super::sweep::{Backward, Forward, Sweep};
 
 /// Right-hand sides that share one pass over the factor.
 const GROUP: usize = 8;
@@ -68,19 +66,7 @@ impl<T: Scalar> Factor<T> {
     }
 }
 
-/// What all fronts of one solution share.
-#[derive(Clone, Copy)]
-struct Sweep<'a, T> {
-    plan: &'a Plan,
-    values: &'a [T],
-    width: usize,
-}
-
 impl<'a, T: Scalar> Sweep<'a, T> {
-    fn front(&self, k: u32) -> &'a Front {
-        &self.plan.fronts[k as usize]
-    }
-
     /// Values of the factor in the subtrees of these siblings.
     fn size(&self, fronts: &[u32]) -> usize {
         let [first, .., last] = fronts else {
@@ -121,11 +107,27 @@ impl<'a, T: Scalar> Sweep<'a, T> {
         borders
     }
 
+    /// Where the work of a subtree forks, and the values of `x` before that fork's subtree and within it.
+    fn fork(&self, k: u32) -> Fork<'a> {
+        let fronts = &self.plan.fronts;
+        let heavy = |k: u32| self.size(&[k]) >= TASK_VALUES;
+        let branch = self.plan.branch(k as usize, heavy);
+        let (start, below) = (self.front(k).subtree, fronts[branch].subtree);
+        Fork {
+            before: &fronts[start..below],
+            children: self.plan.children(&fronts[branch]),
+            after: &fronts[branch..=k as usize],
+            x_before: (fronts[below].first - fronts[start].first) * self.width,
+            x_below: (fronts[branch].first - fronts[below].first) * self.width,
+            parallel: self.size(&[branch as u32]) >= 2 * TASK_VALUES,
+        }
+    }
+
     /// Forward sweep over the subtree of front `k`; returns what it leaves on its border.
     fn forward(&self, k: u32, x: &mut [T]) -> Vec<T> {
-        let front = self.front(k);
-        if self.size(&[k]) < 2 * TASK_VALUES {
-            let fronts = &self.plan.fronts[front.subtree..=k as usize];
+        let fork = self.fork(k);
+        if !fork.parallel {
+            let fronts = &self.plan.fronts[self.front(k).subtree..=k as usize];
             return Arch::new().dispatch(Forward {
                 sweep: *self,
                 fronts,
@@ -133,12 +135,20 @@ impl<'a, T: Scalar> Sweep<'a, T> {
                 stack: Vec::new(),
             });
         }
-        let (below, pivots) = x.split_at_mut(x.len() - front.pivots * self.width);
-        let stack = self.forward_siblings(self.plan.children(front), below);
+        let (before, rest) = x.split_at_mut(fork.x_before);
+        let (below, after) = rest.split_at_mut(fork.x_below);
+        let first = Forward {
+            sweep: *self,
+            fronts: fork.before,
+            x: before,
+            stack: Vec::new(),
+        };
+        let mut stack = Arch::new().dispatch(first);
+        stack.append(&mut self.forward_siblings(fork.children, below));
         Arch::new().dispatch(Forward {
             sweep: *self,
-            fronts: std::slice::from_ref(front),
-            x: pivots,
+            fronts: fork.after,
+            x: after,
             stack,
         })
     }
@@ -167,9 +177,9 @@ impl<'a, T: Scalar> Sweep<'a, T> {
 
     /// Backward sweep over the subtree of front `k`; `border` is the solution on its border.
     fn backward(&self, k: u32, border: Vec<T>, x: &mut [T]) {
-        let front = self.front(k);
-        if self.size(&[k]) < 2 * TASK_VALUES {
-            let fronts = &self.plan.fronts[front.subtree..=k as usize];
+        let fork = self.fork(k);
+        if !fork.parallel {
+            let fronts = &self.plan.fronts[self.front(k).subtree..=k as usize];
             Arch::new().dispatch(Backward {
                 sweep: *self,
                 fronts,
@@ -178,217 +188,43 @@ impl<'a, T: Scalar> Sweep<'a, T> {
             });
             return;
         }
-        let (below, pivots) = x.split_at_mut(x.len() - front.pivots * self.width);
-        let single = std::slice::from_ref(front);
-        let stack = Arch::new().dispatch(Backward {
+        let (before, rest) = x.split_at_mut(fork.x_before);
+        let (below, after) = rest.split_at_mut(fork.x_below);
+        let last = Backward {
             sweep: *self,
-            fronts: single,
-            x: pivots,
+            fronts: fork.after,
+            x: after,
             stack: border,
-        });
-        self.backward_siblings(self.plan.children(front), stack, below);
-    }
-
-    /// Columns of a front's panel.
-    #[inline(always)]
-    fn columns(&self, front: &Front) -> std::slice::ChunksExact<'a, T> {
-        self.values[front.panel.clone()].chunks_exact(front.height())
-    }
-
-    /// Rows of a child's border in its parent's front.
-    #[inline(always)]
-    fn relative(&self, child: u32) -> &'a [u32] {
-        &self.plan.relative[self.front(child).rows.clone()]
-    }
-}
-
-/// Forward sweep over fronts in postorder, compiled for the vector unit found at run time.
-///
-/// `x` are the pivot values of these fronts; the top of `stack` is what their children left on their borders.
-struct Forward<'a, 'x, T> {
-    sweep: Sweep<'a, T>,
-    fronts: &'a [Front],
-    x: &'x mut [T],
-    stack: Vec<T>,
-}
-
-impl<T: Scalar> WithSimd for Forward<'_, '_, T> {
-    type Output = Vec<T>;
-
-    #[inline(always)]
-    fn with_simd<S: Simd>(self, simd: S) -> Vec<T> {
-        let Self {
-            sweep,
-            fronts,
-            x,
-            mut stack,
-        } = self;
-        let width = sweep.width;
-        let mut local: Vec<T> = Vec::new();
-        let mut rest = x;
-        for front in fronts {
-            let height = front.height();
-            let (pivots, after) = rest.split_at_mut(front.pivots * width);
-            rest = after;
-            local.clear();
-            local.resize(height * width, T::ZERO);
-            gather(&mut local, height, width, 0..front.pivots, pivots);
-            let children = sweep.plan.children(front);
-            let rows: usize = children
-                .iter()
-                .map(|&child| sweep.front(child).border)
-                .sum();
-            let base = stack.len() - rows * width;
-            let mut start = base;
-            for &child in children {
-                let places = sweep.relative(child);
-                let end = start + places.len() * width;
-                gather_sum(&mut local, height, width, places, &stack[start..end]);
-                start = end;
-            }
-            stack.truncate(base);
-            for (k, column) in sweep.columns(front).enumerate() {
-                for side in local.chunks_exact_mut(height) {
-                    let (done, open) = side.split_at_mut(k + 1);
-                    add_multiple(simd, open, -done[k], &column[k + 1..]);
-                }
-            }
-            scatter(&local, height, width, 0..front.pivots, pivots);
-            stack.resize(base + front.border * width, T::ZERO);
-            scatter(
-                &local,
-                height,
-                width,
-                front.pivots..height,
-                &mut stack[base..],
-            );
-        }
-        stack
-    }
-}
-
-/// Backward sweep over fronts in reverse postorder, compiled for the vector unit found at run time.
-///
-/// The top of `stack` is the solution on the border of the last front; what is returned is that on the borders of
-/// children not among `fronts`.
-struct Backward<'a, 'x, T> {
-    sweep: Sweep<'a, T>,
-    fronts: &'a [Front],
-    x: &'x mut [T],
-    stack: Vec<T>,
-}
-
-impl<T: Scalar> WithSimd for Backward<'_, '_, T> {
-    type Output = Vec<T>;
-
-    #[inline(always)]
-    fn with_simd<S: Simd>(self, simd: S) -> Vec<T> {
-        let Self {
-            sweep,
-            fronts,
-            x,
-            mut stack,
-        } = self;
-        let width = sweep.width;
-        let mut local: Vec<T> = Vec::new();
-        let mut rest = x;
-        for front in fronts.iter().rev() {
-            let height = front.height();
-            let (before, pivots) = rest.split_at_mut(rest.len() - front.pivots * width);
-            rest = before;
-            local.clear();
-            local.resize(height * width, T::ZERO);
-            gather(&mut local, height, width, 0..front.pivots, pivots);
-            let base = stack.len() - front.border * width;
-            gather(
-                &mut local,
-                height,
-                width,
-                front.pivots..height,
-                &stack[base..],
-            );
-            stack.truncate(base);
-            for (k, column) in sweep.columns(front).enumerate().rev() {
-                for side in local.chunks_exact_mut(height) {
-                    let (done, open) = side.split_at_mut(k + 1);
-                    done[k] = done[k] * column[k] - dot(simd, &column[k + 1..], open);
-                }
-            }
-            scatter(&local, height, width, 0..front.pivots, pivots);
-            for &child in sweep.plan.children(front) {
-                let places = sweep.relative(child);
-                if width == 1 {
-                    stack.extend(places.iter().map(|&row| local[row as usize]));
-                } else {
-                    let rows = places
-                        .iter()
-                        .flat_map(|&row| (0..width).map(move |r| r * height + row as usize));
-                    stack.extend(rows.map(|place| local[place]));
-                }
-            }
-        }
-        stack
-    }
-}
-
-/// Copies values that lie together by row into rows `rows` of a block of `width` columns.
-#[inline(always)]
-fn gather<T: Scalar>(
-    block: &mut [T],
-    height: usize,
-    width: usize,
-    rows: Range<usize>,
-    values: &[T],
-) {
-    if width == 1 {
-        block[rows].copy_from_slice(values);
-        return;
-    }
-    for (r, column) in block.chunks_exact_mut(height).enumerate() {
-        for (place, values) in column[rows.clone()]
-            .iter_mut()
-            .zip(values.chunks_exact(width))
-        {
-            *place = values[r];
-        }
-    }
-}
-
-/// The inverse of `gather`.
-#[inline(always)]
-fn scatter<T: Scalar>(
-    block: &[T],
-    height: usize,
-    width: usize,
-    rows: Range<usize>,
-    values: &mut [T],
-) {
-    if width == 1 {
-        values.copy_from_slice(&block[rows]);
-        return;
-    }
-    for (r, column) in block.chunks_exact(height).enumerate() {
-        for (&value, places) in column[rows.clone()]
+        };
+        let mut stack = Arch::new().dispatch(last);
+        let rows: usize = fork
+            .children
             .iter()
-            .zip(values.chunks_exact_mut(width))
-        {
-            places[r] = value;
-        }
+            .map(|&child| self.front(child).border)
+            .sum();
+        let borders = stack.split_off(stack.len() - rows * self.width);
+        self.backward_siblings(fork.children, borders, below);
+        Arch::new().dispatch(Backward {
+            sweep: *self,
+            fronts: fork.before,
+            x: before,
+            stack,
+        });
     }
 }
 
-/// Adds values that lie together by row into rows `rows` of a block of `width` columns.
-#[inline(always)]
-fn gather_sum<T: Scalar>(block: &mut [T], height: usize, width: usize, rows: &[u32], values: &[T]) {
-    for (r, column) in block.chunks_exact_mut(height).enumerate() {
-        if width == 1 {
-            for (&row, &value) in rows.iter().zip(values) {
-                column[row as usize] += value;
-            }
-        } else {
-            for (&row, values) in rows.iter().zip(values.chunks_exact(width)) {
-                column[row as usize] += values[r];
-            }
-        }
-    }
+/// A subtree cut where it forks: the fronts up to there one after the other, the fork's children in parallel.
+struct Fork<'a> {
+    /// Fronts that come before the fork's subtree.
+    before: &'a [Front],
+    /// Children of the fork.
+    children: &'a [u32],
+    /// The fork and all fronts after it.
+    after: &'a [Front],
+    /// Values of `x` that belong to `before`.
+    x_before: usize,
+    /// Values of `x` that belong to the children's subtrees.
+    x_below: usize,
+    /// Whether the fork is worth it.
+    parallel: bool,
 }
