@@ -1,12 +1,13 @@
 //! The whole way from a drawing to a checked mesh. Convention: arcs are divided finer and finer until the mesh passes its check.
 
+use crate::check::LEAST_RATIO;
 use crate::drawing::{Drawing, Limits, OUTSIDE};
 use crate::error::MeshError;
 use crate::ids::{CurveId, NO_TRIANGLE, Point};
 use crate::layers;
 use crate::mesh::{Bend, Curve, Edge, Mesh, Shape};
-use crate::noding::{Graph, node};
-use crate::note::MeshNote;
+use crate::noding::{CUSP, Graph, node};
+use crate::note::{MeshNote, NoteReason};
 use crate::plan::Plan;
 use crate::refine::{Budget, Sizes, refine};
 use crate::size_field::{Gaps, SizeField, sources, wanted};
@@ -16,7 +17,8 @@ use crate::triangulate::{LAST, NEXT, NONE, Triangulation};
 use std::sync::OnceLock;
 
 /// Largest turn of an edge along an arc, in degrees, at each attempt.
-const TURNS_DEG: [f64; 4] = [30.0, 15.0, 7.5, 3.75];
+const TURNS_DEG: [f64; 3] = [30.0, 15.0, FINEST_TURN_DEG];
+const FINEST_TURN_DEG: f64 = 7.5;
 const SMOOTHING_PASSES: usize = 5;
 
 /// Meshes a drawing. `stop` is asked now and then; if it returns true, meshing ends.
@@ -76,7 +78,10 @@ fn attempt(
     let budget = Budget { max_triangles: limits.max_triangles, smallest, stop };
     refine(&mut mesh, Sizes { field: &field, caps: &caps }, &plan.tags, plan.nodes, &budget)?;
     smooth(&mut mesh, SMOOTHING_PASSES);
-    let mesh = finish(drawing, graph, &plan, &mesh, notes);
+    let mut mesh = finish(drawing, graph, &plan, &mesh, notes);
+    if max_turn <= f64::to_radians(FINEST_TURN_DEG) {
+        straighten(drawing, None, &mut mesh);
+    }
     if mesh.triangles.len() > limits.max_triangles {
         return Err(MeshError::TooManyTriangles { limit: limits.max_triangles, smallest_m: smallest });
     }
@@ -178,7 +183,33 @@ fn finish(drawing: &Drawing, graph: &Graph, plan: &Plan, faces: &Triangulation, 
     }
     let curve_of = curves(graph, plan, &mut mesh);
     add_edges(plan, faces, &triangle_of, &curve_of, &mut mesh);
+    let tips: Vec<u32> = graph.cusps(CUSP).into_iter().map(|v| vertex_of[v as usize]).collect();
+    straighten(drawing, Some(&tips), &mut mesh);
     mesh
+}
+
+/// Where an arc leaves a node along another curve (a fillet that touches a plane, say) no curved element fits: the arc edges at
+/// such `tips` are left straight, and noted. Without `tips`, so is every edge of a triangle that would fold.
+fn straighten(drawing: &Drawing, tips: Option<&[u32]>, mesh: &mut Mesh) {
+    let mut bad: Vec<usize> = (0..mesh.triangles.len()).filter(|&t| mesh.least_jacobian(t) <= LEAST_RATIO).collect();
+    while let Some(t) = bad.pop() {
+        if mesh.least_jacobian(t) > LEAST_RATIO {
+            continue;
+        }
+        for edge in mesh.triangle_edges[t].map(|e| e as usize) {
+            let Edge { vertices, curve, triangles } = mesh.edges[edge];
+            let bent = !matches!(mesh.bends[edge], Bend::Straight);
+            if !bent || tips.is_some_and(|tips| !vertices.iter().any(|v| tips.contains(v))) {
+                continue;
+            }
+            mesh.bends[edge] = Bend::Straight;
+            bad.extend(triangles.iter().filter(|&&t| t != NO_TRIANGLE).map(|&t| t as usize));
+            if let Some(&(index, piece)) = curve.and_then(|c| mesh.curve(c).on_regions.first()) {
+                let region = drawing.regions[index].id;
+                mesh.notes.push(MeshNote { region, index, piece: Some(piece), reason: NoteReason::ArcStraightened });
+            }
+        }
+    }
 }
 
 /// Fills in the curves; gives the curve of every tag that has one.

@@ -29,7 +29,7 @@ const SAMPLES: [[f64; 3]; 13] = {
 };
 
 /// Least Jacobian of a quadratic map over that of the straight-sided triangle.
-const LEAST_RATIO: f64 = 0.02;
+pub(crate) const LEAST_RATIO: f64 = 0.02;
 
 impl Mesh {
     /// Checks orientation, adjacency, regions, boundary, Jacobians, Euler's formula and the covered area.
@@ -136,6 +136,7 @@ fn jacobian([a, b, c]: [Point; 3], bulge: [Point; 3], l: [f64; 3]) -> f64 {
     // Derivatives of the three edge bubbles L0 L1, L1 L2, L2 L0 with L0 = 1 - L1 - L2.
     let by_one = [l[0] - l[1], l[2], -l[2]];
     let by_two = [-l[1], l[1], l[0] - l[2]];
-    let column = |side: Point, by: [f64; 3]| [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>());
+    let column =
+        |side: Point, by: [f64; 3]| [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>());
     cross(column(sub(b, a), by_one), column(sub(c, a), by_two))
 }

@@ -148,10 +148,8 @@ impl Mesh {
 
     /// Area of a region in square metres, arcs included exactly.
     pub fn region_area(&self, id: RegionId) -> f64 {
-        let straight: f64 = (0..self.triangles.len())
-            .filter(|&t| self.regions[t] == id)
-            .map(|t| straight_area(self.corners(t)))
-            .sum();
+        let straight: f64 =
+            (0..self.triangles.len()).filter(|&t| self.regions[t] == id).map(|t| straight_area(self.corners(t))).sum();
         let mut curved = 0.0;
         for (edge, bend) in self.edges.iter().zip(&self.bends) {
             for t in edge.triangles {

@@ -2,10 +2,13 @@
 //! outside the domain or painted over is dropped. Convention: two points closer than 1e-9 of the domain's extent are one.
 
 use crate::drawing::{Drawing, OUTSIDE};
-use crate::ids::{Point, along, distance, left_of};
+use crate::ids::{Point, along, cross, distance, dot, left_of};
 use crate::intersect::meetings;
-use crate::span::Span;
+use crate::span::{Kind, Span};
 use std::collections::HashMap;
+
+/// Two curves that leave a node under a smaller angle, in radians, make a cusp.
+pub(crate) const CUSP: f64 = 0.05;
 
 /// One stretch of the drawing between two nodes.
 #[derive(Debug, Clone)]
@@ -66,8 +69,7 @@ impl Nodes {
 pub(crate) fn node(drawing: &Drawing) -> Graph {
     let tolerance = 1e-9 * drawing.extent();
     let sources = sources(drawing);
-    let mut nodes =
-        Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
+    let mut nodes = Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
     for source in &sources {
         nodes.place(source.span.start);
     }
@@ -87,6 +89,30 @@ pub(crate) fn node(drawing: &Drawing) -> Graph {
     Graph { points, stretches, tolerance }
 }
 
+impl Graph {
+    /// Nodes at which two stretches, one of them an arc, leave under a smaller angle than `limit` radians.
+    pub(crate) fn cusps(&self, limit: f64) -> Vec<u32> {
+        let mut leaving: Vec<(u32, Point, bool)> = Vec::new();
+        for s in &self.stretches {
+            let arc = matches!(s.span.kind, Kind::Arc { .. });
+            let back = s.span.tangent(1.0);
+            leaving.push((s.ends[0], s.span.tangent(0.0), arc));
+            leaving.push((s.ends[1], [-back[0], -back[1]], arc));
+        }
+        leaving.sort_by_key(|l| l.0);
+        let mut cusps = Vec::new();
+        for group in leaving.chunk_by(|a, b| a.0 == b.0) {
+            let sharp = |a: &(u32, Point, bool), b: &(u32, Point, bool)| {
+                (a.2 || b.2) && dot(a.1, b.1) > 0.0 && cross(a.1, b.1).abs() < limit
+            };
+            if (1..group.len()).any(|i| group[..i].iter().any(|a| sharp(a, &group[i]))) {
+                cusps.push(group[0].0);
+            }
+        }
+        cusps
+    }
+}
+
 /// Drops nodes at which no stretch ends, and renumbers the rest in the order they are used.
 fn keep_used(points: &[Point], stretches: &mut [Stretch]) -> Vec<Point> {
     let mut number = vec![u32::MAX; points.len()];
@@ -104,9 +130,8 @@ fn keep_used(points: &[Point], stretches: &mut [Stretch]) -> Vec<Point> {
 
 fn sources(drawing: &Drawing) -> Vec<Source> {
     let domain = drawing.domain.spans().iter().enumerate();
-    let mut all: Vec<Source> = domain
-        .map(|(i, &span)| Source { span, domain_piece: Some(i), region_piece: None })
-        .collect();
+    let mut all: Vec<Source> =
+        domain.map(|(i, &span)| Source { span, domain_piece: Some(i), region_piece: None }).collect();
     for (k, region) in drawing.regions.iter().enumerate() {
         let pieces = region.outline.spans().iter().enumerate();
         all.extend(pieces.map(|(i, &span)| Source { span, domain_piece: None, region_piece: Some((k, i)) }));

@@ -30,4 +30,6 @@ pub enum NoteReason {
         /// Element size along the surface instead, in metres.
         size: f64,
     },
+    /// An arc meets or nearly meets another line at no angle; an edge there is straight instead of curved.
+    ArcStraightened,
 }

@@ -55,8 +55,7 @@ pub(crate) fn refine(
 ) -> Result<(), MeshError> {
     let wanted = mesh.points.iter().map(|&p| sizes.field.at(p)).collect();
     let on = marks(mesh, nodes);
-    let mut refiner =
-        Refiner { mesh, sizes, tags, wanted, on, queue: VecDeque::new(), encroached: Vec::new() };
+    let mut refiner = Refiner { mesh, sizes, tags, wanted, on, queue: VecDeque::new(), encroached: Vec::new() };
     refiner.mesh.fresh = (0..refiner.mesh.faces.len() as u32).collect();
     refiner.queue_fresh();
     let mut steps = 0u32;

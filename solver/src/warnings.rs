@@ -79,6 +79,9 @@ fn mesh_note(regions: &[RegionName], note: &MeshNote) -> String {
         NoteReason::NoStrip { size } => {
             format!("{place}: no skin layers fit; triangles of {:.3} mm stand in for them", 1e3 * size)
         }
+        NoteReason::CuspStraightened => {
+            format!("{place}: where an arc touches another curve its edges are meshed straight, which moves the surface a little")
+        }
     }
 }
 
@@ -114,7 +117,8 @@ fn encloses(outer: &Outline, inner: &Outline) -> bool {
 /// Warnings that follow from one electrical state.
 pub fn of_state(electrical: &Electrical, out: &mut Warnings) {
     for part in &electrical.parts {
-        let Some(flux) = part.poynting_power_w.filter(|_| part.joule_loss_w > 1e-3 * electrical.workpiece_power_w) else {
+        let Some(flux) = part.poynting_power_w.filter(|_| part.joule_loss_w > 1e-3 * electrical.workpiece_power_w)
+        else {
             continue;
         };
         let defect = (flux - part.joule_loss_w).abs() / part.joule_loss_w;

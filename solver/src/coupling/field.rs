@@ -56,10 +56,11 @@ impl<'a> FieldSolver<'a> {
     pub(super) fn solve(&mut self, time_s: f64, temperatures: &dyn PointTemperatures) -> Result<Solved, SolveError> {
         let space = Arc::clone(self.operator.space());
         let properties = PointProperties::new(&space, &self.regions, self.model, temperatures);
-        let field = self
-            .operator
-            .solve(&properties)
-            .map_err(|source| SolveError::Linear { system: "field", time_s, source })?;
+        let field = self.operator.solve(&properties).map_err(|source| SolveError::Linear {
+            system: "field",
+            time_s,
+            source,
+        })?;
         self.solves += 1;
         let numbers = Numbers::new(&field, &self.operator, &properties, &self.regions, self.model);
         let heated_loss_w_per_m3 = self.heated_triangles.iter().flat_map(|&t| field.loss(t)).copied().collect();
@@ -74,10 +75,6 @@ impl<'a> FieldSolver<'a> {
     /// Maps of a state, per unit drive.
     pub(super) fn maps(&self, state: &FieldState) -> FieldMaps {
         maps(&state.field, &self.operator, &state.properties, &self.regions, self.model)
-    }
-
-    pub(super) fn model(&self) -> &'a Model {
-        self.model
     }
 
     /// Scales a solve to what is held.

@@ -116,7 +116,14 @@ impl<'a> Recorder<'a> {
     }
 
     /// Adds an electrical state to the table.
-    pub(super) fn state(&mut self, label: &str, time_s: f64, solver: &FieldSolver<'_>, field: &FieldState, factor: f64) {
+    pub(super) fn state(
+        &mut self,
+        label: &str,
+        time_s: f64,
+        solver: &FieldSolver<'_>,
+        field: &FieldState,
+        factor: f64,
+    ) {
         let state = State { time_s, ..self.make_state(label, solver, field, factor) };
         let peak = field.scaled.peak * factor.sqrt();
         self.turns = field.numbers.turns(solver.operator(), self.model, peak);
@@ -274,7 +281,13 @@ impl<'a> Recorder<'a> {
                     now.state.time_s
                 );
                 self.warnings.add(WarningKind::Curie, text);
-                self.state(&format!("{place} of {} at Curie", part.name), now.state.time_s, run.solver, &now.losses.last, now.factor);
+                self.state(
+                    &format!("{place} of {} at Curie", part.name),
+                    now.state.time_s,
+                    run.solver,
+                    &now.losses.last,
+                    now.factor,
+                );
             }
         }
     }

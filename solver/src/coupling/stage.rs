@@ -151,7 +151,7 @@ impl<'a, 'b> HeatRun<'a, 'b> {
         let stage = &self.heating.stages[index];
         let hold = self.base_hold(stage);
         self.switch(now, hold)?;
-        let tracker = Tracker::new(stage, index, &self.heat.gauge_values(&now.state.temperature_k), now.state.time_s);
+        let tracker = Tracker::new(stage, &self.heat.gauge_values(&now.state.temperature_k), now.state.time_s);
         self.observer.event(&Event::StageStarted {
             index,
             of: self.heating.stages.len(),
@@ -244,14 +244,7 @@ impl<'a, 'b> HeatRun<'a, 'b> {
         Ok((Ended::Failed("the field did not settle".to_owned()), Vec::new()))
     }
 
-    fn accept(
-        &mut self,
-        now: &mut Progress,
-        new: FieldState,
-        elapsed: f64,
-        next: f64,
-        recorder: &mut Recorder<'a>,
-    ) {
+    fn accept(&mut self, now: &mut Progress, new: FieldState, elapsed: f64, next: f64, recorder: &mut Recorder<'a>) {
         now.losses.push(new);
         now.solves_since_switch += 1;
         now.interval_s = if now.solves_since_switch < 3 { next.min(elapsed) } else { next };

@@ -127,8 +127,7 @@ pub fn node_positions(order: usize) -> Vec<[f64; 2]> {
 /// Gauss-Legendre rule of `n` points on [0, 1].
 fn unit_rule(n: usize) -> Vec<(f64, f64)> {
     let rule = GaussLegendre::new(NonZeroUsize::new(n).unwrap_or(NonZeroUsize::MIN));
-    let mut pairs: Vec<_> =
-        rule.as_node_weight_pairs().iter().map(|&(x, w)| (0.5 * (1.0 + x), 0.5 * w)).collect();
+    let mut pairs: Vec<_> = rule.as_node_weight_pairs().iter().map(|&(x, w)| (0.5 * (1.0 + x), 0.5 * w)).collect();
     pairs.sort_by(|a, b| a.0.total_cmp(&b.0));
     pairs
 }

@@ -64,16 +64,9 @@ pub fn checked_solve<T: Scalar>(
         }
     }
     if backward_error <= BACKWARD_ERROR_LIMIT {
-        Ok(Solved {
-            x,
-            backward_error,
-            refinements,
-        })
+        Ok(Solved { x, backward_error, refinements })
     } else {
-        Err(LinalgError::Inaccurate {
-            backward_error,
-            limit: BACKWARD_ERROR_LIMIT,
-        })
+        Err(LinalgError::Inaccurate { backward_error, limit: BACKWARD_ERROR_LIMIT })
     }
 }
 

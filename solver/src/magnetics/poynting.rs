@@ -27,7 +27,8 @@ pub fn power_into(field: &UnitField, operator: &Operator, properties: &PointProp
     let own: Vec<bool> = (0..space.element_count()).map(|e| space.region(e).0 == region).collect();
     LAYERS.iter().find_map(|&layers| {
         let chi = weights(space, &own, layers);
-        let usable = (0..space.element_count()).all(|e| own[e] || (clear[e] && !current[e]) || flat_zero(space, &chi, e));
+        let usable =
+            (0..space.element_count()).all(|e| own[e] || (clear[e] && !current[e]) || flat_zero(space, &chi, e));
         usable.then(|| flux(field, operator, properties, &chi, &own))
     })
 }
@@ -60,13 +61,7 @@ fn flat_zero(space: &Space, chi: &[f64], e: usize) -> bool {
     space.element(e)[..3].iter().all(|&n| chi[n as usize] == 0.0)
 }
 
-fn flux(
-    field: &UnitField,
-    operator: &Operator,
-    properties: &PointProperties,
-    chi: &[f64],
-    own: &[bool],
-) -> f64 {
+fn flux(field: &UnitField, operator: &Operator, properties: &PointProperties, chi: &[f64], own: &[bool]) -> f64 {
     let space = operator.space();
     let omega = operator.omega();
     map_elements(space.element_count(), |e, points| {

@@ -85,9 +85,7 @@ impl Numbers {
         let workpiece_power_w = self.per.workpiece_power_w * square;
         Electrical {
             parts: model.parts.iter().zip(&self.parts).map(|(p, u)| part_numbers(&p.name, u, peak)).collect(),
-            electrical_efficiency: terminals
-                .filter(|t| t.power_w > 0.0)
-                .map(|t| workpiece_power_w / t.power_w),
+            electrical_efficiency: terminals.filter(|t| t.power_w > 0.0).map(|t| workpiece_power_w / t.power_w),
             coils,
             terminals,
             workpiece_power_w,

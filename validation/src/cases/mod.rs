@@ -1,8 +1,9 @@
 //! The cases, one file each.
 
-mod coil_inductance;
-mod cylinder_in_field;
-mod sphere_in_field;
+pub mod bar_heat;
+pub mod coil_inductance;
+pub mod cylinder_in_field;
+pub mod sphere_in_field;
 
 use crate::check::{CaseError, Check};
 
@@ -10,4 +11,4 @@ use crate::check::{CaseError, Check};
 pub type Case = fn() -> Result<Vec<Check>, CaseError>;
 
 /// All cases in order.
-pub const ALL: &[Case] = &[cylinder_in_field::run, sphere_in_field::run, coil_inductance::run];
+pub const ALL: &[Case] = &[cylinder_in_field::run, sphere_in_field::run, coil_inductance::run, bar_heat::run];
