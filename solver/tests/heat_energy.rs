@@ -22,7 +22,10 @@ fn eurocode_enthalpy(to: f64) -> f64 {
     let below = |t: f64| 666.0 * t - 13002.0 * (738.0 - t).ln();
     let above = |t: f64| 545.0 * t + 17820.0 * (t - 731.0).ln();
     let part = |f: &dyn Fn(f64) -> f64, from: f64, end: f64| if to > from { f(to.min(end)) - f(from) } else { 0.0 };
-    part(&cubic, 20.0, 600.0) + part(&below, 600.0, 735.0) + part(&above, 735.0, 900.0) + part(&|t| 650.0 * t, 900.0, 1200.0)
+    part(&cubic, 20.0, 600.0)
+        + part(&below, 600.0, 735.0)
+        + part(&above, 735.0, 900.0)
+        + part(&|t| 650.0 * t, 900.0, 1200.0)
 }
 
 /// Heats an insulated slice by a source near its surface with `enthalpy` J/kg in `seconds`, then lets it even out.
@@ -80,7 +83,10 @@ fn steel_takes_up_the_integral_of_its_specific_heat_for_very_different_tolerance
         // From the temperatures alone: each kilogram at T holds the closed-form integral up to T.
         for t in [min, max] {
             let taken = eurocode_enthalpy((t - 273.15).min(1200.0)) + 650.0 * (t - 1473.15).max(0.0);
-            assert!((taken / enthalpy - 1.0).abs() < 1e-6, "tolerance {tolerance} K: {t} K holds {taken} of {enthalpy} J/kg");
+            assert!(
+                (taken / enthalpy - 1.0).abs() < 1e-6,
+                "tolerance {tolerance} K: {t} K holds {taken} of {enthalpy} J/kg"
+            );
         }
     }
 }

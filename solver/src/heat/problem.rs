@@ -166,7 +166,7 @@ impl HeatProblem {
         let mut t = vec![0.0; count];
         let mut largest = 0.0_f64;
         for (e, values) in source.chunks_exact(count).enumerate().take(self.operator.part_of.len()) {
-            let material = self.operator.material(e);
+            let material = &self.operator.part(e).material;
             self.operator.at_points(e, &state.temperature_k, &mut t);
             for (p, &t) in values.iter().zip(&t) {
                 largest = largest.max(p / (material.density_kg_per_m3 * material.enthalpy.slope(t)));
