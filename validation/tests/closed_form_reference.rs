@@ -153,7 +153,7 @@ fn slab_factor_thin_and_thick() {
             "factor",
             slab_factor(c.arg("t_over_delta")).unwrap(),
             FORMULA,
-        )
+        );
     });
 }
 
@@ -235,7 +235,7 @@ fn rings_solenoids_and_sheets() {
 #[test]
 fn inductance_of_coils_of_rectangular_section() {
     each("coil_air", 3, |c| {
-        c.expect("inductance", coil_of(c).air_inductance().unwrap(), INTEGRAL)
+        c.expect("inductance", coil_of(c).air_inductance().unwrap(), INTEGRAL);
     });
 }
 
@@ -316,7 +316,7 @@ fn lumped_radiation_stefan_and_half_space() {
         );
     });
     each("stefan_lambda", 9, |c| {
-        c.expect("lambda", stefan_lambda(c.arg("stefan")).unwrap(), FORMULA)
+        c.expect("lambda", stefan_lambda(c.arg("stefan")).unwrap(), FORMULA);
     });
     each("half_space_flux", 3, |c| {
         let rise = half_space_flux_rise(
