@@ -35,7 +35,8 @@ struct Document {
 
 #[derive(Deserialize)]
 struct Case {
-    case: String,
+    #[serde(rename = "case")]
+    name: String,
     args: BTreeMap<String, f64>,
     values: BTreeMap<String, String>,
 }
@@ -59,7 +60,7 @@ impl Case {
         assert!(
             error <= absolute,
             "{} {:?}: {name} = {got:e}, reference {want:e}, error {error:.1e} > {absolute:.1e}",
-            self.case,
+            self.name,
             self.args
         );
     }
@@ -72,7 +73,7 @@ fn each(name: &str, count: usize, check: impl Fn(&Case)) {
     let cases: Vec<Case> = document
         .cases
         .into_iter()
-        .filter(|c| c.case == name)
+        .filter(|c| c.name == name)
         .collect();
     assert_eq!(cases.len(), count, "cases named {name}");
     for case in &cases {
