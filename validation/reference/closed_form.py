@@ -1,6 +1,6 @@
 """Reference values for the closed forms of the validation crate, written to closed_form.json.
 
-Run:      python closed_form.py          (two or three minutes)
+Run:      python closed_form.py          (about a minute)
 Needs:    mpmath==1.3.0 from PyPI (arbitrary-precision Bessel functions, elliptic integrals, quadrature);
           gmpy2, if installed, makes it faster
 Writes:   a list of cases; each has the closed form's name, its arguments (exact binary doubles, SI units)
@@ -339,8 +339,11 @@ def radiation(heat_capacity, emissivity, area, ti, t, ts):
 
 def stefan(number):
     f = lambda x: sqrt(pi) * x * mp.exp(x * x) * mp.erf(x) - m(number)
-    guess = sqrt(m(number) / 2) if number < 1 else mpf("0.8")
-    emit("stefan_lambda", dict(stefan=number), {"lambda": mp.findroot(f, guess)})
+    low, high = mpf(0), sqrt(m(number) / 2)
+    for _ in range(260):
+        middle = (low + high) / 2
+        low, high = (middle, high) if f(middle) < 0 else (low, middle)
+    emit("stefan_lambda", dict(stefan=number), {"lambda": low})
 
 
 def half_space_flux(q, k, diffusivity, depth, t):

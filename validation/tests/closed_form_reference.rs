@@ -33,7 +33,8 @@ struct Document {
 
 #[derive(Deserialize)]
 struct Case {
-    case: String,
+    #[serde(rename = "case")]
+    name: String,
     args: BTreeMap<String, f64>,
     values: BTreeMap<String, String>,
 }
@@ -57,7 +58,7 @@ impl Case {
         assert!(
             error <= absolute,
             "{} {:?}: {name} = {got:e}, reference {want:e}, error {error:.1e} > {absolute:.1e}",
-            self.case,
+            self.name,
             self.args
         );
     }
@@ -65,8 +66,13 @@ impl Case {
 
 /// Runs `check` over all cases of one name, which must be `count` in number.
 fn each(name: &str, count: usize, check: impl Fn(&Case)) {
-    let document: Document = serde_json::from_str(include_str!("../reference/closed_form.json")).unwrap();
-    let cases: Vec<Case> = document.cases.into_iter().filter(|c| c.case == name).collect();
+    let document: Document =
+        serde_json::from_str(include_str!("../reference/closed_form.json")).unwrap();
+    let cases: Vec<Case> = document
+        .cases
+        .into_iter()
+        .filter(|c| c.name == name)
+        .collect();
     assert_eq!(cases.len(), count, "cases named {name}");
     for case in &cases {
         check(case);
@@ -122,7 +128,13 @@ fn tube_in_an_axial_field_thin_and_thick() {
 
 #[test]
 fn slab_factor_thin_and_thick() {
-    each("slab_factor", 10, |c| c.expect("factor", slab_factor(c.arg("t_over_delta")).unwrap(), FORMULA));
+    each("slab_factor", 10, |c| {
+        c.expect(
+            "factor",
+            slab_factor(c.arg("t_over_delta")).unwrap(),
+            FORMULA,
+        );
+    });
 }
 
 #[test]
@@ -181,7 +193,9 @@ fn rings_solenoids_and_sheets() {
 
 #[test]
 fn inductance_of_coils_of_rectangular_section() {
-    each("coil_air", 3, |c| c.expect("inductance", coil_of(c).air_inductance().unwrap(), INTEGRAL));
+    each("coil_air", 3, |c| {
+        c.expect("inductance", coil_of(c).air_inductance().unwrap(), INTEGRAL);
+    });
 }
 
 #[test]
@@ -239,7 +253,14 @@ fn lumped_radiation_stefan_and_half_space() {
             area: c.arg("area"),
             surroundings: c.arg("surroundings"),
         };
-        c.expect("time", body.time(c.arg("start"), c.arg("end")).unwrap(), FORMULA);
+        c.expect(
+            "time",
+            body.time(c.arg("start"), c.arg("end")).unwrap(),
+            FORMULA,
+        );
+    });
+    each("stefan_lambda", 9, |c| {
+        c.expect("lambda", stefan_lambda(c.arg("stefan")).unwrap(), FORMULA);
     });
     each("stefan_lambda", 9, |c| c.expect("lambda", stefan_lambda(c.arg("stefan")).unwrap(), FORMULA));
     each("half_space_flux", 3, |c| {
