@@ -25,11 +25,7 @@ const SMOOTHING_PASSES: usize = 5;
 /// # Errors
 /// If a size is out of range, the triangle budget runs out, lines are too close to tell apart, `stop` returned true, or the mesh
 /// does not pass its check.
-pub fn triangulate(
-    drawing: &Drawing,
-    limits: &Limits,
-    stop: &dyn Fn() -> bool,
-) -> Result<Mesh, MeshError> {
+pub fn triangulate(drawing: &Drawing, limits: &Limits, stop: &dyn Fn() -> bool) -> Result<Mesh, MeshError> {
     drawing.check()?;
     let graph = node(drawing);
     match attempts(drawing, &graph, *limits, stop) {
@@ -41,20 +37,12 @@ pub fn triangulate(
 }
 
 /// Tries finer and finer arcs until a mesh passes its check; the first refusal if none does.
-fn attempts(
-    drawing: &Drawing,
-    graph: &Graph,
-    limits: Limits,
-    stop: &dyn Fn() -> bool,
-) -> Result<Mesh, MeshError> {
+fn attempts(drawing: &Drawing, graph: &Graph, limits: Limits, stop: &dyn Fn() -> bool) -> Result<Mesh, MeshError> {
     let straight = graph.stretches.iter().all(|s| s.span.kind == Kind::Line);
     let finer = if straight { &[] } else { &TURNS_DEG[1..] };
     let mut result = attempt(drawing, graph, limits, stop, TURNS_DEG[0].to_radians());
     for turn_deg in finer {
-        if !matches!(
-            result,
-            Err(MeshError::TooClose { .. } | MeshError::Defective(_))
-        ) {
+        if !matches!(result, Err(MeshError::TooClose { .. } | MeshError::Defective(_))) {
             break;
         }
         let next = attempt(drawing, graph, limits, stop, turn_deg.to_radians());
@@ -66,12 +54,7 @@ fn attempts(
 }
 
 /// The last resort where strips make the mesh impossible: small triangles along the surfaces instead, and a note for each region.
-fn without_strips(
-    drawing: &Drawing,
-    graph: &Graph,
-    limits: Limits,
-    stop: &dyn Fn() -> bool,
-) -> Option<Mesh> {
+fn without_strips(drawing: &Drawing, graph: &Graph, limits: Limits, stop: &dyn Fn() -> bool) -> Option<Mesh> {
     let mut bare = drawing.clone();
     let mut notes = Vec::new();
     for (index, region) in bare.regions.iter_mut().enumerate() {
@@ -80,12 +63,7 @@ fn without_strips(
         };
         region.surface_size = region.surface_size.min(layers.first);
         let reason = NoteReason::NoStrip { size: layers.first };
-        notes.push(MeshNote {
-            region: region.id,
-            index,
-            piece: None,
-            reason,
-        });
+        notes.push(MeshNote { region: region.id, index, piece: None, reason });
     }
     if notes.is_empty() {
         return None;
@@ -109,34 +87,15 @@ fn attempt(
     let smallest = drawing.smallest();
     let within = |triangles: usize| {
         let limit = limits.max_triangles;
-        if triangles <= limit {
-            Ok(())
-        } else {
-            Err(MeshError::TooManyTriangles {
-                limit,
-                smallest_m: smallest,
-            })
-        }
+        if triangles <= limit { Ok(()) } else { Err(MeshError::TooManyTriangles { limit, smallest_m: smallest }) }
     };
     within(plan.edges.len())?;
     let mut faces = constrained(drawing, graph, &plan)?;
     let caps: Vec<f64> = std::iter::once(drawing.domain_size)
-        .chain(
-            drawing
-                .regions
-                .iter()
-                .map(|r| r.interior_size.min(drawing.domain_size)),
-        )
+        .chain(drawing.regions.iter().map(|r| r.interior_size.min(drawing.domain_size)))
         .collect();
-    let sizes = Sizes {
-        field: &field,
-        caps: &caps,
-    };
-    let budget = Budget {
-        max_triangles: limits.max_triangles,
-        smallest,
-        stop,
-    };
+    let sizes = Sizes { field: &field, caps: &caps };
+    let budget = Budget { max_triangles: limits.max_triangles, smallest, stop };
     refine(&mut faces, sizes, &plan.tags, plan.nodes, &budget)?;
     smooth(&mut faces, SMOOTHING_PASSES);
     let mut mesh = finish(drawing, graph, &plan, &faces, notes);
@@ -150,37 +109,23 @@ fn attempt(
 
 /// The size field, the strips, and what is to be triangulated.
 fn plan(drawing: &Drawing, graph: &Graph, max_turn: f64) -> (Plan, SizeField, Vec<MeshNote>) {
-    let sizes: Vec<f64> = graph
-        .stretches
-        .iter()
-        .map(|s| wanted(drawing, s, max_turn))
-        .collect();
+    let sizes: Vec<f64> = graph.stretches.iter().map(|s| wanted(drawing, s, max_turn)).collect();
     let gaps = Gaps::new(graph);
     let field = |sources| SizeField::new(sources, drawing.gradation, drawing.domain_size);
     let rough = field(sources(graph, &sizes, &gaps));
     let mut strips = layers::build(drawing, graph, &rough, max_turn);
-    let field = if strips.is_empty() {
-        rough
-    } else {
-        field(strips.sources(graph, &sizes, &gaps))
-    };
+    let field = if strips.is_empty() { rough } else { field(strips.sources(graph, &sizes, &gaps)) };
     let notes = std::mem::take(&mut strips.notes);
-    (
-        Plan::new(drawing, graph, strips, &field, max_turn),
-        field,
-        notes,
-    )
+    (Plan::new(drawing, graph, strips, &field, max_turn), field, notes)
 }
 
 /// The constrained triangulation of a plan, with sides and strip cells set on its faces.
 fn constrained(drawing: &Drawing, graph: &Graph, plan: &Plan) -> Result<Triangulation, MeshError> {
     let apart_m = 4.0 * graph.tolerance;
     let too_close = |at: Point| MeshError::TooClose { at, apart_m };
-    let mut mesh =
-        Triangulation::new(&plan.points).map_err(|i| too_close(plan.points[i as usize]))?;
+    let mut mesh = Triangulation::new(&plan.points).map_err(|i| too_close(plan.points[i as usize]))?;
     for &(a, b, tag) in &plan.edges {
-        mesh.constrain(a, b, tag)
-            .map_err(|crossed| too_close(crossed.at))?;
+        mesh.constrain(a, b, tag).map_err(|crossed| too_close(crossed.at))?;
     }
     label_sides(drawing, plan, &mut mesh).map_err(too_close)?;
     label_cells(plan, &mut mesh);

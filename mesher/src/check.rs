@@ -48,21 +48,12 @@ impl Mesh {
         for t in 0..self.triangles.len() {
             let ratio = self.least_jacobian(t);
             if ratio <= LEAST_RATIO || ratio.is_nan() {
-                return Err(MeshDefect::Inverted {
-                    triangle: t,
-                    at: self.corners(t)[0],
-                    ratio,
-                });
+                return Err(MeshDefect::Inverted { triangle: t, at: self.corners(t)[0], ratio });
             }
         }
-        let (vertices, edges, triangles) =
-            (self.vertices.len(), self.edges.len(), self.triangles.len());
+        let (vertices, edges, triangles) = (self.vertices.len(), self.edges.len(), self.triangles.len());
         if vertices + triangles != edges + 1 {
-            return Err(MeshDefect::Euler {
-                vertices,
-                edges,
-                triangles,
-            });
+            return Err(MeshDefect::Euler { vertices, edges, triangles });
         }
         self.check_area()
     }
@@ -76,11 +67,8 @@ impl Mesh {
                 used[a as usize] = true;
                 let known = &self.edges[edge as usize];
                 uses[edge as usize] += 1;
-                if known.vertices != [a.min(b), a.max(b)] || !known.triangles.contains(&(t as u32))
-                {
-                    return Err(MeshDefect::Adjacency {
-                        edge: edge as usize,
-                    });
+                if known.vertices != [a.min(b), a.max(b)] || !known.triangles.contains(&(t as u32)) {
+                    return Err(MeshDefect::Adjacency { edge: edge as usize });
                 }
             }
         }
@@ -115,35 +103,20 @@ impl Mesh {
     }
 
     fn check_area(&self) -> Result<(), MeshDefect> {
-        let straight: f64 = (0..self.triangles.len())
-            .map(|t| straight_area(self.corners(t)))
-            .sum();
-        let outer = self
-            .edges
-            .iter()
-            .zip(&self.bends)
-            .filter(|(e, _)| e.triangles[1] == NO_TRIANGLE);
-        let covered = straight
-            + outer
-                .map(|(e, b)| self.segment_area(e, *b, e.triangles[0]))
-                .sum::<f64>();
+        let straight: f64 = (0..self.triangles.len()).map(|t| straight_area(self.corners(t))).sum();
+        let outer = self.edges.iter().zip(&self.bends).filter(|(e, _)| e.triangles[1] == NO_TRIANGLE);
+        let covered = straight + outer.map(|(e, b)| self.segment_area(e, *b, e.triangles[0])).sum::<f64>();
         if (covered - self.domain_area).abs() <= 1e-8 * self.domain_area {
             Ok(())
         } else {
-            Err(MeshDefect::Area {
-                covered,
-                wanted: self.domain_area,
-            })
+            Err(MeshDefect::Area { covered, wanted: self.domain_area })
         }
     }
 
     /// Least Jacobian of the quadratic map of a triangle over that of the straight-sided one; 1 for straight sides.
     pub(crate) fn least_jacobian(&self, triangle: usize) -> f64 {
         let edges = self.triangle_edges[triangle];
-        if edges
-            .iter()
-            .all(|&e| matches!(self.bends[e as usize], Bend::Straight))
-        {
+        if edges.iter().all(|&e| matches!(self.bends[e as usize], Bend::Straight)) {
             return 1.0;
         }
         let corners = self.corners(triangle);
@@ -163,8 +136,7 @@ fn jacobian([a, b, c]: [Point; 3], bulge: [Point; 3], l: [f64; 3]) -> f64 {
     // Derivatives of the three edge bubbles L0 L1, L1 L2, L2 L0 with L0 = 1 - L1 - L2.
     let by_one = [l[0] - l[1], l[2], -l[2]];
     let by_two = [-l[1], l[1], l[0] - l[2]];
-    let column = |side: Point, by: [f64; 3]| {
-        [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>())
-    };
+    let column =
+        |side: Point, by: [f64; 3]| [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>());
     cross(column(sub(b, a), by_one), column(sub(c, a), by_two))
 }

@@ -58,11 +58,7 @@ impl Triangulation {
     fn mark(&mut self, link: u32, tag: u32) {
         let (t, i) = ((link >> 2) as usize, (link & 3) as usize);
         // A curve of the drawing is not overwritten by the plain edges of a strip.
-        let tag = if self.faces[t].tag[i] == 0 {
-            tag
-        } else {
-            self.faces[t].tag[i].min(tag)
-        };
+        let tag = if self.faces[t].tag[i] == 0 { tag } else { self.faces[t].tag[i].min(tag) };
         self.faces[t].tag[i] = tag;
         let n = self.faces[t].n[i];
         if n != NONE {
@@ -77,10 +73,7 @@ impl Triangulation {
         self.around(a, |face, k| {
             let v = &self.faces[face as usize].v;
             let (x, y) = (v[NEXT[k]], v[LAST[k]]);
-            let (right, left) = (
-                orient(from, to, self.point(x)),
-                orient(from, to, self.point(y)),
-            );
+            let (right, left) = (orient(from, to, self.point(x)), orient(from, to, self.point(y)));
             if right == 0.0 && forward(x) {
                 return Some(Ahead::Vertex(x));
             }
@@ -120,12 +113,7 @@ impl Triangulation {
     }
 
     /// Flips the crossed edges away; returns the edges made.
-    fn clear(
-        &mut self,
-        a: u32,
-        b: u32,
-        mut edges: VecDeque<(u32, u32)>,
-    ) -> Result<Vec<(u32, u32)>, Crossed> {
+    fn clear(&mut self, a: u32, b: u32, mut edges: VecDeque<(u32, u32)>) -> Result<Vec<(u32, u32)>, Crossed> {
         let (from, to) = (self.point(a), self.point(b));
         let mut made = Vec::new();
         let mut patience = 64 * edges.len() * edges.len() + 1000;

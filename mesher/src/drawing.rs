@@ -57,9 +57,7 @@ pub struct Limits {
 
 impl Default for Limits {
     fn default() -> Self {
-        Self {
-            max_triangles: 2_000_000,
-        }
+        Self { max_triangles: 2_000_000 }
     }
 }
 
@@ -80,12 +78,7 @@ impl Drawing {
             if value > above && value <= limit {
                 Ok(())
             } else {
-                Err(MeshError::BadNumber {
-                    what,
-                    value,
-                    above,
-                    limit,
-                })
+                Err(MeshError::BadNumber { what, value, above, limit })
             }
         };
         let least = 1e-8 * self.extent();
@@ -93,20 +86,11 @@ impl Drawing {
         size("the domain's element size in metres", self.domain_size)?;
         within("the gradation", self.gradation, 1e-3, 2.0)?;
         if let Some(boundary) = self.boundary_size {
-            size(
-                "the element size along the domain's arcs in metres",
-                boundary,
-            )?;
+            size("the element size along the domain's arcs in metres", boundary)?;
         }
         for region in &self.regions {
-            size(
-                "a region's interior element size in metres",
-                region.interior_size,
-            )?;
-            size(
-                "a region's surface element size in metres",
-                region.surface_size,
-            )?;
+            size("a region's interior element size in metres", region.interior_size)?;
+            size("a region's surface element size in metres", region.surface_size)?;
             if let Some(layers) = region.layers {
                 size("the thickness of the first layer in metres", layers.first)?;
                 within("the growth of the layers", layers.growth, 0.999_999, 4.0)?;
@@ -118,9 +102,7 @@ impl Drawing {
 
     /// Smallest element size asked for, in metres.
     pub(crate) fn smallest(&self) -> f64 {
-        self.regions.iter().fold(self.domain_size, |least, r| {
-            least.min(r.interior_size).min(r.surface_size)
-        })
+        self.regions.iter().fold(self.domain_size, |least, r| least.min(r.interior_size).min(r.surface_size))
     }
 
     /// Index into the side convention of the topmost region at a point inside the domain.
@@ -133,11 +115,7 @@ impl Drawing {
     }
 
     pub(crate) fn region_of(&self, side: u32) -> Option<&Region> {
-        if side == DOMAIN || side == OUTSIDE {
-            None
-        } else {
-            self.regions.get(side as usize - 1)
-        }
+        if side == DOMAIN || side == OUTSIDE { None } else { self.regions.get(side as usize - 1) }
     }
 
     pub(crate) fn id_of(&self, side: u32) -> RegionId {

@@ -57,9 +57,7 @@ pub enum OutlineError {
         at: Point,
     },
     /// The pieces enclose nothing.
-    #[error(
-        "the outline encloses {area} m2; it must enclose more than 1e-12 of the square of its extent"
-    )]
+    #[error("the outline encloses {area} m2; it must enclose more than 1e-12 of the square of its extent")]
     NoArea {
         /// Enclosed area in square metres.
         area: f64,
@@ -113,9 +111,7 @@ pub enum MeshError {
     #[error("meshing was stopped on request")]
     Stopped,
     /// The finished mesh did not pass its own check.
-    #[error(
-        "the mesh is defective: {0}; enlarge the narrowest gap or the smallest angle of the drawing"
-    )]
+    #[error("the mesh is defective: {0}; enlarge the narrowest gap or the smallest angle of the drawing")]
     Defective(#[from] MeshDefect),
 }
 

@@ -16,23 +16,12 @@ pub(crate) fn meetings(a: &Span, b: &Span, tolerance: f64) -> Vec<Point> {
         (Kind::Line, Kind::Line) => line_line(a, b),
         (Kind::Line, Kind::Arc { centre, radius, .. }) => line_circle(a, centre, radius, tolerance),
         (Kind::Arc { centre, radius, .. }, Kind::Line) => line_circle(b, centre, radius, tolerance),
-        (
-            Kind::Arc {
-                centre: c,
-                radius: r,
-                ..
-            },
-            Kind::Arc {
-                centre: d,
-                radius: q,
-                ..
-            },
-        ) => circle_circle(c, r, d, q, tolerance),
+        (Kind::Arc { centre: c, radius: r, .. }, Kind::Arc { centre: d, radius: q, .. }) => {
+            circle_circle(c, r, d, q, tolerance)
+        }
     };
     for point in crossings {
-        let known = found
-            .iter()
-            .any(|&other| distance(other, point) <= tolerance);
+        let known = found.iter().any(|&other| distance(other, point) <= tolerance);
         if !known && a.distance(point) <= tolerance && b.distance(point) <= tolerance {
             found.push(point);
         }
@@ -53,11 +42,7 @@ fn line_line(a: &Span, b: &Span) -> Vec<Point> {
 /// Where the endless line through a straight span meets a circle.
 pub(crate) fn line_circle(line: &Span, centre: Point, radius: f64, tolerance: f64) -> Vec<Point> {
     let direction = line.tangent(0.0);
-    let foot = along(
-        line.start,
-        direction,
-        dot(sub(centre, line.start), direction),
-    );
+    let foot = along(line.start, direction, dot(sub(centre, line.start), direction));
     let depth = distance(foot, centre);
     if depth > radius + tolerance {
         return Vec::new();

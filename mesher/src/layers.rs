@@ -48,11 +48,7 @@ pub(crate) struct Strips {
 impl Strips {
     fn none(graph: &Graph) -> Self {
         let n = graph.stretches.len();
-        Self {
-            divisions: vec![None; n],
-            pins: vec![[Vec::new(), Vec::new()]; n],
-            ..Self::default()
-        }
+        Self { divisions: vec![None; n], pins: vec![[Vec::new(), Vec::new()]; n], ..Self::default() }
     }
 
     pub(crate) fn is_empty(&self) -> bool {
@@ -78,11 +74,7 @@ impl Strips {
 
     pub(crate) fn point(&self, graph: &Graph, id: u32) -> Point {
         let id = id as usize;
-        if id < graph.points.len() {
-            graph.points[id]
-        } else {
-            self.points[id - graph.points.len()]
-        }
+        if id < graph.points.len() { graph.points[id] } else { self.points[id - graph.points.len()] }
     }
 }
 
@@ -116,10 +108,7 @@ pub(crate) fn build(drawing: &Drawing, graph: &Graph, field: &SizeField, max_tur
         return strips;
     }
     divide_surfaces(graph, &loops, field, max_turn, &mut strips);
-    let mut chains: Vec<Chain> = loops
-        .iter()
-        .flat_map(|l| chains(graph, l, &strips))
-        .collect();
+    let mut chains: Vec<Chain> = loops.iter().flat_map(|l| chains(graph, l, &strips)).collect();
     let bare = strips;
     let mut strips = emit::emit(graph, &chains, &bare);
     for round in 0..GUARD_ROUNDS {
@@ -135,11 +124,8 @@ pub(crate) fn build(drawing: &Drawing, graph: &Graph, field: &SizeField, max_tur
 
 /// Sizes along the surfaces, and notes where less was placed than wanted.
 fn describe(drawing: &Drawing, graph: &Graph, chains: &[Chain], emitted: &mut emit::Emitted) {
-    let covered: std::collections::HashSet<(u32, u32)> = emitted
-        .covered
-        .iter()
-        .map(|&(a, b)| (a.min(b), a.max(b)))
-        .collect();
+    let covered: std::collections::HashSet<(u32, u32)> =
+        emitted.covered.iter().map(|&(a, b)| (a.min(b), a.max(b))).collect();
     let strips = &mut emitted.result;
     for (i, stretch) in graph.stretches.iter().enumerate() {
         let Some(chain) = &strips.divisions[i] else {
@@ -168,20 +154,12 @@ fn describe(drawing: &Drawing, graph: &Graph, chains: &[Chain], emitted: &mut em
             let reason = if placed == 0 {
                 NoteReason::NoStrip { size: layers.first }
             } else if placed < layers.count {
-                NoteReason::LayersCut {
-                    placed,
-                    wanted: layers.count,
-                }
+                NoteReason::LayersCut { placed, wanted: layers.count }
             } else {
                 continue;
             };
             let piece = on.iter().find(|p| p.0 == chain.region).map(|p| p.1);
-            strips.notes.push(MeshNote {
-                region: region.id,
-                index: chain.region,
-                piece,
-                reason,
-            });
+            strips.notes.push(MeshNote { region: region.id, index: chain.region, piece, reason });
         }
     }
 }

@@ -128,11 +128,7 @@ impl Mesh {
                     let [a, b, c] = self.corners(t);
                     let lo = [a[0].min(b[0]).min(c[0]), a[1].min(b[1]).min(c[1])];
                     let hi = [a[0].max(b[0]).max(c[0]), a[1].max(b[1]).max(c[1])];
-                    Item {
-                        lo,
-                        hi,
-                        weight: 0.0,
-                    }
+                    Item { lo, hi, weight: 0.0 }
                 })
                 .collect();
             Tree::new(&items)
@@ -142,9 +138,7 @@ impl Mesh {
             let shares = barycentric(self.corners(t as usize), p);
             let least = |s: &[f64; 3]| s[0].min(s[1]).min(s[2]);
             // Rounding may leave a point on an edge a hair outside both of its triangles.
-            if least(&shares) >= -1e-12
-                && best.as_ref().is_none_or(|b| least(&shares) > least(&b.1))
-            {
+            if least(&shares) >= -1e-12 && best.as_ref().is_none_or(|b| least(&shares) > least(&b.1)) {
                 best = Some((t as usize, shares));
             }
             best.as_ref().is_some_and(|b| least(&b.1) >= 0.0)
@@ -189,9 +183,6 @@ pub(crate) fn straight_area([a, b, c]: [Point; 3]) -> f64 {
 
 fn barycentric([a, b, c]: [Point; 3], p: Point) -> [f64; 3] {
     let whole = cross(sub(b, a), sub(c, a));
-    let (u, v) = (
-        cross(sub(c, b), sub(p, b)) / whole,
-        cross(sub(a, c), sub(p, c)) / whole,
-    );
+    let (u, v) = (cross(sub(c, b), sub(p, b)) / whole, cross(sub(a, c), sub(p, c)) / whole);
     [u, v, 1.0 - u - v]
 }

@@ -48,12 +48,7 @@ impl Mesh {
                 points.push(interior(nodes, &points));
             }
         }
-        NodeSet {
-            order,
-            points,
-            elements,
-            vertex_count: self.vertices.len(),
-        }
+        NodeSet { order, points, elements, vertex_count: self.vertices.len() }
     }
 
     /// Point of an edge at parameter `t` from its first vertex, on its true curve.

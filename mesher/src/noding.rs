@@ -69,12 +69,7 @@ impl Nodes {
 pub(crate) fn node(drawing: &Drawing) -> Graph {
     let tolerance = 1e-9 * drawing.extent();
     let sources = sources(drawing);
-    let mut nodes = Nodes {
-        points: Vec::new(),
-        cells: HashMap::new(),
-        origin: drawing.domain.bounds().0,
-        tolerance,
-    };
+    let mut nodes = Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
     let cuts = cut(&sources, tolerance);
     place_on_domain(&sources, &cuts, &mut nodes);
     for source in &sources {
@@ -92,11 +87,7 @@ pub(crate) fn node(drawing: &Drawing) -> Graph {
     }
     stretches.retain(|s| s.sides[0] != s.sides[1]);
     let points = keep_used(&nodes.points, &mut stretches);
-    Graph {
-        points,
-        stretches,
-        tolerance,
-    }
+    Graph { points, stretches, tolerance }
 }
 
 impl Graph {
@@ -140,12 +131,7 @@ fn keep_used(points: &[Point], stretches: &mut [Stretch]) -> Vec<Point> {
 
 /// Places the corners of the domain, then what meets its outline exactly on it: nothing may lie a rounding error outside.
 fn place_on_domain(sources: &[Source], cuts: &[Vec<Point>], nodes: &mut Nodes) {
-    let domain = || {
-        sources
-            .iter()
-            .zip(cuts)
-            .filter(|(s, _)| s.domain_piece.is_some())
-    };
+    let domain = || sources.iter().zip(cuts).filter(|(s, _)| s.domain_piece.is_some());
     for (source, _) in domain() {
         nodes.place(source.span.start);
     }
@@ -158,30 +144,18 @@ fn place_on_domain(sources: &[Source], cuts: &[Vec<Point>], nodes: &mut Nodes) {
 
 fn sources(drawing: &Drawing) -> Vec<Source> {
     let domain = drawing.domain.spans().iter().enumerate();
-    let mut all: Vec<Source> = domain
-        .map(|(i, &span)| Source {
-            span,
-            domain_piece: Some(i),
-            region_piece: None,
-        })
-        .collect();
+    let mut all: Vec<Source> =
+        domain.map(|(i, &span)| Source { span, domain_piece: Some(i), region_piece: None }).collect();
     for (k, region) in drawing.regions.iter().enumerate() {
         let pieces = region.outline.spans().iter().enumerate();
-        all.extend(pieces.map(|(i, &span)| Source {
-            span,
-            domain_piece: None,
-            region_piece: Some((k, i)),
-        }));
+        all.extend(pieces.map(|(i, &span)| Source { span, domain_piece: None, region_piece: Some((k, i)) }));
     }
     all
 }
 
 /// Points at which each source is to be cut, its own ends included.
 fn cut(sources: &[Source], tolerance: f64) -> Vec<Vec<Point>> {
-    let mut cuts: Vec<Vec<Point>> = sources
-        .iter()
-        .map(|s| vec![s.span.start, s.span.end])
-        .collect();
+    let mut cuts: Vec<Vec<Point>> = sources.iter().map(|s| vec![s.span.start, s.span.end]).collect();
     let boxes: Vec<_> = sources.iter().map(|s| s.span.bounds()).collect();
     for i in 0..sources.len() {
         for j in i + 1..sources.len() {
@@ -204,12 +178,7 @@ fn parts(source: &Source, cuts: &[Point], nodes: &mut Nodes) -> Vec<(Span, [u32;
     let mut stops: Vec<(f64, u32)> = cuts
         .iter()
         .enumerate()
-        .map(|(i, &p)| {
-            (
-                if i < 2 { i as f64 } else { span.project(p) },
-                nodes.place(p),
-            )
-        })
+        .map(|(i, &p)| (if i < 2 { i as f64 } else { span.project(p) }, nodes.place(p)))
         .collect();
     stops.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
     stops.dedup_by_key(|stop| stop.1);
@@ -263,10 +232,6 @@ fn sides(drawing: &Drawing, stretch: &Stretch, tolerance: f64) -> [u32; 2] {
     let normal = left_of(stretch.span.tangent(0.5));
     let middle = stretch.span.at(0.5);
     let step = (2.2 * tolerance).min(0.1 * stretch.span.length());
-    let right = if stretch.on_domain.is_some() {
-        OUTSIDE
-    } else {
-        drawing.side_at(along(middle, normal, -step))
-    };
+    let right = if stretch.on_domain.is_some() { OUTSIDE } else { drawing.side_at(along(middle, normal, -step)) };
     [drawing.side_at(along(middle, normal, step)), right]
 }

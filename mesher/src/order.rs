@@ -19,17 +19,8 @@ pub(crate) fn bounds(points: &[Point]) -> (Point, Point) {
 pub(crate) fn along_curve(points: &[Point]) -> Vec<u32> {
     let (lo, hi) = bounds(points);
     let scale = 65535.0 / (hi[0] - lo[0]).max(hi[1] - lo[1]).max(f64::MIN_POSITIVE);
-    let key = |p: &Point| {
-        hilbert(
-            ((p[0] - lo[0]) * scale) as u32,
-            ((p[1] - lo[1]) * scale) as u32,
-        )
-    };
-    let mut order: Vec<(u64, u32)> = points
-        .iter()
-        .enumerate()
-        .map(|(i, p)| (key(p), i as u32))
-        .collect();
+    let key = |p: &Point| hilbert(((p[0] - lo[0]) * scale) as u32, ((p[1] - lo[1]) * scale) as u32);
+    let mut order: Vec<(u64, u32)> = points.iter().enumerate().map(|(i, p)| (key(p), i as u32)).collect();
     order.sort_unstable();
     order.into_iter().map(|(_, i)| i).collect()
 }

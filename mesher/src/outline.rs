@@ -36,11 +36,7 @@ impl Piece {
     fn span(&self, from: Point) -> Span {
         match *self {
             Self::Line { to } => Span::line(from, to),
-            Self::Arc {
-                to,
-                centre,
-                counter_clockwise,
-            } => Span::arc(from, to, centre, counter_clockwise),
+            Self::Arc { to, centre, counter_clockwise } => Span::arc(from, to, centre, counter_clockwise),
         }
     }
 }
@@ -108,11 +104,7 @@ impl Outline {
     pub fn pieces(&self) -> Vec<Piece> {
         let piece = |s: &Span| match s.kind {
             Kind::Line => Piece::Line { to: s.end },
-            Kind::Arc { centre, sweep, .. } => Piece::Arc {
-                to: s.end,
-                centre,
-                counter_clockwise: sweep > 0.0,
-            },
+            Kind::Arc { centre, sweep, .. } => Piece::Arc { to: s.end, centre, counter_clockwise: sweep > 0.0 },
         };
         self.spans.iter().map(piece).collect()
     }
@@ -147,10 +139,7 @@ impl Outline {
 
     /// Distance of a point from the outline itself, in metres.
     pub fn distance(&self, p: Point) -> f64 {
-        self.spans
-            .iter()
-            .map(|s| s.distance(p))
-            .fold(f64::INFINITY, f64::min)
+        self.spans.iter().map(|s| s.distance(p)).fold(f64::INFINITY, f64::min)
     }
 
     /// Whether the areas of two outlines have more in common than points or edges where they touch.
@@ -169,11 +158,7 @@ impl Outline {
         self.spans.iter().any(|span| {
             let mut cuts = vec![0.0, 1.0];
             for across in &other.spans {
-                cuts.extend(
-                    meetings(span, across, tolerance)
-                        .into_iter()
-                        .map(|p| span.project(p)),
-                );
+                cuts.extend(meetings(span, across, tolerance).into_iter().map(|p| span.project(p)));
             }
             cuts.sort_by(f64::total_cmp);
             cuts.windows(2).any(|pair| {
@@ -181,11 +166,7 @@ impl Outline {
                     return false;
                 }
                 let t = 0.5 * (pair[0] + pair[1]);
-                other.contains(along(
-                    span.at(t),
-                    left_of(span.tangent(t)),
-                    10.0 * tolerance,
-                ))
+                other.contains(along(span.at(t), left_of(span.tangent(t)), 10.0 * tolerance))
             })
         })
     }
@@ -198,15 +179,9 @@ impl Outline {
         let moved = |p: Point| along(p, shift, 1.0);
         let pieces = self.pieces().into_iter().map(|piece| match piece {
             Piece::Line { to } => Piece::Line { to: moved(to) },
-            Piece::Arc {
-                to,
-                centre,
-                counter_clockwise,
-            } => Piece::Arc {
-                to: moved(to),
-                centre: moved(centre),
-                counter_clockwise,
-            },
+            Piece::Arc { to, centre, counter_clockwise } => {
+                Piece::Arc { to: moved(to), centre: moved(centre), counter_clockwise }
+            }
         });
         Self::new(moved(self.start()), pieces.collect())
     }
@@ -233,40 +208,25 @@ fn check_pieces(start: Point, pieces: &[Piece]) -> Result<(), OutlineError> {
     let finite = |p: Point| p[0].abs() < 1e150 && p[1].abs() < 1e150;
     let mut from = start;
     if !finite(start) {
-        return Err(OutlineError::NotFinite {
-            index: 0,
-            point: start,
-        });
+        return Err(OutlineError::NotFinite { index: 0, point: start });
     }
     let arcs = pieces.iter().any(|p| matches!(p, Piece::Arc { .. }));
     if pieces.len() < if arcs { 2 } else { 3 } {
-        return Err(OutlineError::TooFewPieces {
-            count: pieces.len(),
-        });
+        return Err(OutlineError::TooFewPieces { count: pieces.len() });
     }
     for (i, piece) in pieces.iter().enumerate() {
         let to = piece.to();
         if !finite(to) {
-            return Err(OutlineError::NotFinite {
-                index: i + 1,
-                point: to,
-            });
+            return Err(OutlineError::NotFinite { index: i + 1, point: to });
         }
         if let Piece::Arc { centre, .. } = *piece {
             if !finite(centre) {
-                return Err(OutlineError::NotFinite {
-                    index: i + 1,
-                    point: centre,
-                });
+                return Err(OutlineError::NotFinite { index: i + 1, point: centre });
             }
             let (start_radius, end_radius) = (distance(from, centre), distance(to, centre));
             let apart = (start_radius - end_radius).abs();
             if apart > 1e-9 * start_radius.max(end_radius) || start_radius == 0.0 {
-                return Err(OutlineError::NotOnCircle {
-                    piece: i,
-                    start_radius,
-                    end_radius,
-                });
+                return Err(OutlineError::NotOnCircle { piece: i, start_radius, end_radius });
             }
         }
         let d = sub(from, to);
@@ -295,15 +255,8 @@ fn check_crossings(spans: &[Span], tolerance: f64) -> Result<(), OutlineError> {
                 shared.push(spans[0].start);
             }
             let strange = |p: &Point| shared.iter().all(|&s| distance(s, *p) > 100.0 * tolerance);
-            if let Some(at) = meetings(&spans[i], &spans[j], tolerance)
-                .into_iter()
-                .find(strange)
-            {
-                return Err(OutlineError::SelfCrossing {
-                    first: i,
-                    second: j,
-                    at,
-                });
+            if let Some(at) = meetings(&spans[i], &spans[j], tolerance).into_iter().find(strange) {
+                return Err(OutlineError::SelfCrossing { first: i, second: j, at });
             }
         }
     }

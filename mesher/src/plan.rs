@@ -39,45 +39,24 @@ pub(crate) struct Plan {
 }
 
 impl Plan {
-    pub(crate) fn new(
-        drawing: &Drawing,
-        graph: &Graph,
-        strips: Strips,
-        field: &SizeField,
-        max_turn: f64,
-    ) -> Self {
-        let mut plan = Self {
-            points: graph.points.clone(),
-            nodes: graph.points.len(),
-            ..Self::default()
-        };
+    pub(crate) fn new(drawing: &Drawing, graph: &Graph, strips: Strips, field: &SizeField, max_turn: f64) -> Self {
+        let mut plan = Self { points: graph.points.clone(), nodes: graph.points.len(), ..Self::default() };
         plan.points.extend(&strips.points);
         for (i, stretch) in graph.stretches.iter().enumerate() {
             let circle = match stretch.span.kind {
                 Kind::Line => None,
                 Kind::Arc { centre, radius, .. } => Some((centre, radius)),
             };
-            plan.tags.push(Tag {
-                ends: Some(stretch.ends),
-                sides: Some(stretch.sides),
-                circle,
-                pole: None,
-            });
+            plan.tags.push(Tag { ends: Some(stretch.ends), sides: Some(stretch.sides), circle, pole: None });
             let chain = match &strips.divisions[i] {
                 Some(fixed) => fixed.clone(),
                 None => plan.divide(drawing, graph, i, &strips, field, max_turn),
             };
-            plan.edges
-                .extend(chain.windows(2).map(|e| (e[0], e[1], i as u32 + 1)));
+            plan.edges.extend(chain.windows(2).map(|e| (e[0], e[1], i as u32 + 1)));
         }
         let first = plan.tags.len() as u32;
         plan.tags.extend(strips.tags);
-        plan.edges.extend(
-            strips
-                .edges
-                .iter()
-                .map(|&(a, b, tag)| (a, b, first + tag + 1)),
-        );
+        plan.edges.extend(strips.edges.iter().map(|&(a, b, tag)| (a, b, first + tag + 1)));
         plan.cells = strips.cells;
         plan
     }
@@ -93,14 +72,9 @@ impl Plan {
         max_turn: f64,
     ) -> Vec<u32> {
         let stretch = &graph.stretches[index];
-        let cap = stretch
-            .sides
-            .iter()
-            .fold(drawing.domain_size, |least, &side| {
-                drawing
-                    .region_of(side)
-                    .map_or(least, |r| least.min(r.interior_size))
-            });
+        let cap = stretch.sides.iter().fold(drawing.domain_size, |least, &side| {
+            drawing.region_of(side).map_or(least, |r| least.min(r.interior_size))
+        });
         let [head, tail] = &strips.pins[index];
         let mut chain = vec![stretch.ends[0]];
         chain.extend(head.iter().map(|pin| pin.1));

@@ -28,9 +28,7 @@ pub(crate) fn in_circle(a: Point, b: Point, c: Point, d: Point) -> f64 {
     let (ab, ba) = (u[0] * v[1], v[0] * u[1]);
     let (lift_a, lift_b, lift_c) = (dot(u, u), dot(v, v), dot(w, w));
     let det = lift_a * (bc - cb) + lift_b * (ca - ac) + lift_c * (ab - ba);
-    let permanent = (bc.abs() + cb.abs()) * lift_a
-        + (ca.abs() + ac.abs()) * lift_b
-        + (ab.abs() + ba.abs()) * lift_c;
+    let permanent = (bc.abs() + cb.abs()) * lift_a + (ca.abs() + ac.abs()) * lift_b + (ab.abs() + ba.abs()) * lift_c;
     if det.abs() > 1.110_223_024_625_157_7e-15 * permanent {
         return det;
     }

@@ -49,11 +49,7 @@ impl Mesh {
 /// Smallest angle of a triangle, in degrees.
 pub(crate) fn least_angle_deg([a, b, c]: [Point; 3]) -> f64 {
     let double = cross(sub(b, a), sub(c, a));
-    let sides = [
-        distance_squared(b, c),
-        distance_squared(c, a),
-        distance_squared(a, b),
-    ];
+    let sides = [distance_squared(b, c), distance_squared(c, a), distance_squared(a, b)];
     let opposite = |i: usize| {
         let cosine = sides[(i + 1) % 3] + sides[(i + 2) % 3] - sides[i];
         (2.0 * double).atan2(cosine).to_degrees()

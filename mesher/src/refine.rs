@@ -55,15 +55,7 @@ pub(crate) fn refine(
 ) -> Result<(), MeshError> {
     let wanted = wanted(mesh, sizes.field);
     let on = marks(mesh, nodes);
-    let mut refiner = Refiner {
-        mesh,
-        sizes,
-        tags,
-        wanted,
-        on,
-        queue: VecDeque::new(),
-        encroached: Vec::new(),
-    };
+    let mut refiner = Refiner { mesh, sizes, tags, wanted, on, queue: VecDeque::new(), encroached: Vec::new() };
     refiner.mesh.fresh = (0..refiner.mesh.faces.len() as u32).collect();
     refiner.queue_fresh();
     let mut steps = 0u32;
@@ -77,10 +69,7 @@ pub(crate) fn refine(
         }
         // A quarter more for what lies outside the domain; the finished mesh is counted exactly.
         if refiner.mesh.faces.len() > budget.max_triangles + budget.max_triangles / 4 + 1000 {
-            return Err(MeshError::TooManyTriangles {
-                limit: budget.max_triangles,
-                smallest_m: budget.smallest,
-            });
+            return Err(MeshError::TooManyTriangles { limit: budget.max_triangles, smallest_m: budget.smallest });
         }
         if let Some(target) = refiner.target(face) {
             refiner.insert(face, vertices, target);
@@ -93,11 +82,7 @@ pub(crate) fn refine(
 /// Wanted size at every vertex of a face that may be refined; the others are not asked for.
 fn wanted(mesh: &Triangulation, field: &SizeField) -> Vec<f64> {
     let mut wanted = vec![f64::NAN; mesh.points.len()];
-    for face in mesh
-        .faces
-        .iter()
-        .filter(|f| f.side != NONE && f.cell == NONE)
-    {
+    for face in mesh.faces.iter().filter(|f| f.side != NONE && f.cell == NONE) {
         for v in face.v.map(|v| v as usize) {
             if wanted[v].is_nan() {
                 wanted[v] = field.at(mesh.points[v]);
@@ -143,11 +128,7 @@ impl Refiner<'_> {
     /// Where a point is to be added for a face that is too large or too sharp.
     fn target(&self, face: u32) -> Option<Point> {
         let [a, b, c] = self.mesh.corners(face);
-        let squares = [
-            distance_squared(b, c),
-            distance_squared(c, a),
-            distance_squared(a, b),
-        ];
+        let squares = [distance_squared(b, c), distance_squared(c, a), distance_squared(a, b)];
         let mut i = 0;
         for k in 1..3 {
             if squares[k] < squares[i] {
@@ -181,14 +162,10 @@ impl Refiner<'_> {
         if shortest < FLOOR * size {
             return true;
         }
-        f.tag[i] == 0
-            && on_x != on_y
-            && on_x != NODE
-            && on_y != NODE
-            && {
-                let ends = |tag: u32| self.tags[tag as usize - 1].ends;
-                matches!((ends(on_x), ends(on_y)), (Some(p), Some(q)) if p.iter().any(|e| q.contains(e)))
-            }
+        f.tag[i] == 0 && on_x != on_y && on_x != NODE && on_y != NODE && {
+            let ends = |tag: u32| self.tags[tag as usize - 1].ends;
+            matches!((ends(on_x), ends(on_y)), (Some(p), Some(q)) if p.iter().any(|e| q.contains(e)))
+        }
     }
 
     /// The circumcentre, or a point nearer to the shortest edge that makes a good triangle with it.
@@ -207,11 +184,7 @@ impl Refiner<'_> {
             let square = (leg * leg - 0.25 * shortest * shortest).max(0.25 * shortest * shortest);
             reach = reach.min(square.sqrt());
         }
-        if reach < depth {
-            along(middle, out, reach / depth)
-        } else {
-            centre
-        }
+        if reach < depth { along(middle, out, reach / depth) } else { centre }
     }
 
     fn insert(&mut self, face: u32, vertices: [u32; 3], target: Point) {
@@ -253,11 +226,7 @@ impl Refiner<'_> {
             least.min(self.wanted[v as usize] + gradation * distance(p, self.mesh.point(v)))
         });
         // A point on a constrained edge belongs to it; a free one to nothing.
-        let tag = if let Place::OnEdge(link) = place {
-            self.mesh.tag(link)
-        } else {
-            0
-        };
+        let tag = if let Place::OnEdge(link) = place { self.mesh.tag(link) } else { 0 };
         if tag != 0 {
             if let Place::OnEdge(link) = place {
                 self.split(link);
@@ -265,8 +234,7 @@ impl Refiner<'_> {
             return;
         }
         let id = self.mesh.add_point(p);
-        self.wanted
-            .push(self.sizes.field.at_most(p, bound * (1.0 + 1e-12)));
+        self.wanted.push(self.sizes.field.at_most(p, bound * (1.0 + 1e-12)));
         self.on.push(0);
         match place {
             Place::Inside(face) => self.mesh.insert_inside(face, id),
@@ -280,11 +248,7 @@ impl Refiner<'_> {
         let face = self.mesh.faces[(link >> 2) as usize];
         let i = (link & 3) as usize;
         let (tag, n) = (face.tag[i], face.n[i]);
-        if tag == 0
-            || n == NONE
-            || face.cell != NONE
-            || self.mesh.faces[(n >> 2) as usize].cell != NONE
-        {
+        if tag == 0 || n == NONE || face.cell != NONE || self.mesh.faces[(n >> 2) as usize].cell != NONE {
             return false;
         }
         let (a, b) = self.mesh.edge(link);
@@ -297,10 +261,7 @@ impl Refiner<'_> {
         let w = self.mesh.faces[(n >> 2) as usize].v[(n & 3) as usize];
         let (pv, pw) = (self.mesh.point(face.v[i]), self.mesh.point(w));
         let fits = |x: Point| {
-            orient(pv, pa, x) > 0.0
-                && orient(pv, x, pb) > 0.0
-                && orient(pw, pb, x) > 0.0
-                && orient(pw, x, pa) > 0.0
+            orient(pv, pa, x) > 0.0 && orient(pv, x, pb) > 0.0 && orient(pw, pb, x) > 0.0 && orient(pw, x, pa) > 0.0
         };
         let x = self.split_point(tag, a, b, length);
         if !fits(x) {
@@ -326,11 +287,7 @@ impl Refiner<'_> {
             return middle;
         }
         let share = (0.5 * length).log2().round().exp2() / length;
-        if at_node(a) {
-            between(pa, pb, share)
-        } else {
-            between(pb, pa, share)
-        }
+        if at_node(a) { between(pa, pb, share) } else { between(pb, pa, share) }
     }
 
     /// Constrained edges around the cavity of a new point that see it under too wide an angle.

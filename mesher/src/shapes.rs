@@ -13,11 +13,7 @@ impl Outline {
         let Some(&start) = points.first() else {
             return Err(OutlineError::TooFewPieces { count: 0 });
         };
-        let pieces = points[1..]
-            .iter()
-            .chain([&start])
-            .map(|&to| Piece::Line { to })
-            .collect();
+        let pieces = points[1..].iter().chain([&start]).map(|&to| Piece::Line { to }).collect();
         Self::new(start, pieces)
     }
 
@@ -39,11 +35,7 @@ impl Outline {
         }
         let half = 0.5 * (hi[0] - lo[0]).min(hi[1] - lo[1]);
         if !(fillet_m > 0.0 && fillet_m <= half * (1.0 + 1e-12)) {
-            return Err(OutlineError::BadSize {
-                what: "fillet radius",
-                value: fillet_m,
-                limit: half,
-            });
+            return Err(OutlineError::BadSize { what: "fillet radius", value: fillet_m, limit: half });
         }
         let f = fillet_m.min(half);
         let (a, b, c, d) = (lo[0] + f, hi[0] - f, lo[1] + f, hi[1] - f);
@@ -61,11 +53,7 @@ impl Outline {
             if distance(from, line_end) > least {
                 pieces.push(Piece::Line { to: line_end });
             }
-            pieces.push(Piece::Arc {
-                to: arc_end,
-                centre,
-                counter_clockwise: true,
-            });
+            pieces.push(Piece::Arc { to: arc_end, centre, counter_clockwise: true });
             from = arc_end;
         }
         Self::new(start, pieces)
@@ -77,15 +65,8 @@ impl Outline {
     /// If the radius is not positive and finite.
     pub fn circle(centre: Point, radius: f64) -> Result<Self, OutlineError> {
         positive_radius(radius)?;
-        let (right, left) = (
-            [centre[0] + radius, centre[1]],
-            [centre[0] - radius, centre[1]],
-        );
-        let arc = |to| Piece::Arc {
-            to,
-            centre,
-            counter_clockwise: true,
-        };
+        let (right, left) = ([centre[0] + radius, centre[1]], [centre[0] - radius, centre[1]]);
+        let arc = |to| Piece::Arc { to, centre, counter_clockwise: true };
         Self::new(right, vec![arc(left), arc(right)])
     }
 
@@ -96,11 +77,7 @@ impl Outline {
     pub fn half_disc(centre_z: f64, radius: f64) -> Result<Self, OutlineError> {
         positive_radius(radius)?;
         let (low, high) = ([0.0, centre_z - radius], [0.0, centre_z + radius]);
-        let arc = Piece::Arc {
-            to: high,
-            centre: [0.0, centre_z],
-            counter_clockwise: true,
-        };
+        let arc = Piece::Arc { to: high, centre: [0.0, centre_z], counter_clockwise: true };
         Self::new(low, vec![arc, Piece::Line { to: low }])
     }
 
@@ -110,20 +87,9 @@ impl Outline {
     /// If the radius is not positive and finite.
     pub fn quarter_disc(centre_z: f64, radius: f64) -> Result<Self, OutlineError> {
         positive_radius(radius)?;
-        let (origin, right, high) = (
-            [0.0, centre_z],
-            [radius, centre_z],
-            [0.0, centre_z + radius],
-        );
-        let arc = Piece::Arc {
-            to: high,
-            centre: origin,
-            counter_clockwise: true,
-        };
-        Self::new(
-            origin,
-            vec![Piece::Line { to: right }, arc, Piece::Line { to: origin }],
-        )
+        let (origin, right, high) = ([0.0, centre_z], [radius, centre_z], [0.0, centre_z + radius]);
+        let arc = Piece::Arc { to: high, centre: origin, counter_clockwise: true };
+        Self::new(origin, vec![Piece::Line { to: right }, arc, Piece::Line { to: origin }])
     }
 }
 
@@ -131,10 +97,6 @@ fn positive_radius(radius: f64) -> Result<(), OutlineError> {
     if radius > 0.0 && radius.is_finite() {
         Ok(())
     } else {
-        Err(OutlineError::BadSize {
-            what: "radius",
-            value: radius,
-            limit: f64::MAX,
-        })
+        Err(OutlineError::BadSize { what: "radius", value: radius, limit: f64::MAX })
     }
 }

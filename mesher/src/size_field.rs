@@ -28,12 +28,7 @@ pub(crate) struct SizeField {
 impl SizeField {
     pub(crate) fn new(sources: Vec<SizeSource>, gradation: f64, largest: f64) -> Self {
         let items: Vec<Item> = sources.iter().map(|s| item_of(s.ends, s.size)).collect();
-        Self {
-            tree: Tree::new(&items),
-            sources,
-            gradation,
-            largest,
-        }
+        Self { tree: Tree::new(&items), sources, gradation, largest }
     }
 
     /// Size at a point, in metres.
@@ -43,11 +38,10 @@ impl SizeField {
 
     /// Size at a point that is known to be at most `bound`; a close bound makes it faster.
     pub(crate) fn at_most(&self, p: Point, bound: f64) -> f64 {
-        self.tree
-            .least(p, self.gradation, bound.min(self.largest), |i| {
-                let source = &self.sources[i as usize];
-                source.size + self.gradation * distance_to_segment(p, source.ends)
-            })
+        self.tree.least(p, self.gradation, bound.min(self.largest), |i| {
+            let source = &self.sources[i as usize];
+            source.size + self.gradation * distance_to_segment(p, source.ends)
+        })
     }
 
     pub(crate) fn gradation(&self) -> f64 {
@@ -57,21 +51,13 @@ impl SizeField {
 
 fn item_of(ends: [Point; 2], weight: f64) -> Item {
     let [a, b] = ends;
-    Item {
-        lo: [a[0].min(b[0]), a[1].min(b[1])],
-        hi: [a[0].max(b[0]), a[1].max(b[1])],
-        weight,
-    }
+    Item { lo: [a[0].min(b[0]), a[1].min(b[1])], hi: [a[0].max(b[0]), a[1].max(b[1])], weight }
 }
 
 fn distance_to_segment(p: Point, [a, b]: [Point; 2]) -> f64 {
     let (d, w) = (sub(b, a), sub(p, a));
     let whole = dot(d, d);
-    let t = if whole > 0.0 {
-        (dot(d, w) / whole).clamp(0.0, 1.0)
-    } else {
-        0.0
-    };
+    let t = if whole > 0.0 { (dot(d, w) / whole).clamp(0.0, 1.0) } else { 0.0 };
     let e = [w[0] - t * d[0], w[1] - t * d[1]];
     dot(e, e).sqrt()
 }
@@ -84,13 +70,9 @@ pub(crate) fn wanted(drawing: &Drawing, stretch: &Stretch, max_turn: f64) -> f64
         None if side == DOMAIN => drawing.domain_size,
         None => f64::INFINITY,
     };
-    let mut size = side(stretch.sides[0])
-        .min(side(stretch.sides[1]))
-        .min(drawing.domain_size);
+    let mut size = side(stretch.sides[0]).min(side(stretch.sides[1])).min(drawing.domain_size);
     let arc = matches!(stretch.span.kind, Kind::Arc { .. });
-    if let (true, true, Some(boundary)) =
-        (arc, stretch.sides.contains(&OUTSIDE), drawing.boundary_size)
-    {
+    if let (true, true, Some(boundary)) = (arc, stretch.sides.contains(&OUTSIDE), drawing.boundary_size) {
         size = size.min(boundary);
     }
     size.min(stretch.span.length() / f64::from(pieces_of_turn(&stretch.span, max_turn)))
@@ -115,23 +97,13 @@ impl<'a> Gaps<'a> {
             let n = (stretch.span.turn() / 0.4).ceil().max(1.0);
             for k in 0..n as usize {
                 let (a, b) = (k as f64 / n, (k as f64 + 1.0) / n);
-                let span = stretch
-                    .span
-                    .part(a, b, stretch.span.at(a), stretch.span.at(b));
+                let span = stretch.span.part(a, b, stretch.span.at(a), stretch.span.at(b));
                 let (lo, hi) = span.bounds();
-                items.push(Item {
-                    lo,
-                    hi,
-                    weight: 0.0,
-                });
+                items.push(Item { lo, hi, weight: 0.0 });
                 owners.push(i as u32);
             }
         }
-        Self {
-            graph,
-            tree: Tree::new(&items),
-            owners,
-        }
+        Self { graph, tree: Tree::new(&items), owners }
     }
 
     /// Distance of `p`, a point of stretch `own`, from the nearest stretch apart from it, if under `limit`.
@@ -149,17 +121,9 @@ impl<'a> Gaps<'a> {
 }
 
 /// Sources for one stretch: its wanted size, smaller wherever another line runs close by.
-pub(crate) fn sources_of(
-    index: usize,
-    stretch: &Stretch,
-    size: f64,
-    gaps: &Gaps,
-    out: &mut Vec<SizeSource>,
-) {
+pub(crate) fn sources_of(index: usize, stretch: &Stretch, size: f64, gaps: &Gaps, out: &mut Vec<SizeSource>) {
     let length = stretch.span.length();
-    let n = ((length / size).ceil() as usize)
-        .clamp(1, 2000)
-        .max((stretch.span.turn() / 0.2).ceil() as usize);
+    let n = ((length / size).ceil() as usize).clamp(1, 2000).max((stretch.span.turn() / 0.2).ceil() as usize);
     let mut run: Option<SizeSource> = None;
     for k in 0..n {
         let at = |x: f64| stretch.span.at(x / n as f64);
@@ -182,18 +146,9 @@ pub(crate) fn sources_of(
 /// Small sizes at the tips of cusps, so that edges there stay short against the distance between the curves.
 pub(crate) fn cusp_sources(graph: &Graph, sizes: &[f64]) -> Vec<SizeSource> {
     let source = |node: u32| {
-        let incident = graph
-            .stretches
-            .iter()
-            .zip(sizes)
-            .filter(|(s, _)| s.ends.contains(&node));
-        let size = incident
-            .map(|(_, &size)| size)
-            .fold(f64::INFINITY, f64::min);
-        SizeSource {
-            ends: [graph.points[node as usize]; 2],
-            size: GAP_FLOOR * size,
-        }
+        let incident = graph.stretches.iter().zip(sizes).filter(|(s, _)| s.ends.contains(&node));
+        let size = incident.map(|(_, &size)| size).fold(f64::INFINITY, f64::min);
+        SizeSource { ends: [graph.points[node as usize]; 2], size: GAP_FLOOR * size }
     };
     graph.cusps(CUSP).into_iter().map(source).collect()
 }
@@ -209,13 +164,7 @@ pub(crate) fn sources(graph: &Graph, sizes: &[f64], gaps: &Gaps) -> Vec<SizeSour
 
 /// Parameters that divide a span between `from` and `to` into edges as long as `size` asks, the two ends included; at least
 /// `fewest` edges.
-pub(crate) fn divide(
-    span: &Span,
-    from: f64,
-    to: f64,
-    fewest: u32,
-    size: impl Fn(f64) -> f64,
-) -> Vec<f64> {
+pub(crate) fn divide(span: &Span, from: f64, to: f64, fewest: u32, size: impl Fn(f64) -> f64) -> Vec<f64> {
     let length = span.length();
     let whole = to - from;
     let mut marks = vec![(0.0, from)];

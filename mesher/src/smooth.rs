@@ -44,11 +44,7 @@ fn move_vertex(mesh: &mut Triangulation, v: u32) {
         ring.push((mesh.point(f.v[NEXT[k]]), mesh.point(f.v[LAST[k]])));
         None
     });
-    let worst = |x: Point| {
-        ring.iter().fold(f64::INFINITY, |least, &(a, b)| {
-            least.min(sine_squared(x, a, b))
-        })
-    };
+    let worst = |x: Point| ring.iter().fold(f64::INFINITY, |least, &(a, b)| least.min(sine_squared(x, a, b)));
     let here = mesh.point(v);
     let before = worst(here);
     if before > GOOD_ENOUGH {
@@ -64,16 +60,8 @@ fn move_vertex(mesh: &mut Triangulation, v: u32) {
     }
     let optimal = [sum[0] / whole, sum[1] / whole];
     let n = ring.len() as f64;
-    let mean = [
-        ring.iter().map(|e| e.0[0]).sum::<f64>() / n,
-        ring.iter().map(|e| e.0[1]).sum::<f64>() / n,
-    ];
-    let tries = [
-        optimal,
-        between(here, optimal, 0.5),
-        mean,
-        between(here, mean, 0.5),
-    ];
+    let mean = [ring.iter().map(|e| e.0[0]).sum::<f64>() / n, ring.iter().map(|e| e.0[1]).sum::<f64>() / n];
+    let tries = [optimal, between(here, optimal, 0.5), mean, between(here, mean, 0.5)];
     if let Some(&better) = tries.iter().find(|&&x| worst(x) > before) {
         mesh.points[v as usize] = better;
     }
@@ -86,8 +74,7 @@ fn flip_all(mesh: &mut Triangulation) -> bool {
         for i in 0..3 {
             let face = &mesh.faces[t as usize];
             let n = face.n[i];
-            if face.side == NONE || face.cell != NONE || face.tag[i] != 0 || n == NONE || n >> 2 < t
-            {
+            if face.side == NONE || face.cell != NONE || face.tag[i] != 0 || n == NONE || n >> 2 < t {
                 continue;
             }
             let w = mesh.faces[(n >> 2) as usize].v[(n & 3) as usize];
@@ -107,10 +94,6 @@ fn sine_squared(a: Point, b: Point, c: Point) -> f64 {
     if area <= 0.0 || area.is_nan() {
         return -1.0;
     }
-    let (x, y, z) = (
-        distance_squared(a, b),
-        distance_squared(b, c),
-        distance_squared(c, a),
-    );
+    let (x, y, z) = (distance_squared(a, b), distance_squared(b, c), distance_squared(c, a));
     area * area * x.min(y).min(z) / (x * y * z)
 }

@@ -25,11 +25,7 @@ pub(crate) struct Span {
 
 impl Span {
     pub(crate) fn line(start: Point, end: Point) -> Self {
-        Self {
-            start,
-            end,
-            kind: Kind::Line,
-        }
+        Self { start, end, kind: Kind::Line }
     }
 
     /// The arc from `start` to `end` about `centre`; coincident end points make a whole turn.
@@ -43,55 +39,26 @@ impl Span {
             sweep -= TAU;
         }
         let radius = 0.5 * (distance(start, centre) + distance(end, centre));
-        Self {
-            start,
-            end,
-            kind: Kind::Arc {
-                centre,
-                radius,
-                from,
-                sweep,
-            },
-        }
+        Self { start, end, kind: Kind::Arc { centre, radius, from, sweep } }
     }
 
     pub(crate) fn reversed(&self) -> Self {
         let kind = match self.kind {
             Kind::Line => Kind::Line,
-            Kind::Arc {
-                centre,
-                radius,
-                from,
-                sweep,
-            } => Kind::Arc {
-                centre,
-                radius,
-                from: from + sweep,
-                sweep: -sweep,
-            },
+            Kind::Arc { centre, radius, from, sweep } => {
+                Kind::Arc { centre, radius, from: from + sweep, sweep: -sweep }
+            }
         };
-        Self {
-            start: self.end,
-            end: self.start,
-            kind,
-        }
+        Self { start: self.end, end: self.start, kind }
     }
 
     /// The part between parameters `a < b`, whose end points are given (they may be snapped ones).
     pub(crate) fn part(&self, a: f64, b: f64, start: Point, end: Point) -> Self {
         let kind = match self.kind {
             Kind::Line => Kind::Line,
-            Kind::Arc {
-                centre,
-                radius,
-                from,
-                sweep,
-            } => Kind::Arc {
-                centre,
-                radius,
-                from: from + a * sweep,
-                sweep: sweep * (b - a),
-            },
+            Kind::Arc { centre, radius, from, sweep } => {
+                Kind::Arc { centre, radius, from: from + a * sweep, sweep: sweep * (b - a) }
+            }
         };
         Self { start, end, kind }
     }
@@ -120,17 +87,9 @@ impl Span {
         }
         match self.kind {
             Kind::Line => between(self.start, self.end, t),
-            Kind::Arc {
-                centre,
-                radius,
-                from,
-                sweep,
-            } => {
+            Kind::Arc { centre, radius, from, sweep } => {
                 let angle = from + t * sweep;
-                [
-                    centre[0] + radius * angle.cos(),
-                    centre[1] + radius * angle.sin(),
-                ]
+                [centre[0] + radius * angle.cos(), centre[1] + radius * angle.sin()]
             }
         }
     }
@@ -158,12 +117,7 @@ impl Span {
                 let d = sub(self.end, self.start);
                 (dot(d, sub(p, self.start)) / dot(d, d)).clamp(0.0, 1.0)
             }
-            Kind::Arc {
-                centre,
-                from,
-                sweep,
-                ..
-            } => {
+            Kind::Arc { centre, from, sweep, .. } => {
                 let u = sub(p, centre);
                 let turned = ((u[1].atan2(u[0]) - from) * sweep.signum()).rem_euclid(TAU);
                 let whole = sweep.abs();
@@ -184,14 +138,8 @@ impl Span {
 
     /// Lower and upper corner of the smallest upright box around the span.
     pub(crate) fn bounds(&self) -> (Point, Point) {
-        let mut lo = [
-            self.start[0].min(self.end[0]),
-            self.start[1].min(self.end[1]),
-        ];
-        let mut hi = [
-            self.start[0].max(self.end[0]),
-            self.start[1].max(self.end[1]),
-        ];
+        let mut lo = [self.start[0].min(self.end[0]), self.start[1].min(self.end[1])];
+        let mut hi = [self.start[0].max(self.end[0]), self.start[1].max(self.end[1])];
         if let Kind::Arc { centre, radius, .. } = self.kind {
             for quarter in 0..4 {
                 if self.covers(f64::from(quarter) * FRAC_PI_2) {
@@ -211,9 +159,7 @@ impl Span {
     fn covers(&self, angle: f64) -> bool {
         match self.kind {
             Kind::Line => false,
-            Kind::Arc { from, sweep, .. } => {
-                ((angle - from) * sweep.signum()).rem_euclid(TAU) <= sweep.abs()
-            }
+            Kind::Arc { from, sweep, .. } => ((angle - from) * sweep.signum()).rem_euclid(TAU) <= sweep.abs(),
         }
     }
 
@@ -222,24 +168,15 @@ impl Span {
         let (a, b) = (sub(self.start, origin), sub(self.end, origin));
         match self.kind {
             Kind::Line => 0.5 * cross(a, b),
-            Kind::Arc {
-                centre,
-                radius,
-                sweep,
-                ..
-            } => 0.5 * (radius * radius * sweep + cross(sub(centre, origin), sub(b, a))),
+            Kind::Arc { centre, radius, sweep, .. } => {
+                0.5 * (radius * radius * sweep + cross(sub(centre, origin), sub(b, a)))
+            }
         }
     }
 
     /// Toggles of a ray from `p` towards growing r: how often the span crosses it (half-open in z).
     pub(crate) fn crossings(&self, p: Point) -> u32 {
-        let Kind::Arc {
-            centre,
-            radius,
-            from,
-            sweep,
-        } = self.kind
-        else {
+        let Kind::Arc { centre, radius, from, sweep } = self.kind else {
             return self.line_crossing(p);
         };
         let mut count = 0;
@@ -248,8 +185,7 @@ impl Span {
             .iter()
             .filter_map(|&pole| {
                 let turned = ((pole - from) * sweep.signum()).rem_euclid(TAU);
-                (turned < sweep.abs())
-                    .then(|| (turned / sweep.abs(), centre[1] + radius * pole.signum()))
+                (turned < sweep.abs()).then(|| (turned / sweep.abs(), centre[1] + radius * pole.signum()))
             })
             .collect();
         stops.sort_by(|a, b| a.0.total_cmp(&b.0));
@@ -257,14 +193,8 @@ impl Span {
         for stop in stops {
             if (here.1 <= p[1]) != (stop.1 <= p[1]) {
                 let right = (from + 0.5 * (here.0 + stop.0) * sweep).cos() > 0.0;
-                let half = (radius * radius - (p[1] - centre[1]).powi(2))
-                    .max(0.0)
-                    .sqrt();
-                let x = if right {
-                    centre[0] + half
-                } else {
-                    centre[0] - half
-                };
+                let half = (radius * radius - (p[1] - centre[1]).powi(2)).max(0.0).sqrt();
+                let x = if right { centre[0] + half } else { centre[0] - half };
                 count += u32::from(x > p[0]);
             }
             here = stop;

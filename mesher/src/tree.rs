@@ -31,21 +31,12 @@ const LEAF: usize = 3;
 
 impl Tree {
     pub(crate) fn new(items: &[Item]) -> Self {
-        let mut tree = Self {
-            nodes: Vec::with_capacity(items.len()),
-            order: (0..items.len() as u32).collect(),
-        };
+        let mut tree = Self { nodes: Vec::with_capacity(items.len()), order: (0..items.len() as u32).collect() };
         if items.is_empty() {
             return tree;
         }
         let mut order = std::mem::take(&mut tree.order);
-        tree.nodes.push(Node {
-            lo: [0.0; 2],
-            hi: [0.0; 2],
-            weight: 0.0,
-            first: 0,
-            count: 0,
-        });
+        tree.nodes.push(Node { lo: [0.0; 2], hi: [0.0; 2], weight: 0.0, first: 0, count: 0 });
         let mut open = vec![(0usize, 0usize, items.len())];
         while let Some((id, from, to)) = open.pop() {
             let mut node = enclose(items, &order[from..to]);
@@ -69,13 +60,7 @@ impl Tree {
     }
 
     /// The least `value(item)`, if under `limit`, where no value is under `weight + slope * distance of the box from p`.
-    pub(crate) fn least(
-        &self,
-        p: Point,
-        slope: f64,
-        limit: f64,
-        mut value: impl FnMut(u32) -> f64,
-    ) -> f64 {
+    pub(crate) fn least(&self, p: Point, slope: f64, limit: f64, mut value: impl FnMut(u32) -> f64) -> f64 {
         let mut best = limit;
         if self.nodes.is_empty() {
             return best;
@@ -102,15 +87,8 @@ impl Tree {
                 continue;
             }
             let (a, b) = (node.first, node.first + 1);
-            let (near, far) = (
-                bound(&self.nodes[a as usize]),
-                bound(&self.nodes[b as usize]),
-            );
-            let pair = if near < far {
-                [(b, far), (a, near)]
-            } else {
-                [(a, near), (b, far)]
-            };
+            let (near, far) = (bound(&self.nodes[a as usize]), bound(&self.nodes[b as usize]));
+            let pair = if near < far { [(b, far), (a, near)] } else { [(a, near), (b, far)] };
             stack[top] = pair[0];
             stack[top + 1] = pair[1];
             top += 2;
@@ -144,13 +122,8 @@ impl Tree {
 }
 
 fn enclose(items: &[Item], ids: &[u32]) -> Node {
-    let mut node = Node {
-        lo: [f64::INFINITY; 2],
-        hi: [f64::NEG_INFINITY; 2],
-        weight: f64::INFINITY,
-        first: 0,
-        count: 0,
-    };
+    let mut node =
+        Node { lo: [f64::INFINITY; 2], hi: [f64::NEG_INFINITY; 2], weight: f64::INFINITY, first: 0, count: 0 };
     for &i in ids {
         let item = &items[i as usize];
         for k in 0..2 {

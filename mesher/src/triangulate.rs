@@ -75,27 +75,11 @@ impl Triangulation {
             [m[0] + reach, m[1] + reach],
             [m[0] - reach, m[1] + reach],
         ]);
-        let face = |v, n| Face {
-            v,
-            n,
-            tag: [0; 3],
-            side: NONE,
-            cell: NONE,
-        };
-        let faces = vec![
-            face([b, b + 1, b + 2], [NONE, 6, NONE]),
-            face([b, b + 2, b + 3], [NONE, NONE, 1]),
-        ];
+        let face = |v, n| Face { v, n, tag: [0; 3], side: NONE, cell: NONE };
+        let faces = vec![face([b, b + 1, b + 2], [NONE, 6, NONE]), face([b, b + 2, b + 3], [NONE, NONE, 1])];
         let mut face_at = vec![NONE; points.len()];
         face_at[b as usize..].copy_from_slice(&[0, 0, 0, 1]);
-        Self {
-            points,
-            faces,
-            face_at,
-            fresh: Vec::new(),
-            last: 0,
-            stack: Vec::new(),
-        }
+        Self { points, faces, face_at, fresh: Vec::new(), last: 0, stack: Vec::new() }
     }
 
     pub(crate) fn point(&self, v: u32) -> Point {
@@ -152,11 +136,7 @@ impl Triangulation {
             if here.v.iter().any(|&v| self.point(v) == p) {
                 return Place::AtVertex;
             }
-            return if on == 3 {
-                Place::Inside(face)
-            } else {
-                Place::OnEdge(4 * face + on as u32)
-            };
+            return if on == 3 { Place::Inside(face) } else { Place::OnEdge(4 * face + on as u32) };
         }
         Place::Behind(4 * face)
     }
@@ -172,12 +152,7 @@ impl Triangulation {
         let old = self.faces[face as usize];
         let a = self.faces.len() as u32;
         let b = a + 1;
-        let make = |v: [u32; 3], tag: u32| Face {
-            v,
-            n: [NONE; 3],
-            tag: [tag, 0, 0],
-            ..old
-        };
+        let make = |v: [u32; 3], tag: u32| Face { v, n: [NONE; 3], tag: [tag, 0, 0], ..old };
         self.faces[face as usize] = make([p, old.v[1], old.v[2]], old.tag[0]);
         self.faces.push(make([p, old.v[2], old.v[0]], old.tag[1]));
         self.faces.push(make([p, old.v[0], old.v[1]], old.tag[2]));
@@ -202,18 +177,8 @@ impl Triangulation {
         let tag = old.tag[i];
         let (v, a, b) = (old.v[i], old.v[NEXT[i]], old.v[LAST[i]]);
         let t2 = self.faces.len() as u32;
-        self.faces[t as usize] = Face {
-            v: [p, b, v],
-            n: [NONE; 3],
-            tag: [old.tag[NEXT[i]], 0, tag],
-            ..old
-        };
-        self.faces.push(Face {
-            v: [p, v, a],
-            n: [NONE; 3],
-            tag: [old.tag[LAST[i]], tag, 0],
-            ..old
-        });
+        self.faces[t as usize] = Face { v: [p, b, v], n: [NONE; 3], tag: [old.tag[NEXT[i]], 0, tag], ..old };
+        self.faces.push(Face { v: [p, v, a], n: [NONE; 3], tag: [old.tag[LAST[i]], tag, 0], ..old });
         self.link(t, 0, old.n[NEXT[i]]);
         self.link(t2, 0, old.n[LAST[i]]);
         self.link(t, 1, 4 * t2 + 2);
@@ -226,18 +191,8 @@ impl Triangulation {
             let old = self.faces[u as usize];
             let w = old.v[j];
             let u2 = self.faces.len() as u32;
-            self.faces[u as usize] = Face {
-                v: [p, a, w],
-                n: [NONE; 3],
-                tag: [old.tag[NEXT[j]], 0, tag],
-                ..old
-            };
-            self.faces.push(Face {
-                v: [p, w, b],
-                n: [NONE; 3],
-                tag: [old.tag[LAST[j]], tag, 0],
-                ..old
-            });
+            self.faces[u as usize] = Face { v: [p, a, w], n: [NONE; 3], tag: [old.tag[NEXT[j]], 0, tag], ..old };
+            self.faces.push(Face { v: [p, w, b], n: [NONE; 3], tag: [old.tag[LAST[j]], tag, 0], ..old });
             self.link(u, 0, old.n[NEXT[j]]);
             self.link(u2, 0, old.n[LAST[j]]);
             self.link(u, 1, 4 * u2 + 2);
@@ -277,18 +232,8 @@ impl Triangulation {
         let (p, a, b, w) = (one.v[i], one.v[NEXT[i]], one.v[LAST[i]], two.v[j]);
         let (bp, pa) = (NEXT[i], LAST[i]);
         let (aw, wb) = (NEXT[j], LAST[j]);
-        self.faces[t as usize] = Face {
-            v: [p, a, w],
-            n: [NONE; 3],
-            tag: [two.tag[aw], 0, one.tag[pa]],
-            ..one
-        };
-        self.faces[u as usize] = Face {
-            v: [p, w, b],
-            n: [NONE; 3],
-            tag: [two.tag[wb], one.tag[bp], 0],
-            ..two
-        };
+        self.faces[t as usize] = Face { v: [p, a, w], n: [NONE; 3], tag: [two.tag[aw], 0, one.tag[pa]], ..one };
+        self.faces[u as usize] = Face { v: [p, w, b], n: [NONE; 3], tag: [two.tag[wb], one.tag[bp], 0], ..two };
         self.link(t, 0, two.n[aw]);
         self.link(t, 2, one.n[pa]);
         self.link(u, 0, two.n[wb]);
@@ -328,11 +273,7 @@ impl Triangulation {
     }
 
     /// Visits the faces around a vertex with its position in each, until one gives an answer.
-    pub(crate) fn around<T>(
-        &self,
-        v: u32,
-        mut visit: impl FnMut(u32, usize) -> Option<T>,
-    ) -> Option<T> {
+    pub(crate) fn around<T>(&self, v: u32, mut visit: impl FnMut(u32, usize) -> Option<T>) -> Option<T> {
         let start = self.face_at[v as usize];
         if start == NONE {
             return None;
@@ -369,22 +310,15 @@ mod tests {
     /// Pseudo-random numbers in 0..1 (constants of D. E. Knuth's MMIX generator).
     fn numbers(mut state: u64) -> impl FnMut() -> f64 {
         move || {
-            state = state
-                .wrapping_mul(6_364_136_223_846_793_005)
-                .wrapping_add(1_442_695_040_888_963_407);
+            state = state.wrapping_mul(6_364_136_223_846_793_005).wrapping_add(1_442_695_040_888_963_407);
             (state >> 11) as f64 / (1u64 << 53) as f64
         }
     }
 
     /// Edges between the first `count` vertices.
     fn edges(mesh: &Triangulation, count: u32) -> BTreeSet<(u32, u32)> {
-        let all = mesh
-            .faces
-            .iter()
-            .flat_map(|f| (0..3).map(|i| (f.v[NEXT[i]], f.v[LAST[i]])));
-        all.filter(|&(a, b)| a < count && b < count)
-            .map(|(a, b)| (a.min(b), a.max(b)))
-            .collect()
+        let all = mesh.faces.iter().flat_map(|f| (0..3).map(|i| (f.v[NEXT[i]], f.v[LAST[i]])));
+        all.filter(|&(a, b)| a < count && b < count).map(|(a, b)| (a.min(b), a.max(b))).collect()
     }
 
     /// Oracle: the general-purpose crate `spade`. Our triangulation lies in a box, so only edges that are both inside its hull and
@@ -402,10 +336,7 @@ mod tests {
             let count = points.len() as u32;
             let mut ours = Triangulation::new(&points).unwrap();
             let mut theirs = ConstrainedDelaunayTriangulation::<Point2<f64>>::new();
-            let handles: Vec<_> = points
-                .iter()
-                .map(|p| theirs.insert(Point2::new(p[0], p[1])).unwrap())
-                .collect();
+            let handles: Vec<_> = points.iter().map(|p| theirs.insert(Point2::new(p[0], p[1])).unwrap()).collect();
             for k in (0..400u32).step_by(25) {
                 let (a, b) = (k, k + 13);
                 if theirs.can_add_constraint(handles[a as usize], handles[b as usize]) {
@@ -420,12 +351,7 @@ mod tests {
                 .map(|[a, b]| (a.min(b), a.max(b)))
                 .collect();
             let differ: Vec<_> = found.symmetric_difference(&wanted).collect();
-            assert!(
-                differ.is_empty(),
-                "seed {seed}: {} of {} edges differ",
-                differ.len(),
-                wanted.len()
-            );
+            assert!(differ.is_empty(), "seed {seed}: {} of {} edges differ", differ.len(), wanted.len());
         }
     }
 

@@ -27,22 +27,12 @@ fn areas_and_perimeters_are_those_of_closed_forms() {
 #[test]
 fn clockwise_pieces_are_turned_round() {
     let line = |to| Piece::Line { to };
-    let arc = Piece::Arc {
-        to: [0.0, 1.0],
-        centre: [0.0, 0.0],
-        counter_clockwise: true,
-    };
+    let arc = Piece::Arc { to: [0.0, 1.0], centre: [0.0, 0.0], counter_clockwise: true };
     let there = Outline::new([1.0, 0.0], vec![arc, line([0.0, 0.0]), line([1.0, 0.0])]).unwrap();
-    let back = Piece::Arc {
-        to: [1.0, 0.0],
-        centre: [0.0, 0.0],
-        counter_clockwise: false,
-    };
+    let back = Piece::Arc { to: [1.0, 0.0], centre: [0.0, 0.0], counter_clockwise: false };
     let turned = Outline::new([0.0, 1.0], vec![back, line([0.0, 0.0]), line([0.0, 1.0])]).unwrap();
     assert!(close(there.area(), PI / 4.0) && close(turned.area(), PI / 4.0));
-    assert!(
-        there.contains([0.7, 0.7]) && turned.contains([0.7, 0.7]) && !turned.contains([0.72, 0.72])
-    );
+    assert!(there.contains([0.7, 0.7]) && turned.contains([0.7, 0.7]) && !turned.contains([0.72, 0.72]));
 }
 
 #[test]
@@ -51,10 +41,7 @@ fn containment_counts_arcs_exactly() {
     for i in 0..100 {
         let angle = (f64::from(i) / 100.0 - 0.495) * PI;
         let at = |radius: f64| [radius * angle.cos(), radius * angle.sin()];
-        assert!(
-            half.contains(at(1.0 - 1e-9)) && !half.contains(at(1.0 + 1e-9)),
-            "angle {angle}"
-        );
+        assert!(half.contains(at(1.0 - 1e-9)) && !half.contains(at(1.0 + 1e-9)), "angle {angle}");
     }
     assert!(!half.contains([-1e-9, 0.0]) && half.contains([1e-9, 0.0]));
     assert!(close(half.distance([2.0, 0.0]), 1.0) && close(half.distance([0.25, 0.0]), 0.25));
@@ -80,55 +67,23 @@ fn a_touch_is_no_overlap() {
 #[test]
 fn every_fault_has_its_own_refusal() {
     let polygon = |points: &[[f64; 2]]| Outline::polygon(points).unwrap_err();
-    assert!(matches!(
-        polygon(&[]),
-        OutlineError::TooFewPieces { count: 0 }
-    ));
-    assert!(matches!(
-        polygon(&[[0.0, 0.0], [1.0, 0.0]]),
-        OutlineError::TooFewPieces { count: 2 }
-    ));
-    assert!(matches!(
-        polygon(&[[0.0, 0.0], [f64::NAN, 0.0], [1.0, 1.0]]),
-        OutlineError::NotFinite { index: 1, .. }
-    ));
-    assert!(matches!(
-        polygon(&[[0.0, 0.0], [0.0, 0.0], [1.0, 1.0]]),
-        OutlineError::ZeroLength { piece: 0, .. }
-    ));
-    assert!(matches!(
-        polygon(&[[0.0, 0.0], [1.0, 0.0], [2.0, 0.0]]),
-        OutlineError::NoArea { .. }
-    ));
+    assert!(matches!(polygon(&[]), OutlineError::TooFewPieces { count: 0 }));
+    assert!(matches!(polygon(&[[0.0, 0.0], [1.0, 0.0]]), OutlineError::TooFewPieces { count: 2 }));
+    assert!(matches!(polygon(&[[0.0, 0.0], [f64::NAN, 0.0], [1.0, 1.0]]), OutlineError::NotFinite { index: 1, .. }));
+    assert!(matches!(polygon(&[[0.0, 0.0], [0.0, 0.0], [1.0, 1.0]]), OutlineError::ZeroLength { piece: 0, .. }));
+    assert!(matches!(polygon(&[[0.0, 0.0], [1.0, 0.0], [2.0, 0.0]]), OutlineError::NoArea { .. }));
     let bow = [[0.0, 0.0], [1.0, 1.0], [1.0, 0.0], [0.0, 0.8]];
     assert!(matches!(polygon(&bow), OutlineError::SelfCrossing { .. }));
     let touching = [[0.0, 0.0], [2.0, 0.0], [2.0, 1.0], [1.0, 0.0], [0.0, 1.0]];
-    assert!(matches!(
-        polygon(&touching),
-        OutlineError::SelfCrossing { .. }
-    ));
+    assert!(matches!(polygon(&touching), OutlineError::SelfCrossing { .. }));
     let line = |to| Piece::Line { to };
-    let open = Outline::new(
-        [0.0, 0.0],
-        vec![line([1.0, 0.0]), line([1.0, 1.0]), line([0.1, 0.0])],
-    )
-    .unwrap_err();
+    let open = Outline::new([0.0, 0.0], vec![line([1.0, 0.0]), line([1.0, 1.0]), line([0.1, 0.0])]).unwrap_err();
     assert!(matches!(open, OutlineError::NotClosed { .. }));
-    let arc = Piece::Arc {
-        to: [1.0, 0.0],
-        centre: [0.4, 0.0],
-        counter_clockwise: true,
-    };
+    let arc = Piece::Arc { to: [1.0, 0.0], centre: [0.4, 0.0], counter_clockwise: true };
     let off = Outline::new([0.0, 0.0], vec![arc, line([0.0, 0.0])]).unwrap_err();
     assert!(matches!(off, OutlineError::NotOnCircle { piece: 0, .. }));
-    assert!(matches!(
-        Outline::circle([0.0, 0.0], -1.0),
-        Err(OutlineError::BadSize { .. })
-    ));
-    assert!(matches!(
-        Outline::rounded_rectangle([0.0, 0.0], [1.0, 1.0], 0.6),
-        Err(OutlineError::BadSize { .. })
-    ));
+    assert!(matches!(Outline::circle([0.0, 0.0], -1.0), Err(OutlineError::BadSize { .. })));
+    assert!(matches!(Outline::rounded_rectangle([0.0, 0.0], [1.0, 1.0], 0.6), Err(OutlineError::BadSize { .. })));
     for fault in [polygon(&bow), open, off] {
         assert!(fault.to_string().len() > 20);
     }

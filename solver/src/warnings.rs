@@ -3,6 +3,7 @@
 use mesher::{MeshNote, NoteReason, Outline};
 
 use crate::constants::ZERO_CELSIUS_K;
+use crate::material::RangeNote;
 use crate::model::{ConductorKind, Model, Part, Role};
 use crate::overview::Meshed;
 use crate::results::{Electrical, RegionName, Warning, WarningKind};
@@ -11,6 +12,10 @@ use crate::results::{Electrical, RegionName, Warning, WarningKind};
 const POYNTING_LIMIT: f64 = 0.02;
 /// Usual upper limit of the cooling water's outlet temperature, °C (common practice, no source).
 const WATER_LIMIT_C: f64 = 60.0;
+
+/// Beyond the end of a table by less than this, a temperature counts as at its end, kelvin: a steep front makes the
+/// discrete temperature ripple by a few kelvin about its start value.
+const RIPPLE_K: f64 = 5.0;
 
 /// A list of warnings without repeats.
 #[derive(Debug, Clone, Default)]
@@ -80,7 +85,9 @@ fn mesh_note(regions: &[RegionName], note: &MeshNote) -> String {
             format!("{place}: no skin layers fit; triangles of {:.3} mm stand in for them", 1e3 * size)
         }
         NoteReason::ArcStraightened => {
-            format!("{place}: where an arc touches another curve its edges are meshed straight, which moves the surface a little")
+            format!(
+                "{place}: where an arc touches another curve its edges are meshed straight, which moves the surface a little"
+            )
         }
     }
 }
@@ -147,9 +154,13 @@ pub fn of_state(electrical: &Electrical, out: &mut Warnings) {
     }
 }
 
-/// Warnings about material data used outside their range and about melting.
+/// Warnings about material data used outside their range and about melting, from the extremes of a whole run.
 pub fn of_temperatures(part: &Part, lowest_k: f64, highest_k: f64, out: &mut Warnings) {
-    for note in part.material.out_of_range(lowest_k, highest_k) {
+    let far = |note: &RangeNote| {
+        let beyond = (note.range_k.0 - note.used_k).max(note.used_k - note.range_k.1);
+        beyond > RIPPLE_K
+    };
+    for note in part.material.out_of_range(lowest_k, highest_k).into_iter().filter(far) {
         out.add(WarningKind::MaterialRange, format!("part `{}`: {note}", part.name));
     }
     if let Some(melting) = part.material.melting.as_ref().filter(|m| highest_k > m.solidus_k) {

@@ -109,9 +109,7 @@ fn a_long_chain_is_solved_without_recursion_along_it() {
         }
     }
     let x = |k: i64| (k as f64).sin();
-    let mut rhs: Vec<f64> = (0..i64::from(n))
-        .map(|k| (2.0 - 2.0 * 1_f64.cos()) * x(k))
-        .collect();
+    let mut rhs: Vec<f64> = (0..i64::from(n)).map(|k| (2.0 - 2.0 * 1_f64.cos()) * x(k)).collect();
     rhs[0] += x(-1);
     rhs[n as usize - 1] += x(i64::from(n));
     let line: Vec<[f64; 2]> = (0..n).map(|k| [f64::from(k), 0.0]).collect();
@@ -120,12 +118,7 @@ fn a_long_chain_is_solved_without_recursion_along_it() {
         let solved = checked_solve(&matrix, &factor, &rhs).unwrap();
         assert!(solved.backward_error <= 1e-14);
         // The condition number is about 4 n^2 / pi^2 = 4e10.
-        let error = solved
-            .x
-            .iter()
-            .zip(0..)
-            .map(|(&found, k)| (found - x(k)).abs())
-            .fold(0.0, f64::max);
+        let error = solved.x.iter().zip(0..).map(|(&found, k)| (found - x(k)).abs()).fold(0.0, f64::max);
         assert!(error < 1e-5, "error {error:.1e}");
     }
 }

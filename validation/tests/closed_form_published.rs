@@ -7,12 +7,9 @@
 use std::f64::consts::PI;
 use validation::closed_form::coil::{Coil, FlatConductor, loop_impedance_change};
 use validation::closed_form::cylinder::AxialCylinder;
-use validation::closed_form::cylinder_heat::{
-    constant_flux_rise, convection_term, core_surface_factor,
-};
+use validation::closed_form::cylinder_heat::{constant_flux_rise, convection_term, core_surface_factor};
 use validation::closed_form::heat::{
-    LumpedRadiator, half_space_flux_rise, steady_generation_difference, stefan_front,
-    stefan_lambda, stefan_number,
+    LumpedRadiator, half_space_flux_rise, steady_generation_difference, stefan_front, stefan_lambda, stefan_number,
 };
 use validation::closed_form::loops::{axial_force, mutual_inductance};
 use validation::closed_form::plane::{slab_factor, slab_power_per_area};
@@ -271,19 +268,9 @@ fn heat_solutions_reach_their_limits() {
 fn slow_melting_front_is_quasi_steady_and_even_generation_gives_a_parabola() {
     // For a small Stefan number the melt has a linear profile and s = sqrt(2 St alpha t), less a share St/6.
     let front = stefan_front(1e-3, 6e-6, 50.0).unwrap();
-    near(
-        "front",
-        front / (2.0 * 1e-3 * 6e-6 * 50.0_f64).sqrt(),
-        1.0 - 1e-3 / 6.0,
-        1e-6,
-    );
+    near("front", front / (2.0 * 1e-3 * 6e-6 * 50.0_f64).sqrt(), 1.0 - 1e-3 / 6.0, 1e-6);
     // Carslaw and Jaeger: T = g (R^2 - r^2)/(4k), here 1e6 * 0.1^2/(4 * 25) = 100 K.
-    near(
-        "difference",
-        steady_generation_difference(1e6, 0.1, 25.0).unwrap(),
-        100.0,
-        1e-10,
-    );
+    near("difference", steady_generation_difference(1e6, 0.1, 25.0).unwrap(), 100.0, 1e-10);
 }
 
 #[test]

@@ -66,13 +66,8 @@ impl Case {
 
 /// Runs `check` over all cases of one name, which must be `count` in number.
 fn each(name: &str, count: usize, check: impl Fn(&Case)) {
-    let document: Document =
-        serde_json::from_str(include_str!("../reference/closed_form.json")).unwrap();
-    let cases: Vec<Case> = document
-        .cases
-        .into_iter()
-        .filter(|c| c.name == name)
-        .collect();
+    let document: Document = serde_json::from_str(include_str!("../reference/closed_form.json")).unwrap();
+    let cases: Vec<Case> = document.cases.into_iter().filter(|c| c.name == name).collect();
     assert_eq!(cases.len(), count, "cases named {name}");
     for case in &cases {
         check(case);
@@ -129,11 +124,7 @@ fn tube_in_an_axial_field_thin_and_thick() {
 #[test]
 fn slab_factor_thin_and_thick() {
     each("slab_factor", 10, |c| {
-        c.expect(
-            "factor",
-            slab_factor(c.arg("t_over_delta")).unwrap(),
-            FORMULA,
-        );
+        c.expect("factor", slab_factor(c.arg("t_over_delta")).unwrap(), FORMULA);
     });
 }
 
@@ -253,11 +244,7 @@ fn lumped_radiation_stefan_and_half_space() {
             area: c.arg("area"),
             surroundings: c.arg("surroundings"),
         };
-        c.expect(
-            "time",
-            body.time(c.arg("start"), c.arg("end")).unwrap(),
-            FORMULA,
-        );
+        c.expect("time", body.time(c.arg("start"), c.arg("end")).unwrap(), FORMULA);
     });
     each("stefan_lambda", 9, |c| {
         c.expect("lambda", stefan_lambda(c.arg("stefan")).unwrap(), FORMULA);

@@ -59,12 +59,7 @@ impl Chain {
         for pair in &self.pairs {
             let Some(on) = pair.on else { continue };
             let stretch = self.whole.uses[on].stretch;
-            let height = pair
-                .columns
-                .iter()
-                .map(|&c| self.columns[c].height)
-                .max()
-                .unwrap_or(0);
+            let height = pair.columns.iter().map(|&c| self.columns[c].height).max().unwrap_or(0);
             match out.last_mut() {
                 Some(last) if last.0 == stretch => last.1 = last.1.max(height),
                 _ => out.push((stretch, height)),
@@ -111,12 +106,7 @@ pub(super) fn chains(graph: &Graph, whole: &Loop, strips: &Strips) -> Vec<Chain>
         while i < n && !whole.uses[i].bare {
             i += 1;
         }
-        let mut chain = Chain {
-            region: whole.region,
-            whole: whole.clone(),
-            columns: Vec::new(),
-            pairs: Vec::new(),
-        };
+        let mut chain = Chain { region: whole.region, whole: whole.clone(), columns: Vec::new(), pairs: Vec::new() };
         fill(graph, strips, &mut chain, from..i, closed);
         chain.level_out();
         chains.push(chain);
@@ -124,13 +114,7 @@ pub(super) fn chains(graph: &Graph, whole: &Loop, strips: &Strips) -> Vec<Chain>
     chains
 }
 
-fn fill(
-    graph: &Graph,
-    strips: &Strips,
-    chain: &mut Chain,
-    uses: std::ops::Range<usize>,
-    closed: bool,
-) {
+fn fill(graph: &Graph, strips: &Strips, chain: &mut Chain, uses: std::ops::Range<usize>, closed: bool) {
     let n = chain.whole.uses.len();
     for k in uses.clone() {
         add_junction(chain, k);
@@ -139,16 +123,10 @@ fn fill(
         add_surface(graph, strips, chain, k);
         let ids = std::iter::once(last).chain(first_new..chain.columns.len());
         let ids: Vec<usize> = ids.collect();
-        chain.pairs.extend(ids.windows(2).map(|w| Pair {
-            columns: [w[0], w[1]],
-            on: Some(k),
-        }));
+        chain.pairs.extend(ids.windows(2).map(|w| Pair { columns: [w[0], w[1]], on: Some(k) }));
         let tail = chain.columns.len() - 1;
         let next = if closed && k + 1 == n { 0 } else { tail + 1 };
-        chain.pairs.push(Pair {
-            columns: [tail, next],
-            on: Some(k),
-        });
+        chain.pairs.push(Pair { columns: [tail, next], on: Some(k) });
     }
     if !closed {
         add_junction(chain, uses.end % n);
@@ -169,86 +147,38 @@ fn add_junction(chain: &mut Chain, k: usize) {
             let points: Vec<Point> = j.apex.iter().map_while(|p| *p).collect();
             let limit = match outline {
                 Some(u) => OF_WALL * u.span.length(),
-                None => points
-                    .get(1)
-                    .map_or(0.0, |p| room(&chain.whole, vertex, unit(sub(*p, vertex)))),
+                None => points.get(1).map_or(0.0, |p| room(&chain.whole, vertex, unit(sub(*p, vertex)))),
             };
             let limit = limit.min(fillet_limit(before)).min(fillet_limit(after));
-            vec![column(
-                after,
-                points,
-                depths,
-                limit,
-                outline.map(|u| u.stretch),
-            )]
+            vec![column(after, points, depths, limit, outline.map(|u| u.stretch))]
         }
-        Style::Fan => (0..j.fan.len())
-            .map(|i| fan_column(&chain.whole, before, after, &j.fan, i))
-            .collect(),
+        Style::Fan => (0..j.fan.len()).map(|i| fan_column(&chain.whole, before, after, &j.fan, i)).collect(),
     };
     let first = chain.columns.len();
     chain.columns.extend(columns);
     let ids: Vec<usize> = (first..chain.columns.len()).collect();
-    chain.pairs.extend(ids.windows(2).map(|w| Pair {
-        columns: [w[0], w[1]],
-        on: None,
-    }));
+    chain.pairs.extend(ids.windows(2).map(|w| Pair { columns: [w[0], w[1]], on: None }));
 }
 
 /// A column at the start of a use, as tall as `most` allows.
-fn column(
-    after: &Use,
-    points: Vec<Point>,
-    depths: &[f64],
-    most: f64,
-    along: Option<usize>,
-) -> Column {
-    let height = points
-        .iter()
-        .zip(depths)
-        .take_while(|(_, d)| **d <= most)
-        .count()
-        .saturating_sub(1);
-    Column {
-        base: after.start,
-        points,
-        height,
-        steps: Vec::new(),
-        along,
-    }
+fn column(after: &Use, points: Vec<Point>, depths: &[f64], most: f64, along: Option<usize>) -> Column {
+    let height = points.iter().zip(depths).take_while(|(_, d)| **d <= most).count().saturating_sub(1);
+    Column { base: after.start, points, height, steps: Vec::new(), along }
 }
 
 /// One column of a fan; the outermost may run along the outline of the domain.
 fn fan_column(whole: &Loop, before: &Use, after: &Use, fan: &[Point], i: usize) -> Column {
     let vertex = after.span.start;
-    let points: Vec<Point> = whole
-        .depths
-        .iter()
-        .map(|&d| along(vertex, fan[i], d))
-        .collect();
+    let points: Vec<Point> = whole.depths.iter().map(|&d| along(vertex, fan[i], d)).collect();
     let outline = match i {
         0 if before.bare => Some(before),
         i if i + 1 == fan.len() && after.bare => Some(after),
         _ => None,
     };
     match outline {
-        Some(u) if matches!(u.span.kind, Kind::Arc { .. }) => {
-            column(after, points, &whole.depths, 0.0, None)
-        }
-        Some(u) => column(
-            after,
-            points,
-            &whole.depths,
-            OF_WALL * u.span.length(),
-            Some(u.stretch),
-        ),
-        None => column(
-            after,
-            points,
-            &whole.depths,
-            room(whole, vertex, fan[i]),
-            None,
-        ),
+        Some(u) if matches!(u.span.kind, Kind::Arc { .. }) => column(after, points, &whole.depths, 0.0, None),
+        Some(u) => column(after, points, &whole.depths, OF_WALL * u.span.length(), Some(u.stretch)),
+        None => column(after, points, &whole.depths, room(whole, vertex, fan[i]), None),
     }
 }
 
@@ -273,23 +203,14 @@ fn add_surface(graph: &Graph, strips: &Strips, chain: &mut Chain, k: usize) {
         let normal = left_of(u.span.tangent(t));
         let most = room(whole, p, normal).min(fillet_limit(u));
         let mut points: Vec<Point> = whole.depths.iter().map(|&d| along(p, normal, d)).collect();
-        let mut height = whole
-            .depths
-            .iter()
-            .take_while(|d| **d <= most)
-            .count()
-            .saturating_sub(1);
+        let mut height = whole.depths.iter().take_while(|d| **d <= most).count().saturating_sub(1);
         let mut steps = Vec::new();
         for (junction, side) in ends {
             let j = &whole.junctions[junction];
-            let away = if side == 1 {
-                t * length
-            } else {
-                (1.0 - t) * length
-            };
+            let away = if side == 1 { t * length } else { (1.0 - t) * length };
             height = height.min(climb(j, side, away, &whole.depths, graph.tolerance));
-            let step = (1..j.feet[side].len())
-                .find(|&level| j.matched && at_foot(j, side, level, away, graph.tolerance));
+            let step =
+                (1..j.feet[side].len()).find(|&level| j.matched && at_foot(j, side, level, away, graph.tolerance));
             if let (Some(level), Some(apex)) = (step, step.and_then(|l| j.apex[l]))
                 && same(points[level], apex, graph.tolerance)
             {
@@ -297,23 +218,13 @@ fn add_surface(graph: &Graph, strips: &Strips, chain: &mut Chain, k: usize) {
                 steps.push(Step { junction, level });
             }
         }
-        columns.push(Column {
-            base,
-            points,
-            height,
-            steps,
-            along: None,
-        });
+        columns.push(Column { base, points, height, steps, along: None });
     }
     chain.columns.extend(columns);
 }
 
 fn at_foot(j: &Junction, side: usize, level: usize, away: f64, tolerance: f64) -> bool {
-    j.feet[side]
-        .get(level)
-        .copied()
-        .flatten()
-        .is_some_and(|foot| (foot - away).abs() <= tolerance)
+    j.feet[side].get(level).copied().flatten().is_some_and(|foot| (foot - away).abs() <= tolerance)
 }
 
 /// Greatest height a column may have at a distance from a convex corner.

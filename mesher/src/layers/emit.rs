@@ -51,25 +51,11 @@ pub(super) fn emit(graph: &Graph, chains: &[Chain], bare: &Strips) -> Emitted {
         tags: vec![Tag::default()],
         ..Strips::default()
     };
-    let out = Emitted {
-        result,
-        edges: Vec::new(),
-        cells: Vec::new(),
-        covered: Vec::new(),
-    };
-    let mut emitter = Emitter {
-        graph,
-        out,
-        rings: HashMap::new(),
-        poles: HashMap::new(),
-    };
+    let out = Emitted { result, edges: Vec::new(), cells: Vec::new(), covered: Vec::new() };
+    let mut emitter = Emitter { graph, out, rings: HashMap::new(), poles: HashMap::new() };
     let mut shared = HashMap::new();
     for (c, chain) in chains.iter().enumerate() {
-        let ids: Vec<Vec<u32>> = chain
-            .columns
-            .iter()
-            .map(|col| emitter.place(chain, col, &mut shared))
-            .collect();
+        let ids: Vec<Vec<u32>> = chain.columns.iter().map(|col| emitter.place(chain, col, &mut shared)).collect();
         emitter.pin(chain, &ids);
         for (i, id) in ids.iter().enumerate() {
             for w in id.windows(2) {
@@ -87,25 +73,15 @@ pub(super) fn emit(graph: &Graph, chains: &[Chain], bare: &Strips) -> Emitted {
 type Apex = (usize, u32, usize);
 
 impl Emitter<'_> {
-    fn place(
-        &mut self,
-        chain: &Chain,
-        column: &Column,
-        shared: &mut HashMap<Apex, u32>,
-    ) -> Vec<u32> {
+    fn place(&mut self, chain: &Chain, column: &Column, shared: &mut HashMap<Apex, u32>) -> Vec<u32> {
         let mut ids = vec![column.base];
         for level in 1..=column.height {
             let p = column.points[level];
-            let step = column
-                .steps
-                .iter()
-                .find(|s| s.level == level && level == column.height);
+            let step = column.steps.iter().find(|s| s.level == level && level == column.height);
             let id = match step {
                 Some(s) => {
                     let key = (chain.region, chain.whole.uses[s.junction].start, level);
-                    *shared
-                        .entry(key)
-                        .or_insert_with(|| self.out.result.add_point(self.graph, p))
+                    *shared.entry(key).or_insert_with(|| self.out.result.add_point(self.graph, p))
                 }
                 None => self.out.result.add_point(self.graph, p),
             };
@@ -130,11 +106,7 @@ impl Emitter<'_> {
             };
             let top_at = |level: usize| {
                 let step = |c: &Column| c.steps.iter().any(|s| s.junction == k && s.level == level);
-                chain
-                    .columns
-                    .iter()
-                    .position(|c| c.height == level && step(c))
-                    .map(|c| ids[c][level])
+                chain.columns.iter().position(|c| c.height == level && step(c)).map(|c| ids[c][level])
             };
             let run: Vec<u32> = (1..junction.apex.len()).map_while(top_at).collect();
             if !run.is_empty() {
@@ -146,20 +118,13 @@ impl Emitter<'_> {
     fn pin_run(&mut self, stretch: usize, from: u32, run: &[u32]) {
         let s = &self.graph.stretches[stretch];
         let at_end = usize::from(s.ends[0] != from);
-        let pins = run
-            .iter()
-            .map(|&id| (s.span.project(self.out.result.point(self.graph, id)), id))
-            .collect();
+        let pins = run.iter().map(|&id| (s.span.project(self.out.result.point(self.graph, id)), id)).collect();
         self.out.result.pins[stretch][at_end] = pins;
     }
 
     fn edge(&mut self, ends: [u32; 2], tag: u32, chain: usize, columns: [usize; 2]) {
         self.out.result.edges.push((ends[0], ends[1], tag));
-        self.out.edges.push(StripEdge {
-            ends,
-            chain,
-            columns,
-        });
+        self.out.edges.push(StripEdge { ends, chain, columns });
     }
 
     /// Rings, steps and cells between two neighbouring columns.
@@ -214,15 +179,8 @@ impl Emitter<'_> {
         let n = if corners[2] == corners[3] { 3 } else { 4 };
         let points = corners.map(|v| self.out.result.point(self.graph, v));
         let mean = |k: usize| points[..n].iter().map(|p| p[k]).sum::<f64>() / n as f64;
-        self.out.result.cells.push(Cell {
-            inside: [mean(0), mean(1)],
-            pole,
-        });
-        self.out.cells.push(StripCell {
-            corners,
-            chain,
-            columns,
-        });
+        self.out.result.cells.push(Cell { inside: [mean(0), mean(1)], pole });
+        self.out.cells.push(StripCell { corners, chain, columns });
     }
 
     /// Tag of a ring edge: its circle, if both ends are on it.
@@ -230,13 +188,7 @@ impl Emitter<'_> {
         let Some(u) = on.map(|k| &chain.whole.uses[k]) else {
             return 0;
         };
-        let Kind::Arc {
-            centre,
-            radius,
-            sweep,
-            ..
-        } = u.span.kind
-        else {
+        let Kind::Arc { centre, radius, sweep, .. } = u.span.kind else {
             return 0;
         };
         let radius = radius - chain.whole.depths[level] * sweep.signum();
@@ -248,26 +200,17 @@ impl Emitter<'_> {
             return self.polar(centre);
         }
         let tags = &mut self.out.result.tags;
-        *self
-            .rings
-            .entry((u.stretch, level, u.reversed))
-            .or_insert_with(|| {
-                tags.push(Tag {
-                    circle: Some((centre, radius)),
-                    ..Tag::default()
-                });
-                tags.len() as u32 - 1
-            })
+        *self.rings.entry((u.stretch, level, u.reversed)).or_insert_with(|| {
+            tags.push(Tag { circle: Some((centre, radius)), ..Tag::default() });
+            tags.len() as u32 - 1
+        })
     }
 
     /// Tag of an edge between two depths below an arc.
     fn polar(&mut self, pole: Point) -> u32 {
         let tags = &mut self.out.result.tags;
         *self.poles.entry(pole.map(f64::to_bits)).or_insert_with(|| {
-            tags.push(Tag {
-                pole: Some(pole),
-                ..Tag::default()
-            });
+            tags.push(Tag { pole: Some(pole), ..Tag::default() });
             tags.len() as u32 - 1
         })
     }

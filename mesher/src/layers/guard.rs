@@ -9,21 +9,12 @@ use crate::predicates::orient;
 use crate::tree::{Item, Tree};
 
 /// Lowers the columns concerned by one level, or to the ground if it is the `last` time; whether there were any.
-pub(super) fn lower_colliding(
-    graph: &Graph,
-    emitted: &Emitted,
-    chains: &mut [Chain],
-    last: bool,
-) -> bool {
+pub(super) fn lower_colliding(graph: &Graph, emitted: &Emitted, chains: &mut [Chain], last: bool) -> bool {
     let mut hit: Vec<(usize, usize)> = Vec::new();
     let point = |v: u32| emitted.result.point(graph, v);
     for cell in &emitted.cells {
         let p = cell.corners.map(point);
-        let n = if cell.corners[2] == cell.corners[3] {
-            3
-        } else {
-            4
-        };
+        let n = if cell.corners[2] == cell.corners[3] { 3 } else { 4 };
         if (0..n).any(|i| orient(p[i], p[(i + 1) % n], p[(i + 2) % n]) <= 0.0) {
             hit.extend(cell.columns.map(|c| (cell.chain, c)));
         }
@@ -79,34 +70,17 @@ fn segments(graph: &Graph, emitted: &Emitted) -> (Vec<Segment>, usize) {
         stops.extend((1..n).map(|k| (k as f64 / n as f64, u32::MAX)));
         stops.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
         let place = |s: &(f64, u32)| {
-            if s.1 == u32::MAX {
-                stretch.span.at(s.0)
-            } else {
-                strips.point(graph, s.1)
-            }
+            if s.1 == u32::MAX { stretch.span.at(s.0) } else { strips.point(graph, s.1) }
         };
-        segments.extend(
-            stops
-                .windows(2)
-                .map(|w| ([w[0].1, w[1].1], [place(&w[0]), place(&w[1])])),
-        );
+        segments.extend(stops.windows(2).map(|w| ([w[0].1, w[1].1], [place(&w[0]), place(&w[1])])));
     }
     let first = segments.len();
-    segments.extend(
-        emitted
-            .edges
-            .iter()
-            .map(|e| (e.ends, e.ends.map(|v| strips.point(graph, v)))),
-    );
+    segments.extend(emitted.edges.iter().map(|e| (e.ends, e.ends.map(|v| strips.point(graph, v)))));
     (segments, first)
 }
 
 fn item([a, b]: [Point; 2]) -> Item {
-    Item {
-        lo: [a[0].min(b[0]), a[1].min(b[1])],
-        hi: [a[0].max(b[0]), a[1].max(b[1])],
-        weight: 0.0,
-    }
+    Item { lo: [a[0].min(b[0]), a[1].min(b[1])], hi: [a[0].max(b[0]), a[1].max(b[1])], weight: 0.0 }
 }
 
 /// Whether two segments have a point in common.

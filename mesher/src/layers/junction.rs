@@ -47,11 +47,7 @@ const FAN_SECTOR: f64 = 0.62;
 pub(super) fn junction(before: &Use, after: &Use, depths: &[f64]) -> Junction {
     let angle = inner_angle(before, after);
     let at_outline = before.bare || after.bare;
-    let (steps, fan) = if at_outline {
-        (STEPS_AT_OUTLINE, FAN_AT_OUTLINE)
-    } else {
-        (STEPS, FAN)
-    };
+    let (steps, fan) = if at_outline { (STEPS_AT_OUTLINE, FAN_AT_OUTLINE) } else { (STEPS, FAN) };
     let style = if before.bare && after.bare {
         Style::Bare
     } else if angle < steps {
@@ -66,35 +62,18 @@ pub(super) fn junction(before: &Use, after: &Use, depths: &[f64]) -> Junction {
     let normal = left_of(after.span.tangent(0.0));
     let apex: Vec<Option<Point>> = match style {
         Style::Bare | Style::Fan => Vec::new(),
-        Style::Shared if smooth => depths
-            .iter()
-            .map(|&d| Some(along(vertex, normal, d)))
-            .collect(),
+        Style::Shared if smooth => depths.iter().map(|&d| Some(along(vertex, normal, d))).collect(),
         Style::Shared | Style::Steps => depths.iter().map(|&d| meeting(before, after, d)).collect(),
     };
     let mut feet = [Vec::new(), Vec::new()];
     if angle < PI - SMOOTH {
-        for (side, u) in [before, after]
-            .into_iter()
-            .enumerate()
-            .filter(|(_, u)| !u.bare)
-        {
+        for (side, u) in [before, after].into_iter().enumerate().filter(|(_, u)| !u.bare) {
             feet[side] = feet_of(&apex, u, side == 0);
         }
     }
-    let fan = if style == Style::Fan {
-        fan_directions(before, after, angle)
-    } else {
-        Vec::new()
-    };
+    let fan = if style == Style::Fan { fan_directions(before, after, angle) } else { Vec::new() };
     let matched = style == Style::Steps && angle > SHARPEST;
-    Junction {
-        style,
-        apex,
-        fan,
-        feet,
-        matched,
-    }
+    Junction { style, apex, fan, feet, matched }
 }
 
 /// Length along a use from its start, or back from its end, of the nearest point to every apex.
@@ -118,11 +97,7 @@ fn outline_direction(before: &Use, after: &Use) -> Point {
 
 /// Directions from the normal of the side before to the normal of the side after, or to the outline.
 fn fan_directions(before: &Use, after: &Use, angle: f64) -> Vec<Point> {
-    let first = if before.bare {
-        outline_direction(before, after)
-    } else {
-        left_of(before.span.tangent(1.0))
-    };
+    let first = if before.bare { outline_direction(before, after) } else { left_of(before.span.tangent(1.0)) };
     let mut turn = angle;
     for surface in [!before.bare, !after.bare] {
         turn -= if surface { 0.5 * PI } else { 0.0 };
@@ -160,8 +135,7 @@ fn meeting(before: &Use, after: &Use, depth: f64) -> Option<Point> {
         (Track::Circle(c, r), Track::Circle(d, q)) => circle_circle(c, r, d, q, 0.0),
     };
     // The bisector points into the region; of two meetings the one ahead on it counts.
-    let near =
-        |p: &Point| p[0].is_finite() && p[1].is_finite() && distance(*p, vertex) < 12.0 * depth;
+    let near = |p: &Point| p[0].is_finite() && p[1].is_finite() && distance(*p, vertex) < 12.0 * depth;
     let inward = |p: &Point| {
         let w = sub(*p, vertex);
         let below_before = before.bare || dot(w, left_of(before.span.tangent(1.0))) > 0.0;
@@ -191,12 +165,7 @@ fn offset(span: &Span, depth: f64) -> Option<Track> {
             let u = span.tangent(0.0);
             Some(Track::Line(along(span.start, left_of(u), depth), u))
         }
-        Kind::Arc {
-            centre,
-            radius,
-            sweep,
-            ..
-        } => {
+        Kind::Arc { centre, radius, sweep, .. } => {
             let r = radius - depth * sweep.signum();
             (r > 0.0).then_some(Track::Circle(centre, r))
         }

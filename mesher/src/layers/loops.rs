@@ -38,25 +38,11 @@ pub(super) fn loops_of(graph: &Graph, region: usize, depths: &[f64]) -> Vec<Loop
     for (i, s) in graph.stretches.iter().enumerate() {
         let bare = s.on_domain.is_some();
         if s.sides[0] == side {
-            uses.push(Use {
-                stretch: i,
-                reversed: false,
-                span: s.span,
-                start: s.ends[0],
-                end: s.ends[1],
-                bare,
-            });
+            uses.push(Use { stretch: i, reversed: false, span: s.span, start: s.ends[0], end: s.ends[1], bare });
         }
         if s.sides[1] == side {
             let span = s.span.reversed();
-            uses.push(Use {
-                stretch: i,
-                reversed: true,
-                span,
-                start: s.ends[1],
-                end: s.ends[0],
-                bare,
-            });
+            uses.push(Use { stretch: i, reversed: true, span, start: s.ends[1], end: s.ends[0], bare });
         }
     }
     let walls: Vec<(Span, bool)> = uses.iter().map(|u| (u.span, u.bare)).collect();
@@ -71,16 +57,8 @@ pub(super) fn loops_of(graph: &Graph, region: usize, depths: &[f64]) -> Vec<Loop
         }
         let ring = rotated(order.into_iter().map(|u| uses[u].clone()).collect());
         let n = ring.len();
-        let junctions = (0..n)
-            .map(|i| junction(&ring[(i + n - 1) % n], &ring[i], depths))
-            .collect();
-        loops.push(Loop {
-            region,
-            depths: depths.to_vec(),
-            uses: ring,
-            junctions,
-            walls: walls.clone(),
-        });
+        let junctions = (0..n).map(|i| junction(&ring[(i + n - 1) % n], &ring[i], depths)).collect();
+        loops.push(Loop { region, depths: depths.to_vec(), uses: ring, junctions, walls: walls.clone() });
     }
     loops
 }

@@ -15,22 +15,12 @@ const SPACING_GROWTH: f64 = 1.5;
 const SPACING_GRADATION: f64 = 0.45;
 
 /// Divides every stretch that carries a strip on either side.
-pub(super) fn divide_surfaces(
-    graph: &Graph,
-    loops: &[Loop],
-    field: &SizeField,
-    max_turn: f64,
-    strips: &mut Strips,
-) {
+pub(super) fn divide_surfaces(graph: &Graph, loops: &[Loop], field: &SizeField, max_turn: f64, strips: &mut Strips) {
     for (i, stretch) in graph.stretches.iter().enumerate() {
         let mut users: Vec<(&Loop, usize)> = loops
             .iter()
             .flat_map(|l| {
-                l.uses
-                    .iter()
-                    .enumerate()
-                    .filter(|(_, u)| u.stretch == i && !u.bare)
-                    .map(move |(k, _)| (l, k))
+                l.uses.iter().enumerate().filter(|(_, u)| u.stretch == i && !u.bare).map(move |(k, _)| (l, k))
             })
             .collect();
         if users.is_empty() {
@@ -39,11 +29,7 @@ pub(super) fn divide_surfaces(
         users.sort_by(|a, b| a.0.depths[1].total_cmp(&b.0.depths[1]));
         let length = stretch.span.length();
         let [head, tail] = [false, true].map(|at_end| {
-            users
-                .iter()
-                .map(|&(l, k)| reserve(l, k, at_end))
-                .find(|r| r.len() > 1)
-                .unwrap_or_else(|| vec![0.0])
+            users.iter().map(|&(l, k)| reserve(l, k, at_end)).find(|r| r.len() > 1).unwrap_or_else(|| vec![0.0])
         });
         let marks = marks(&stretch.span, length, head, tail, field, max_turn);
         let mut chain = vec![stretch.ends[0]];
@@ -59,11 +45,7 @@ pub(super) fn divide_surfaces(
 fn reserve(l: &Loop, k: usize, at_end: bool) -> Vec<f64> {
     let n = l.uses.len();
     let start_of_use = l.uses[k].reversed == at_end;
-    let (junction, side) = if start_of_use {
-        (&l.junctions[k], 1)
-    } else {
-        (&l.junctions[(k + 1) % n], 0)
-    };
+    let (junction, side) = if start_of_use { (&l.junctions[k], 1) } else { (&l.junctions[(k + 1) % n], 0) };
     match junction.style {
         Style::Steps if junction.matched => {
             let mut feet = Vec::new();
@@ -91,8 +73,7 @@ fn marks(
     let size = |x: f64| field.at(span.at(x / length));
     // Steps wider than the surface size are left to the even division.
     for (steps, from_end) in [(&mut head, false), (&mut tail, true)] {
-        let fits =
-            |w: &[f64]| w[1] - w[0] <= 1.3 * size(if from_end { length - w[1] } else { w[1] });
+        let fits = |w: &[f64]| w[1] - w[0] <= 1.3 * size(if from_end { length - w[1] } else { w[1] });
         let kept = 1 + steps.windows(2).take_while(|w| fits(w)).count();
         steps.truncate(kept);
     }
@@ -109,21 +90,13 @@ fn marks(
     };
     let (h0, h1) = (spacing(&head), spacing(&tail));
     let (x0, x1) = (head[head.len() - 1], length - tail[tail.len() - 1]);
-    let fewest =
-        (f64::from(pieces_of_turn(span, max_turn)) * (x1 - x0) / length - 1e-9).ceil() as u32;
+    let fewest = (f64::from(pieces_of_turn(span, max_turn)) * (x1 - x0) / length - 1e-9).ceil() as u32;
     let middle = divide(span, x0 / length, x1 / length, fewest, |t| {
         let x = t * length;
-        size(x)
-            .min(h0 + SPACING_GRADATION * (x - x0))
-            .min(h1 + SPACING_GRADATION * (x1 - x))
+        size(x).min(h0 + SPACING_GRADATION * (x - x0)).min(h1 + SPACING_GRADATION * (x1 - x))
     });
     let mut marks: Vec<f64> = head[..head.len() - 1].iter().map(|x| x / length).collect();
     marks.extend(middle);
-    marks.extend(
-        tail[..tail.len() - 1]
-            .iter()
-            .rev()
-            .map(|x| 1.0 - x / length),
-    );
+    marks.extend(tail[..tail.len() - 1].iter().rev().map(|x| 1.0 - x / length));
     marks
 }

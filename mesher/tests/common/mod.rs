@@ -15,11 +15,7 @@ pub(crate) const LINER: RegionId = RegionId(2);
 pub(crate) const BORE: RegionId = RegionId(3);
 
 pub(crate) fn strip(delta: f64) -> Option<Layers> {
-    Some(Layers {
-        first: delta / 3.0,
-        growth: 1.5,
-        count: 5,
-    })
+    Some(Layers { first: delta / 3.0, growth: 1.5, count: 5 })
 }
 
 pub(crate) fn region(
@@ -29,24 +25,11 @@ pub(crate) fn region(
     surface_size: f64,
     layers: Option<Layers>,
 ) -> Region {
-    Region {
-        id,
-        outline,
-        interior_size,
-        surface_size,
-        layers,
-    }
+    Region { id, outline, interior_size, surface_size, layers }
 }
 
 pub(crate) fn drawing(domain: Outline, domain_size: f64, regions: Vec<Region>) -> Drawing {
-    Drawing {
-        domain,
-        domain_region: AIR,
-        domain_size,
-        regions,
-        gradation: 0.4,
-        boundary_size: None,
-    }
+    Drawing { domain, domain_region: AIR, domain_size, regions, gradation: 0.4, boundary_size: None }
 }
 
 pub(crate) fn rectangle(lo: Point, hi: Point) -> Outline {
@@ -60,25 +43,13 @@ pub(crate) fn mesh(drawing: &Drawing) -> Mesh {
 /// Billet 60 mm x 200 mm in a coil of hollow turns, each 12 mm high, 12 mm wide, 2 mm wall.
 pub(crate) fn coil(domain: Outline, turns: usize, delta: Option<f64>) -> Drawing {
     let layers = delta.and_then(strip);
-    let mut regions = vec![region(
-        BILLET,
-        rectangle([0.0, -0.1], [0.03, 0.1]),
-        0.01,
-        0.004,
-        layers,
-    )];
+    let mut regions = vec![region(BILLET, rectangle([0.0, -0.1], [0.03, 0.1]), 0.01, 0.004, layers)];
     for i in 0..turns {
         let z = -0.096 + 0.016 * i as f64;
         let id = RegionId(10 + i as u32);
         let tube = Outline::rounded_rectangle([0.040, z], [0.052, z + 0.014], 0.0015).unwrap();
         regions.push(region(id, tube, 0.002, 0.0015, layers));
-        regions.push(region(
-            BORE,
-            rectangle([0.042, z + 0.002], [0.050, z + 0.012]),
-            0.003,
-            0.002,
-            None,
-        ));
+        regions.push(region(BORE, rectangle([0.042, z + 0.002], [0.050, z + 0.012]), 0.003, 0.002, None));
     }
     drawing(domain, 0.05, regions)
 }
@@ -87,9 +58,5 @@ pub(crate) fn coil(domain: Outline, turns: usize, delta: Option<f64>) -> Drawing
 pub(crate) fn assert_area(mesh: &Mesh, id: RegionId, wanted: f64) {
     let found = mesh.region_area(id);
     let error = (found - wanted).abs() / wanted;
-    assert!(
-        error < 1e-12,
-        "region {}: area {found:e}, wanted {wanted:e}, error {error:.2e}",
-        id.0
-    );
+    assert!(error < 1e-12, "region {}: area {found:e}, wanted {wanted:e}, error {error:.2e}", id.0);
 }

@@ -297,13 +297,6 @@ impl<'a> Recorder<'a> {
         self.counts.field_solves = run.solver.solves();
         self.state(label, now.state.time_s, run.solver, &now.losses.last, now.factor);
         self.map(run, label, &now.losses.last, now.factor, &now.state);
-        for t in run.heat.part_temperatures(&now.state) {
-            let part = &self.model.parts[t.part];
-            let highest = self.history.iter().flat_map(|h| &h.parts).filter(|p| p.part == t.part);
-            let (lowest_k, highest_k) =
-                highest.fold((t.min_k, t.max_k), |(lo, hi), p| (lo.min(p.min_k), hi.max(p.max_k)));
-            warnings::of_temperatures(part, lowest_k, highest_k, &mut self.warnings);
-        }
     }
 
     fn map(&mut self, run: &HeatRun<'_, '_>, label: &str, field: &FieldState, factor: f64, state: &HeatState) {
@@ -338,6 +331,12 @@ impl<'a> Recorder<'a> {
     /// Puts the results together.
     pub(super) fn finish(mut self, outcome: Outcome, section: Section, solver: &FieldSolver<'_>) -> Results {
         self.counts.field_solves = solver.solves();
+        for (p, part) in self.model.parts.iter().enumerate() {
+            let own = || self.history.iter().flat_map(|h| &h.parts).filter(|t| t.part == p);
+            let lowest_k = own().map(|t| t.min_k).fold(part.start_k, f64::min);
+            let highest_k = own().map(|t| t.max_k).fold(part.start_k, f64::max);
+            warnings::of_temperatures(part, lowest_k, highest_k, &mut self.warnings);
+        }
         for maximum in self.maxima {
             self.states.extend(maximum.at.map(|(_, state)| state));
         }

@@ -54,12 +54,7 @@ impl<T: Scalar> Factor<T> {
             return Err(LinalgError::NotFinite { what: Datum::MatrixValues, index });
         }
         let references = pivot_references(&plan, values);
-        let task = Task {
-            plan: &plan,
-            matrix: values,
-            references: &references,
-            limit: pivot_limit(plan.n()),
-        };
+        let task = Task { plan: &plan, matrix: values, references: &references, limit: pivot_limit(plan.n()) };
         task.siblings(&plan.roots, &mut self.values, &mut Workspace::default())?;
         self.complete = true;
         Ok(())
@@ -144,11 +139,7 @@ impl<T: Scalar> Task<'_, T> {
         panels: &mut [T],
         workspace: &mut Workspace<T>,
     ) -> Result<Vec<Vec<T>>, LinalgError> {
-        let work = |list: &[u32]| {
-            list.iter()
-                .map(|&k| self.plan.fronts[k as usize].work)
-                .sum::<f64>()
-        };
+        let work = |list: &[u32]| list.iter().map(|&k| self.plan.fronts[k as usize].work).sum::<f64>();
         let [.., last] = fronts else {
             return Ok(Vec::new());
         };
@@ -176,12 +167,7 @@ impl<T: Scalar> Task<'_, T> {
     }
 
     /// Factorises front `k` with all below it; returns its border block.
-    fn subtree(
-        &self,
-        k: usize,
-        panels: &mut [T],
-        workspace: &mut Workspace<T>,
-    ) -> Result<Vec<T>, LinalgError> {
+    fn subtree(&self, k: usize, panels: &mut [T], workspace: &mut Workspace<T>) -> Result<Vec<T>, LinalgError> {
         let fronts = &self.plan.fronts;
         let subtree = fronts[k].subtree..k + 1;
         let mut stack = Vec::new();
@@ -194,12 +180,7 @@ impl<T: Scalar> Task<'_, T> {
         let offset = |k: usize| fronts[k].panel.start - fronts[subtree.start].panel.start;
         let (before, rest) = panels.split_at_mut(offset(fronts[branch].subtree));
         let (below, after) = rest.split_at_mut(offset(branch) - before.len());
-        self.sequence(
-            subtree.start..fronts[branch].subtree,
-            before,
-            &mut stack,
-            workspace,
-        )?;
+        self.sequence(subtree.start..fronts[branch].subtree, before, &mut stack, workspace)?;
         stack.append(&mut self.siblings(self.plan.children(&fronts[branch]), below, workspace)?);
         self.sequence(branch..subtree.end, after, &mut stack, workspace)?;
         Ok(stack.pop().unwrap_or_default())
@@ -242,9 +223,7 @@ impl<T: Scalar> Task<'_, T> {
             workspace.spare.push(block);
         }
         let columns = front.first..front.first + front.pivots;
-        workspace
-            .scaled
-            .resize(workspace.scaled.len().max(panel.len()), T::ZERO);
+        workspace.scaled.resize(workspace.scaled.len().max(panel.len()), T::ZERO);
         let mut panel = Panel {
             values: panel,
             scaled: &mut workspace.scaled,

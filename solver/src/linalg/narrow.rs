@@ -13,11 +13,7 @@ use super::scalar::Scalar;
 pub(super) const NARROW: usize = 8;
 
 /// Eliminates columns `start..end`, at most [`NARROW`] of them, of which all earlier updates are done.
-pub(super) fn eliminate_narrow<T: Scalar>(
-    panel: &mut Panel<'_, T>,
-    start: usize,
-    end: usize,
-) -> Result<(), BadPivot> {
+pub(super) fn eliminate_narrow<T: Scalar>(panel: &mut Panel<'_, T>, start: usize, end: usize) -> Result<(), BadPivot> {
     match end - start {
         0 => Ok(()),
         1 => eliminate::<T, 1>(panel, start),
@@ -31,10 +27,7 @@ pub(super) fn eliminate_narrow<T: Scalar>(
     }
 }
 
-fn eliminate<T: Scalar, const W: usize>(
-    panel: &mut Panel<'_, T>,
-    start: usize,
-) -> Result<(), BadPivot> {
+fn eliminate<T: Scalar, const W: usize>(panel: &mut Panel<'_, T>, start: usize) -> Result<(), BadPivot> {
     let block = eliminate_diagonal::<T, W>(panel, start)?;
     let (height, end) = (panel.height, start + W);
     if height > end {
@@ -73,26 +66,13 @@ fn eliminate_diagonal<T: Scalar, const W: usize>(
 ) -> Result<Block<T, W>, BadPivot> {
     let at = |row: usize, column: usize| (start + column) * panel.height + start + row;
     let mut a: [[T; W]; W] = std::array::from_fn(|column| {
-        std::array::from_fn(|row| {
-            if row < column {
-                T::ZERO
-            } else {
-                panel.values[at(row, column)]
-            }
-        })
+        std::array::from_fn(|row| if row < column { T::ZERO } else { panel.values[at(row, column)] })
     });
-    let mut block = Block {
-        negative_lower: [[T::ZERO; W]; W],
-        reciprocals: [T::ZERO; W],
-    };
+    let mut block = Block { negative_lower: [[T::ZERO; W]; W], reciprocals: [T::ZERO; W] };
     for column in 0..W {
         let pivot = a[column][column];
-        check_pivot(pivot, panel.references[start + column], panel.limit).map_err(|ratio| {
-            BadPivot {
-                column: start + column,
-                ratio,
-            }
-        })?;
+        check_pivot(pivot, panel.references[start + column], panel.limit)
+            .map_err(|ratio| BadPivot { column: start + column, ratio })?;
         let reciprocal = pivot.reciprocal();
         block.reciprocals[column] = reciprocal;
         panel.values[at(column, column)] = reciprocal;
@@ -102,10 +82,7 @@ fn eliminate_diagonal<T: Scalar, const W: usize>(
             panel.values[at(row, column)] = lower;
             panel.scaled[at(row, column)] = entry;
             block.negative_lower[column][row] = -lower;
-            for (target, &entry) in open[row - column - 1][row..]
-                .iter_mut()
-                .zip(&done[column][row..])
-            {
+            for (target, &entry) in open[row - column - 1][row..].iter_mut().zip(&done[column][row..]) {
                 *target += block.negative_lower[column][row] * entry;
             }
         }
@@ -138,10 +115,7 @@ impl<T: Scalar, const W: usize> WithSimd for Below<'_, T, W> {
 
     #[inline(always)]
     fn with_simd<S: Simd>(self, simd: S) {
-        let Block {
-            negative_lower,
-            reciprocals,
-        } = self.block;
+        let Block { negative_lower, reciprocals } = self.block;
         let values = self.values.map(|column| T::vectors_mut::<S>(column));
         let scaled = self.scaled.map(|column| T::vectors_mut::<S>(column));
         let zero = T::splat(simd, T::ZERO);

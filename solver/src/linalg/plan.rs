@@ -94,17 +94,7 @@ impl Plan {
         let flops = build.fronts.iter().map(operations).sum();
         let (fronts, scatter) = (build.fronts, build.scatter);
         let (children, roots) = (build.children, build.roots);
-        Ok(Self {
-            pattern,
-            order,
-            fronts,
-            relative,
-            scatter,
-            children,
-            roots,
-            fill,
-            flops,
-        })
+        Ok(Self { pattern, order, fronts, relative, scatter, children, roots, fill, flops })
     }
 
     /// Pattern this plan was made for.
@@ -136,10 +126,7 @@ impl Plan {
     pub(super) fn branch(&self, k: usize, heavy: impl Fn(u32) -> bool) -> usize {
         let mut branch = k;
         loop {
-            let mut children = self
-                .children(&self.fronts[branch])
-                .iter()
-                .filter(|&&child| heavy(child));
+            let mut children = self.children(&self.fronts[branch]).iter().filter(|&&child| heavy(child));
             match (children.next(), children.next()) {
                 (Some(&only), None) => branch = only as usize,
                 _ => return branch,

@@ -58,12 +58,7 @@ pub trait Scalar:
     fn times<S: Simd>(simd: S, a: Self::Vector<S>, b: Self::Vector<S>) -> Self::Vector<S>;
 
     /// `a b + c`, lane by lane, fused if the unit can.
-    fn times_plus<S: Simd>(
-        simd: S,
-        a: Self::Vector<S>,
-        b: Self::Vector<S>,
-        c: Self::Vector<S>,
-    ) -> Self::Vector<S>;
+    fn times_plus<S: Simd>(simd: S, a: Self::Vector<S>, b: Self::Vector<S>, c: Self::Vector<S>) -> Self::Vector<S>;
 
     /// `a + b`, lane by lane.
     fn plus<S: Simd>(simd: S, a: Self::Vector<S>, b: Self::Vector<S>) -> Self::Vector<S>;

@@ -152,10 +152,7 @@ struct Queue {
 
 impl Queue {
     fn new() -> Self {
-        Self {
-            buckets: vec![Vec::new(); BUCKETS],
-            best: BUCKETS,
-        }
+        Self { buckets: vec![Vec::new(); BUCKETS], best: BUCKETS }
     }
 
     fn push(&mut self, gain: i32, vertex: u32, side: u8) {

@@ -51,11 +51,7 @@ impl<T: Scalar> Factor<T> {
         for &unknown in &plan.order {
             x.extend(rhs.iter().skip(unknown as usize).step_by(n).copied());
         }
-        let sweep = Sweep {
-            plan,
-            values: &self.values,
-            width,
-        };
+        let sweep = Sweep { plan, values: &self.values, width };
         sweep.forward_siblings(&plan.roots, &mut x);
         sweep.backward_siblings(&plan.roots, Vec::new(), &mut x);
         for (&unknown, values) in plan.order.iter().zip(x.chunks_exact(width)) {
@@ -90,9 +86,7 @@ impl<'a, T: Scalar> Sweep<'a, T> {
     /// Forward sweep over sibling subtrees, whose steps are `x`; returns what they leave on their borders, in order.
     fn forward_siblings(&self, fronts: &[u32], x: &mut [T]) -> Vec<T> {
         if fronts.len() < 2 {
-            return fronts
-                .first()
-                .map_or_else(Vec::new, |&k| self.forward(k, x));
+            return fronts.first().map_or_else(Vec::new, |&k| self.forward(k, x));
         }
         let (left, right, middle) = self.split(fronts);
         let (x_left, x_right) = x.split_at_mut(middle);
@@ -128,29 +122,14 @@ impl<'a, T: Scalar> Sweep<'a, T> {
         let fork = self.fork(k);
         if !fork.parallel {
             let fronts = &self.plan.fronts[self.front(k).subtree..=k as usize];
-            return Arch::new().dispatch(Forward {
-                sweep: *self,
-                fronts,
-                x,
-                stack: Vec::new(),
-            });
+            return Arch::new().dispatch(Forward { sweep: *self, fronts, x, stack: Vec::new() });
         }
         let (before, rest) = x.split_at_mut(fork.x_before);
         let (below, after) = rest.split_at_mut(fork.x_below);
-        let first = Forward {
-            sweep: *self,
-            fronts: fork.before,
-            x: before,
-            stack: Vec::new(),
-        };
+        let first = Forward { sweep: *self, fronts: fork.before, x: before, stack: Vec::new() };
         let mut stack = Arch::new().dispatch(first);
         stack.append(&mut self.forward_siblings(fork.children, below));
-        Arch::new().dispatch(Forward {
-            sweep: *self,
-            fronts: fork.after,
-            x: after,
-            stack,
-        })
+        Arch::new().dispatch(Forward { sweep: *self, fronts: fork.after, x: after, stack })
     }
 
     /// Backward sweep over sibling subtrees; `borders` are the solutions on their borders, in order.
@@ -180,36 +159,17 @@ impl<'a, T: Scalar> Sweep<'a, T> {
         let fork = self.fork(k);
         if !fork.parallel {
             let fronts = &self.plan.fronts[self.front(k).subtree..=k as usize];
-            Arch::new().dispatch(Backward {
-                sweep: *self,
-                fronts,
-                x,
-                stack: border,
-            });
+            Arch::new().dispatch(Backward { sweep: *self, fronts, x, stack: border });
             return;
         }
         let (before, rest) = x.split_at_mut(fork.x_before);
         let (below, after) = rest.split_at_mut(fork.x_below);
-        let last = Backward {
-            sweep: *self,
-            fronts: fork.after,
-            x: after,
-            stack: border,
-        };
+        let last = Backward { sweep: *self, fronts: fork.after, x: after, stack: border };
         let mut stack = Arch::new().dispatch(last);
-        let rows: usize = fork
-            .children
-            .iter()
-            .map(|&child| self.front(child).border)
-            .sum();
+        let rows: usize = fork.children.iter().map(|&child| self.front(child).border).sum();
         let borders = stack.split_off(stack.len() - rows * self.width);
         self.backward_siblings(fork.children, borders, below);
-        Arch::new().dispatch(Backward {
-            sweep: *self,
-            fronts: fork.before,
-            x: before,
-            stack,
-        });
+        Arch::new().dispatch(Backward { sweep: *self, fronts: fork.before, x: before, stack });
     }
 }
 

@@ -56,12 +56,7 @@ impl<T: Scalar> WithSimd for Forward<'_, '_, T> {
 
     #[inline(always)]
     fn with_simd<S: Simd>(self, simd: S) -> Vec<T> {
-        let Self {
-            sweep,
-            fronts,
-            x,
-            mut stack,
-        } = self;
+        let Self { sweep, fronts, x, mut stack } = self;
         let width = sweep.width;
         let mut local: Vec<T> = Vec::new();
         let mut rest = x;
@@ -73,10 +68,7 @@ impl<T: Scalar> WithSimd for Forward<'_, '_, T> {
             local.resize(height * width, T::ZERO);
             gather(&mut local, height, width, 0..front.pivots, pivots);
             let children = sweep.plan.children(front);
-            let rows: usize = children
-                .iter()
-                .map(|&child| sweep.front(child).border)
-                .sum();
+            let rows: usize = children.iter().map(|&child| sweep.front(child).border).sum();
             let base = stack.len() - rows * width;
             let mut start = base;
             for &child in children {
@@ -94,13 +86,7 @@ impl<T: Scalar> WithSimd for Forward<'_, '_, T> {
             }
             scatter(&local, height, width, 0..front.pivots, pivots);
             stack.resize(base + front.border * width, T::ZERO);
-            scatter(
-                &local,
-                height,
-                width,
-                front.pivots..height,
-                &mut stack[base..],
-            );
+            scatter(&local, height, width, front.pivots..height, &mut stack[base..]);
         }
         stack
     }
@@ -122,12 +108,7 @@ impl<T: Scalar> WithSimd for Backward<'_, '_, T> {
 
     #[inline(always)]
     fn with_simd<S: Simd>(self, simd: S) -> Vec<T> {
-        let Self {
-            sweep,
-            fronts,
-            x,
-            mut stack,
-        } = self;
+        let Self { sweep, fronts, x, mut stack } = self;
         let width = sweep.width;
         let mut local: Vec<T> = Vec::new();
         let mut rest = x;
@@ -139,13 +120,7 @@ impl<T: Scalar> WithSimd for Backward<'_, '_, T> {
             local.resize(height * width, T::ZERO);
             gather(&mut local, height, width, 0..front.pivots, pivots);
             let base = stack.len() - front.border * width;
-            gather(
-                &mut local,
-                height,
-                width,
-                front.pivots..height,
-                &stack[base..],
-            );
+            gather(&mut local, height, width, front.pivots..height, &stack[base..]);
             stack.truncate(base);
             for (k, column) in sweep.columns(front).enumerate().rev() {
                 for side in local.chunks_exact_mut(height) {
@@ -159,9 +134,7 @@ impl<T: Scalar> WithSimd for Backward<'_, '_, T> {
                 if width == 1 {
                     stack.extend(places.iter().map(|&row| local[row as usize]));
                 } else {
-                    let rows = places
-                        .iter()
-                        .flat_map(|&row| (0..width).map(move |r| r * height + row as usize));
+                    let rows = places.iter().flat_map(|&row| (0..width).map(move |r| r * height + row as usize));
                     stack.extend(rows.map(|place| local[place]));
                 }
             }
@@ -172,22 +145,13 @@ impl<T: Scalar> WithSimd for Backward<'_, '_, T> {
 
 /// Copies values that lie together by row into rows `rows` of a block of `width` columns.
 #[inline(always)]
-fn gather<T: Scalar>(
-    block: &mut [T],
-    height: usize,
-    width: usize,
-    rows: Range<usize>,
-    values: &[T],
-) {
+fn gather<T: Scalar>(block: &mut [T], height: usize, width: usize, rows: Range<usize>, values: &[T]) {
     if width == 1 {
         block[rows].copy_from_slice(values);
         return;
     }
     for (r, column) in block.chunks_exact_mut(height).enumerate() {
-        for (place, values) in column[rows.clone()]
-            .iter_mut()
-            .zip(values.chunks_exact(width))
-        {
+        for (place, values) in column[rows.clone()].iter_mut().zip(values.chunks_exact(width)) {
             *place = values[r];
         }
     }
@@ -195,22 +159,13 @@ fn gather<T: Scalar>(
 
 /// The inverse of `gather`.
 #[inline(always)]
-fn scatter<T: Scalar>(
-    block: &[T],
-    height: usize,
-    width: usize,
-    rows: Range<usize>,
-    values: &mut [T],
-) {
+fn scatter<T: Scalar>(block: &[T], height: usize, width: usize, rows: Range<usize>, values: &mut [T]) {
     if width == 1 {
         values.copy_from_slice(&block[rows]);
         return;
     }
     for (r, column) in block.chunks_exact(height).enumerate() {
-        for (&value, places) in column[rows.clone()]
-            .iter()
-            .zip(values.chunks_exact_mut(width))
-        {
+        for (&value, places) in column[rows.clone()].iter().zip(values.chunks_exact_mut(width)) {
             places[r] = value;
         }
     }

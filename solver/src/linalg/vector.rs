@@ -34,11 +34,7 @@ pub(super) fn dot<T: Scalar, S: Simd>(simd: S, a: &[T], b: &[T]) -> T {
             sums[k] = T::times_plus(simd, a[k], b[k], sums[k]);
         }
     }
-    let total = T::plus(
-        simd,
-        T::plus(simd, sums[0], sums[1]),
-        T::plus(simd, sums[2], sums[3]),
-    );
+    let total = T::plus(simd, T::plus(simd, sums[0], sums[1]), T::plus(simd, sums[2], sums[3]));
     let mut sum = T::sum_of_lanes(simd, total);
     for (&a, &b) in a_rest.iter().zip(b_rest) {
         sum += a * b;

@@ -45,9 +45,7 @@ pub(crate) fn laplacian(pattern: &Arc<Pattern>, mass: Complex64) -> SymmetricMat
 
 /// A right-hand side without structure and without zeros.
 pub(crate) fn wavy(n: usize) -> Vec<Complex64> {
-    (0..n)
-        .map(|k| Complex64::new((1.3 * k as f64 + 0.5).sin(), (0.7 * k as f64).cos()))
-        .collect()
+    (0..n).map(|k| Complex64::new((1.3 * k as f64 + 0.5).sin(), (0.7 * k as f64).cos())).collect()
 }
 
 /// Solution by faer's sparse LU with partial pivoting: the independent answer.

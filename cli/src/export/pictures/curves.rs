@@ -21,7 +21,12 @@ const MOST_PARTS: usize = 5;
 const MOST_GAUGES: usize = 12;
 
 /// Temperatures of gauges and parts over time.
-pub(super) fn heating(results: &Results, sheet: &Sheet<'_>, gauges: &[String], job: &str) -> Result<Canvas, PictureError> {
+pub(super) fn heating(
+    results: &Results,
+    sheet: &Sheet<'_>,
+    gauges: &[String],
+    job: &str,
+) -> Result<Canvas, PictureError> {
     let clock = Clock::of(&results.history);
     let mut panel = Panel {
         x_label: format!("time in {}", clock.unit),
@@ -72,7 +77,8 @@ fn heated_note(rows: &[HistoryRow]) -> String {
     let Some(last) = rows.last() else { return "no steps".into() };
     let first = last.parts.first();
     let difference = first.map(|p| p.surface_minus_core_k).filter(|d| d.is_finite());
-    difference.map_or_else(String::new, |d| format!("at the end the surface is {d:.0} K above the core at mid-length"))
+    difference
+        .map_or_else(String::new, |d| format!("at the end the surface is {d:.0} K above the core at mid-length"))
         .replace('-', "\u{2212}")
 }
 

@@ -109,7 +109,12 @@ fn bodies(sheet: &Sheet<'_>) -> Vec<Body> {
         let of_part = |kind: &RegionName| matches!(kind, RegionName::Part(i, _) if *i == index);
         if let Some(extent) = sheet.extent(of_part) {
             let colour = kind_colour(&RegionName::Part(index, String::new()));
-            bodies.push(Body { name: name.to_owned(), colour, extent: whole(extent, sheet.mirrors, false), turns: None });
+            bodies.push(Body {
+                name: name.to_owned(),
+                colour,
+                extent: whole(extent, sheet.mirrors, false),
+                turns: None,
+            });
         }
     }
     for (index, name) in sheet.coils() {
@@ -162,7 +167,11 @@ fn dimensions(bodies: &[Body], window: &Window) -> (Vec<Dimension>, Vec<Dimensio
                 join(&mut across, Dimension { radial: true, range: [-radius, radius], edge: z[1], text }, &body.name);
             }
         } else {
-            join(&mut across, Dimension { radial: true, range: r, edge: z[1], text: millimetres(r[1] - r[0]) }, &body.name);
+            join(
+                &mut across,
+                Dimension { radial: true, range: r, edge: z[1], text: millimetres(r[1] - r[0]) },
+                &body.name,
+            );
         }
         let text = millimetres(z[1] - z[0]);
         join(&mut along, Dimension { radial: false, range: z, edge: r[1], text }, &body.name);
@@ -271,5 +280,10 @@ fn description(body: &Body) -> String {
         format!("\u{2300} {}", millimetres(2.0 * r[1]))
     };
     let length = millimetres(z[1] - z[0]);
-    format!("{}: {turns}{diameters}, length {length}, from z = {} to {}", body.name, millimetres(z[0]), millimetres(z[1]))
+    format!(
+        "{}: {turns}{diameters}, length {length}, from z = {} to {}",
+        body.name,
+        millimetres(z[0]),
+        millimetres(z[1])
+    )
 }

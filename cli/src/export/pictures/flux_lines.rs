@@ -85,12 +85,7 @@ fn instant(sheet: &Sheet<'_>, snapshot: &Snapshot) -> Complex64 {
 }
 
 /// Draws all lines and returns the flux between neighbours, webers; zero where there is nothing to draw.
-fn spacing(
-    image: &mut Image,
-    sheet: &Sheet<'_>,
-    flux: &[f64],
-    places: impl Fn(usize) -> Vec<[f64; 2]>,
-) -> f64 {
+fn spacing(image: &mut Image, sheet: &Sheet<'_>, flux: &[f64], places: impl Fn(usize) -> Vec<[f64; 2]>) -> f64 {
     let visible: Vec<(usize, Vec<[f64; 2]>)> =
         (0..sheet.element_count()).map(|e| (e, places(e))).filter(|(_, p)| !misses(image, p)).collect();
     let values = visible.iter().flat_map(|(e, _)| sheet.nodes(*e)).map(|&n| flux[n as usize]).filter(|v| v.is_finite());

@@ -60,7 +60,8 @@ fn weighted(sheet: &Sheet<'_>, field: &ElementValues, window: &Window) -> Vec<(f
     let stride = shape::node_count(sheet.order) as f64;
     for element in (0..sheet.element_count()).filter(|&e| field.shown[e]) {
         let places = sheet.places(element);
-        let inside = |p: &[f64; 2]| p[0] <= window.r[1] && p[0] >= window.r[0] && p[1] <= window.z[1] && p[1] >= window.z[0];
+        let inside =
+            |p: &[f64; 2]| p[0] <= window.r[1] && p[0] >= window.r[0] && p[1] <= window.z[1] && p[1] >= window.z[0];
         if !places.iter().any(inside) {
             continue;
         }

@@ -170,13 +170,19 @@ fn job_line(results: &Results) -> String {
             format!("{title} \u{b7} stage {stage} ended at its longest time, {time_s:.1} s")
         }
         Outcome::Stopped { time_s } => format!("{title} \u{b7} partial result, stopped on request at {time_s:.1} s"),
-        Outcome::NotConverged { time_s, .. } => format!("{title} \u{b7} partial result, no solution after {time_s:.1} s"),
+        Outcome::NotConverged { time_s, .. } => {
+            format!("{title} \u{b7} partial result, no solution after {time_s:.1} s")
+        }
     }
 }
 
 /// The words for a moment: `start`, or `end of heat, 182.4 s`.
 fn moment(snapshot: &Snapshot) -> String {
-    if snapshot.time_s == 0.0 { snapshot.label.clone() } else { format!("{}, {:.1} s", snapshot.label, snapshot.time_s) }
+    if snapshot.time_s == 0.0 {
+        snapshot.label.clone()
+    } else {
+        format!("{}, {:.1} s", snapshot.label, snapshot.time_s)
+    }
 }
 
 type MapMaker = fn(&Sheet<'_>, &Snapshot) -> Result<MapOf, PictureError>;

@@ -53,7 +53,8 @@ pub(super) fn axial(
 ) -> Result<Canvas, PictureError> {
     let mut panels = Panels::new("z in mm");
     for (number, (snapshot, moment)) in moments.iter().enumerate() {
-        let points = |path: &[[f64; 2]], values: Vec<f64>| path.iter().zip(values).map(|(p, v)| [p[1] * 1e3, v]).collect();
+        let points =
+            |path: &[[f64; 2]], values: Vec<f64>| path.iter().zip(values).map(|(p, v)| [p[1] * 1e3, v]).collect();
         let loss = loss_values(sheet, &snapshot.field, snapshot.field_factor)?;
         let values = paths.sample(sheet, &loss, &paths.surface);
         panels.loss.push(plain(&format!("{moment}, surface"), points(&paths.surface, values), number, &[]));

@@ -42,9 +42,7 @@ impl Paths {
             Mirrors::One { z_m } if z[0] - z_m <= slack => z_m + slack,
             _ => 0.5 * (z[0] + z[1]),
         };
-        let steps = |low: f64, high: f64| {
-            (0..=POINTS).map(move |i| low + (high - low) * i as f64 / POINTS as f64)
-        };
+        let steps = |low: f64, high: f64| (0..=POINTS).map(move |i| low + (high - low) * i as f64 / POINTS as f64);
         let limits = radii(&outline, middle_z);
         let across = limits.map_or_else(Vec::new, |[inner, outer]| {
             steps(inner_start(inner, slack), outer - slack).map(|r| [r, middle_z]).collect()

@@ -85,7 +85,8 @@ impl Scale {
 
     /// Round ticks with their text, at most about `count`.
     pub(super) fn ticks(&self, count: usize) -> Vec<(f64, String)> {
-        let values = if self.logarithmic { decades(self.range, count) } else { ticks(self.range[0], self.range[1], count) };
+        let values =
+            if self.logarithmic { decades(self.range, count) } else { ticks(self.range[0], self.range[1], count) };
         if self.logarithmic {
             return values.into_iter().map(|v| (v, power_label(v))).collect();
         }
@@ -159,7 +160,11 @@ mod tests {
 
     #[test]
     fn values_over_many_decades_go_by_the_logarithm() {
-        let scale = Scale::fit(colorous::VIRIDIS, Spread::ByRange, &even((0..=60).map(|i| 10f64.powf(f64::from(i) / 10.0 - 4.0))));
+        let scale = Scale::fit(
+            colorous::VIRIDIS,
+            Spread::ByRange,
+            &even((0..=60).map(|i| 10f64.powf(f64::from(i) / 10.0 - 4.0))),
+        );
         assert!(scale.logarithmic && scale.cut[0]);
         assert!((scale.range[0] - 0.1).abs() < 1e-12 && (scale.range[1] - 100.0).abs() < 1e-9);
         assert!((scale.fraction(1.0) - 1.0 / 3.0).abs() < 1e-12);
