@@ -3,7 +3,7 @@
 use mesher::{MeshNote, NoteReason, Outline};
 
 use crate::constants::ZERO_CELSIUS_K;
-use crate::material::RangeNote;
+use crate::material::{RangeNote, RangeUse};
 use crate::model::{ConductorKind, Model, Part, Role};
 use crate::overview::Meshed;
 use crate::results::{Electrical, RegionName, Warning, WarningKind};
@@ -156,9 +156,8 @@ pub fn of_state(electrical: &Electrical, out: &mut Warnings) {
 
 /// Warnings about material data used outside their range and about melting, from the extremes of a whole run.
 pub fn of_temperatures(part: &Part, lowest_k: f64, highest_k: f64, out: &mut Warnings) {
-    let far = |note: &RangeNote| {
-        let beyond = (note.range_k.0 - note.used_k).max(note.used_k - note.range_k.1);
-        beyond > RIPPLE_K
+    let far = |note: &RangeNote| match note.side() {
+        RangeUse::Below { by_k } | RangeUse::Above { by_k } => by_k > RIPPLE_K,
     };
     for note in part.material.out_of_range(lowest_k, highest_k).into_iter().filter(far) {
         out.add(WarningKind::MaterialRange, format!("part `{}`: {note}", part.name));

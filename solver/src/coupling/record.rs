@@ -7,8 +7,8 @@ use super::loss::FieldState;
 use super::stage::{HeatRun, Progress};
 use crate::error::SolveError;
 use crate::heat::HeatState;
-use crate::magnetics::drive::{PerAmpere, scale};
-use crate::model::{Drive, Hold, Model};
+use crate::magnetics::drive::PerAmpere;
+use crate::model::{Hold, Model};
 use crate::results::{
     Counts, EnergyBalance, FieldMaps, HistoryRow, Outcome, PartTemperatures, Results, Section, Snapshot, State,
     SupplyLimit, Terminals, TurnRow, Warning, WarningKind,
@@ -209,7 +209,7 @@ impl<'a> Recorder<'a> {
         for row in rows {
             let share = if new.0 > old.0 { ((row.time_s - old.0) / (new.0 - old.0)).clamp(0.0, 1.0) } else { 1.0 };
             let per = between(&old.1, &new.1, share);
-            let peak = self.peak(run, hold, &per)? * row.factor.sqrt();
+            let peak = run.solver.scale(&per, hold)?.peak * row.factor.sqrt();
             let coil_loss_w = (old.2 + share * (new.2 - old.2)) * peak * peak;
             self.row(run, stage, row, run_terminals(run, &per, peak), coil_loss_w);
         }
@@ -221,15 +221,6 @@ impl<'a> Recorder<'a> {
             self.map(run, "", &now.losses.last, now.factor, &now.state);
         }
         Ok(())
-    }
-
-    fn peak(&self, run: &HeatRun<'_, '_>, hold: Hold, per: &PerAmpere) -> Result<f64, SolveError> {
-        match run.model.drive {
-            Drive::Supply { limits, .. } => Ok(scale(hold, limits, per)?.peak),
-            Drive::AppliedField { field_a_per_m_rms, .. } => {
-                Ok(if hold == Hold::Off { 0.0 } else { field_a_per_m_rms * std::f64::consts::SQRT_2 })
-            }
-        }
     }
 
     fn row(

@@ -168,20 +168,11 @@ impl<'a, 'b> HeatRun<'a, 'b> {
             match ended {
                 Ended::Goal => return Ok(None),
                 Ended::Planned | Ended::Drifted if now.state.time_s < tracker.end_s => {}
-                Ended::Planned | Ended::Drifted => return Ok(self.time_is_up(stage, now)),
+                Ended::Planned | Ended::Drifted => return Ok(time_is_up(stage, now)),
                 Ended::Stopped => return Ok(Some(Outcome::Stopped { time_s: now.state.time_s })),
                 Ended::Failed(reason) => {
                     return Ok(Some(Outcome::NotConverged { time_s: now.state.time_s, reason }));
                 }
-            }
-        }
-    }
-
-    fn time_is_up(&self, stage: &Stage, now: &Progress) -> Option<Outcome> {
-        match stage.end {
-            StageEnd::After(_) => None,
-            StageEnd::GaugeReaches { .. } => {
-                Some(Outcome::StageLimit { stage: stage.name.clone(), time_s: now.state.time_s })
             }
         }
     }
@@ -191,7 +182,7 @@ impl<'a, 'b> HeatRun<'a, 'b> {
         if now.losses.last.time_s < now.state.time_s {
             now.losses.last = self.solve(&now.state, hold)?;
         }
-        let scaled = self.solver.scale(&now.losses.last.numbers, hold)?;
+        let scaled = self.solver.scale(&now.losses.last.numbers.per, hold)?;
         now.losses.last.scaled = scaled;
         now.losses.previous = None;
         now.factor = 1.0;
@@ -277,6 +268,15 @@ impl<'a, 'b> HeatRun<'a, 'b> {
             }
         }
         if weight > 0.0 { (sum / weight).sqrt() } else { 0.0 }
+    }
+}
+
+fn time_is_up(stage: &Stage, now: &Progress) -> Option<Outcome> {
+    match stage.end {
+        StageEnd::After(_) => None,
+        StageEnd::GaugeReaches { .. } => {
+            Some(Outcome::StageLimit { stage: stage.name.clone(), time_s: now.state.time_s })
+        }
     }
 }
 

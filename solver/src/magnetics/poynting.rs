@@ -3,6 +3,10 @@
 //! With a function `chi` that is 1 on the part and falls to 0 in the air, `P = int grad(chi) . S dV` over the air,
 //! `S = 1/2 Re(E x H*)`: the mean of the Poynting flux over a family of surfaces (`div Re S = 0` where nothing
 //! conducts). `chi` falls over the second layer of elements, so that the corner of a conductor lies behind it.
+//!
+//! What it shows: that losses, field and measures belong together. A discrete field satisfies this balance but for the
+//! interpolation of `chi u` in the layer where `chi` falls, so it agrees far closer than the field is accurate; like
+//! the power balance it says little about the mesh inside the part.
 
 use num_complex::Complex64;
 
@@ -52,7 +56,9 @@ fn weights(space: &Space, own: &[bool], layers: usize) -> Vec<f64> {
         let touched: Vec<usize> = (0..space.element_count())
             .filter(|&e| space.element(e)[..3].iter().any(|&n| chi[n as usize] == 1.0))
             .collect();
-        touched.into_iter().for_each(|e| mark(&mut chi, e));
+        for e in touched {
+            mark(&mut chi, e);
+        }
     }
     chi
 }
