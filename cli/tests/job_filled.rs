@@ -128,7 +128,7 @@ fn every_key_of_the_schema_is_described_and_every_quantity_names_its_units() {
         match value {
             Value::Object(object) => object.iter().for_each(|(key, inner)| walk(inner, &format!("{path}/{key}"), keys)),
             Value::Array(list) => {
-                list.iter().enumerate().for_each(|(i, inner)| walk(inner, &format!("{path}/{i}"), keys))
+                list.iter().enumerate().for_each(|(i, inner)| walk(inner, &format!("{path}/{i}"), keys));
             }
             _ => {}
         }
@@ -204,10 +204,10 @@ fn jobs_with_values_exchanged_at_random_never_panic() {
     fn leaves(value: &Value, path: String, found: &mut Vec<String>) {
         match value {
             Value::Object(object) => {
-                object.iter().for_each(|(key, inner)| leaves(inner, format!("{path}/{key}"), found))
+                object.iter().for_each(|(key, inner)| leaves(inner, format!("{path}/{key}"), found));
             }
             Value::Array(list) => {
-                list.iter().enumerate().for_each(|(i, inner)| leaves(inner, format!("{path}/{i}"), found))
+                list.iter().enumerate().for_each(|(i, inner)| leaves(inner, format!("{path}/{i}"), found));
             }
             _ => found.push(path),
         }

@@ -88,7 +88,9 @@ impl<'a> Walk<'a> {
         if let Some(target) = reference.and_then(|path| self.root.pointer(path.trim_start_matches('#'))) {
             self.choices(target, into);
         } else if let Some(list) = ["anyOf", "oneOf"].iter().find_map(|key| schema.get(*key)?.as_array()) {
-            list.iter().for_each(|choice| self.choices(choice, into));
+            for choice in list {
+                self.choices(choice, into);
+            }
         } else {
             into.push(schema);
         }

@@ -8,6 +8,7 @@ use super::{
     bad, on,
 };
 
+#[allow(clippy::too_many_lines, reason = "a table")]
 pub(crate) fn meanings() -> Vec<Bad> {
     vec![
         bad(
@@ -114,6 +115,14 @@ pub(crate) fn meanings() -> Vec<Bad> {
                 json!({ "profile": [["35 mm", "0 mm"], ["38 mm", "9 mm"], ["38 mm", "0 mm"], ["35 mm", "9 mm"]] }),
             ),
             &["parts.liner.shape.profile", "outline"],
+        ),
+        bad(
+            "profile that touches itself",
+            Set(
+                "/parts/1/shape",
+                json!({ "profile": [["34 mm", "0 mm"], ["38 mm", "0 mm"], ["38 mm", "9 mm"], ["36 mm", "0 mm"], ["34 mm", "9 mm"]] }),
+            ),
+            &["parts.liner.shape.profile", "may not cross or touch itself"],
         ),
         bad(
             "profile that begins with an arc",
