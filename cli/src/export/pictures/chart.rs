@@ -98,7 +98,7 @@ impl Panel {
     pub(super) fn draw(&self, canvas: &mut Canvas, place: Place) -> Result<(), PictureError> {
         let Place { from, to } = place;
         let x_count = ((to[0] - from[0]) / 110.0).clamp(2.0, 12.0) as usize;
-        let y_count = ((to[1] - from[1]) / 62.0).clamp(2.0, 10.0) as usize;
+        let y_count = ((to[1] - from[1]) / 50.0).clamp(2.0, 10.0) as usize;
         let x = self.x_range();
         let x = if x[1] - x[0] > 0.0 { x } else { round_range(x[0], x[1], x_count).into() };
         let y = self.y_range(y_count);
@@ -129,7 +129,13 @@ impl Panel {
     }
 
     /// Tick labels and names of the axes.
-    fn grid(&self, canvas: &mut Canvas, place: Place, ranges: [[f64; 2]; 2], counts: [usize; 2]) -> Result<(), PictureError> {
+    fn grid(
+        &self,
+        canvas: &mut Canvas,
+        place: Place,
+        ranges: [[f64; 2]; 2],
+        counts: [usize; 2],
+    ) -> Result<(), PictureError> {
         let Place { from, to } = place;
         let fraction = |v: f64, r: [f64; 2]| (v - r[0]) / (r[1] - r[0]);
         let values = ticks(ranges[0][0], ranges[0][1], counts[0]);
@@ -151,7 +157,8 @@ impl Panel {
 
     /// Draws the legend of the lines and bands, from `at` downwards; returns the height used.
     pub(super) fn legend(&self, canvas: &mut Canvas, at: [f64; 2], size: [f64; 2]) -> Result<f64, PictureError> {
-        let named: Vec<(&Series, &String)> = self.series.iter().filter_map(|s| s.name.as_ref().map(|n| (s, n))).collect();
+        let named: Vec<(&Series, &String)> =
+            self.series.iter().filter_map(|s| s.name.as_ref().map(|n| (s, n))).collect();
         let room = (size[1] / LEGEND_ROW).max(1.0) as usize;
         let total = named.len() + self.bands.len();
         let shown = if total > room { room - 1 } else { total };
@@ -184,9 +191,9 @@ fn entry(canvas: &mut Canvas, text: &str, at: [f64; 2], width: f64) -> Result<()
 
 /// Least and greatest of the finite values; `[0, 1]` without any.
 fn span(values: impl Iterator<Item = f64>) -> [f64; 2] {
-    let found = values.filter(|v| v.is_finite()).fold(None, |range: Option<[f64; 2]>, v| {
-        Some(range.map_or([v, v], |[low, high]| [low.min(v), high.max(v)]))
-    });
+    let found = values
+        .filter(|v| v.is_finite())
+        .fold(None, |range: Option<[f64; 2]>, v| Some(range.map_or([v, v], |[low, high]| [low.min(v), high.max(v)])));
     found.unwrap_or([0.0, 1.0])
 }
 
@@ -275,7 +282,9 @@ mod tests {
 
     #[test]
     fn lines_without_points_numbers_or_extent_draw_their_axes() {
-        for points in [vec![], vec![[0.0, f64::NAN]], vec![[1.0, 5.0]], vec![[0.0, 5.0], [10.0, 5.0]], vec![[f64::NAN, 1.0]]] {
+        for points in
+            [vec![], vec![[0.0, f64::NAN]], vec![[1.0, 5.0]], vec![[0.0, 5.0], [10.0, 5.0]], vec![[f64::NAN, 1.0]]]
+        {
             let mut canvas = drawn(points);
             assert_ne!(canvas.fine_pixels().pixel(2 * 150, 2 * 300), PAPER, "left axis");
         }

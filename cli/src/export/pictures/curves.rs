@@ -21,7 +21,12 @@ const MOST_PARTS: usize = 5;
 const MOST_GAUGES: usize = 12;
 
 /// Temperatures of gauges and parts over time.
-pub(super) fn heating(results: &Results, sheet: &Sheet<'_>, gauges: &[String], job: &str) -> Result<Canvas, PictureError> {
+pub(super) fn heating(
+    results: &Results,
+    sheet: &Sheet<'_>,
+    gauges: &[String],
+    job: &str,
+) -> Result<Canvas, PictureError> {
     let clock = Clock::of(&results.history);
     let mut panel = Panel {
         x_label: format!("time in {}", clock.unit),
@@ -69,11 +74,15 @@ fn add_parts(panel: &mut Panel, rows: &[HistoryRow], sheet: &Sheet<'_>, clock: &
 
 /// Differences at the end of the run.
 fn heated_note(rows: &[HistoryRow]) -> String {
-    let Some(last) = rows.last() else { return "no steps".into() };
+    let Some(last) = rows.last() else {
+        return "no steps".into();
+    };
     let first = last.parts.first();
     let difference = first.map(|p| p.surface_minus_core_k).filter(|d| d.is_finite());
-    difference.map_or_else(String::new, |d| format!("at the end the surface is {d:.0} K above the core at mid-length"))
-        .replace('-', "\u{2212}")
+    difference.map_or_else(String::new, |d| {
+        let (size, side) = (d.abs(), if d < 0.0 { "below" } else { "above" });
+        format!("at the end the surface is {size:.0} K {side} the core at mid-length")
+    })
 }
 
 /// Power in its own panel; voltage, current, resistance and inductance in four below it where there is a supply.

@@ -54,7 +54,7 @@ pub(super) fn section(sheet: &Sheet<'_>, title: &str) -> Result<Canvas, PictureE
     let entries = bodies.len().min(MOST_ENTRIES + 1) as f64;
     let margins = Margins {
         left: 140.0,
-        right: 60.0 + ROW * beside.len() as f64,
+        right: 50.0 + ROW * beside.len() as f64,
         top: HEADING + ROW * above.len() as f64 + 14.0,
         bottom: 125.0 + ENTRY * entries,
     };
@@ -71,8 +71,9 @@ pub(super) fn section(sheet: &Sheet<'_>, title: &str) -> Result<Canvas, PictureE
         draw_above(&mut canvas, &frame, dimension, frame.from[1] - 16.0 - ROW * row as f64)?;
     }
     for (row, dimension) in beside.iter().enumerate() {
-        draw_beside(&mut canvas, &frame, dimension, frame.to[0] + 30.0 + ROW * row as f64)?;
+        draw_beside(&mut canvas, &frame, dimension, frame.to[0] + 50.0 + ROW * row as f64)?;
     }
+    name_parts(&mut canvas, &frame, &bodies)?;
     list(&mut canvas, &frame, &bodies)?;
     let note = "dimensions in mm, cold".to_owned();
     Heading { title: "Section".into(), job: title.to_owned(), note }.draw(&mut canvas)?;
@@ -109,7 +110,12 @@ fn bodies(sheet: &Sheet<'_>) -> Vec<Body> {
         let of_part = |kind: &RegionName| matches!(kind, RegionName::Part(i, _) if *i == index);
         if let Some(extent) = sheet.extent(of_part) {
             let colour = kind_colour(&RegionName::Part(index, String::new()));
-            bodies.push(Body { name: name.to_owned(), colour, extent: whole(extent, sheet.mirrors, false), turns: None });
+            bodies.push(Body {
+                name: name.to_owned(),
+                colour,
+                extent: whole(extent, sheet.mirrors, false),
+                turns: None,
+            });
         }
     }
     for (index, name) in sheet.coils() {
@@ -158,11 +164,15 @@ fn dimensions(bodies: &[Body], window: &Window) -> (Vec<Dimension>, Vec<Dimensio
         if window.both_sides {
             let hollow = r[0] > 1e-9 + 1e-6 * r[1];
             for radius in [r[0], r[1]].into_iter().skip(usize::from(!hollow)) {
-                let text = format!("\u{2300} {}", millimetres(2.0 * radius));
+                let text = format!("\u{d8} {}", millimetres(2.0 * radius));
                 join(&mut across, Dimension { radial: true, range: [-radius, radius], edge: z[1], text }, &body.name);
             }
         } else {
-            join(&mut across, Dimension { radial: true, range: r, edge: z[1], text: millimetres(r[1] - r[0]) }, &body.name);
+            join(
+                &mut across,
+                Dimension { radial: true, range: r, edge: z[1], text: millimetres(r[1] - r[0]) },
+                &body.name,
+            );
         }
         let text = millimetres(z[1] - z[0]);
         join(&mut along, Dimension { radial: false, range: z, edge: r[1], text }, &body.name);
@@ -239,6 +249,24 @@ fn arrow(canvas: &mut Canvas, tip: [f64; 2], direction: [f64; 2]) {
     }
 }
 
+/// Writes the names of parts into them where they find room: off the axis, and off the middle, where a mirror plane may be.
+fn name_parts(canvas: &mut Canvas, frame: &Frame, bodies: &[Body]) -> Result<(), PictureError> {
+    for body in bodies.iter().filter(|b| b.turns.is_none()) {
+        let Extent { r, z } = body.extent;
+        let (a, b) = (frame.place([r[0], 0.5 * (z[0] + z[1])]), frame.place([r[1], z[1]]));
+        let width = canvas.text_width(&body.name, TEXT)?;
+        let (room, height) = ((b[0] - a[0]).abs(), (b[1] - a[1]).abs());
+        if width + 16.0 < room && height > 1.3 * TEXT {
+            let at = [0.5 * (a[0] + b[0]), 0.5 * (a[1] + b[1]) + 0.31 * TEXT];
+            canvas.text(&body.name, at, lettering(TEXT, Align::Centre))?;
+        } else if width + 16.0 < height && room > 1.3 * TEXT {
+            let at = [0.5 * (a[0] + b[0]) + 0.31 * TEXT, 0.5 * (a[1] + b[1])];
+            canvas.text_upwards(&body.name, at, lettering(TEXT, Align::Centre))?;
+        }
+    }
+    Ok(())
+}
+
 /// The list of bodies with their sizes and places, below the map.
 fn list(canvas: &mut Canvas, frame: &Frame, bodies: &[Body]) -> Result<(), PictureError> {
     let left = 60.0;
@@ -266,10 +294,15 @@ fn description(body: &Body) -> String {
     };
     let hollow = r[0] > 1e-9 + 1e-6 * r[1];
     let diameters = if hollow {
-        format!("\u{2300} {} inside, \u{2300} {} outside", millimetres(2.0 * r[0]), millimetres(2.0 * r[1]))
+        format!("\u{d8} {} inside, \u{d8} {} outside", millimetres(2.0 * r[0]), millimetres(2.0 * r[1]))
     } else {
-        format!("\u{2300} {}", millimetres(2.0 * r[1]))
+        format!("\u{d8} {}", millimetres(2.0 * r[1]))
     };
     let length = millimetres(z[1] - z[0]);
-    format!("{}: {turns}{diameters}, length {length}, from z = {} to {}", body.name, millimetres(z[0]), millimetres(z[1]))
+    format!(
+        "{}: {turns}{diameters}, length {length}, from z = {} to {}",
+        body.name,
+        millimetres(z[0]),
+        millimetres(z[1])
+    )
 }

@@ -21,6 +21,7 @@ pub(super) fn loss_density(sheet: &Sheet<'_>, snapshot: &Snapshot) -> Result<Map
         gradient: colorous::VIRIDIS,
         spread: Spread::ByRange,
         field,
+        leading_parts: Vec::new(),
         least_matters: false,
         remark: "grey: no loss",
     })
@@ -39,11 +40,12 @@ pub(super) fn current_density(sheet: &Sheet<'_>, snapshot: &Snapshot) -> Result<
     check(sheet, "current densities", density.len())?;
     let factor = snapshot.field_factor.abs() * std::f64::consts::FRAC_1_SQRT_2 * 1e-6;
     Ok(MapOf {
-        label: "Current density in A/mm\u{b2} rms".into(),
+        label: "Current density in A/mm\u{b2}, rms".into(),
         unit: "A/mm\u{b2} rms",
         gradient: colorous::PLASMA,
         spread: Spread::ByRange,
         field: where_present(sheet, density.iter().map(|j| j.norm() * factor).collect()),
+        leading_parts: Vec::new(),
         least_matters: false,
         remark: "grey: no current",
     })
@@ -56,11 +58,12 @@ pub(super) fn flux_density(sheet: &Sheet<'_>, snapshot: &Snapshot) -> Result<Map
     let factor = snapshot.field_factor.abs();
     let values = density.iter().map(|&b| factor * greatest_over_period(b)).collect();
     Ok(MapOf {
-        label: "Flux density in T peak".into(),
-        unit: "T peak",
+        label: "Flux density in T, peak".into(),
+        unit: "T",
         gradient: colorous::CIVIDIS,
         spread: Spread::LinearWithoutOutliers,
         field: ElementValues { values, shown: vec![true; sheet.element_count()] },
+        leading_parts: Vec::new(),
         least_matters: false,
         remark: "",
     })
@@ -75,14 +78,20 @@ fn greatest_over_period(b: [Complex64; 2]) -> f64 {
     (0.5 * (constant + (b[0] * b[0] + b[1] * b[1]).norm())).sqrt()
 }
 
-/// Temperature in °C of nodes in kelvin.
-pub(super) fn temperature(sheet: &Sheet<'_>, kelvin: &[f64], label: &str) -> Result<MapOf, PictureError> {
+/// Temperature in °C of nodes in kelvin; the scale goes by `leading_parts` where others are much colder or hotter.
+pub(super) fn temperature(
+    sheet: &Sheet<'_>,
+    kelvin: &[f64],
+    label: &str,
+    leading_parts: &[usize],
+) -> Result<MapOf, PictureError> {
     Ok(MapOf {
         label: format!("{label} in \u{b0}C"),
         unit: "\u{b0}C",
         gradient: colorous::INFERNO,
         spread: Spread::Linear,
         field: temperature_values(sheet, kelvin)?,
+        leading_parts: leading_parts.to_vec(),
         least_matters: true,
         remark: "grey: not heated",
     })

@@ -105,7 +105,8 @@ impl Frame {
     pub(super) fn place(&self, p: [f64; 2]) -> [f64; 2] {
         let per_metre = self.scale / OVERSAMPLING as f64;
         let half = self.half.map(|n| (n / OVERSAMPLING) as f64);
-        let right = if self.window.both_sides { half[0] + p[0] * per_metre } else { (p[0] - self.window.r[0]) * per_metre };
+        let right =
+            if self.window.both_sides { half[0] + p[0] * per_metre } else { (p[0] - self.window.r[0]) * per_metre };
         let below = if self.window.both_halves { half[1] } else { 0.0 };
         let up = below + (p[1] - self.window.z[0]) * per_metre;
         if self.turned { [self.from[0] + up, self.to[1] - right] } else { [self.from[0] + right, self.to[1] - up] }
@@ -118,7 +119,15 @@ impl Frame {
         let top = self.from[1] as usize * OVERSAMPLING;
         let full_r = nr * (1 + usize::from(self.window.both_sides));
         let full_z = nz * (1 + usize::from(self.window.both_halves));
-        let column = |i: usize| if !self.window.both_sides { i } else if i < nr { nr - 1 - i } else { i - nr };
+        let column = |i: usize| {
+            if !self.window.both_sides {
+                i
+            } else if i < nr {
+                nr - 1 - i
+            } else {
+                i - nr
+            }
+        };
         let row = |j: usize| if j < nz { j } else { 2 * nz - 1 - j };
         let fine = canvas.fine_pixels();
         for j in 0..full_z {

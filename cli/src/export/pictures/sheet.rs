@@ -141,10 +141,11 @@ impl<'a> Sheet<'a> {
             for edge in 0..3 {
                 let along: Vec<u32> = edge_nodes(self.order, edge).into_iter().map(|i| nodes[i]).collect();
                 let (a, b) = (along[0], along[along.len() - 1]);
-                edges
-                    .entry([a.min(b), a.max(b)])
-                    .and_modify(|e| e.second = Some(element))
-                    .or_insert(SheetEdge { nodes: along, first: element, second: None });
+                edges.entry([a.min(b), a.max(b)]).and_modify(|e| e.second = Some(element)).or_insert(SheetEdge {
+                    nodes: along,
+                    first: element,
+                    second: None,
+                });
             }
         }
         edges.into_values().collect()
