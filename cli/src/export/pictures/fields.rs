@@ -108,11 +108,9 @@ pub(super) fn temperature_values(sheet: &Sheet<'_>, kelvin: &[f64]) -> Result<El
     }
     let mut field = ElementValues { values, shown: vec![false; sheet.element_count()] };
     // A part is heated where all its nodes have a temperature; a neighbour shares only those on its rim.
-    for (index, _) in sheet.parts() {
-        let elements = sheet.elements_of(|kind| matches!(kind, RegionName::Part(i, _) if *i == index));
-        if elements.iter().all(|&e| field.of(sheet, e).iter().all(|t| t.is_finite())) {
-            elements.into_iter().for_each(|e| field.shown[e] = true);
-        }
+    for elements in bodies(sheet) {
+        let heated = elements.iter().all(|&e| field.of(sheet, e).iter().all(|t| t.is_finite()));
+        show(&mut field, &elements, heated);
     }
     Ok(field)
 }
@@ -120,18 +118,25 @@ pub(super) fn temperature_values(sheet: &Sheet<'_>, kelvin: &[f64]) -> Result<El
 /// Values shown in the parts and coils in which they are not all zero.
 fn where_present(sheet: &Sheet<'_>, values: Vec<f64>) -> ElementValues {
     let mut field = ElementValues { values, shown: vec![false; sheet.element_count()] };
-    let present = |e: usize, field: &ElementValues| field.of(sheet, e).iter().any(|v| *v > 0.0);
-    for (index, _) in sheet.parts() {
-        let elements = sheet.elements_of(|kind| matches!(kind, RegionName::Part(i, _) if *i == index));
-        let any = elements.iter().any(|&e| present(e, &field));
-        elements.into_iter().for_each(|e| field.shown[e] = any);
-    }
-    for (index, _) in sheet.coils() {
-        let elements = sheet.elements_of(|kind| matches!(kind, RegionName::Turn(i, _, _) if *i == index));
-        let any = elements.iter().any(|&e| present(e, &field));
-        elements.into_iter().for_each(|e| field.shown[e] = any);
+    for elements in bodies(sheet) {
+        let present = elements.iter().any(|&e| field.of(sheet, e).iter().any(|v| *v > 0.0));
+        show(&mut field, &elements, present);
     }
     field
+}
+
+/// Elements of each part and of each coil.
+fn bodies(sheet: &Sheet<'_>) -> Vec<Vec<usize>> {
+    let part = |index: usize| sheet.elements_of(|kind| matches!(kind, RegionName::Part(i, _) if *i == index));
+    let coil = |index: usize| sheet.elements_of(|kind| matches!(kind, RegionName::Turn(i, _, _) if *i == index));
+    let parts = sheet.parts().into_iter().map(|p| part(p.0));
+    parts.chain(sheet.coils().into_iter().map(|c| coil(c.0))).collect()
+}
+
+fn show(field: &mut ElementValues, elements: &[usize], shown: bool) {
+    for &element in elements {
+        field.shown[element] = shown;
+    }
 }
 
 /// Refuses arrays that do not have one value an element and local node.

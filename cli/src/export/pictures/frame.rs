@@ -177,7 +177,9 @@ impl Frame {
         let values = ticks(range[0] * 1e3, range[1] * 1e3, count);
         let mut text = labels(&values);
         if radial && self.window.both_sides {
-            text.iter_mut().for_each(|t| *t = t.trim_start_matches('\u{2212}').to_owned());
+            for label in &mut text {
+                *label = label.trim_start_matches('\u{2212}').to_owned();
+            }
         }
         values.into_iter().map(|v| v * 1e-3).zip(text).collect()
     }

@@ -37,7 +37,7 @@ pub(super) fn radial(
     }
     let height = millimetres((paths.middle_z * 1e4).round() * 1e-4);
     let note = format!("from the inner to the outer surface at z = {height} mm");
-    panels.draw(Heading { title: format!("Radial profile of {part} at mid-length"), job: job.to_owned(), note })
+    panels.draw(&Heading { title: format!("Radial profile of {part} at mid-length"), job: job.to_owned(), note })
 }
 
 /// Loss density along the surface, and temperature along surface and core.
@@ -69,7 +69,7 @@ pub(super) fn axial(
         }
     }
     let note = "loss density at the outer surface; core: the axis, or the inner surface of a hollow part".to_owned();
-    panels.draw(Heading { title: format!("Axial profile of {part}"), job: job.to_owned(), note })
+    panels.draw(&Heading { title: format!("Axial profile of {part}"), job: job.to_owned(), note })
 }
 
 /// True where the temperatures of a snapshot are drawn: those of the start, even all over, only where there are no others.
@@ -115,7 +115,7 @@ impl Panels {
         Self { x_label, loss: Vec::new(), temperature: Vec::new() }
     }
 
-    fn draw(self, heading: Heading) -> Result<Canvas, PictureError> {
+    fn draw(self, heading: &Heading) -> Result<Canvas, PictureError> {
         let mut canvas = Canvas::new(SIZE[0] as usize, SIZE[1] as usize)?;
         let panel = |y_label: &str, series: Vec<Series>, from_zero: bool| Panel {
             x_label: self.x_label.into(),

@@ -1,6 +1,6 @@
 //! Values to colours. The colour maps are perceptually uniform and chosen once: inferno for temperatures, viridis for
-//! loss density, cividis for flux density, plasma for current density (the colorous crate; from matplotlib's and from
-//! Nunez, Anderton and Renslow, PLoS ONE 13 (2018) e0199239).
+//! loss density, cividis for flux density, plasma for current density (colour tables of
+//! the `colorous` crate; cividis: J. R. Nuñez, C. R. Anderton, R. S. Renslow, `PLoS ONE` 13 (2018) e0199239).
 //!
 //! A quantity that falls off by decades, as losses do below a surface, is shown on a logarithmic scale of three decades;
 //! a few extreme values at sharp corners do not stretch a linear scale, but are shown in the last colour and marked so.
