@@ -76,7 +76,8 @@ pub(super) fn section(sheet: &Sheet<'_>, title: &str) -> Result<Canvas, PictureE
     }
     name_parts(&mut canvas, &frame, &bodies)?;
     list(&mut canvas, &frame, &bodies)?;
-    let note = "dimensions in mm, cold".to_owned();
+    let side = if window.both_sides { "" } else { ", one side of the axis" };
+    let note = format!("dimensions in mm, cold{side}");
     Heading { title: "Section".into(), job: title.to_owned(), note }.draw(&mut canvas)?;
     Ok(canvas)
 }

@@ -133,9 +133,9 @@ impl Panels {
         for (index, panel) in panels.iter().enumerate() {
             let from = [LEFT, top + height * index as f64];
             let to = [SIZE[0] - LEGEND - 20.0, from[1] + height - 105.0];
-            panel.draw(&mut canvas, Place { from, to })?;
+            let numbered = panel.draw(&mut canvas, Place { from, to })?;
             let legend = [to[0] + 30.0, from[1]];
-            panel.legend(&mut canvas, legend, [SIZE[0] - legend[0] - 20.0, to[1] - from[1]])?;
+            panel.legend(&mut canvas, legend, [SIZE[0] - legend[0] - 20.0, to[1] - from[1]], numbered)?;
         }
         heading.draw(&mut canvas)?;
         Ok(canvas)
