@@ -3,7 +3,7 @@
 //! and currents rms.
 
 use solver::constants::ZERO_CELSIUS_K;
-use solver::results::{HistoryRow, Results, Terminals};
+use solver::results::{HistoryRow, Results, State, Terminals};
 
 use super::PictureError;
 use super::canvas::Canvas;
@@ -181,7 +181,9 @@ impl Clock {
 fn marks(results: &Results, clock: &Clock) -> Vec<Mark> {
     let end = results.history.last().map_or(0.0, |r| r.time_s);
     let mut marks: Vec<Mark> = Vec::new();
-    for state in &results.states {
+    let mut states: Vec<&State> = results.states.iter().collect();
+    states.sort_by(|a, b| a.time_s.total_cmp(&b.time_s));
+    for state in states {
         let wanted = state.label.contains("Curie") || state.label.starts_with("end of");
         if !wanted || !state.time_s.is_finite() || state.time_s > end {
             continue;
