@@ -1,6 +1,6 @@
 //! The sheet a picture is drawn on: text, lines and boxes at twice the final resolution, then reduced and encoded.
 //! Convention: coordinates are pixels of the finished picture, from its upper left corner, y downwards. Text is set in
-//! the embedded font DejaVu Sans (licence beside it in `assets/`), so a picture needs nothing of the machine it is made on.
+//! the embedded font `DejaVu Sans` (licence beside it in `assets/`), so a picture needs nothing of the machine it is made on.
 
 use plotters::backend::{BitMapBackend, DrawingBackend};
 use plotters::style::{Color, FontDesc, FontFamily, FontStyle, FontTransform, RGBColor, TextStyle, register_font};

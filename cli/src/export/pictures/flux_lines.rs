@@ -149,7 +149,9 @@ fn webers(value: f64) -> String {
         v if v >= 1e-7 => (v * 1e6, "\u{b5}Wb"),
         v => (v * 1e9, "nWb"),
     };
-    format!("{} {unit}", three_digits(scaled))
+    let digits = three_digits(scaled);
+    let short = if digits.contains('.') { digits.trim_end_matches('0').trim_end_matches('.') } else { &digits };
+    format!("{short} {unit}")
 }
 
 #[cfg(test)]
@@ -184,7 +186,7 @@ mod tests {
 
     #[test]
     fn fluxes_are_written_with_a_prefix() {
-        assert_eq!(webers(2e-5), "20.0 \u{b5}Wb");
-        assert_eq!(webers(0.5), "0.500 Wb");
+        assert_eq!(webers(2e-5), "20 \u{b5}Wb");
+        assert_eq!(webers(0.5), "0.5 Wb");
     }
 }

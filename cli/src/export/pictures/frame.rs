@@ -164,7 +164,7 @@ impl Frame {
     }
 
     fn ticks_beside(&self, canvas: &mut Canvas, range: [f64; 2]) -> Result<(), PictureError> {
-        let count = ((self.to[1] - self.from[1]) / 80.0).clamp(2.0, 12.0) as usize;
+        let count = ((self.to[1] - self.from[1]) / 64.0).clamp(3.0, 12.0) as usize;
         for (value, label) in self.marks(range, count, self.turned) {
             let y = if self.turned { self.place([value, 0.0])[1] } else { self.place([0.0, value])[1] };
             canvas.line([self.from[0] - 9.0, y], [self.from[0], y], 1.5, INK);
@@ -177,7 +177,9 @@ impl Frame {
         let values = ticks(range[0] * 1e3, range[1] * 1e3, count);
         let mut text = labels(&values);
         if radial && self.window.both_sides {
-            text.iter_mut().for_each(|t| *t = t.trim_start_matches('\u{2212}').to_owned());
+            for label in &mut text {
+                *label = label.trim_start_matches('\u{2212}').to_owned();
+            }
         }
         values.into_iter().map(|v| v * 1e-3).zip(text).collect()
     }
