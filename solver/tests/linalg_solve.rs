@@ -128,7 +128,7 @@ fn no_unknowns_are_solved_by_nothing() {
     let matrix = SymmetricMatrix::<f64>::zeros(Arc::new(Pattern::from_cliques(0, std::iter::empty())));
     for points in [None, Some(&[][..])] {
         let factor = Factor::new(&plan(&matrix.pattern, points, &[]), &matrix.values).unwrap();
-        assert_eq!(checked_solve(&matrix, &factor, &[]).unwrap().x, []);
+        assert!(checked_solve(&matrix, &factor, &[]).unwrap().x.is_empty());
     }
 }
 
