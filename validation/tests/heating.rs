@@ -4,9 +4,7 @@
 use std::sync::atomic::{AtomicUsize, Ordering};
 
 use solver::material::library;
-use solver::model::{
-    Drive, Gauge, GaugeKind, Heating, Hold, Mirrors, Model, Stage, StageEnd, Surface,
-};
+use solver::model::{Drive, Gauge, GaugeKind, Heating, Hold, Mirrors, Model, Stage, StageEnd, Surface};
 use solver::observe::{Event, Observer, Silent};
 use solver::results::{Outcome, Results};
 use validation::models;
@@ -26,12 +24,7 @@ fn bar(stages: Vec<Stage>) -> Model {
     if let Drive::Supply { hold, .. } = &mut model.drive {
         *hold = Hold::WorkpiecePower(60e3);
     }
-    let gauge = |name: &str, r| Gauge {
-        name: name.to_owned(),
-        kind: GaugeKind::Thermocouple,
-        part: 0,
-        at: [r, 0.0],
-    };
+    let gauge = |name: &str, r| Gauge { name: name.to_owned(), kind: GaugeKind::Thermocouple, part: 0, at: [r, 0.0] };
     model.gauges = vec![gauge("core", 0.0), gauge("surface", 0.03)];
     model.heating = Some(Heating { ambient_k: AMBIENT_K, stages, step_tolerance_k: 4.0 });
     model

@@ -12,7 +12,7 @@ use super::fields::check;
 use super::frame::{Frame, Margins};
 use super::heading::{HEADING, Heading};
 use super::image::{Image, Rgb};
-use super::layer::{AIR, paint_kinds, pixels, stroke_outlines};
+use super::layer::{AIR, paint_kinds, pixels, stroke_edges, stroke_outlines};
 use super::raster::misses;
 use super::shape;
 use super::sheet::Sheet;
@@ -26,6 +26,7 @@ const LINES: usize = 30;
 /// Longest piece of a line, fine pixels.
 const PIECE: f64 = 10.0;
 const LINE: Rgb = [24, 62, 128];
+const RIM: Rgb = [170, 170, 176];
 
 /// Draws the flux lines of a snapshot.
 pub(super) fn draw(sheet: &Sheet<'_>, snapshot: &Snapshot, title: String, job: &str) -> Result<Canvas, PictureError> {
@@ -36,13 +37,17 @@ pub(super) fn draw(sheet: &Sheet<'_>, snapshot: &Snapshot, title: String, job: &
     let view = frame.view();
     paint_kinds(&mut half, &view, sheet);
     stroke_outlines(&mut half, &view, sheet);
+    stroke_edges(&mut half, &view, sheet, &sheet.rim(), 2.0, RIM);
     let step = spacing(&mut half, sheet, &flux, |e| pixels(&view, sheet, e));
     let mut canvas = Canvas::new(frame.size[0], frame.size[1])?;
     frame.put(&half, &mut canvas);
     frame.centre_lines(&mut canvas);
     frame.axes(&mut canvas)?;
     let note = if step > 0.0 {
-        format!("{} between neighbouring lines, at the greatest coil current", webers(step))
+        format!(
+            "{} between neighbouring lines, at the greatest coil current; they end where the mesh ends",
+            webers(step)
+        )
     } else {
         "no flux".to_owned()
     };

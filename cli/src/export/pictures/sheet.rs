@@ -166,6 +166,13 @@ impl<'a> Sheet<'a> {
         edges
     }
 
+    /// Where the mesh ends and the field goes on: the open boundary, or the outer wall of a slice.
+    pub(super) fn rim(&self) -> Vec<SheetEdge> {
+        let mut edges = self.edges();
+        edges.retain(|edge| edge.second.is_none() && !self.on_symmetry(edge));
+        edges
+    }
+
     fn on_symmetry(&self, edge: &SheetEdge) -> bool {
         let slack = 1e-9 * self.points.iter().fold(0.0f64, |m, p| m.max(p[0].abs()));
         let all = |test: &dyn Fn([f64; 2]) -> bool| edge.nodes.iter().all(|&n| test(self.points[n as usize]));
