@@ -26,7 +26,7 @@ pub enum JobError {
     #[error("{file}: byte {byte} is not UTF-8 text; save the file as UTF-8")]
     NotText { file: String, byte: usize },
     /// Text that is not JSON.
-    #[error("{file}: line {line}, column {column}: near `{near}`: not JSON ({problem}); {remedy}")]
+    #[error("{file}: line {line}, column {column}{}: not JSON ({problem}); {remedy}", near_text(.near))]
     Syntax { file: String, line: usize, column: usize, near: String, problem: String, remedy: &'static str },
     /// Objects in objects without end.
     #[error("{place}: is nested deeper than {limit} levels; a job needs fewer, remove the brackets that are too many")]
@@ -42,7 +42,7 @@ pub enum JobError {
     #[error("{place}: unknown key `{key}`; {}", meant(.suggestion.as_deref(), .known))]
     UnknownKey { place: Place, key: String, suggestion: Option<String>, known: String },
     /// A word nobody knows.
-    #[error("{place}: value {value}: not one of the words that may stand here; {}", meant(.suggestion.as_deref(), .known))]
+    #[error("{place}: value \"{value}\": not one of the words that may stand here; {}", meant(.suggestion.as_deref(), .known))]
     UnknownWord { place: Place, value: String, suggestion: Option<String>, known: String },
     /// Something a later version will know.
     #[error("{place}: `{what}` is not in this version; remove it")]
@@ -247,6 +247,10 @@ pub(crate) fn shown(text: &str) -> String {
         short.push('…');
     }
     short
+}
+
+fn near_text(near: &str) -> String {
+    if near.trim().is_empty() { String::new() } else { format!(", near `{}`", near.trim()) }
 }
 
 fn did_you_mean(suggestion: Option<&str>) -> String {

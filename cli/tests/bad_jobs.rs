@@ -89,7 +89,7 @@ fn texts() -> Vec<Bad> {
             ),
             &["line", "not JSON", "close every"],
         ),
-        bad("missing comma", Text("\"role\": \"workpiece\",", "\"role\": \"workpiece\""), &["line 9", "comma"]),
+        bad("missing comma", Text("\"role\": \"workpiece\",", "\"role\": \"workpiece\""), &["line 8", "comma"]),
         bad("comment", Text("\"parts\": [", "\"parts\": [ // here"), &["no comments", "note"]),
         bad("NaN", Text("\"emissivity\": 0.8", "\"emissivity\": NaN"), &["line", "NaN", "finite"]),
         bad("Infinity", Text("\"emissivity\": 0.8", "\"emissivity\": -Infinity"), &["line", "Infinity", "finite"]),

@@ -39,7 +39,7 @@ impl Mesh {
     pub fn check(&self) -> Result<(), MeshDefect> {
         for t in 0..self.triangles.len() {
             let [a, b, c] = self.corners(t);
-            if !(orient(a, b, c) > 0.0) {
+            if orient(a, b, c) <= 0.0 {
                 return Err(MeshDefect::Flat { triangle: t, at: a });
             }
         }
@@ -47,13 +47,13 @@ impl Mesh {
         self.check_regions()?;
         for t in 0..self.triangles.len() {
             let ratio = self.least_jacobian(t);
-            if !(ratio > LEAST_RATIO) {
+            if ratio <= LEAST_RATIO || ratio.is_nan() {
                 return Err(MeshDefect::Inverted { triangle: t, at: self.corners(t)[0], ratio });
             }
         }
-        let value = self.vertices.len() as i64 - self.edges.len() as i64 + self.triangles.len() as i64;
-        if value != 1 {
-            return Err(MeshDefect::Euler { value });
+        let (vertices, edges, triangles) = (self.vertices.len(), self.edges.len(), self.triangles.len());
+        if vertices + triangles != edges + 1 {
+            return Err(MeshDefect::Euler { vertices, edges, triangles });
         }
         self.check_area()
     }
@@ -89,13 +89,13 @@ impl Mesh {
         for (i, edge) in self.edges.iter().enumerate() {
             let curve = edge.curve.map(|id| self.curve(id));
             if edge.triangles[1] == NO_TRIANGLE {
-                if !curve.is_some_and(|c| c.on_domain.is_some()) {
+                if curve.is_none_or(|c| c.on_domain.is_none()) {
                     return Err(MeshDefect::Boundary { edge: i });
                 }
                 continue;
             }
             let regions = edge.triangles.map(|t| self.regions[t as usize]);
-            if regions[0] != regions[1] && !curve.is_some_and(|c| !c.on_regions.is_empty()) {
+            if regions[0] != regions[1] && curve.is_none_or(|c| c.on_regions.is_empty()) {
                 return Err(MeshDefect::RegionLeak { edge: i, regions });
             }
         }
@@ -136,6 +136,7 @@ fn jacobian([a, b, c]: [Point; 3], bulge: [Point; 3], l: [f64; 3]) -> f64 {
     // Derivatives of the three edge bubbles L0 L1, L1 L2, L2 L0 with L0 = 1 - L1 - L2.
     let by_one = [l[0] - l[1], l[2], -l[2]];
     let by_two = [-l[1], l[1], l[0] - l[2]];
-    let column = |side: Point, by: [f64; 3]| [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>());
+    let column =
+        |side: Point, by: [f64; 3]| [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>());
     cross(column(sub(b, a), by_one), column(sub(c, a), by_two))
 }

@@ -148,7 +148,9 @@ impl Triangulation {
         for _ in 0..20 {
             let mut changed = false;
             for edge in &mut made {
-                let Some(link) = self.find(edge.0, edge.1) else { continue };
+                let Some(link) = self.find(edge.0, edge.1) else {
+                    continue;
+                };
                 let (t, i) = (link >> 2, (link & 3) as usize);
                 let face = self.faces[t as usize];
                 if face.tag[i] != 0 || face.n[i] == NONE {

@@ -29,7 +29,9 @@ pub enum OutlineError {
         at: Point,
     },
     /// An arc whose end points are at different distances from its centre.
-    #[error("arc {piece} starts {start_radius} m and ends {end_radius} m from its centre; the two must be equal to 1e-9 of themselves")]
+    #[error(
+        "arc {piece} starts {start_radius} m and ends {end_radius} m from its centre; the two must be equal to 1e-9 of themselves"
+    )]
     NotOnCircle {
         /// Index of the piece.
         piece: usize,
@@ -88,7 +90,9 @@ pub enum MeshError {
         limit: f64,
     },
     /// The triangle budget ran out.
-    #[error("more than {limit} triangles are needed; allow more, or ask for larger elements (the smallest asked for is {smallest_m} m)")]
+    #[error(
+        "more than {limit} triangles are needed; allow more, or ask for larger elements (the smallest asked for is {smallest_m} m)"
+    )]
     TooManyTriangles {
         /// The budget.
         limit: usize,
@@ -153,10 +157,16 @@ pub enum MeshDefect {
         ratio: f64,
     },
     /// Vertices - edges + triangles is not 1.
-    #[error("vertices - edges + triangles is {value}; it must be 1 for a domain in one piece without holes")]
+    #[error(
+        "{vertices} vertices - {edges} edges + {triangles} triangles must be 1 for a domain in one piece without holes"
+    )]
     Euler {
-        /// The sum found.
-        value: i64,
+        /// Number of vertices.
+        vertices: usize,
+        /// Number of edges.
+        edges: usize,
+        /// Number of triangles.
+        triangles: usize,
     },
     /// The triangles do not fill the domain.
     #[error("the triangles cover {covered} m2 of the {wanted} m2 of the domain")]

@@ -15,7 +15,7 @@ use crate::ids::{Point, distance};
 use crate::noding::Graph;
 use crate::note::{MeshNote, NoteReason};
 use crate::plan::{Cell, Tag};
-use crate::size_field::{Gaps, SizeField, SizeSource, sources_of};
+use crate::size_field::{Gaps, SizeField, SizeSource, cusp_sources, sources_of};
 use columns::{Chain, chains};
 use loops::loops_of;
 use positions::divide_surfaces;
@@ -57,7 +57,8 @@ impl Strips {
 
     /// Sources of the size field: the strips' own edges, and the stretches they leave alone.
     pub(crate) fn sources(&self, graph: &Graph, sizes: &[f64], gaps: &Gaps) -> Vec<SizeSource> {
-        let mut out = self.inner.clone();
+        let mut out = cusp_sources(graph, sizes);
+        out.extend(&self.inner);
         for (i, stretch) in graph.stretches.iter().enumerate() {
             if self.divisions[i].is_none() {
                 sources_of(i, stretch, sizes[i], gaps, &mut out);
@@ -127,8 +128,14 @@ fn describe(drawing: &Drawing, graph: &Graph, chains: &[Chain], emitted: &mut em
         emitted.covered.iter().map(|&(a, b)| (a.min(b), a.max(b))).collect();
     let strips = &mut emitted.result;
     for (i, stretch) in graph.stretches.iter().enumerate() {
-        let Some(chain) = &strips.divisions[i] else { continue };
-        let first = stretch.sides.iter().filter_map(|&s| drawing.region_of(s)?.layers).fold(f64::INFINITY, |a, l| a.min(l.first));
+        let Some(chain) = &strips.divisions[i] else {
+            continue;
+        };
+        let first = stretch
+            .sides
+            .iter()
+            .filter_map(|&s| drawing.region_of(s)?.layers)
+            .fold(f64::INFINITY, |a, l| a.min(l.first));
         for pair in chain.windows(2) {
             let ends = [pair[0], pair[1]].map(|v| strips.point(graph, v));
             let length = distance(ends[0], ends[1]);
@@ -139,7 +146,9 @@ fn describe(drawing: &Drawing, graph: &Graph, chains: &[Chain], emitted: &mut em
     }
     for chain in chains {
         let region = &drawing.regions[chain.region];
-        let Some(layers) = region.layers else { continue };
+        let Some(layers) = region.layers else {
+            continue;
+        };
         for (stretch, placed) in chain.heights() {
             let on = &graph.stretches[stretch].on_regions;
             let reason = if placed == 0 {

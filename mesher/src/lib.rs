@@ -3,6 +3,7 @@
 //! of thin layers are laid along the surfaces that ask for them, everything is triangulated under constraints, refined to a size field,
 //! smoothed and checked.
 
+mod assemble;
 mod build;
 mod check;
 mod constrain;
@@ -15,11 +16,13 @@ mod mesh;
 mod nodes;
 mod noding;
 mod note;
+mod order;
 mod outline;
 mod plan;
 mod predicates;
 mod quality;
 mod refine;
+mod shapes;
 mod size_field;
 mod smooth;
 mod span;

@@ -148,10 +148,8 @@ impl Mesh {
 
     /// Area of a region in square metres, arcs included exactly.
     pub fn region_area(&self, id: RegionId) -> f64 {
-        let straight: f64 = (0..self.triangles.len())
-            .filter(|&t| self.regions[t] == id)
-            .map(|t| straight_area(self.corners(t)))
-            .sum();
+        let straight: f64 =
+            (0..self.triangles.len()).filter(|&t| self.regions[t] == id).map(|t| straight_area(self.corners(t))).sum();
         let mut curved = 0.0;
         for (edge, bend) in self.edges.iter().zip(&self.bends) {
             for t in edge.triangles {
@@ -165,7 +163,9 @@ impl Mesh {
 
     /// Area between an edge's arc and its chord, positive where it adds to the triangle.
     pub(crate) fn segment_area(&self, edge: &Edge, bend: Bend, triangle: u32) -> f64 {
-        let Bend::Arc(centre, radius) = bend else { return 0.0 };
+        let Bend::Arc(centre, radius) = bend else {
+            return 0.0;
+        };
         let [a, b] = edge.vertices.map(|v| self.vertices[v as usize]);
         let half = (0.5 * distance(a, b) / radius).min(1.0).asin();
         let area = 0.5 * radius * radius * (2.0 * half - (2.0 * half).sin());

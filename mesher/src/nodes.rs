@@ -3,7 +3,7 @@
 //! serendipity element (sum of edge nodes / 4 - sum of vertices / 6), which keeps the map quadratic-exact: O. C. Zienkiewicz,
 //! R. L. Taylor, "The finite element method".
 
-use crate::ids::{Point, along, between, cross, dot, sub};
+use crate::ids::{Point, along, between, dot, sub};
 use crate::mesh::{Bend, Mesh};
 use std::f64::consts::{PI, TAU};
 
@@ -49,21 +49,6 @@ impl Mesh {
             }
         }
         NodeSet { order, points, elements, vertex_count: self.vertices.len() }
-    }
-
-    /// Angle between two edges where they leave a vertex they share, on their true curves, in radians.
-    pub(crate) fn angle_between(&self, vertex: u32, one: usize, two: usize) -> f64 {
-        let leave = |edge: usize| {
-            let first = self.edges[edge].vertices[0] == vertex;
-            let here = self.vertices[vertex as usize];
-            let there = self.vertices[self.edges[edge].vertices[usize::from(first)] as usize];
-            let Bend::Arc(centre, _) = self.bends[edge] else { return sub(there, here) };
-            let out = sub(here, centre);
-            let normal = [-out[1], out[0]];
-            if dot(normal, sub(there, here)) > 0.0 { normal } else { [-normal[0], -normal[1]] }
-        };
-        let (u, v) = (leave(one), leave(two));
-        cross(u, v).abs().atan2(dot(u, v))
     }
 
     /// Point of an edge at parameter `t` from its first vertex, on its true curve.

@@ -2,10 +2,13 @@
 //! outside the domain or painted over is dropped. Convention: two points closer than 1e-9 of the domain's extent are one.
 
 use crate::drawing::{Drawing, OUTSIDE};
-use crate::ids::{Point, along, distance, left_of};
+use crate::ids::{Point, along, cross, distance, dot, left_of};
 use crate::intersect::meetings;
-use crate::span::Span;
+use crate::span::{Kind, Span};
 use std::collections::HashMap;
+
+/// Two curves that leave a node under a smaller angle, in radians, make a cusp.
+pub(crate) const CUSP: f64 = 0.05;
 
 /// One stretch of the drawing between two nodes.
 #[derive(Debug, Clone)]
@@ -66,12 +69,12 @@ impl Nodes {
 pub(crate) fn node(drawing: &Drawing) -> Graph {
     let tolerance = 1e-9 * drawing.extent();
     let sources = sources(drawing);
-    let mut nodes =
-        Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
+    let mut nodes = Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
+    let cuts = cut(&sources, tolerance);
+    place_on_domain(&sources, &cuts, &mut nodes);
     for source in &sources {
         nodes.place(source.span.start);
     }
-    let cuts = cut(&sources, tolerance);
     let mut stretches = Vec::new();
     let mut known: HashMap<[u32; 2], Vec<usize>> = HashMap::new();
     for (source, cuts) in sources.iter().zip(&cuts) {
@@ -85,6 +88,30 @@ pub(crate) fn node(drawing: &Drawing) -> Graph {
     stretches.retain(|s| s.sides[0] != s.sides[1]);
     let points = keep_used(&nodes.points, &mut stretches);
     Graph { points, stretches, tolerance }
+}
+
+impl Graph {
+    /// Nodes at which two stretches, one of them an arc, leave under a smaller angle than `limit` radians.
+    pub(crate) fn cusps(&self, limit: f64) -> Vec<u32> {
+        let mut leaving: Vec<(u32, Point, bool)> = Vec::new();
+        for s in &self.stretches {
+            let arc = matches!(s.span.kind, Kind::Arc { .. });
+            let back = s.span.tangent(1.0);
+            leaving.push((s.ends[0], s.span.tangent(0.0), arc));
+            leaving.push((s.ends[1], [-back[0], -back[1]], arc));
+        }
+        leaving.sort_by_key(|l| l.0);
+        let mut cusps = Vec::new();
+        for group in leaving.chunk_by(|a, b| a.0 == b.0) {
+            let sharp = |a: &(u32, Point, bool), b: &(u32, Point, bool)| {
+                (a.2 || b.2) && dot(a.1, b.1) > 0.0 && cross(a.1, b.1).abs() < limit
+            };
+            if (1..group.len()).any(|i| group[..i].iter().any(|a| sharp(a, &group[i]))) {
+                cusps.push(group[0].0);
+            }
+        }
+        cusps
+    }
 }
 
 /// Drops nodes at which no stretch ends, and renumbers the rest in the order they are used.
@@ -102,11 +129,23 @@ fn keep_used(points: &[Point], stretches: &mut [Stretch]) -> Vec<Point> {
     kept
 }
 
+/// Places the corners of the domain, then what meets its outline exactly on it: nothing may lie a rounding error outside.
+fn place_on_domain(sources: &[Source], cuts: &[Vec<Point>], nodes: &mut Nodes) {
+    let domain = || sources.iter().zip(cuts).filter(|(s, _)| s.domain_piece.is_some());
+    for (source, _) in domain() {
+        nodes.place(source.span.start);
+    }
+    for (source, cuts) in domain() {
+        for &p in cuts {
+            nodes.place(source.span.at(source.span.project(p)));
+        }
+    }
+}
+
 fn sources(drawing: &Drawing) -> Vec<Source> {
     let domain = drawing.domain.spans().iter().enumerate();
-    let mut all: Vec<Source> = domain
-        .map(|(i, &span)| Source { span, domain_piece: Some(i), region_piece: None })
-        .collect();
+    let mut all: Vec<Source> =
+        domain.map(|(i, &span)| Source { span, domain_piece: Some(i), region_piece: None }).collect();
     for (k, region) in drawing.regions.iter().enumerate() {
         let pieces = region.outline.spans().iter().enumerate();
         all.extend(pieces.map(|(i, &span)| Source { span, domain_piece: None, region_piece: Some((k, i)) }));
@@ -121,10 +160,10 @@ fn cut(sources: &[Source], tolerance: f64) -> Vec<Vec<Point>> {
     for i in 0..sources.len() {
         for j in i + 1..sources.len() {
             let ((a, b), (c, d)) = (boxes[i], boxes[j]);
-            if (0..2).any(|k| a[k] > d[k] + tolerance || c[k] > b[k] + tolerance) {
+            if (0..2).any(|k| a[k] > d[k] + 2.0 * tolerance || c[k] > b[k] + 2.0 * tolerance) {
                 continue;
             }
-            for point in meetings(&sources[i].span, &sources[j].span, tolerance) {
+            for point in meetings(&sources[i].span, &sources[j].span, 2.0 * tolerance) {
                 cuts[i].push(point);
                 cuts[j].push(point);
             }
@@ -167,7 +206,7 @@ fn add(
     let same = known.entry(key).or_default();
     for &i in same.iter() {
         let other: &mut Stretch = &mut stretches[i];
-        if distance(other.span.at(0.5), middle) <= 4.0 * tolerance {
+        if distance(other.span.at(0.5), middle) <= 3.0 * tolerance {
             if let Some(piece) = source.region_piece
                 && !other.on_regions.contains(&piece)
             {
@@ -192,7 +231,7 @@ fn add(
 fn sides(drawing: &Drawing, stretch: &Stretch, tolerance: f64) -> [u32; 2] {
     let normal = left_of(stretch.span.tangent(0.5));
     let middle = stretch.span.at(0.5);
-    let step = (10.0 * tolerance).min(0.1 * stretch.span.length());
+    let step = (2.2 * tolerance).min(0.1 * stretch.span.length());
     let right = if stretch.on_domain.is_some() { OUTSIDE } else { drawing.side_at(along(middle, normal, -step)) };
     [drawing.side_at(along(middle, normal, step)), right]
 }

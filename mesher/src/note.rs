@@ -30,6 +30,6 @@ pub enum NoteReason {
         /// Element size along the surface instead, in metres.
         size: f64,
     },
-    /// An arc meets another line at no angle; its last edge there is straight instead of curved.
-    CuspStraightened,
+    /// An arc meets or nearly meets another line at no angle; an edge there is straight instead of curved.
+    ArcStraightened,
 }

@@ -13,7 +13,7 @@ use std::collections::VecDeque;
 /// Circumradius over shortest edge at 28 degrees: `1 / (2 sin 28)`.
 const RADIUS_EDGE: f64 = 1.065_027_2;
 /// Largest circumradius over the wanted size; an equilateral triangle has 0.577.
-const RADIUS_SIZE: f64 = 0.76;
+const RADIUS_SIZE: f64 = 0.70;
 /// Edges between lines are not shortened under this share of the wanted size.
 const FLOOR: f64 = 0.12;
 /// Cosine of the lens angle: a point that sees a constrained edge under more than 120 degrees encroaches on it.
@@ -53,10 +53,9 @@ pub(crate) fn refine(
     nodes: usize,
     budget: &Budget,
 ) -> Result<(), MeshError> {
-    let wanted = mesh.points.iter().map(|&p| sizes.field.at(p)).collect();
+    let wanted = wanted(mesh, sizes.field);
     let on = marks(mesh, nodes);
-    let mut refiner =
-        Refiner { mesh, sizes, tags, wanted, on, queue: VecDeque::new(), encroached: Vec::new() };
+    let mut refiner = Refiner { mesh, sizes, tags, wanted, on, queue: VecDeque::new(), encroached: Vec::new() };
     refiner.mesh.fresh = (0..refiner.mesh.faces.len() as u32).collect();
     refiner.queue_fresh();
     let mut steps = 0u32;
@@ -68,7 +67,8 @@ pub(crate) fn refine(
         if steps.is_multiple_of(512) && (budget.stop)() {
             return Err(MeshError::Stopped);
         }
-        if refiner.mesh.points.len() > budget.max_triangles / 2 + nodes + 3 {
+        // A quarter more for what lies outside the domain; the finished mesh is counted exactly.
+        if refiner.mesh.faces.len() > budget.max_triangles + budget.max_triangles / 4 + 1000 {
             return Err(MeshError::TooManyTriangles { limit: budget.max_triangles, smallest_m: budget.smallest });
         }
         if let Some(target) = refiner.target(face) {
@@ -77,6 +77,19 @@ pub(crate) fn refine(
         }
     }
     Ok(())
+}
+
+/// Wanted size at every vertex of a face that may be refined; the others are not asked for.
+fn wanted(mesh: &Triangulation, field: &SizeField) -> Vec<f64> {
+    let mut wanted = vec![f64::NAN; mesh.points.len()];
+    for face in mesh.faces.iter().filter(|f| f.side != NONE && f.cell == NONE) {
+        for v in face.v.map(|v| v as usize) {
+            if wanted[v].is_nan() {
+                wanted[v] = field.at(mesh.points[v]);
+            }
+        }
+    }
+    wanted
 }
 
 fn marks(mesh: &Triangulation, nodes: usize) -> Vec<u32> {
@@ -183,7 +196,7 @@ impl Refiner<'_> {
                 }
                 return;
             }
-            Place::AtVertex(_) => return,
+            Place::AtVertex => return,
             Place::Inside(holder) => holder,
             Place::OnEdge(link) => link >> 2,
         };
@@ -226,7 +239,7 @@ impl Refiner<'_> {
         match place {
             Place::Inside(face) => self.mesh.insert_inside(face, id),
             Place::OnEdge(link) => self.mesh.insert_on_edge(link, id),
-            Place::AtVertex(_) | Place::Behind(_) => {}
+            Place::AtVertex | Place::Behind(_) => {}
         }
     }
 

@@ -3,7 +3,7 @@
 
 use crate::drawing::{DOMAIN, Drawing, OUTSIDE};
 use crate::ids::{Point, distance, dot, sub};
-use crate::noding::{Graph, Stretch};
+use crate::noding::{CUSP, Graph, Stretch};
 use crate::span::{Kind, Span};
 use crate::tree::{Item, Tree};
 
@@ -143,9 +143,19 @@ pub(crate) fn sources_of(index: usize, stretch: &Stretch, size: f64, gaps: &Gaps
     out.extend(run);
 }
 
+/// Small sizes at the tips of cusps, so that edges there stay short against the distance between the curves.
+pub(crate) fn cusp_sources(graph: &Graph, sizes: &[f64]) -> Vec<SizeSource> {
+    let source = |node: u32| {
+        let incident = graph.stretches.iter().zip(sizes).filter(|(s, _)| s.ends.contains(&node));
+        let size = incident.map(|(_, &size)| size).fold(f64::INFINITY, f64::min);
+        SizeSource { ends: [graph.points[node as usize]; 2], size: GAP_FLOOR * size }
+    };
+    graph.cusps(CUSP).into_iter().map(source).collect()
+}
+
 /// Sources for every stretch of the drawing.
 pub(crate) fn sources(graph: &Graph, sizes: &[f64], gaps: &Gaps) -> Vec<SizeSource> {
-    let mut out = Vec::new();
+    let mut out = cusp_sources(graph, sizes);
     for (i, stretch) in graph.stretches.iter().enumerate() {
         sources_of(i, stretch, sizes[i], gaps, &mut out);
     }

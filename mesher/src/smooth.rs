@@ -5,8 +5,8 @@ use crate::ids::{Point, between, cross, distance_squared, sub};
 use crate::predicates::{circumcircle, in_circle};
 use crate::triangulate::{LAST, NEXT, NONE, Triangulation};
 
-/// Sine squared of the angle above which a vertex is left alone: 42 degrees.
-const GOOD_ENOUGH: f64 = 0.447_735_8;
+/// Sine squared of the angle above which a vertex is left alone: 50 degrees.
+const GOOD_ENOUGH: f64 = 0.586_824;
 
 pub(crate) fn smooth(mesh: &mut Triangulation, passes: usize) {
     let movable = movable(mesh);
@@ -91,7 +91,7 @@ fn flip_all(mesh: &mut Triangulation) -> bool {
 /// Square of the sine of the least angle; -1 if the triangle is not counter-clockwise.
 fn sine_squared(a: Point, b: Point, c: Point) -> f64 {
     let area = cross(sub(b, a), sub(c, a));
-    if !(area > 0.0) {
+    if area <= 0.0 || area.is_nan() {
         return -1.0;
     }
     let (x, y, z) = (distance_squared(a, b), distance_squared(b, c), distance_squared(c, a));

@@ -45,7 +45,9 @@ impl Span {
     pub(crate) fn reversed(&self) -> Self {
         let kind = match self.kind {
             Kind::Line => Kind::Line,
-            Kind::Arc { centre, radius, from, sweep } => Kind::Arc { centre, radius, from: from + sweep, sweep: -sweep },
+            Kind::Arc { centre, radius, from, sweep } => {
+                Kind::Arc { centre, radius, from: from + sweep, sweep: -sweep }
+            }
         };
         Self { start: self.end, end: self.start, kind }
     }

@@ -46,9 +46,8 @@ impl Tree {
                 let axis = usize::from(node.hi[1] - node.lo[1] > node.hi[0] - node.lo[0]);
                 let middle = usize::midpoint(from, to);
                 let centre = |i: &u32| items[*i as usize].lo[axis] + items[*i as usize].hi[axis];
-                order[from..to].select_nth_unstable_by(middle - from, |a, b| {
-                    centre(a).total_cmp(&centre(b)).then(a.cmp(b))
-                });
+                order[from..to]
+                    .select_nth_unstable_by(middle - from, |a, b| centre(a).total_cmp(&centre(b)).then(a.cmp(b)));
                 let child = tree.nodes.len();
                 tree.nodes.extend([node, node]);
                 (node.first, node.count) = (child as u32, 0);
@@ -123,7 +122,8 @@ impl Tree {
 }
 
 fn enclose(items: &[Item], ids: &[u32]) -> Node {
-    let mut node = Node { lo: [f64::INFINITY; 2], hi: [f64::NEG_INFINITY; 2], weight: f64::INFINITY, first: 0, count: 0 };
+    let mut node =
+        Node { lo: [f64::INFINITY; 2], hi: [f64::NEG_INFINITY; 2], weight: f64::INFINITY, first: 0, count: 0 };
     for &i in ids {
         let item = &items[i as usize];
         for k in 0..2 {

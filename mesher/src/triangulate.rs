@@ -3,6 +3,7 @@
 //! flips); S. W. Sloan, "A fast algorithm for generating constrained Delaunay triangulations", 1993 (constraints by flips).
 
 use crate::ids::Point;
+use crate::order::{along_curve, bounds};
 use crate::predicates::{in_circle, orient};
 
 pub(crate) const NONE: u32 = u32::MAX;
@@ -27,7 +28,7 @@ pub(crate) struct Face {
 pub(crate) enum Place {
     Inside(u32),
     OnEdge(u32),
-    AtVertex(u32),
+    AtVertex,
     /// Behind this edge, which a walk may not cross.
     Behind(u32),
 }
@@ -55,7 +56,7 @@ impl Triangulation {
             match mesh.locate(points[id as usize], mesh.last, false) {
                 Place::Inside(face) => mesh.insert_inside(face, id),
                 Place::OnEdge(edge) => mesh.insert_on_edge(edge, id),
-                Place::AtVertex(_) | Place::Behind(_) => return Err(id),
+                Place::AtVertex | Place::Behind(_) => return Err(id),
             }
             mesh.fresh.clear();
         }
@@ -132,8 +133,8 @@ impl Triangulation {
                     on = i;
                 }
             }
-            if let Some(&v) = here.v.iter().find(|&&v| self.point(v) == p) {
-                return Place::AtVertex(v);
+            if here.v.iter().any(|&v| self.point(v) == p) {
+                return Place::AtVertex;
             }
             return if on == 3 { Place::Inside(face) } else { Place::OnEdge(4 * face + on as u32) };
         }
@@ -298,41 +299,65 @@ impl Triangulation {
     }
 }
 
-fn bounds(points: &[Point]) -> (Point, Point) {
-    let (mut lo, mut hi) = ([f64::INFINITY; 2], [f64::NEG_INFINITY; 2]);
-    for p in points {
-        for k in 0..2 {
-            lo[k] = lo[k].min(p[k]);
-            hi[k] = hi[k].max(p[k]);
+#[cfg(test)]
+mod tests {
+    #![allow(clippy::unwrap_used, reason = "tests")]
+
+    use super::{LAST, NEXT, Triangulation};
+    use spade::{ConstrainedDelaunayTriangulation, Point2, Triangulation as _};
+    use std::collections::BTreeSet;
+
+    /// Pseudo-random numbers in 0..1 (constants of D. E. Knuth's MMIX generator).
+    fn numbers(mut state: u64) -> impl FnMut() -> f64 {
+        move || {
+            state = state.wrapping_mul(6_364_136_223_846_793_005).wrapping_add(1_442_695_040_888_963_407);
+            (state >> 11) as f64 / (1u64 << 53) as f64
         }
     }
-    (lo, hi)
-}
 
-/// Point indices along a space-filling curve, so that each is inserted near the one before it.
-fn along_curve(points: &[Point]) -> Vec<u32> {
-    let (lo, hi) = bounds(points);
-    let scale = 65535.0 / (hi[0] - lo[0]).max(hi[1] - lo[1]).max(f64::MIN_POSITIVE);
-    let key = |p: &Point| hilbert(((p[0] - lo[0]) * scale) as u32, ((p[1] - lo[1]) * scale) as u32);
-    let mut order: Vec<(u64, u32)> = points.iter().enumerate().map(|(i, p)| (key(p), i as u32)).collect();
-    order.sort_unstable();
-    order.into_iter().map(|(_, i)| i).collect()
-}
+    /// Edges between the first `count` vertices.
+    fn edges(mesh: &Triangulation, count: u32) -> BTreeSet<(u32, u32)> {
+        let all = mesh.faces.iter().flat_map(|f| (0..3).map(|i| (f.v[NEXT[i]], f.v[LAST[i]])));
+        all.filter(|&(a, b)| a < count && b < count).map(|(a, b)| (a.min(b), a.max(b))).collect()
+    }
 
-fn hilbert(mut x: u32, mut y: u32) -> u64 {
-    let mut key = 0;
-    let mut s = 1u32 << 15;
-    while s > 0 {
-        let (right, up) = (u32::from(x & s > 0), u32::from(y & s > 0));
-        key += u64::from(s) * u64::from(s) * u64::from((3 * right) ^ up);
-        if up == 0 {
-            if right == 1 {
-                x = 65535 - x;
-                y = 65535 - y;
+    /// Oracle: the general-purpose crate `spade`. Our triangulation lies in a box, so only edges that are both inside its hull and
+    /// away from it must agree; the fan of box edges is ours alone.
+    #[test]
+    fn a_constrained_triangulation_has_the_edges_spade_finds() {
+        for seed in 1..6 {
+            let mut next = numbers(seed);
+            let mut points: Vec<[f64; 2]> = (0..400).map(|_| [next(), next()]).collect();
+            // A frame, so that the hull is the same for both.
+            points.extend((0..20).flat_map(|i| {
+                let t = 1.2 * f64::from(i) / 20.0 - 0.1;
+                [[t, -0.1], [1.1, t], [1.0 - t, 1.1], [-0.1, 1.0 - t]]
+            }));
+            let count = points.len() as u32;
+            let mut ours = Triangulation::new(&points).unwrap();
+            let mut theirs = ConstrainedDelaunayTriangulation::<Point2<f64>>::new();
+            let handles: Vec<_> = points.iter().map(|p| theirs.insert(Point2::new(p[0], p[1])).unwrap()).collect();
+            for k in (0..400u32).step_by(25) {
+                let (a, b) = (k, k + 13);
+                if theirs.can_add_constraint(handles[a as usize], handles[b as usize]) {
+                    theirs.add_constraint(handles[a as usize], handles[b as usize]);
+                    assert!(ours.constrain(a, b, 1).is_ok());
+                }
             }
-            std::mem::swap(&mut x, &mut y);
+            let found = edges(&ours, count);
+            let wanted: BTreeSet<(u32, u32)> = theirs
+                .undirected_edges()
+                .map(|e| e.vertices().map(|v| v.fix().index() as u32))
+                .map(|[a, b]| (a.min(b), a.max(b)))
+                .collect();
+            let differ: Vec<_> = found.symmetric_difference(&wanted).collect();
+            assert!(differ.is_empty(), "seed {seed}: {} of {} edges differ", differ.len(), wanted.len());
         }
-        s /= 2;
     }
-    key
+
+    #[test]
+    fn a_coincident_point_is_named() {
+        let points = [[0.0, 0.0], [1.0, 0.0], [0.0, 1.0], [1.0, 0.0]];
+        assert!(matches!(Triangulation::new(&points), Err(1 | 3)));
+    }
 }

@@ -149,13 +149,7 @@ fn tube_wall(outside: &Outline, bore: &Outline) -> f64 {
 }
 
 fn plain(outline: &Outline, id: usize, size: f64) -> Region {
-    Region {
-        id: RegionId(id as u32),
-        outline: outline.clone(),
-        interior_size: size,
-        surface_size: size,
-        layers: None,
-    }
+    Region { id: RegionId(id as u32), outline: outline.clone(), interior_size: size, surface_size: size, layers: None }
 }
 
 fn region(outline: &Outline, wall: f64, depth: f64, id: usize, mesh: &MeshSettings) -> Region {

@@ -3,6 +3,7 @@
 use mesher::{MeshNote, NoteReason, Outline};
 
 use crate::constants::ZERO_CELSIUS_K;
+use crate::material::{RangeNote, RangeUse};
 use crate::model::{ConductorKind, Model, Part, Role};
 use crate::overview::Meshed;
 use crate::results::{Electrical, RegionName, Warning, WarningKind};
@@ -11,6 +12,10 @@ use crate::results::{Electrical, RegionName, Warning, WarningKind};
 const POYNTING_LIMIT: f64 = 0.02;
 /// Usual upper limit of the cooling water's outlet temperature, °C (common practice, no source).
 const WATER_LIMIT_C: f64 = 60.0;
+
+/// Beyond the end of a table by less than this, a temperature counts as at its end, kelvin: a steep front makes the
+/// discrete temperature ripple by a few kelvin about its start value.
+const RIPPLE_K: f64 = 5.0;
 
 /// A list of warnings without repeats.
 #[derive(Debug, Clone, Default)]
@@ -79,8 +84,10 @@ fn mesh_note(regions: &[RegionName], note: &MeshNote) -> String {
         NoteReason::NoStrip { size } => {
             format!("{place}: no skin layers fit; triangles of {:.3} mm stand in for them", 1e3 * size)
         }
-        NoteReason::CuspStraightened => {
-            format!("{place}: where an arc touches another curve its edges are meshed straight, which moves the surface a little")
+        NoteReason::ArcStraightened => {
+            format!(
+                "{place}: where an arc touches another curve its edges are meshed straight, which moves the surface a little"
+            )
         }
     }
 }
@@ -117,7 +124,8 @@ fn encloses(outer: &Outline, inner: &Outline) -> bool {
 /// Warnings that follow from one electrical state.
 pub fn of_state(electrical: &Electrical, out: &mut Warnings) {
     for part in &electrical.parts {
-        let Some(flux) = part.poynting_power_w.filter(|_| part.joule_loss_w > 1e-3 * electrical.workpiece_power_w) else {
+        let Some(flux) = part.poynting_power_w.filter(|_| part.joule_loss_w > 1e-3 * electrical.workpiece_power_w)
+        else {
             continue;
         };
         let defect = (flux - part.joule_loss_w).abs() / part.joule_loss_w;
@@ -146,9 +154,12 @@ pub fn of_state(electrical: &Electrical, out: &mut Warnings) {
     }
 }
 
-/// Warnings about material data used outside their range and about melting.
+/// Warnings about material data used outside their range and about melting, from the extremes of a whole run.
 pub fn of_temperatures(part: &Part, lowest_k: f64, highest_k: f64, out: &mut Warnings) {
-    for note in part.material.out_of_range(lowest_k, highest_k) {
+    let far = |note: &RangeNote| match note.side() {
+        RangeUse::Below { by_k } | RangeUse::Above { by_k } => by_k > RIPPLE_K,
+    };
+    for note in part.material.out_of_range(lowest_k, highest_k).into_iter().filter(far) {
         out.add(WarningKind::MaterialRange, format!("part `{}`: {note}", part.name));
     }
     if let Some(melting) = part.material.melting.as_ref().filter(|m| highest_k > m.solidus_k) {

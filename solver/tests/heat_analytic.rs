@@ -177,7 +177,11 @@ fn tube_passes_its_flux_from_bore_to_outside_as_the_logarithm_says() {
     let after = problem.step(&before, 10.0, &no_source).unwrap().state;
     let gauges = problem.gauge_values(&after.temperature_k);
     let expected = flux * inner * (outer / inner).ln() / CONDUCTIVITY;
-    assert!(((gauges[0] - gauges[1]) / expected - 1.0).abs() < 1e-4, "{} K against {expected} K", gauges[0] - gauges[1]);
+    assert!(
+        ((gauges[0] - gauges[1]) / expected - 1.0).abs() < 1e-4,
+        "{} K against {expected} K",
+        gauges[0] - gauges[1]
+    );
     let through = after.energy.through_held_faces_j - before.energy.through_held_faces_j;
     let power = flux * std::f64::consts::TAU * inner * 0.004;
     assert!((through / (10.0 * power) - 1.0).abs() < 1e-8, "{through} J through the held face");

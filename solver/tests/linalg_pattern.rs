@@ -30,19 +30,10 @@ fn the_slots_of_a_clique_come_packed_by_rows() {
     let mut slots = vec![77];
     pattern.clique_slots(&[3, 0, 1], &mut slots).unwrap();
     let pairs = [(3, 3), (0, 3), (0, 0), (1, 3), (1, 0), (1, 1)];
-    let expected: Vec<u32> = pairs
-        .iter()
-        .map(|&(i, j)| pattern.slot(i, j).unwrap() as u32)
-        .collect();
+    let expected: Vec<u32> = pairs.iter().map(|&(i, j)| pattern.slot(i, j).unwrap() as u32).collect();
     assert_eq!(slots, expected);
-    assert_eq!(
-        pattern.clique_slots(&[2, 3], &mut slots),
-        Err(LinalgError::NotInPattern { row: 3, col: 2 })
-    );
-    assert_eq!(
-        pattern.clique_slots(&[0, 9], &mut slots),
-        Err(LinalgError::NotInPattern { row: 9, col: 0 })
-    );
+    assert_eq!(pattern.clique_slots(&[2, 3], &mut slots), Err(LinalgError::NotInPattern { row: 3, col: 2 }));
+    assert_eq!(pattern.clique_slots(&[0, 9], &mut slots), Err(LinalgError::NotInPattern { row: 9, col: 0 }));
 }
 
 #[test]
@@ -57,30 +48,19 @@ fn triplets_that_are_not_symmetric_are_refused_with_the_place() {
     triplets.add_triplet(0, 1, 2.0);
     triplets.add_triplet(1, 0, 1.0);
     let error = SymmetricMatrix::from_triplets(&triplets).unwrap_err();
-    assert_eq!(
-        error,
-        LinalgError::NotSymmetric {
-            row: 1,
-            col: 0,
-            difference: 0.5
-        }
-    );
+    assert_eq!(error, LinalgError::NotSymmetric { row: 1, col: 0, difference: 0.5 });
 }
 
 #[test]
 fn a_wrong_length_is_refused() {
     let matrix = SymmetricMatrix::<f64>::zeros(pattern_of(3, &[[0_u32, 1]]));
-    let expected = LinalgError::Size {
-        what: Datum::Solution,
-        expected: 3,
-        found: 2,
-    };
+    let expected = LinalgError::Size { what: Datum::Solution, expected: 3, found: 2 };
     assert_eq!(matrix.mul_add(&[1.0; 2], &mut [0.0; 3]), Err(expected));
     assert!(matrix.residual(&[1.0; 3], &[0.0; 4]).is_err());
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig::with_cases(40))]
+    #![proptest_config(ProptestConfig { cases: 40, failure_persistence: None, ..ProptestConfig::default() })]
 
     #[test]
     fn products_and_residuals_agree_with_dense_arithmetic(
@@ -113,9 +93,9 @@ proptest! {
             prop_assert!((y[i] - product).norm() < 1e-13);
             prop_assert!((residual.r[i] - (b[i] - product)).norm() < 1e-13);
             prop_assert!((residual.scale[i] - scale).abs() < 1e-13 * scale);
-            for j in 0..n {
+            for (j, &entry) in dense[i].iter().enumerate() {
                 let stored = full.get(i, j).copied().unwrap_or_default();
-                prop_assert!((stored - dense[i][j]).norm() < 1e-13);
+                prop_assert!((stored - entry).norm() < 1e-13);
             }
         }
         let again = SymmetricMatrix::from_triplets(&full.to_triplets()).unwrap();

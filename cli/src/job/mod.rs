@@ -1,6 +1,6 @@
 //! The job as written: keys, words and texts of a job file, before any unit is converted.
 //!
-//! Reading goes text -> JSON ([`strict`]) -> checked form ([`structure`], against the schema) -> [`Job`]. What the job
+//! Reading goes text -> JSON (`strict`) -> checked form (`structure`, against the schema) -> [`Job`]. What the job
 //! means is the business of [`crate::lower`]. Conventions: a dimensional value is text with its unit; currents and voltages
 //! are rms at the coil terminals; items of a list are addressed by their `name`; every object may carry a `note`.
 

@@ -151,7 +151,7 @@ pub enum Shape {
     /// A cone or a frustum.
     Cone(Cone),
     /// Any section, as the points of its outline in order, arcs and treated corners between; closed by a straight line.
-    Profile(#[schemars(length(min = 2, max = 10000))] Vec<ProfileStep>),
+    Profile(#[schemars(length(min = 2, max = 2000))] Vec<ProfileStep>),
 }
 
 /// A solid cylinder.

@@ -5,9 +5,12 @@
 use std::fmt;
 use std::sync::Arc;
 
-/// A file and a key path in it.
+/// A file and a key path in it; cheap to copy.
 #[derive(Debug, Clone, PartialEq, Eq)]
-pub struct Place {
+pub struct Place(Arc<Path>);
+
+#[derive(Debug, PartialEq, Eq)]
+struct Path {
     file: Arc<str>,
     key: String,
 }
@@ -15,34 +18,29 @@ pub struct Place {
 impl Place {
     /// The whole file.
     pub fn file(file: &str) -> Self {
-        Self { file: file.into(), key: String::new() }
+        Self(Arc::new(Path { file: file.into(), key: String::new() }))
     }
 
     /// A key of the object that stands here, or a named item of the list that stands here.
     #[must_use]
     pub fn key(&self, key: &str) -> Self {
-        let key = if self.key.is_empty() { key.to_owned() } else { format!("{}.{key}", self.key) };
-        Self { file: Arc::clone(&self.file), key }
+        self.with(if self.0.key.is_empty() { key.to_owned() } else { format!("{}.{key}", self.0.key) })
     }
 
     /// An item of the list that stands here, by index from zero.
     #[must_use]
     pub fn index(&self, index: usize) -> Self {
-        Self { file: Arc::clone(&self.file), key: format!("{}[{index}]", self.key) }
+        self.with(format!("{}[{index}]", self.0.key))
     }
 
-    /// The key path alone; empty for the whole file.
-    pub fn path(&self) -> &str {
-        &self.key
+    fn with(&self, key: String) -> Self {
+        Self(Arc::new(Path { file: Arc::clone(&self.0.file), key }))
     }
 }
 
 impl fmt::Display for Place {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        if self.key.is_empty() {
-            write!(f, "{}: at the top", self.file)
-        } else {
-            write!(f, "{}: at {}", self.file, self.key)
-        }
+        let key = if self.0.key.is_empty() { "the top" } else { &self.0.key };
+        write!(f, "{}: at {key}", self.0.file)
     }
 }

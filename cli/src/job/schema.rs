@@ -31,6 +31,7 @@ struct Adapt;
 impl Transform for Adapt {
     fn transform(&mut self, schema: &mut Schema) {
         drop_null(schema);
+        describe_choice(schema);
         allow_note(schema);
         name_units(schema);
         transform_subschemas(self, schema);
@@ -52,6 +53,17 @@ fn drop_null(schema: &mut Schema) {
     }
     if object.get("default") == Some(&Value::Null) {
         object.remove("default");
+    }
+}
+
+/// A choice that is written as an object of one key: what it is stands at the key too, where editors look.
+fn describe_choice(schema: &mut Schema) {
+    let Some(said) = schema.get("description").cloned() else { return };
+    let Some(Value::Object(properties)) = schema.get_mut("properties") else { return };
+    if properties.len() == 1
+        && let Some(Value::Object(only)) = properties.values_mut().next()
+    {
+        only.entry("description").or_insert(said);
     }
 }
 

@@ -88,7 +88,9 @@ impl<'a> Walk<'a> {
         if let Some(target) = reference.and_then(|path| self.root.pointer(path.trim_start_matches('#'))) {
             self.choices(target, into);
         } else if let Some(list) = ["anyOf", "oneOf"].iter().find_map(|key| schema.get(*key)?.as_array()) {
-            list.iter().for_each(|choice| self.choices(choice, into));
+            for choice in list {
+                self.choices(choice, into);
+            }
         } else {
             into.push(schema);
         }
@@ -100,26 +102,18 @@ impl<'a> Walk<'a> {
         object: &Map<String, Value>,
         here: &Here,
     ) -> Result<(), JobError> {
-        let forms: Vec<&'a Map<String, Value>> =
-            choices.iter().filter_map(|c| c.get("properties")?.as_object()).collect();
+        let forms: Vec<Form<'a>> = choices.iter().filter_map(|choice| Form::of(choice)).collect();
         let Some(best) = best_form(&forms, object) else {
             return Err(wrong_type(choices, &Value::Object(object.clone()), here));
         };
-        for key in object.keys().filter(|key| !best.contains_key(*key)) {
+        if let Some(key) = object.keys().find(|key| !best.keys.contains_key(*key)) {
             return Err(stray_key(&forms, best, object, key, here));
         }
-        let schema = choices
-            .iter()
-            .find(|c| c.get("properties").and_then(Value::as_object).is_some_and(|p| std::ptr::eq(p, best)));
-        let required =
-            schema.and_then(|s| s.get("required")?.as_array()).into_iter().flatten().filter_map(Value::as_str);
-        for key in required {
-            if !object.contains_key(key) {
-                return Err(self.missing(&forms, best, key, here));
-            }
+        if let Some(key) = best.required.iter().find(|key| !object.contains_key(**key)) {
+            return Err(self.missing(&forms, best, key, here));
         }
         for (key, value) in object {
-            let Some(property) = best.get(key) else { continue };
+            let Some(property) = best.keys.get(key) else { continue };
             self.check(property, value, &here.key(key))?;
             if property.get("x-remark").is_some() {
                 self.remarks.push((here.pointer.clone(), value.clone()));
@@ -128,15 +122,16 @@ impl<'a> Walk<'a> {
         Ok(())
     }
 
-    fn missing(&self, forms: &[&Map<String, Value>], best: &'a Map<String, Value>, key: &str, here: &Here) -> JobError {
-        if forms.len() > 1 && best.len() == 2 {
-            return JobError::NothingChosen { place: here.place.clone(), known: known_keys(forms) };
+    fn missing(&self, forms: &[Form<'a>], best: &Form<'a>, key: &str, here: &Here) -> JobError {
+        let place = here.place.clone();
+        if forms.len() > 1 && best.required.len() == 1 {
+            return JobError::NothingChosen { place, known: known_keys(forms) };
         }
         let mut choices = Vec::new();
-        if let Some(property) = best.get(key) {
+        if let Some(property) = best.keys.get(key) {
             self.choices(property, &mut choices);
         }
-        JobError::MissingKey { place: here.place.clone(), key: key.to_owned(), expected: expected(&choices) }
+        JobError::MissingKey { place, key: key.to_owned(), expected: expected(&choices) }
     }
 
     fn check_list(&mut self, choices: &[&'a Value], list: &[Value], here: &Here) -> Result<(), JobError> {
@@ -160,37 +155,49 @@ impl<'a> Walk<'a> {
     }
 }
 
-/// The form that shares most keys with the object; the first of equals.
-fn best_form<'a>(forms: &[&'a Map<String, Value>], object: &Map<String, Value>) -> Option<&'a Map<String, Value>> {
-    let shared =
-        |form: &Map<String, Value>| object.keys().filter(|key| *key != "note" && form.contains_key(*key)).count();
-    let most = forms.iter().map(|form| shared(form)).max()?;
-    forms.iter().find(|form| shared(form) == most).copied()
+/// A form an object may have.
+struct Form<'a> {
+    /// Schema of each key.
+    keys: &'a Map<String, Value>,
+    /// Keys that must be there.
+    required: Vec<&'a str>,
+}
+
+impl<'a> Form<'a> {
+    fn of(schema: &'a Value) -> Option<Self> {
+        let keys = schema.get("properties")?.as_object()?;
+        let required = schema.get("required").and_then(Value::as_array).into_iter().flatten();
+        Some(Self { keys, required: required.filter_map(Value::as_str).collect() })
+    }
+}
+
+/// The form that shares most keys with the object, one with nothing missing first; the first of equals.
+fn best_form<'f, 'a>(forms: &'f [Form<'a>], object: &Map<String, Value>) -> Option<&'f Form<'a>> {
+    let rank = |form: &Form| {
+        let shared = object.keys().filter(|key| *key != "note" && form.keys.contains_key(*key)).count();
+        (shared, form.required.iter().all(|key| object.contains_key(*key)))
+    };
+    let most = forms.iter().map(rank).max()?;
+    forms.iter().find(|form| rank(form) == most)
 }
 
 /// Why a key may not stand where it does.
-fn stray_key(
-    forms: &[&Map<String, Value>],
-    best: &Map<String, Value>,
-    object: &Map<String, Value>,
-    key: &str,
-    here: &Here,
-) -> JobError {
+fn stray_key(forms: &[Form], best: &Form, object: &Map<String, Value>, key: &str, here: &Here) -> JobError {
     let place = here.place.key(key);
     if RESERVED.contains(&key) {
         return JobError::NotInThisVersion { place, what: key.to_owned() };
     }
-    let beside = object.keys().find(|other| *other != "note" && best.contains_key(*other));
-    if let Some(beside) = beside.filter(|_| forms.iter().any(|form| form.contains_key(key))) {
+    let beside = object.keys().find(|other| *other != "note" && best.keys.contains_key(*other));
+    if let Some(beside) = beside.filter(|_| forms.iter().any(|form| form.keys.contains_key(key))) {
         return JobError::OneOf { place, first: beside.clone(), second: key.to_owned() };
     }
-    let known = if beside.is_some() { known_keys(&[best]) } else { known_keys(forms) };
+    let known = if beside.is_some() { known_keys(std::slice::from_ref(best)) } else { known_keys(forms) };
     JobError::UnknownKey { place, key: key.to_owned(), suggestion: nearest(key, &known), known: known.join(", ") }
 }
 
-fn known_keys(forms: &[&Map<String, Value>]) -> Vec<String> {
+fn known_keys(forms: &[Form]) -> Vec<String> {
     let mut known: Vec<String> = Vec::new();
-    for key in forms.iter().flat_map(|form| form.keys()).filter(|key| *key != "note") {
+    for key in forms.iter().flat_map(|form| form.keys.keys()).filter(|key| *key != "note") {
         if !known.contains(key) {
             known.push(key.clone());
         }
@@ -299,7 +306,7 @@ fn describe(schema: &Value) -> String {
     }
     match text("type") {
         "object" => {
-            let keys = schema.get("properties").and_then(Value::as_object).map(|form| known_keys(&[form]));
+            let keys = Form::of(schema).map(|form| known_keys(std::slice::from_ref(&form)));
             format!("an object with {}", keys.unwrap_or_default().join(", "))
         }
         "array" => "a list in [ ]".to_owned(),

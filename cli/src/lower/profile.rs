@@ -149,7 +149,7 @@ fn corner(before: &Node, node: &Node, after: &Node, place: &Place) -> Result<Cor
     let (back, ahead) = (direction(node.at, before.at), direction(node.at, after.at));
     let turn = back[1] * ahead[0] - back[0] * ahead[1];
     let half = 0.5 * turn.abs().atan2(back[0] * ahead[0] + back[1] * ahead[1]);
-    if !(turn.abs() > 1e-6) {
+    if turn.abs() <= 1e-6 {
         return Err(JobError::NoCorner { place: place.clone() });
     }
     let along = |way: Point, length: f64| [node.at[0] + length * way[0], node.at[1] + length * way[1]];
@@ -180,7 +180,7 @@ fn distance(a: Point, b: Point) -> f64 {
 /// The centre moved onto the perpendicular bisector of the chord, so that both ends are equally far from it.
 fn circle_centre(from: Point, to: Point, centre: Point, place: &Place) -> Result<Point, JobError> {
     let (start, end) = (distance(from, centre), distance(to, centre));
-    if !((start - end).abs() <= ARC_MISMATCH * start.max(end)) {
+    if (start - end).abs() > ARC_MISMATCH * start.max(end) {
         let place = place.key("arc").key("centre");
         return Err(JobError::ArcRadii { place, start_mm: 1e3 * start, end_mm: 1e3 * end });
     }

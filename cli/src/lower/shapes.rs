@@ -48,6 +48,7 @@ pub(super) fn outline(shape: &Shape, place: &Place) -> Result<Outline, JobError>
 }
 
 /// How a shape is placed along the axis.
+#[derive(Clone, Copy)]
 struct Axial<'a> {
     extent: Option<&'a Quantity<Length>>,
     key: &'static str,

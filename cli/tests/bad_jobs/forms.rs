@@ -8,6 +8,7 @@ use super::{
     bad,
 };
 
+#[allow(clippy::too_many_lines, reason = "a table")]
 pub(crate) fn forms() -> Vec<Bad> {
     vec![
         bad(

@@ -8,6 +8,7 @@ use super::{
     bad, on,
 };
 
+#[allow(clippy::too_many_lines, reason = "a table")]
 pub(crate) fn meanings() -> Vec<Bad> {
     vec![
         bad(
@@ -52,7 +53,7 @@ pub(crate) fn meanings() -> Vec<Bad> {
         bad(
             "turn inside the billet",
             Set("/coils/0/winding/helix/inner_diameter", json!("40 mm")),
-            &["coils.coil", "turn 1", "part `liner`", "enlarge the coil"],
+            &["coils.coil", "turn 2", "part `billet`", "enlarge the coil"],
         ),
         bad(
             "turn in the liner only",
@@ -114,6 +115,14 @@ pub(crate) fn meanings() -> Vec<Bad> {
                 json!({ "profile": [["35 mm", "0 mm"], ["38 mm", "9 mm"], ["38 mm", "0 mm"], ["35 mm", "9 mm"]] }),
             ),
             &["parts.liner.shape.profile", "outline"],
+        ),
+        bad(
+            "profile that touches itself",
+            Set(
+                "/parts/1/shape",
+                json!({ "profile": [["34 mm", "0 mm"], ["38 mm", "0 mm"], ["38 mm", "9 mm"], ["36 mm", "0 mm"], ["34 mm", "9 mm"]] }),
+            ),
+            &["parts.liner.shape.profile", "may not cross or touch itself"],
         ),
         bad(
             "profile that begins with an arc",

@@ -4,6 +4,7 @@ use serde_json::json;
 
 use super::{Bad, Spoil::Set, bad};
 
+#[allow(clippy::too_many_lines, reason = "a table")]
 pub(crate) fn values() -> Vec<Bad> {
     vec![
         bad(

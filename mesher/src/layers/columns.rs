@@ -138,40 +138,21 @@ fn add_junction(chain: &mut Chain, k: usize) {
     let n = chain.whole.uses.len();
     let (before, after) = (&chain.whole.uses[(k + n - 1) % n], &chain.whole.uses[k]);
     let j = &chain.whole.junctions[k];
-    let base = after.start;
     let vertex = after.span.start;
     let outline = [before, after].into_iter().find(|u| u.bare);
     let depths = &chain.whole.depths;
-    let run = |points: Vec<Point>, most: f64, along: Option<usize>| {
-        let height = points.iter().zip(depths).take_while(|(_, d)| **d <= most).count().saturating_sub(1);
-        Column { base, points, height, steps: Vec::new(), along }
-    };
-    let most = |direction: Point| room(&chain.whole, vertex, direction);
     let columns = match j.style {
-        Style::Bare | Style::Steps => vec![run(vec![vertex], 0.0, None)],
+        Style::Bare | Style::Steps => vec![column(after, vec![vertex], depths, 0.0, None)],
         Style::Shared => {
             let points: Vec<Point> = j.apex.iter().map_while(|p| *p).collect();
             let limit = match outline {
                 Some(u) => OF_WALL * u.span.length(),
-                None => points.get(1).map_or(0.0, |p| most(unit(sub(*p, vertex)))),
+                None => points.get(1).map_or(0.0, |p| room(&chain.whole, vertex, unit(sub(*p, vertex)))),
             };
             let limit = limit.min(fillet_limit(before)).min(fillet_limit(after));
-            vec![run(points, limit, outline.map(|u| u.stretch))]
+            vec![column(after, points, depths, limit, outline.map(|u| u.stretch))]
         }
-        Style::Fan => {
-            let last = j.fan.len() - 1;
-            let fan = j.fan.iter().enumerate().map(|(i, &direction)| {
-                let on_outline = (i == 0 && before.bare) || (i == last && after.bare);
-                let along_outline = outline.filter(|_| on_outline);
-                let points = depths.iter().map(|&d| along(vertex, direction, d)).collect();
-                match along_outline {
-                    Some(u) if matches!(u.span.kind, Kind::Arc { .. }) => run(vec![vertex], 0.0, None),
-                    Some(u) => run(points, OF_WALL * u.span.length(), Some(u.stretch)),
-                    None => run(points, most(direction), None),
-                }
-            });
-            fan.collect()
-        }
+        Style::Fan => (0..j.fan.len()).map(|i| fan_column(&chain.whole, before, after, &j.fan, i)).collect(),
     };
     let first = chain.columns.len();
     chain.columns.extend(columns);
@@ -179,12 +160,36 @@ fn add_junction(chain: &mut Chain, k: usize) {
     chain.pairs.extend(ids.windows(2).map(|w| Pair { columns: [w[0], w[1]], on: None }));
 }
 
+/// A column at the start of a use, as tall as `most` allows.
+fn column(after: &Use, points: Vec<Point>, depths: &[f64], most: f64, along: Option<usize>) -> Column {
+    let height = points.iter().zip(depths).take_while(|(_, d)| **d <= most).count().saturating_sub(1);
+    Column { base: after.start, points, height, steps: Vec::new(), along }
+}
+
+/// One column of a fan; the outermost may run along the outline of the domain.
+fn fan_column(whole: &Loop, before: &Use, after: &Use, fan: &[Point], i: usize) -> Column {
+    let vertex = after.span.start;
+    let points: Vec<Point> = whole.depths.iter().map(|&d| along(vertex, fan[i], d)).collect();
+    let outline = match i {
+        0 if before.bare => Some(before),
+        i if i + 1 == fan.len() && after.bare => Some(after),
+        _ => None,
+    };
+    match outline {
+        Some(u) if matches!(u.span.kind, Kind::Arc { .. }) => column(after, points, &whole.depths, 0.0, None),
+        Some(u) => column(after, points, &whole.depths, OF_WALL * u.span.length(), Some(u.stretch)),
+        None => column(after, points, &whole.depths, room(whole, vertex, fan[i]), None),
+    }
+}
+
 /// Adds the columns strictly inside use `k`.
 fn add_surface(graph: &Graph, strips: &Strips, chain: &mut Chain, k: usize) {
     let whole = &chain.whole;
     let u = &whole.uses[k];
     let n = whole.uses.len();
-    let Some(division) = &strips.divisions[u.stretch] else { return };
+    let Some(division) = &strips.divisions[u.stretch] else {
+        return;
+    };
     let mut inner: Vec<u32> = division[1..division.len() - 1].to_vec();
     if u.reversed {
         inner.reverse();
@@ -204,12 +209,13 @@ fn add_surface(graph: &Graph, strips: &Strips, chain: &mut Chain, k: usize) {
             let j = &whole.junctions[junction];
             let away = if side == 1 { t * length } else { (1.0 - t) * length };
             height = height.min(climb(j, side, away, &whole.depths, graph.tolerance));
-            let step = (1..j.feet[side].len()).find(|&level| j.matched && at_foot(j, side, level, away, graph.tolerance));
-            if let (Some(level), Some(apex)) = (step, step.and_then(|l| j.apex[l])) {
-                if same(points[level], apex, graph.tolerance) {
-                    points[level] = apex;
-                    steps.push(Step { junction, level });
-                }
+            let step =
+                (1..j.feet[side].len()).find(|&level| j.matched && at_foot(j, side, level, away, graph.tolerance));
+            if let (Some(level), Some(apex)) = (step, step.and_then(|l| j.apex[l]))
+                && same(points[level], apex, graph.tolerance)
+            {
+                points[level] = apex;
+                steps.push(Step { junction, level });
             }
         }
         columns.push(Column { base, points, height, steps, along: None });

@@ -81,14 +81,7 @@ impl Emitter<'_> {
             let id = match step {
                 Some(s) => {
                     let key = (chain.region, chain.whole.uses[s.junction].start, level);
-                    match shared.get(&key) {
-                        Some(&id) => id,
-                        None => {
-                            let id = self.out.result.add_point(self.graph, p);
-                            shared.insert(key, id);
-                            id
-                        }
-                    }
+                    *shared.entry(key).or_insert_with(|| self.out.result.add_point(self.graph, p))
                 }
                 None => self.out.result.add_point(self.graph, p),
             };
@@ -108,17 +101,14 @@ impl Emitter<'_> {
         for (k, junction) in chain.whole.junctions.iter().enumerate() {
             let (before, after) = (&chain.whole.uses[(k + n - 1) % n], &chain.whole.uses[k]);
             let outline = [before, after].into_iter().find(|u| u.bare);
-            let Some(outline) = outline.filter(|_| junction.style == Style::Steps) else { continue };
-            let mut run = Vec::new();
-            for level in 1..junction.apex.len() {
-                let top = chain.columns.iter().position(|c| {
-                    c.height == level && c.steps.iter().any(|s| s.junction == k && s.level == level)
-                });
-                match top {
-                    Some(c) => run.push(ids[c][level]),
-                    None => break,
-                }
-            }
+            let Some(outline) = outline.filter(|_| junction.style == Style::Steps) else {
+                continue;
+            };
+            let top_at = |level: usize| {
+                let step = |c: &Column| c.steps.iter().any(|s| s.junction == k && s.level == level);
+                chain.columns.iter().position(|c| c.height == level && step(c)).map(|c| ids[c][level])
+            };
+            let run: Vec<u32> = (1..junction.apex.len()).map_while(top_at).collect();
             if !run.is_empty() {
                 self.pin_run(outline.stretch, after.start, &run);
             }
@@ -142,7 +132,7 @@ impl Emitter<'_> {
         let pair = chain.pairs[k];
         let (a, b) = (&ids[pair.columns[0]], &ids[pair.columns[1]]);
         let common = a.len().min(b.len()) - 1;
-        let pole = self.pole_of(chain, pair.on);
+        let pole = pole_of(chain, pair.on);
         if a[0] != b[0] && a.len().max(b.len()) > 1 {
             self.out.covered.push((a[0], b[0]));
         }
@@ -153,8 +143,11 @@ impl Emitter<'_> {
             if level + 1 == common && a.len() == b.len() {
                 self.source(upper);
             }
-            let corners =
-                if a[level] == b[level] { [a[level], b[level + 1], a[level + 1], a[level + 1]] } else { [a[level], b[level], b[level + 1], a[level + 1]] };
+            let corners = if a[level] == b[level] {
+                [a[level], b[level + 1], a[level + 1], a[level + 1]]
+            } else {
+                [a[level], b[level], b[level + 1], a[level + 1]]
+            };
             self.cell(corners, pole, c, pair.columns);
         }
         if a.len() == b.len() || a[common] == b[common] {
@@ -190,17 +183,14 @@ impl Emitter<'_> {
         self.out.cells.push(StripCell { corners, chain, columns });
     }
 
-    fn pole_of(&self, chain: &Chain, on: Option<usize>) -> Option<Point> {
-        match chain.whole.uses[on?].span.kind {
-            Kind::Line => None,
-            Kind::Arc { centre, .. } => Some(centre),
-        }
-    }
-
     /// Tag of a ring edge: its circle, if both ends are on it.
     fn ring(&mut self, chain: &Chain, on: Option<usize>, level: usize, ends: [u32; 2]) -> u32 {
-        let Some(u) = on.map(|k| &chain.whole.uses[k]) else { return 0 };
-        let Kind::Arc { centre, radius, sweep, .. } = u.span.kind else { return 0 };
+        let Some(u) = on.map(|k| &chain.whole.uses[k]) else {
+            return 0;
+        };
+        let Kind::Arc { centre, radius, sweep, .. } = u.span.kind else {
+            return 0;
+        };
         let radius = radius - chain.whole.depths[level] * sweep.signum();
         let on_circle = |v: u32| {
             let p = self.out.result.point(self.graph, v);
@@ -223,5 +213,13 @@ impl Emitter<'_> {
             tags.push(Tag { pole: Some(pole), ..Tag::default() });
             tags.len() as u32 - 1
         })
+    }
+}
+
+/// Centre of the arc between two columns, if they stand on one.
+fn pole_of(chain: &Chain, on: Option<usize>) -> Option<Point> {
+    match chain.whole.uses[on?].span.kind {
+        Kind::Line => None,
+        Kind::Arc { centre, .. } => Some(centre),
     }
 }

@@ -15,7 +15,7 @@ pub(super) fn lower_colliding(graph: &Graph, emitted: &Emitted, chains: &mut [Ch
     for cell in &emitted.cells {
         let p = cell.corners.map(point);
         let n = if cell.corners[2] == cell.corners[3] { 3 } else { 4 };
-        if (0..n).any(|i| !(orient(p[i], p[(i + 1) % n], p[(i + 2) % n]) > 0.0)) {
+        if (0..n).any(|i| orient(p[i], p[(i + 1) % n], p[(i + 2) % n]) <= 0.0) {
             hit.extend(cell.columns.map(|c| (cell.chain, c)));
         }
     }
@@ -69,7 +69,9 @@ fn segments(graph: &Graph, emitted: &Emitted) -> (Vec<Segment>, usize) {
         stops.extend(head.iter().chain(tail));
         stops.extend((1..n).map(|k| (k as f64 / n as f64, u32::MAX)));
         stops.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
-        let place = |s: &(f64, u32)| if s.1 == u32::MAX { stretch.span.at(s.0) } else { strips.point(graph, s.1) };
+        let place = |s: &(f64, u32)| {
+            if s.1 == u32::MAX { stretch.span.at(s.0) } else { strips.point(graph, s.1) }
+        };
         segments.extend(stops.windows(2).map(|w| ([w[0].1, w[1].1], [place(&w[0]), place(&w[1])])));
     }
     let first = segments.len();

@@ -58,28 +58,31 @@ pub(super) fn junction(before: &Use, after: &Use, depths: &[f64]) -> Junction {
         Style::Fan
     };
     let vertex = after.span.start;
+    let smooth = !at_outline && (angle - PI).abs() < SMOOTH;
+    let normal = left_of(after.span.tangent(0.0));
     let apex: Vec<Option<Point>> = match style {
-        Style::Bare => Vec::new(),
-        Style::Fan => depths.iter().map(|&d| Some(along(vertex, outline_direction(before, after), d))).collect(),
-        Style::Shared if !at_outline && (angle - PI).abs() < SMOOTH => {
-            let normal = left_of(after.span.tangent(0.0));
-            depths.iter().map(|&d| Some(along(vertex, normal, d))).collect()
-        }
+        Style::Bare | Style::Fan => Vec::new(),
+        Style::Shared if smooth => depths.iter().map(|&d| Some(along(vertex, normal, d))).collect(),
         Style::Shared | Style::Steps => depths.iter().map(|&d| meeting(before, after, d)).collect(),
     };
-    let feet = match style {
-        Style::Steps | Style::Shared if angle < PI - SMOOTH => {
-            let foot = |u: &Use, from_end: bool| {
-                let length = u.span.length();
-                let t = |p: Point| u.span.project(p);
-                apex.iter().map(|a| a.map(|p| length * if from_end { 1.0 - t(p) } else { t(p) })).collect()
-            };
-            [if before.bare { Vec::new() } else { foot(before, true) }, if after.bare { Vec::new() } else { foot(after, false) }]
+    let mut feet = [Vec::new(), Vec::new()];
+    if angle < PI - SMOOTH {
+        for (side, u) in [before, after].into_iter().enumerate().filter(|(_, u)| !u.bare) {
+            feet[side] = feet_of(&apex, u, side == 0);
         }
-        _ => [Vec::new(), Vec::new()],
-    };
+    }
     let fan = if style == Style::Fan { fan_directions(before, after, angle) } else { Vec::new() };
-    Junction { style, apex, fan, feet, matched: style == Style::Steps && angle > SHARPEST }
+    let matched = style == Style::Steps && angle > SHARPEST;
+    Junction { style, apex, fan, feet, matched }
+}
+
+/// Length along a use from its start, or back from its end, of the nearest point to every apex.
+fn feet_of(apex: &[Option<Point>], u: &Use, from_end: bool) -> Vec<Option<f64>> {
+    let away = |p: Point| {
+        let t = u.span.project(p);
+        u.span.length() * if from_end { 1.0 - t } else { t }
+    };
+    apex.iter().map(|a| a.map(away)).collect()
 }
 
 /// Direction from the junction along the stretch that bounds the domain.
@@ -100,13 +103,17 @@ fn fan_directions(before: &Use, after: &Use, angle: f64) -> Vec<Point> {
         turn -= if surface { 0.5 * PI } else { 0.0 };
     }
     let n = (turn / FAN_SECTOR).ceil().max(1.0) as usize;
-    (0..=n)
+    let mut directions: Vec<Point> = (0..=n)
         .map(|i| {
             let (s, c) = (turn * i as f64 / n as f64).sin_cos();
             // Clockwise: the region is on the left and the surface turns right.
             [first[0] * c + first[1] * s, first[1] * c - first[0] * s]
         })
-        .collect()
+        .collect();
+    if after.bare {
+        directions[n] = outline_direction(before, after);
+    }
+    directions
 }
 
 /// The point at a depth below both sides that is nearest to the junction; a side that bounds the domain counts at depth 0.
@@ -139,6 +146,11 @@ fn meeting(before: &Use, after: &Use, depth: f64) -> Option<Point> {
         .into_iter()
         .filter(|p| near(p) && inward(p))
         .min_by(|p, q| distance(*p, vertex).total_cmp(&distance(*q, vertex)))
+        .map(|p| match [before, after].into_iter().find(|u| u.bare) {
+            // Exactly on the outline, not a rounding error beside it.
+            Some(outline) => outline.span.at(outline.span.project(p)),
+            None => p,
+        })
 }
 
 enum Track {

@@ -49,7 +49,9 @@ pub(super) fn loops_of(graph: &Graph, region: usize, depths: &[f64]) -> Vec<Loop
     let mut taken = vec![false; uses.len()];
     let mut loops = Vec::new();
     for seed in 0..uses.len() {
-        let Some(order) = follow(&uses, seed, &mut taken) else { continue };
+        let Some(order) = follow(&uses, seed, &mut taken) else {
+            continue;
+        };
         if order.iter().all(|&u| uses[u].bare) {
             continue;
         }

@@ -19,7 +19,9 @@ pub(super) fn divide_surfaces(graph: &Graph, loops: &[Loop], field: &SizeField, 
     for (i, stretch) in graph.stretches.iter().enumerate() {
         let mut users: Vec<(&Loop, usize)> = loops
             .iter()
-            .flat_map(|l| l.uses.iter().enumerate().filter(|(_, u)| u.stretch == i && !u.bare).map(move |(k, _)| (l, k)))
+            .flat_map(|l| {
+                l.uses.iter().enumerate().filter(|(_, u)| u.stretch == i && !u.bare).map(move |(k, _)| (l, k))
+            })
             .collect();
         if users.is_empty() {
             continue;
@@ -60,7 +62,14 @@ fn reserve(l: &Loop, k: usize, at_end: bool) -> Vec<f64> {
     }
 }
 
-fn marks(span: &Span, length: f64, mut head: Vec<f64>, mut tail: Vec<f64>, field: &SizeField, max_turn: f64) -> Vec<f64> {
+fn marks(
+    span: &Span,
+    length: f64,
+    mut head: Vec<f64>,
+    mut tail: Vec<f64>,
+    field: &SizeField,
+    max_turn: f64,
+) -> Vec<f64> {
     let size = |x: f64| field.at(span.at(x / length));
     // Steps wider than the surface size are left to the even division.
     for (steps, from_end) in [(&mut head, false), (&mut tail, true)] {

@@ -1,35 +1,47 @@
 //! Sections shared by the tests: an induction coil around a billet and the like. Convention: metres; dimensions are common practice.
-#![allow(dead_code, clippy::unwrap_used, clippy::expect_used, reason = "tests; each file uses some of it")]
+#![allow(
+    dead_code,
+    clippy::unwrap_used,
+    clippy::expect_used,
+    clippy::unnecessary_wraps,
+    reason = "tests; each file uses some of it, and a region takes an optional strip"
+)]
 
 use mesher::{Drawing, Layers, Limits, Mesh, Outline, Point, Region, RegionId};
 
-pub const AIR: RegionId = RegionId(0);
-pub const BILLET: RegionId = RegionId(1);
-pub const LINER: RegionId = RegionId(2);
-pub const BORE: RegionId = RegionId(3);
+pub(crate) const AIR: RegionId = RegionId(0);
+pub(crate) const BILLET: RegionId = RegionId(1);
+pub(crate) const LINER: RegionId = RegionId(2);
+pub(crate) const BORE: RegionId = RegionId(3);
 
-pub fn strip(delta: f64) -> Option<Layers> {
+pub(crate) fn strip(delta: f64) -> Option<Layers> {
     Some(Layers { first: delta / 3.0, growth: 1.5, count: 5 })
 }
 
-pub fn region(id: RegionId, outline: Outline, interior_size: f64, surface_size: f64, layers: Option<Layers>) -> Region {
+pub(crate) fn region(
+    id: RegionId,
+    outline: Outline,
+    interior_size: f64,
+    surface_size: f64,
+    layers: Option<Layers>,
+) -> Region {
     Region { id, outline, interior_size, surface_size, layers }
 }
 
-pub fn drawing(domain: Outline, domain_size: f64, regions: Vec<Region>) -> Drawing {
+pub(crate) fn drawing(domain: Outline, domain_size: f64, regions: Vec<Region>) -> Drawing {
     Drawing { domain, domain_region: AIR, domain_size, regions, gradation: 0.4, boundary_size: None }
 }
 
-pub fn rectangle(lo: Point, hi: Point) -> Outline {
+pub(crate) fn rectangle(lo: Point, hi: Point) -> Outline {
     Outline::rectangle(lo, hi).unwrap()
 }
 
-pub fn mesh(drawing: &Drawing) -> Mesh {
+pub(crate) fn mesh(drawing: &Drawing) -> Mesh {
     mesher::triangulate(drawing, &Limits::default(), &|| false).expect("mesh")
 }
 
 /// Billet 60 mm x 200 mm in a coil of hollow turns, each 12 mm high, 12 mm wide, 2 mm wall.
-pub fn coil(domain: Outline, turns: usize, delta: Option<f64>) -> Drawing {
+pub(crate) fn coil(domain: Outline, turns: usize, delta: Option<f64>) -> Drawing {
     let layers = delta.and_then(strip);
     let mut regions = vec![region(BILLET, rectangle([0.0, -0.1], [0.03, 0.1]), 0.01, 0.004, layers)];
     for i in 0..turns {
@@ -42,8 +54,8 @@ pub fn coil(domain: Outline, turns: usize, delta: Option<f64>) -> Drawing {
     drawing(domain, 0.05, regions)
 }
 
-/// Largest relative difference between the area of each region and the area wanted.
-pub fn assert_area(mesh: &Mesh, id: RegionId, wanted: f64) {
+/// The area of a region is the one wanted, to 1e-12 of it.
+pub(crate) fn assert_area(mesh: &Mesh, id: RegionId, wanted: f64) {
     let found = mesh.region_area(id);
     let error = (found - wanted).abs() / wanted;
     assert!(error < 1e-12, "region {}: area {found:e}, wanted {wanted:e}, error {error:.2e}", id.0);

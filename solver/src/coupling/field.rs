@@ -5,7 +5,7 @@ use std::sync::Arc;
 use super::loss::FieldState;
 use crate::error::SolveError;
 use crate::fem::space::Space;
-use crate::magnetics::drive::{Scaled, scale};
+use crate::magnetics::drive::{PerAmpere, Scaled, scale};
 use crate::magnetics::maps::maps;
 use crate::magnetics::operator::Operator;
 use crate::magnetics::properties::{PointProperties, PointTemperatures};
@@ -56,10 +56,11 @@ impl<'a> FieldSolver<'a> {
     pub(super) fn solve(&mut self, time_s: f64, temperatures: &dyn PointTemperatures) -> Result<Solved, SolveError> {
         let space = Arc::clone(self.operator.space());
         let properties = PointProperties::new(&space, &self.regions, self.model, temperatures);
-        let field = self
-            .operator
-            .solve(&properties)
-            .map_err(|source| SolveError::Linear { system: "field", time_s, source })?;
+        let field = self.operator.solve(&properties).map_err(|source| SolveError::Linear {
+            system: "field",
+            time_s,
+            source,
+        })?;
         self.solves += 1;
         let numbers = Numbers::new(&field, &self.operator, &properties, &self.regions, self.model);
         let heated_loss_w_per_m3 = self.heated_triangles.iter().flat_map(|&t| field.loss(t)).copied().collect();
@@ -76,13 +77,9 @@ impl<'a> FieldSolver<'a> {
         maps(&state.field, &self.operator, &state.properties, &self.regions, self.model)
     }
 
-    pub(super) fn model(&self) -> &'a Model {
-        self.model
-    }
-
     /// Scales a solve to what is held.
     pub(super) fn scaled(&self, solved: Solved, hold: Hold, time_s: f64) -> Result<FieldState, SolveError> {
-        let scaled = self.scale(&solved.numbers, hold)?;
+        let scaled = self.scale(&solved.numbers.per, hold)?;
         Ok(FieldState {
             time_s,
             unit_loss_w_per_m3: solved.heated_loss_w_per_m3,
@@ -94,9 +91,9 @@ impl<'a> FieldSolver<'a> {
     }
 
     /// Drive that a hold asks for; with an applied field, the field itself unless the supply is off.
-    pub(super) fn scale(&self, numbers: &Numbers, hold: Hold) -> Result<Scaled, SolveError> {
+    pub(super) fn scale(&self, per: &PerAmpere, hold: Hold) -> Result<Scaled, SolveError> {
         match &self.model.drive {
-            Drive::Supply { limits, .. } => scale(hold, *limits, &numbers.per),
+            Drive::Supply { limits, .. } => scale(hold, *limits, per),
             Drive::AppliedField { field_a_per_m_rms, .. } => {
                 let on = if hold == Hold::Off { 0.0 } else { 1.0 };
                 let peak = on * field_a_per_m_rms * std::f64::consts::SQRT_2;

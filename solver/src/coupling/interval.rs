@@ -34,7 +34,6 @@ pub(super) enum Ended {
 /// When a stage ends.
 pub(super) struct Tracker {
     pub(super) end_s: f64,
-    stage: usize,
     start_s: f64,
     goal: Option<(usize, f64)>,
     control: Option<(usize, f64)>,
@@ -42,7 +41,7 @@ pub(super) struct Tracker {
 }
 
 impl Tracker {
-    pub(super) fn new(stage: &Stage, index: usize, gauges_k: &[f64], time_s: f64) -> Self {
+    pub(super) fn new(stage: &Stage, gauges_k: &[f64], time_s: f64) -> Self {
         let (length, goal) = match stage.end {
             StageEnd::After(s) => (s, None),
             StageEnd::GaugeReaches { gauge, at_k, at_most_s } => (at_most_s, Some((gauge, at_k))),
@@ -52,7 +51,7 @@ impl Tracker {
             _ => None,
         };
         let start_gauge_k = goal.map_or(0.0, |(g, _)| gauges_k[g]);
-        Self { end_s: time_s + length, stage: index, start_s: time_s, goal, control, start_gauge_k }
+        Self { end_s: time_s + length, start_s: time_s, goal, control, start_gauge_k }
     }
 
     /// True where the goal is met already.

@@ -29,8 +29,7 @@ use crate::warnings;
 pub fn run(model: &Model, observer: &dyn Observer) -> Result<Results, SolveError> {
     let meshed = Meshed::new(model, &|| observer.stop_requested())?;
     let mut solver = FieldSolver::new(model, &meshed)?;
-    observer
-        .event(&Event::Meshed { triangles: meshed.mesh.triangles().len(), unknowns: solver.operator().unknowns() });
+    observer.event(&Event::Meshed { triangles: meshed.mesh.triangles().len(), unknowns: solver.operator().unknowns() });
     let mut recorder = Recorder::new(model, warnings::before_solve(model, &meshed));
     recorder.mesh(meshed.mesh.triangles().len(), solver.operator().unknowns());
     if observer.stop_requested() {

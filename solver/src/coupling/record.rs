@@ -7,8 +7,8 @@ use super::loss::FieldState;
 use super::stage::{HeatRun, Progress};
 use crate::error::SolveError;
 use crate::heat::HeatState;
-use crate::magnetics::drive::{PerAmpere, scale};
-use crate::model::{Drive, Hold, Model};
+use crate::magnetics::drive::PerAmpere;
+use crate::model::{Hold, Model};
 use crate::results::{
     Counts, EnergyBalance, FieldMaps, HistoryRow, Outcome, PartTemperatures, Results, Section, Snapshot, State,
     SupplyLimit, Terminals, TurnRow, Warning, WarningKind,
@@ -116,7 +116,14 @@ impl<'a> Recorder<'a> {
     }
 
     /// Adds an electrical state to the table.
-    pub(super) fn state(&mut self, label: &str, time_s: f64, solver: &FieldSolver<'_>, field: &FieldState, factor: f64) {
+    pub(super) fn state(
+        &mut self,
+        label: &str,
+        time_s: f64,
+        solver: &FieldSolver<'_>,
+        field: &FieldState,
+        factor: f64,
+    ) {
         let state = State { time_s, ..self.make_state(label, solver, field, factor) };
         let peak = field.scaled.peak * factor.sqrt();
         self.turns = field.numbers.turns(solver.operator(), self.model, peak);
@@ -202,7 +209,7 @@ impl<'a> Recorder<'a> {
         for row in rows {
             let share = if new.0 > old.0 { ((row.time_s - old.0) / (new.0 - old.0)).clamp(0.0, 1.0) } else { 1.0 };
             let per = between(&old.1, &new.1, share);
-            let peak = self.peak(run, hold, &per)? * row.factor.sqrt();
+            let peak = run.solver.scale(&per, hold)?.peak * row.factor.sqrt();
             let coil_loss_w = (old.2 + share * (new.2 - old.2)) * peak * peak;
             self.row(run, stage, row, run_terminals(run, &per, peak), coil_loss_w);
         }
@@ -214,15 +221,6 @@ impl<'a> Recorder<'a> {
             self.map(run, "", &now.losses.last, now.factor, &now.state);
         }
         Ok(())
-    }
-
-    fn peak(&self, run: &HeatRun<'_, '_>, hold: Hold, per: &PerAmpere) -> Result<f64, SolveError> {
-        match run.model.drive {
-            Drive::Supply { limits, .. } => Ok(scale(hold, limits, per)?.peak),
-            Drive::AppliedField { field_a_per_m_rms, .. } => {
-                Ok(if hold == Hold::Off { 0.0 } else { field_a_per_m_rms * std::f64::consts::SQRT_2 })
-            }
-        }
     }
 
     fn row(
@@ -274,7 +272,13 @@ impl<'a> Recorder<'a> {
                     now.state.time_s
                 );
                 self.warnings.add(WarningKind::Curie, text);
-                self.state(&format!("{place} of {} at Curie", part.name), now.state.time_s, run.solver, &now.losses.last, now.factor);
+                self.state(
+                    &format!("{place} of {} at Curie", part.name),
+                    now.state.time_s,
+                    run.solver,
+                    &now.losses.last,
+                    now.factor,
+                );
             }
         }
     }
@@ -284,13 +288,6 @@ impl<'a> Recorder<'a> {
         self.counts.field_solves = run.solver.solves();
         self.state(label, now.state.time_s, run.solver, &now.losses.last, now.factor);
         self.map(run, label, &now.losses.last, now.factor, &now.state);
-        for t in run.heat.part_temperatures(&now.state) {
-            let part = &self.model.parts[t.part];
-            let highest = self.history.iter().flat_map(|h| &h.parts).filter(|p| p.part == t.part);
-            let (lowest_k, highest_k) =
-                highest.fold((t.min_k, t.max_k), |(lo, hi), p| (lo.min(p.min_k), hi.max(p.max_k)));
-            warnings::of_temperatures(part, lowest_k, highest_k, &mut self.warnings);
-        }
     }
 
     fn map(&mut self, run: &HeatRun<'_, '_>, label: &str, field: &FieldState, factor: f64, state: &HeatState) {
@@ -325,6 +322,12 @@ impl<'a> Recorder<'a> {
     /// Puts the results together.
     pub(super) fn finish(mut self, outcome: Outcome, section: Section, solver: &FieldSolver<'_>) -> Results {
         self.counts.field_solves = solver.solves();
+        for (p, part) in self.model.parts.iter().enumerate() {
+            let own = || self.history.iter().flat_map(|h| &h.parts).filter(|t| t.part == p);
+            let lowest_k = own().map(|t| t.min_k).fold(part.start_k, f64::min);
+            let highest_k = own().map(|t| t.max_k).fold(part.start_k, f64::max);
+            warnings::of_temperatures(part, lowest_k, highest_k, &mut self.warnings);
+        }
         for maximum in self.maxima {
             self.states.extend(maximum.at.map(|(_, state)| state));
         }

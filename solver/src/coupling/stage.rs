@@ -151,7 +151,7 @@ impl<'a, 'b> HeatRun<'a, 'b> {
         let stage = &self.heating.stages[index];
         let hold = self.base_hold(stage);
         self.switch(now, hold)?;
-        let tracker = Tracker::new(stage, index, &self.heat.gauge_values(&now.state.temperature_k), now.state.time_s);
+        let tracker = Tracker::new(stage, &self.heat.gauge_values(&now.state.temperature_k), now.state.time_s);
         self.observer.event(&Event::StageStarted {
             index,
             of: self.heating.stages.len(),
@@ -168,20 +168,11 @@ impl<'a, 'b> HeatRun<'a, 'b> {
             match ended {
                 Ended::Goal => return Ok(None),
                 Ended::Planned | Ended::Drifted if now.state.time_s < tracker.end_s => {}
-                Ended::Planned | Ended::Drifted => return Ok(self.time_is_up(stage, now)),
+                Ended::Planned | Ended::Drifted => return Ok(time_is_up(stage, now)),
                 Ended::Stopped => return Ok(Some(Outcome::Stopped { time_s: now.state.time_s })),
                 Ended::Failed(reason) => {
                     return Ok(Some(Outcome::NotConverged { time_s: now.state.time_s, reason }));
                 }
-            }
-        }
-    }
-
-    fn time_is_up(&self, stage: &Stage, now: &Progress) -> Option<Outcome> {
-        match stage.end {
-            StageEnd::After(_) => None,
-            StageEnd::GaugeReaches { .. } => {
-                Some(Outcome::StageLimit { stage: stage.name.clone(), time_s: now.state.time_s })
             }
         }
     }
@@ -191,7 +182,7 @@ impl<'a, 'b> HeatRun<'a, 'b> {
         if now.losses.last.time_s < now.state.time_s {
             now.losses.last = self.solve(&now.state, hold)?;
         }
-        let scaled = self.solver.scale(&now.losses.last.numbers, hold)?;
+        let scaled = self.solver.scale(&now.losses.last.numbers.per, hold)?;
         now.losses.last.scaled = scaled;
         now.losses.previous = None;
         now.factor = 1.0;
@@ -244,14 +235,7 @@ impl<'a, 'b> HeatRun<'a, 'b> {
         Ok((Ended::Failed("the field did not settle".to_owned()), Vec::new()))
     }
 
-    fn accept(
-        &mut self,
-        now: &mut Progress,
-        new: FieldState,
-        elapsed: f64,
-        next: f64,
-        recorder: &mut Recorder<'a>,
-    ) {
+    fn accept(&mut self, now: &mut Progress, new: FieldState, elapsed: f64, next: f64, recorder: &mut Recorder<'a>) {
         now.losses.push(new);
         now.solves_since_switch += 1;
         now.interval_s = if now.solves_since_switch < 3 { next.min(elapsed) } else { next };
@@ -284,6 +268,15 @@ impl<'a, 'b> HeatRun<'a, 'b> {
             }
         }
         if weight > 0.0 { (sum / weight).sqrt() } else { 0.0 }
+    }
+}
+
+fn time_is_up(stage: &Stage, now: &Progress) -> Option<Outcome> {
+    match stage.end {
+        StageEnd::After(_) => None,
+        StageEnd::GaugeReaches { .. } => {
+            Some(Outcome::StageLimit { stage: stage.name.clone(), time_s: now.state.time_s })
+        }
     }
 }
 

@@ -89,9 +89,5 @@ pub fn add_blocks<T: Scalar + Default>(
 
 /// Computes one value an element in parallel; the result is in element order.
 pub fn map_elements<R: Send>(count: usize, f: impl Fn(usize, &mut ElementPoints) -> R + Sync) -> Vec<R> {
-    (0..count)
-        .into_par_iter()
-        .with_min_len(CHUNK)
-        .map_init(ElementPoints::default, |points, e| f(e, points))
-        .collect()
+    (0..count).into_par_iter().with_min_len(CHUNK).map_init(ElementPoints::default, |points, e| f(e, points)).collect()
 }

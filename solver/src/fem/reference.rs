@@ -7,7 +7,7 @@
 
 use std::num::NonZeroUsize;
 
-use gauss_quad::{FiniteAboveNegOneF64, GaussJacobi, GaussLegendre};
+use gauss_quad::GaussLegendre;
 
 /// Largest number of nodes of an element (order 3).
 pub const MAX_NODES: usize = 10;
@@ -127,20 +127,15 @@ pub fn node_positions(order: usize) -> Vec<[f64; 2]> {
 /// Gauss-Legendre rule of `n` points on [0, 1].
 fn unit_rule(n: usize) -> Vec<(f64, f64)> {
     let rule = GaussLegendre::new(NonZeroUsize::new(n).unwrap_or(NonZeroUsize::MIN));
-    let mut pairs: Vec<_> =
-        rule.as_node_weight_pairs().iter().map(|&(x, w)| (0.5 * (1.0 + x), 0.5 * w)).collect();
+    let mut pairs: Vec<_> = rule.as_node_weight_pairs().iter().map(|&(x, w)| (0.5 * (1.0 + x), 0.5 * w)).collect();
     pairs.sort_by(|a, b| a.0.total_cmp(&b.0));
     pairs
 }
 
 fn triangle_rule(n: usize) -> (Vec<[f64; 2]>, Vec<f64>) {
     let along = unit_rule(n);
-    let one = FiniteAboveNegOneF64::new(1.0);
-    let zero = FiniteAboveNegOneF64::new(0.0);
     let (mut points, mut weights) = (Vec::new(), Vec::new());
-    let (Some(one), Some(zero)) = (one, zero) else { return (points, weights) };
-    let across = GaussJacobi::new(NonZeroUsize::new(n).unwrap_or(NonZeroUsize::MIN), one, zero);
-    for &(y, wy) in across.as_node_weight_pairs() {
+    for (y, wy) in jacobi_rule(n) {
         let eta = 0.5 * (1.0 + y);
         for &(s, ws) in &along {
             points.push([s * (1.0 - eta), eta]);
@@ -148,6 +143,48 @@ fn triangle_rule(n: usize) -> (Vec<[f64; 2]>, Vec<f64>) {
         }
     }
     (points, weights)
+}
+
+/// Gauss-Jacobi rule of `n` points on [-1, 1] for the weight `1 - x`.
+///
+/// Its points are the inner ones of the Gauss-Radau rule with `n + 1` points that includes 1, the roots of
+/// `(P_n - P_{n+1}) / (1 - x)`, and its weights `(1 - x^2) / ((n + 1) P_n)^2`. Source: M. Abramowitz, I. A. Stegun,
+/// Handbook of Mathematical Functions, 25.4.31 (mirrored), with the roots found by bisection. (`gauss_quad` 0.3.1 puts
+/// the middle point of an odd rule at 0, which holds for symmetric weights only.)
+fn jacobi_rule(n: usize) -> Vec<(f64, f64)> {
+    let value = |x: f64| {
+        let [p, next] = legendre_pair(n, x);
+        (p - next) / (1.0 - x)
+    };
+    // One root in each of many equal intervals of the angle, where they are nearly evenly spread.
+    let cells = 64 * n;
+    let at = |k: usize| -(std::f64::consts::PI * k as f64 / cells as f64).cos();
+    let mut rule = Vec::new();
+    for k in 0..cells - 1 {
+        let (mut low, mut high) = (at(k), at(k + 1));
+        let sign = value(low);
+        if sign * value(high) > 0.0 {
+            continue;
+        }
+        for _ in 0..60 {
+            let middle = 0.5 * (low + high);
+            if sign * value(middle) > 0.0 { low = middle } else { high = middle }
+        }
+        let x = 0.5 * (low + high);
+        let scale = (n + 1) as f64 * legendre_pair(n, x)[0];
+        rule.push((x, (1.0 - x * x) / (scale * scale)));
+    }
+    rule
+}
+
+/// Legendre polynomials of degree `n` and `n + 1`.
+fn legendre_pair(n: usize, x: f64) -> [f64; 2] {
+    let (mut p, mut next) = (1.0, x);
+    for k in 1..=n {
+        let k = k as f64;
+        (p, next) = (next, ((2.0 * k + 1.0) * x * next - k * p) / (k + 1.0));
+    }
+    [p, next]
 }
 
 fn shape(order: usize, [x, y]: [f64; 2]) -> Shape {

@@ -81,10 +81,8 @@ impl Boundary {
             match condition(part, face_of(space, side)) {
                 FaceCondition::Insulated => {}
                 FaceCondition::Exchange(surface) => {
-                    let law = SideLaw::Exchange {
-                        convection: surface.convection_w_per_m2_k,
-                        emissivity: surface.emissivity,
-                    };
+                    let law =
+                        SideLaw::Exchange { convection: surface.convection_w_per_m2_k, emissivity: surface.emissivity };
                     by_element[side.element].push(active(space, side, law));
                 }
                 FaceCondition::Flux(flux) => {

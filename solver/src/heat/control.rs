@@ -40,11 +40,12 @@ impl StepControl {
     ///
     /// `dt_s` may be shorter than was proposed, to meet an event; the old proposal then stands if the error allows.
     pub fn accepts(&mut self, dt_s: f64, error_k: f64) -> bool {
-        let error = (error_k / self.tolerance_k).max(LEAST_ERROR);
-        if !(error <= 1.0) || error_k.is_nan() {
+        let error = error_k / self.tolerance_k;
+        if error.is_nan() || error > 1.0 {
             self.shorten(dt_s, SAFETY * error.powf(-0.5));
             return false;
         }
+        let error = error.max(LEAST_ERROR);
         let mut factor = SAFETY * error.powf(-INTEGRAL) * self.error_before.unwrap_or(error).powf(PROPORTIONAL);
         factor = factor.clamp(LEAST_FACTOR, if self.may_grow { LARGEST_FACTOR } else { 1.0 });
         let stands = dt_s < self.step_s && self.step_s.is_finite() && factor >= 1.0;

@@ -19,8 +19,7 @@ impl Geometry {
         let rows = map_elements(space.element_count(), |e, points| {
             space.fill(e, points);
             let volume: Vec<f64> = points.points().iter().map(|p| p.volume).collect();
-            let gradient: Vec<[f64; 2]> =
-                points.points().iter().flat_map(|p| p.gradient[..nodes].to_vec()).collect();
+            let gradient: Vec<[f64; 2]> = points.points().iter().flat_map(|p| p.gradient[..nodes].to_vec()).collect();
             (volume, gradient)
         });
         let (mut volume, mut gradient) = (Vec::new(), Vec::new());

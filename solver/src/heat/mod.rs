@@ -11,6 +11,7 @@
 //! SIAM J. Numer. Anal. 14 (1977) 1006-1021.
 
 mod boundary;
+mod conductivity;
 mod control;
 mod geometry;
 mod newton;

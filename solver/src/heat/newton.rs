@@ -18,11 +18,13 @@ pub(super) const LARGEST_UPDATE_K: f64 = 40.0;
 /// Iterations before giving up.
 const MOST_ITERATIONS: usize = 60;
 /// Residual over the heat moved at which a stage is solved.
-const TOLERANCE: f64 = 1e-11;
+const TOLERANCE: f64 = 1e-10;
 /// Rounding of the equations: this many times `f64::EPSILON` times the size of `tangent x temperature`.
 const ROUNDING: f64 = 4.0;
 /// A factor that contracts the residual less than this is made anew.
 const SLOW: f64 = 0.1;
+/// Iterations with a new tangent that may fail to make the residual smaller.
+const MOST_STALLS: usize = 4;
 /// Evaluations along one direction.
 const MOST_CUTS: usize = 30;
 
@@ -86,6 +88,7 @@ impl Solver<'_> {
     ) -> Result<StageSolution, StepFailure> {
         let mut now = self.trial(stage, temperature)?;
         let mut stale = fresh;
+        let mut stalls = 0;
         for iterations in 0..=MOST_ITERATIONS {
             if !(stale && iterations == 0) && now.norm <= self.limit(stage, &now) {
                 let Trial { temperature, terms, residual, .. } = now;
@@ -96,10 +99,14 @@ impl Solver<'_> {
             }
             let direction = self.direction(stage, &now)?;
             let next = self.walk(stage, &now, &direction)?;
+            stalls = if stale && next.norm > 0.999 * now.norm { stalls + 1 } else { 0 };
+            if stalls > MOST_STALLS {
+                return Err(self.not_converged(stage, &next, iterations + 1));
+            }
             stale = next.norm > SLOW * now.norm;
             now = next;
         }
-        Err(self.not_converged(stage, &now))
+        Err(self.not_converged(stage, &now, MOST_ITERATIONS))
     }
 
     /// Solves with the present tangent, zero at held unknowns; for the error estimate.
@@ -116,8 +123,7 @@ impl Solver<'_> {
 
     fn trial(&self, stage: &Stage, temperature: Vec<f64>) -> Result<Trial, StepFailure> {
         let terms = self.operator.terms(&temperature, stage.enthalpy, stage.source);
-        let mut residual: Vec<f64> =
-            terms.storage.iter().zip(&terms.rate).map(|(s, r)| s - stage.weight * r).collect();
+        let mut residual: Vec<f64> = terms.storage.iter().zip(&terms.rate).map(|(s, r)| s - stage.weight * r).collect();
         for (r, known) in residual.iter_mut().zip(stage.known) {
             *r -= known;
         }
@@ -137,8 +143,8 @@ impl Solver<'_> {
         let stored: f64 = now.terms.storage.iter().map(|s| s.abs()).sum();
         let moved = stored + stage.weight * now.terms.flows.size();
         let matrix = &self.tangent.matrix;
-        let diagonal = matrix.pattern.starts().iter().map(|&slot| matrix.values.get(slot).copied().unwrap_or(0.0));
-                let rounding: f64 = diagonal.zip(&now.temperature).map(|(d, t)| d * t.abs()).sum();
+        let sizes = now.temperature.iter().zip(matrix.pattern.starts());
+        let rounding: f64 = sizes.map(|(t, &slot)| matrix.values[slot] * t.abs()).sum();
         TOLERANCE * moved + ROUNDING * f64::EPSILON * rounding
     }
 
@@ -162,7 +168,9 @@ impl Solver<'_> {
         let mut direction = self.filtered(stage.time_s, load)?;
         let largest = direction.iter().fold(0.0_f64, |m, d| m.max(d.abs()));
         if largest > LARGEST_UPDATE_K {
-            direction.iter_mut().for_each(|d| *d *= LARGEST_UPDATE_K / largest);
+            for d in &mut direction {
+                *d *= LARGEST_UPDATE_K / largest;
+            }
         }
         Ok(direction)
     }
@@ -204,14 +212,14 @@ impl Solver<'_> {
         Ok(best)
     }
 
-    fn not_converged(&self, stage: &Stage, now: &Trial) -> StepFailure {
+    fn not_converged(&self, stage: &Stage, now: &Trial, iterations: usize) -> StepFailure {
         let free = now.residual.iter().zip(self.is_held).enumerate().filter(|(_, (_, held))| !**held);
         let worst = free.max_by(|a, b| a.1.0.abs().total_cmp(&b.1.0.abs())).map_or(0, |(i, _)| i);
         let [r_m, z_m] = self.operator.space.points()[worst];
         let stored: f64 = now.terms.storage.iter().map(|s| s.abs()).sum();
         StepFailure::NotConverged {
             time_s: stage.time_s,
-            iterations: MOST_ITERATIONS,
+            iterations,
             relative_residual: now.norm / (stored + stage.weight * now.terms.flows.size()),
             limit: TOLERANCE,
             r_m,

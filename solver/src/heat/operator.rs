@@ -11,7 +11,6 @@ use super::parts::HeatedPart;
 use crate::fem::assemble::{Block, Scatter, add_blocks, map_elements};
 use crate::fem::reference::{MAX_NODES, MAX_POINTS};
 use crate::fem::space::Space;
-use crate::material::Material;
 
 /// Everything the element integrals need.
 #[derive(Debug)]
@@ -68,8 +67,7 @@ struct Local {
 impl Operator {
     /// Storage against `enthalpy` (`rho h_n` in J/m^3 a point) and rate with `source` (W/m^3 a point) at `t`.
     pub(super) fn terms(&self, t: &[f64], enthalpy: &[f64], source: &[f64]) -> Terms {
-        let locals =
-            map_elements(self.space.element_count(), |e, _| self.local_terms(e, t, enthalpy, source));
+        let locals = map_elements(self.space.element_count(), |e, _| self.local_terms(e, t, enthalpy, source));
         let n = self.space.len();
         let mut terms = Terms { storage: vec![0.0; n], rate: vec![0.0; n], flows: Flows::default() };
         for (e, local) in locals.iter().enumerate() {
@@ -83,31 +81,28 @@ impl Operator {
     }
 
     fn local_terms(&self, e: usize, t: &[f64], enthalpy: &[f64], source: &[f64]) -> Local {
-        let material = self.material(e);
-        let (nodal, nodes) = self.nodal(e, t);
-        let mut out =
-            Local { storage: [0.0; MAX_NODES], rate: [0.0; MAX_NODES], flows: Flows::default() };
+        let part = self.part(e);
+        let material = &part.material;
+        let (nodal, _) = self.nodal(e, t);
+        let mut out = Local { storage: [0.0; MAX_NODES], rate: [0.0; MAX_NODES], flows: Flows::default() };
         let first = e * self.geometry.points();
-        for (q, (shape, &volume)) in
-            self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate()
-        {
+        for (q, (shape, &volume)) in self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate() {
             let gradients = self.geometry.gradient(e, q);
             let (mut at, mut slope) = (0.0, [0.0; 2]);
-            for i in 0..nodes {
-                at += shape.value[i] * nodal[i];
+            for ((t, v), g) in nodal.iter().zip(&shape.value).zip(gradients) {
+                at += v * t;
                 // Differences first: what is common to the element must not spoil the gradient's last digits.
-                let d = nodal[i] - nodal[0];
-                slope[0] += gradients[i][0] * d;
-                slope[1] += gradients[i][1] * d;
+                slope[0] += g[0] * (t - nodal[0]);
+                slope[1] += g[1] * (t - nodal[0]);
             }
             let h = material.density_kg_per_m3 * material.enthalpy.value(at);
             let stored = volume * (h - enthalpy[first + q]);
             let supplied = volume * source[first + q];
-            let k = volume * material.conductivity.value(at);
-            for i in 0..nodes {
-                out.storage[i] += stored * shape.value[i];
-                out.rate[i] += supplied * shape.value[i]
-                    - k * (gradients[i][0] * slope[0] + gradients[i][1] * slope[1]);
+            let k = volume * part.conductivity.value(at);
+            let rows = out.storage.iter_mut().zip(&mut out.rate);
+            for ((storage, rate), (v, g)) in rows.zip(shape.value.iter().zip(gradients)) {
+                *storage += stored * v;
+                *rate += supplied * v - k * (g[0] * slope[0] + g[1] * slope[1]);
             }
             out.flows.supplied += supplied;
         }
@@ -141,21 +136,20 @@ impl Operator {
     /// Adds the tangent of `storage - w rate` at `t` to `values`, in J/K; `w` in seconds.
     pub(super) fn add_tangent(&self, scatter: &Scatter, t: &[f64], w: f64, values: &mut [f64]) {
         add_blocks(scatter, values, |e, _, block: &mut Block<f64>| {
-            let material = self.material(e);
+            let part = self.part(e);
+            let material = &part.material;
             let (nodal, nodes) = self.nodal(e, t);
-            for (q, (shape, &volume)) in
-                self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate()
+            for (q, (shape, &volume)) in self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate()
             {
                 let at: f64 = shape.value[..nodes].iter().zip(&nodal).map(|(v, t)| v * t).sum();
                 let gradients = self.geometry.gradient(e, q);
                 let capacity = volume * material.density_kg_per_m3 * material.enthalpy.slope(at);
-                let k = w * volume * material.conductivity.value(at);
+                let k = w * volume * part.conductivity.value(at);
                 let mut slot = 0;
-                for i in 0..nodes {
-                    let (mass, flow) = (capacity * shape.value[i], gradients[i].map(|g| k * g));
-                    for j in 0..=i {
-                        block[slot] +=
-                            mass * shape.value[j] + flow[0] * gradients[j][0] + flow[1] * gradients[j][1];
+                for (i, (v, g)) in shape.value.iter().zip(gradients).enumerate() {
+                    let (mass, flow) = (capacity * v, g.map(|d| k * d));
+                    for (other, h) in shape.value.iter().zip(&gradients[..=i]) {
+                        block[slot] += mass * other + flow[0] * h[0] + flow[1] * h[1];
                         slot += 1;
                     }
                 }
@@ -184,7 +178,7 @@ impl Operator {
     pub(super) fn enthalpy(&self, t: &[f64]) -> Vec<f64> {
         let count = self.geometry.points();
         let rows = map_elements(self.space.element_count(), |e, _| {
-            let material = self.material(e);
+            let material = &self.part(e).material;
             let mut row = [0.0; MAX_POINTS];
             self.at_points(e, t, &mut row[..count]);
             for v in &mut row[..count] {
@@ -203,8 +197,8 @@ impl Operator {
         }
     }
 
-    pub(super) fn material(&self, e: usize) -> &Material {
-        &self.parts[self.part_of[e] as usize].material
+    pub(super) fn part(&self, e: usize) -> &HeatedPart {
+        &self.parts[self.part_of[e] as usize]
     }
 
     fn nodal(&self, e: usize, t: &[f64]) -> ([f64; MAX_NODES], usize) {

@@ -4,6 +4,7 @@ use std::sync::Arc;
 
 use mesher::{NO_TRIANGLE, RegionId};
 
+use super::conductivity::Conductivity;
 use super::geometry::Geometry;
 use crate::fem::edge::Side;
 use crate::fem::reference::edge_point;
@@ -17,6 +18,7 @@ pub(super) struct HeatedPart {
     /// Index into the model's parts.
     pub(super) index: usize,
     pub(super) material: Arc<Material>,
+    pub(super) conductivity: Conductivity,
     pub(super) is_workpiece: bool,
     /// Temperature at the start, kelvin.
     pub(super) start_k: f64,
@@ -55,6 +57,7 @@ pub(super) fn heated_parts(
         parts.push(HeatedPart {
             index,
             material: Arc::clone(&part.material),
+            conductivity: Conductivity::new(&part.material.conductivity),
             is_workpiece: part.role == Role::Workpiece,
             start_k: part.start_k,
             volume_m3: factor * volume,

@@ -57,8 +57,7 @@ impl HeatProblem {
         let geometry = Geometry::new(&space);
         let parts = heated_parts(&space, &geometry, model, &owner_of);
         let position = |e| parts.iter().position(|p| owner_of(space.region(e)) == Some(p.index));
-        let part_of: Vec<u32> =
-            (0..space.element_count()).map(|e| position(e).unwrap_or(0) as u32).collect();
+        let part_of: Vec<u32> = (0..space.element_count()).map(|e| position(e).unwrap_or(0) as u32).collect();
         let boundary = Boundary::new(&space, |e| &model.parts[parts[part_of[e] as usize].index]);
         let gauges = place_gauges(&space, &parts, &part_of, model)?;
         let ambient_k = model.heating.as_ref().map_or(model.start_k, |h| h.ambient_k);
@@ -167,7 +166,7 @@ impl HeatProblem {
         let mut t = vec![0.0; count];
         let mut largest = 0.0_f64;
         for (e, values) in source.chunks_exact(count).enumerate().take(self.operator.part_of.len()) {
-            let material = self.operator.material(e);
+            let material = &self.operator.part(e).material;
             self.operator.at_points(e, &state.temperature_k, &mut t);
             for (p, &t) in values.iter().zip(&t) {
                 largest = largest.max(p / (material.density_kg_per_m3 * material.enthalpy.slope(t)));

@@ -217,8 +217,7 @@ impl HeatProblem {
     /// Adds what the stages let through; `inward` is the heat in joules that came in through held faces.
     fn account(&self, energy: &mut EnergyBalance, dt: f64, flows: [Flows; 2], inward: f64) {
         let device = self.device_factor();
-        let through =
-            |f: fn(&Flows) -> f64| device * dt * ((1.0 - GAMMA) * f(&flows[0]) + GAMMA * f(&flows[1]));
+        let through = |f: fn(&Flows) -> f64| device * dt * ((1.0 - GAMMA) * f(&flows[0]) + GAMMA * f(&flows[1]));
         energy.supplied_j += through(|f| f.supplied);
         energy.radiated_j += through(|f| f.radiated);
         energy.convected_j += through(|f| f.convected);
@@ -231,4 +230,3 @@ impl HeatProblem {
 fn largest(values: impl Iterator<Item = f64>) -> f64 {
     values.fold(0.0, |m: f64, v| if m.is_nan() || v.is_nan() { f64::NAN } else { m.max(v.abs()) })
 }
-

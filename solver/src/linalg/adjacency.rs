@@ -37,11 +37,7 @@ impl Adjacency {
                 }
             }
         }
-        Self {
-            starts,
-            neighbours,
-            slots,
-        }
+        Self { starts, neighbours, slots }
     }
 
     /// Number of unknowns.
@@ -62,9 +58,6 @@ impl Adjacency {
     /// Neighbours of `v`, each with the slot of the entry that joins them.
     pub(super) fn with_slots(&self, v: usize) -> impl Iterator<Item = (u32, u32)> + '_ {
         let range = self.starts[v]..self.starts[v + 1];
-        self.neighbours[range.clone()]
-            .iter()
-            .copied()
-            .zip(self.slots[range].iter().copied())
+        self.neighbours[range.clone()].iter().copied().zip(self.slots[range].iter().copied())
     }
 }

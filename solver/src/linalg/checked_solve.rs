@@ -8,8 +8,8 @@ use super::scalar::Scalar;
 
 /// Largest componentwise backward error of an accepted solution.
 pub const BACKWARD_ERROR_LIMIT: f64 = 1e-10;
-/// Refinement stops below this: a few units of rounding.
-const GOAL: f64 = 1e-15;
+/// Refinement stops below this, some twenty units of rounding: a further step would cost a solution and gain nothing.
+const GOAL: f64 = 4e-15;
 /// Refinement stops after so many steps.
 const MOST_REFINEMENTS: usize = 5;
 
@@ -64,16 +64,9 @@ pub fn checked_solve<T: Scalar>(
         }
     }
     if backward_error <= BACKWARD_ERROR_LIMIT {
-        Ok(Solved {
-            x,
-            backward_error,
-            refinements,
-        })
+        Ok(Solved { x, backward_error, refinements })
     } else {
-        Err(LinalgError::Inaccurate {
-            backward_error,
-            limit: BACKWARD_ERROR_LIMIT,
-        })
+        Err(LinalgError::Inaccurate { backward_error, limit: BACKWARD_ERROR_LIMIT })
     }
 }
 

@@ -7,13 +7,11 @@
 //! Source: G. H. Golub and C. F. Van Loan, Matrix Computations (4th ed.), section 4.1 (`L D L^T`).
 
 use faer::linalg::matmul::matmul;
-use faer::traits::pulp::{Arch, Simd, WithSimd};
 use faer::{Accum, MatMut, MatRef, Par};
 
+use super::narrow::{NARROW, eliminate_narrow};
 use super::scalar::Scalar;
 
-/// Columns eliminated one by one before the products take over.
-const NARROW: usize = 8;
 /// Order below which a symmetric update is one full product.
 const SMALL_UPDATE: usize = 48;
 /// Multiplications from which a product is split in two tasks.
@@ -49,11 +47,7 @@ impl<T: Scalar> Panel<'_, T> {
     fn eliminate_columns(&mut self, start: usize, end: usize) -> Result<(), BadPivot> {
         let width = end - start;
         if width <= NARROW {
-            return Arch::new().dispatch(Narrow {
-                panel: self,
-                start,
-                end,
-            });
+            return eliminate_narrow(self, start, end);
         }
         let middle = start + (width / 2).next_multiple_of(NARROW);
         self.eliminate_columns(start, middle)?;
@@ -66,64 +60,11 @@ impl<T: Scalar> Panel<'_, T> {
         let (height, rows) = (self.height, self.height - middle);
         let (done, open) = self.values.split_at_mut(middle * height);
         let corner = start * height + middle;
-        let lower = MatRef::from_column_major_slice_with_stride(
-            &done[corner..],
-            rows,
-            middle - start,
-            height,
-        );
-        let scaled = MatRef::from_column_major_slice_with_stride(
-            &self.scaled[corner..],
-            end - middle,
-            middle - start,
-            height,
-        );
-        let target = MatMut::from_column_major_slice_with_stride_mut(
-            &mut open[middle..],
-            rows,
-            end - middle,
-            height,
-        );
+        let lower = MatRef::from_column_major_slice_with_stride(&done[corner..], rows, middle - start, height);
+        let scaled =
+            MatRef::from_column_major_slice_with_stride(&self.scaled[corner..], end - middle, middle - start, height);
+        let target = MatMut::from_column_major_slice_with_stride_mut(&mut open[middle..], rows, end - middle, height);
         subtract_product(target, lower, scaled);
-    }
-
-    #[inline(always)]
-    fn eliminate_narrow(&mut self, start: usize, end: usize) -> Result<(), BadPivot> {
-        let height = self.height;
-        for column in start..end {
-            let (done, open) = self.values.split_at_mut((column + 1) * height);
-            let lower = &mut done[column * height + column..];
-            let scaled = &mut self.scaled[column * height + column..(column + 1) * height];
-            let ratio = lower[0].size() / self.references[column];
-            if !lower[0].finite() {
-                return Err(BadPivot {
-                    column,
-                    ratio: f64::NAN,
-                });
-            }
-            // 0/0 is refused as well, and reported as zero.
-            if ratio.is_nan() || ratio < self.limit {
-                return Err(BadPivot {
-                    column,
-                    ratio: ratio.max(0.0),
-                });
-            }
-            scaled.copy_from_slice(lower);
-            let reciprocal = lower[0].reciprocal();
-            lower[0] = reciprocal;
-            for value in &mut lower[1..] {
-                *value *= reciprocal;
-            }
-            for (offset, target) in open
-                .chunks_exact_mut(height)
-                .take(end - column - 1)
-                .enumerate()
-            {
-                let row = offset + 1;
-                add_multiple(&mut target[column + row..], -lower[row], &scaled[row..]);
-            }
-        }
-        Ok(())
     }
 
     /// Subtracts from the symmetric `border` block (lower triangle) what the pivots contribute to it.
@@ -133,44 +74,10 @@ impl<T: Scalar> Panel<'_, T> {
         if order == 0 || pivots == 0 {
             return;
         }
-        let lower = MatRef::from_column_major_slice_with_stride(
-            &self.values[pivots..],
-            order,
-            pivots,
-            height,
-        );
-        let scaled = MatRef::from_column_major_slice_with_stride(
-            &self.scaled[pivots..],
-            order,
-            pivots,
-            height,
-        );
+        let lower = MatRef::from_column_major_slice_with_stride(&self.values[pivots..], order, pivots, height);
+        let scaled = MatRef::from_column_major_slice_with_stride(&self.scaled[pivots..], order, pivots, height);
         let target = MatMut::from_column_major_slice_mut(border, order, order);
         subtract_symmetric(target, lower, scaled);
-    }
-}
-
-/// Elimination of a few columns, compiled for the vector unit found at run time.
-struct Narrow<'p, 'a, T> {
-    panel: &'p mut Panel<'a, T>,
-    start: usize,
-    end: usize,
-}
-
-impl<T: Scalar> WithSimd for Narrow<'_, '_, T> {
-    type Output = Result<(), BadPivot>;
-
-    #[inline(always)]
-    fn with_simd<S: Simd>(self, _: S) -> Self::Output {
-        self.panel.eliminate_narrow(self.start, self.end)
-    }
-}
-
-/// `y += a x`.
-#[inline(always)]
-pub(super) fn add_multiple<T: Scalar>(y: &mut [T], a: T, x: &[T]) {
-    for (y, &x) in y.iter_mut().zip(x) {
-        *y = y.plus_product(a, x);
     }
 }
 
@@ -183,18 +90,12 @@ fn subtract_product<T: Scalar>(target: MatMut<'_, T>, a: MatRef<'_, T>, b: MatRe
         let half = (rows / 2).next_multiple_of(8);
         let (top, bottom) = target.split_at_row_mut(half);
         let (a_top, a_bottom) = a.split_at_row(half);
-        rayon::join(
-            || subtract_product(top, a_top, b),
-            || subtract_product(bottom, a_bottom, b),
-        );
+        rayon::join(|| subtract_product(top, a_top, b), || subtract_product(bottom, a_bottom, b));
     } else {
         let half = (cols / 2).next_multiple_of(8);
         let (left, right) = target.split_at_col_mut(half);
         let (b_left, b_right) = b.split_at_row(half);
-        rayon::join(
-            || subtract_product(left, a, b_left),
-            || subtract_product(right, a, b_right),
-        );
+        rayon::join(|| subtract_product(left, a, b_left), || subtract_product(right, a, b_right));
     }
 }
 

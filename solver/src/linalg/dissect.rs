@@ -10,10 +10,7 @@ use super::separator::{self, Bisection, SEPARATOR};
 
 /// Parts of at most this many vertices are not cut (measured: fill rises slowly above 100).
 const LEAF: usize = 96;
-const _: () = assert!(
-    LEAF <= LEAF_LIMIT,
-    "a leaf must fit the bit sets of the minimum-degree order"
-);
+const _: () = assert!(LEAF <= LEAF_LIMIT, "a leaf must fit the bit sets of the minimum-degree order");
 
 /// Parts of at least this many vertices order their halves in parallel.
 const PARALLEL: usize = 2000;
@@ -46,10 +43,7 @@ impl Part {
     /// Own neighbours of `v`.
     pub(super) fn own(&self, v: usize) -> impl Iterator<Item = usize> + '_ {
         let n = self.n();
-        self.neighbours(v)
-            .iter()
-            .map(|&w| w as usize)
-            .filter(move |&w| w < n)
+        self.neighbours(v).iter().map(|&w| w as usize).filter(move |&w| w < n)
     }
 
     /// The own vertices of one side as a part; what else they touch becomes its halo.
@@ -99,10 +93,7 @@ pub(super) fn dissect(part: &Part, out: &mut [u32]) {
     let (first, rest) = out.split_at_mut(sizes[0]);
     let second = &mut rest[..sizes[1]];
     if part.n() >= PARALLEL {
-        rayon::join(
-            || dissect(&halves[0], first),
-            || dissect(&halves[1], second),
-        );
+        rayon::join(|| dissect(&halves[0], first), || dissect(&halves[1], second));
     } else {
         dissect(&halves[0], first);
         dissect(&halves[1], second);
@@ -112,9 +103,7 @@ pub(super) fn dissect(part: &Part, out: &mut [u32]) {
 /// Writes the separator from one end to the other, which keeps the rows of later fronts in long runs.
 fn order_separator(part: &Part, cut: &Bisection, out: &mut [u32]) {
     let members = (0..part.n()).filter(|&v| cut.sides[v] == SEPARATOR);
-    let mut keyed: Vec<(f64, u32)> = members
-        .map(|v| (cut.along(part.points[v]), part.unknowns[v]))
-        .collect();
+    let mut keyed: Vec<(f64, u32)> = members.map(|v| (cut.along(part.points[v]), part.unknowns[v])).collect();
     keyed.sort_unstable_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
     for (place, (_, unknown)) in out.iter_mut().zip(keyed) {
         *place = unknown;

@@ -47,9 +47,7 @@ pub enum LinalgError {
         limit: f64,
     },
     /// A value is NaN or infinite.
-    #[error(
-        "{what}: entry {index} is not a finite number; look for an overflow or an empty measure upstream"
-    )]
+    #[error("{what}: entry {index} is not a finite number; look for an overflow or an empty measure upstream")]
     NotFinite {
         /// Array it was found in.
         what: Datum,
@@ -86,9 +84,7 @@ pub enum LinalgError {
         unknowns: usize,
     },
     /// An entry the pattern does not hold.
-    #[error(
-        "entry ({row}, {col}) is not in the pattern: give the pattern every clique that is assembled"
-    )]
+    #[error("entry ({row}, {col}) is not in the pattern: give the pattern every clique that is assembled")]
     NotInPattern {
         /// Row.
         row: usize,
@@ -108,14 +104,10 @@ pub enum LinalgError {
         difference: f64,
     },
     /// A factor without values: its last factorisation failed.
-    #[error(
-        "the factor is empty because its last factorisation failed; give it a matrix that is not singular first"
-    )]
+    #[error("the factor is empty because its last factorisation failed; give it a matrix that is not singular first")]
     NotFactored,
     /// The minimum-degree ordering ran out of memory or index range.
-    #[error(
-        "no ordering could be computed for {unknowns} unknowns with {entries} entries; use a coarser mesh"
-    )]
+    #[error("no ordering could be computed for {unknowns} unknowns with {entries} entries; use a coarser mesh")]
     TooLarge {
         /// Unknowns of the system.
         unknowns: usize,

@@ -76,12 +76,7 @@ pub(super) fn renumber(parent: &[u32], post: &[u32]) -> Vec<u32> {
 }
 
 /// Entries of each factor column, diagonal included, for a postordered elimination.
-pub(super) fn column_counts(
-    graph: &Adjacency,
-    order: &[u32],
-    place: &[u32],
-    parent: &[u32],
-) -> Vec<u32> {
+pub(super) fn column_counts(graph: &Adjacency, order: &[u32], place: &[u32], parent: &[u32]) -> Vec<u32> {
     let n = order.len();
     let (first, mut change) = first_descendants(parent);
     let mut latest = vec![NONE; n];

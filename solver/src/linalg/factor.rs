@@ -5,6 +5,7 @@
 //! in the same order, so the factor is the same to the last bit for any number of threads.
 
 use std::fmt;
+use std::ops::Range;
 use std::sync::Arc;
 
 use super::dense::Panel;
@@ -33,11 +34,7 @@ impl<T: Scalar> Factor<T> {
     /// As [`Factor::refactor`].
     pub fn new(plan: &Arc<Plan>, values: &[T]) -> Result<Self, LinalgError> {
         let storage = vec![T::ZERO; plan.panel_values()];
-        let mut factor = Self {
-            plan: Arc::clone(plan),
-            values: storage,
-            complete: false,
-        };
+        let mut factor = Self { plan: Arc::clone(plan), values: storage, complete: false };
         factor.refactor(values)?;
         Ok(factor)
     }
@@ -54,19 +51,11 @@ impl<T: Scalar> Factor<T> {
         let plan = Arc::clone(&self.plan);
         check_length(Datum::MatrixValues, plan.pattern().nnz(), values.len())?;
         if let Some(index) = values.iter().position(|value| !value.finite()) {
-            return Err(LinalgError::NotFinite {
-                what: Datum::MatrixValues,
-                index,
-            });
+            return Err(LinalgError::NotFinite { what: Datum::MatrixValues, index });
         }
         let references = pivot_references(&plan, values);
-        let task = Task {
-            plan: &plan,
-            matrix: values,
-            references: &references,
-            limit: pivot_limit(plan.n()),
-        };
-        task.siblings(&plan.roots, &mut self.values)?;
+        let task = Task { plan: &plan, matrix: values, references: &references, limit: pivot_limit(plan.n()) };
+        task.siblings(&plan.roots, &mut self.values, &mut Workspace::default())?;
         self.complete = true;
         Ok(())
     }
@@ -79,10 +68,7 @@ impl<T: Scalar> Factor<T> {
 
 impl<T> fmt::Debug for Factor<T> {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        f.debug_struct("Factor")
-            .field("plan", &self.plan)
-            .field("complete", &self.complete)
-            .finish_non_exhaustive()
+        f.debug_struct("Factor").field("plan", &self.plan).field("complete", &self.complete).finish_non_exhaustive()
     }
 }
 
@@ -98,10 +84,7 @@ fn pivot_limit(n: usize) -> f64 {
 /// columns are scaled together, and is not zero merely because the diagonal is.
 fn pivot_references<T: Scalar>(plan: &Plan, values: &[T]) -> Vec<f64> {
     let pattern = plan.pattern();
-    let diagonal: Vec<f64> = pattern.starts()[..plan.n()]
-        .iter()
-        .map(|&slot| values[slot].size())
-        .collect();
+    let diagonal: Vec<f64> = pattern.starts()[..plan.n()].iter().map(|&slot| values[slot].size()).collect();
     let mut sizes = diagonal.clone();
     for col in 0..plan.n() {
         let first = pattern.starts()[col];
@@ -115,10 +98,28 @@ fn pivot_references<T: Scalar>(plan: &Plan, values: &[T]) -> Vec<f64> {
             }
         }
     }
-    plan.order
-        .iter()
-        .map(|&unknown| sizes[unknown as usize])
-        .collect()
+    plan.order.iter().map(|&unknown| sizes[unknown as usize]).collect()
+}
+
+/// Memory that fronts eliminated one after the other use in turn.
+#[derive(Default)]
+struct Workspace<T> {
+    /// Room for `L D` of a panel; what an earlier front left in it is never read.
+    scaled: Vec<T>,
+    /// Border blocks that were added into their parents.
+    spare: Vec<Vec<T>>,
+}
+
+impl<T: Scalar> Workspace<T> {
+    /// A square block of this order, by columns, with zeros on and below the diagonal.
+    fn lower_zeros(&mut self, order: usize) -> Vec<T> {
+        let mut block = self.spare.pop().unwrap_or_default();
+        block.resize(order * order, T::ZERO);
+        for column in 0..order {
+            block[column * order + column..(column + 1) * order].fill(T::ZERO);
+        }
+        block
+    }
 }
 
 /// What all fronts of one factorisation share.
@@ -132,17 +133,18 @@ struct Task<'a, T> {
 
 impl<T: Scalar> Task<'_, T> {
     /// Factorises sibling subtrees, whose panels fill `panels`; returns their border blocks in order.
-    fn siblings(&self, fronts: &[u32], panels: &mut [T]) -> Result<Vec<Vec<T>>, LinalgError> {
-        let work = |list: &[u32]| {
-            list.iter()
-                .map(|&k| self.plan.fronts[k as usize].work)
-                .sum::<f64>()
-        };
+    fn siblings(
+        &self,
+        fronts: &[u32],
+        panels: &mut [T],
+        workspace: &mut Workspace<T>,
+    ) -> Result<Vec<Vec<T>>, LinalgError> {
+        let work = |list: &[u32]| list.iter().map(|&k| self.plan.fronts[k as usize].work).sum::<f64>();
         let [.., last] = fronts else {
             return Ok(Vec::new());
         };
         if fronts.len() == 1 {
-            return Ok(vec![self.subtree(*last as usize, panels)?]);
+            return Ok(vec![self.subtree(*last as usize, panels, workspace)?]);
         }
         let (left, right) = fronts.split_at(fronts.len() / 2);
         let start = |k: u32| {
@@ -151,12 +153,12 @@ impl<T: Scalar> Task<'_, T> {
         };
         let (left_panels, right_panels) = panels.split_at_mut(start(right[0]) - start(left[0]));
         let (blocks, more) = if work(left).min(work(right)) < TASK_WORK {
-            let blocks = self.siblings(left, left_panels)?;
-            (Ok(blocks), self.siblings(right, right_panels))
+            let blocks = self.siblings(left, left_panels, workspace)?;
+            (Ok(blocks), self.siblings(right, right_panels, workspace))
         } else {
             rayon::join(
-                || self.siblings(left, left_panels),
-                || self.siblings(right, right_panels),
+                || self.siblings(left, left_panels, workspace),
+                || self.siblings(right, right_panels, &mut Workspace::default()),
             )
         };
         let mut blocks = blocks?;
@@ -165,27 +167,41 @@ impl<T: Scalar> Task<'_, T> {
     }
 
     /// Factorises front `k` with all below it; returns its border block.
-    fn subtree(&self, k: usize, panels: &mut [T]) -> Result<Vec<T>, LinalgError> {
-        let front = &self.plan.fronts[k];
-        if front.work < 2.0 * TASK_WORK {
-            return self.sequence(k, panels);
+    fn subtree(&self, k: usize, panels: &mut [T], workspace: &mut Workspace<T>) -> Result<Vec<T>, LinalgError> {
+        let fronts = &self.plan.fronts;
+        let subtree = fronts[k].subtree..k + 1;
+        let mut stack = Vec::new();
+        let heavy = |k: u32| fronts[k as usize].work >= TASK_WORK;
+        let branch = self.plan.branch(k, heavy);
+        if fronts[branch].work < 2.0 * TASK_WORK {
+            self.sequence(subtree, panels, &mut stack, workspace)?;
+            return Ok(stack.pop().unwrap_or_default());
         }
-        let (below, panel) = panels.split_at_mut(panels.len() - front.panel.len());
-        let blocks = self.siblings(self.plan.children(front), below)?;
-        self.front(front, panel, blocks)
+        let offset = |k: usize| fronts[k].panel.start - fronts[subtree.start].panel.start;
+        let (before, rest) = panels.split_at_mut(offset(fronts[branch].subtree));
+        let (below, after) = rest.split_at_mut(offset(branch) - before.len());
+        self.sequence(subtree.start..fronts[branch].subtree, before, &mut stack, workspace)?;
+        stack.append(&mut self.siblings(self.plan.children(&fronts[branch]), below, workspace)?);
+        self.sequence(branch..subtree.end, after, &mut stack, workspace)?;
+        Ok(stack.pop().unwrap_or_default())
     }
 
-    /// As `subtree`, one front after the other.
-    fn sequence(&self, k: usize, panels: &mut [T]) -> Result<Vec<T>, LinalgError> {
-        let mut stack: Vec<Vec<T>> = Vec::new();
+    /// Factorises successive fronts, one after the other; `stack` holds the border blocks not yet added to a parent.
+    fn sequence(
+        &self,
+        fronts: Range<usize>,
+        panels: &mut [T],
+        stack: &mut Vec<Vec<T>>,
+        workspace: &mut Workspace<T>,
+    ) -> Result<(), LinalgError> {
         let mut rest = panels;
-        for front in &self.plan.fronts[self.plan.fronts[k].subtree..=k] {
+        for front in &self.plan.fronts[fronts] {
             let (panel, after) = rest.split_at_mut(front.panel.len());
             rest = after;
             let blocks = stack.split_off(stack.len() - front.children.len());
-            stack.push(self.front(front, panel, blocks)?);
+            stack.push(self.front(front, panel, blocks, workspace)?);
         }
-        Ok(stack.pop().unwrap_or_default())
+        Ok(())
     }
 
     /// Assembles one front from the matrix and its children's blocks, and eliminates its pivots.
@@ -194,21 +210,23 @@ impl<T: Scalar> Task<'_, T> {
         front: &Front,
         panel: &mut [T],
         children: Vec<Vec<T>>,
+        workspace: &mut Workspace<T>,
     ) -> Result<Vec<T>, LinalgError> {
         panel.fill(T::ZERO);
-        let mut border = vec![T::ZERO; front.border * front.border];
+        let mut border = workspace.lower_zeros(front.border);
         for &[slot, place] in &self.plan.scatter[front.entries.clone()] {
             panel[place as usize] = self.matrix[slot as usize];
         }
         for (&child, block) in self.plan.children(front).iter().zip(children) {
             let rows = self.plan.fronts[child as usize].rows.clone();
             add_block(front, &self.plan.relative[rows], &block, panel, &mut border);
+            workspace.spare.push(block);
         }
         let columns = front.first..front.first + front.pivots;
-        let mut scaled = vec![T::ZERO; panel.len()];
+        workspace.scaled.resize(workspace.scaled.len().max(panel.len()), T::ZERO);
         let mut panel = Panel {
             values: panel,
-            scaled: &mut scaled,
+            scaled: &mut workspace.scaled,
             height: front.height(),
             references: &self.references[columns],
             limit: self.limit,
@@ -216,16 +234,9 @@ impl<T: Scalar> Task<'_, T> {
         panel.eliminate().map_err(|bad| {
             let unknown = self.plan.order[front.first + bad.column] as usize;
             if bad.ratio.is_nan() {
-                LinalgError::NotFinite {
-                    what: Datum::Pivots,
-                    index: unknown,
-                }
+                LinalgError::NotFinite { what: Datum::Pivots, index: unknown }
             } else {
-                LinalgError::ZeroPivot {
-                    unknown,
-                    ratio: bad.ratio,
-                    limit: self.limit,
-                }
+                LinalgError::ZeroPivot { unknown, ratio: bad.ratio, limit: self.limit }
             }
         })?;
         panel.update_border(&mut border);
@@ -234,13 +245,7 @@ impl<T: Scalar> Task<'_, T> {
 }
 
 /// Adds a child's block (lower triangle) into a front; `relative` are its rows in the front, rising.
-fn add_block<T: Scalar>(
-    front: &Front,
-    relative: &[u32],
-    block: &[T],
-    panel: &mut [T],
-    border: &mut [T],
-) {
+fn add_block<T: Scalar>(front: &Front, relative: &[u32], block: &[T], panel: &mut [T], border: &mut [T]) {
     let order = relative.len();
     for (column, &target) in relative.iter().enumerate() {
         let (target, rows) = (target as usize, &relative[column..]);
@@ -248,10 +253,7 @@ fn add_block<T: Scalar>(
         let (destination, shift) = if target < front.pivots {
             (&mut panel[target * front.height()..][..front.height()], 0)
         } else {
-            (
-                &mut border[(target - front.pivots) * front.border..][..front.border],
-                front.pivots,
-            )
+            (&mut border[(target - front.pivots) * front.border..][..front.border], front.pivots)
         };
         let last = rows[rows.len() - 1] as usize;
         if last - target == rows.len() - 1 {

@@ -35,10 +35,7 @@ pub(super) fn minimum_degree(part: &Part, out: &mut [u32]) {
     }
     let mut degree: Vec<u32> = reach[..n].iter().map(count).collect();
     for place in out.iter_mut() {
-        let Some(pivot) = (0..n)
-            .filter(|&v| degree[v] < u32::MAX)
-            .min_by_key(|&v| (degree[v], v))
-        else {
+        let Some(pivot) = (0..n).filter(|&v| degree[v] < u32::MAX).min_by_key(|&v| (degree[v], v)) else {
             return;
         };
         *place = part.unknowns[pivot];

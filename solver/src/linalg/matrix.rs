@@ -65,23 +65,15 @@ impl<T: Scalar> SymmetricMatrix<T> {
     pub fn from_triplets<I: SpIndex>(triplets: &TriMatI<T, I>) -> Result<Self, LinalgError> {
         let n = triplets.rows();
         if triplets.cols() != n {
-            return Err(LinalgError::Size {
-                what: Datum::MatrixValues,
-                expected: n,
-                found: triplets.cols(),
-            });
+            return Err(LinalgError::Size { what: Datum::MatrixValues, expected: n, found: triplets.cols() });
         }
-        let pairs: Vec<[u32; 2]> = (triplets.triplet_iter())
-            .map(|(_, (row, col))| [row.index() as u32, col.index() as u32])
-            .collect();
+        let pairs: Vec<[u32; 2]> =
+            (triplets.triplet_iter()).map(|(_, (row, col))| [row.index() as u32, col.index() as u32]).collect();
         let pattern = Pattern::from_cliques(n, pairs.iter().map(|pair| &pair[..]));
         let mut lower = vec![T::ZERO; pattern.nnz()];
         let mut upper = vec![T::ZERO; pattern.nnz()];
         for ((value, _), &[row, col]) in triplets.triplet_iter().zip(&pairs) {
-            let missing = LinalgError::NotInPattern {
-                row: row as usize,
-                col: col as usize,
-            };
+            let missing = LinalgError::NotInPattern { row: row as usize, col: col as usize };
             let slot = pattern.slot(row, col).ok_or(missing)?;
             if row >= col {
                 lower[slot] += *value;
@@ -91,10 +83,7 @@ impl<T: Scalar> SymmetricMatrix<T> {
             }
         }
         check_symmetry(&pattern, &lower, &upper)?;
-        Ok(Self {
-            pattern: Arc::new(pattern),
-            values: lower,
-        })
+        Ok(Self { pattern: Arc::new(pattern), values: lower })
     }
 
     /// Both triangles in compressed columns, for the seams to other libraries.
@@ -192,33 +181,17 @@ impl<T: Scalar> SymmetricMatrix<T> {
 
 /// Refuses an array of the wrong length.
 pub(super) fn check_length(what: Datum, expected: usize, found: usize) -> Result<(), LinalgError> {
-    if expected == found {
-        Ok(())
-    } else {
-        Err(LinalgError::Size {
-            what,
-            expected,
-            found,
-        })
-    }
+    if expected == found { Ok(()) } else { Err(LinalgError::Size { what, expected, found }) }
 }
 
-fn check_symmetry<T: Scalar>(
-    pattern: &Pattern,
-    lower: &[T],
-    upper: &[T],
-) -> Result<(), LinalgError> {
+fn check_symmetry<T: Scalar>(pattern: &Pattern, lower: &[T], upper: &[T]) -> Result<(), LinalgError> {
     for col in 0..pattern.n() {
         for slot in pattern.starts()[col]..pattern.starts()[col + 1] {
             let larger = lower[slot].size().max(upper[slot].size());
             let difference = (lower[slot] - upper[slot]).size();
             if difference > SYMMETRY_LIMIT * larger {
                 let row = pattern.rows()[slot] as usize;
-                return Err(LinalgError::NotSymmetric {
-                    row,
-                    col,
-                    difference: difference / larger,
-                });
+                return Err(LinalgError::NotSymmetric { row, col, difference: difference / larger });
             }
         }
     }

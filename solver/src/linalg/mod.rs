@@ -24,6 +24,7 @@ mod etree;
 mod factor;
 mod leaf_order;
 mod matrix;
+mod narrow;
 mod order;
 mod pattern;
 mod plan;
@@ -31,6 +32,8 @@ mod scalar;
 mod separator;
 mod solve;
 mod supernodes;
+mod sweep;
+mod vector;
 
 pub use checked_solve::{BACKWARD_ERROR_LIMIT, Solved, checked_solve};
 pub use error::{Datum, LinalgError};

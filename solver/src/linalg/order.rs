@@ -32,11 +32,7 @@ pub(super) fn order(
     let mut free: Vec<u32> = (0..n as u32).filter(|&v| !held[v as usize]).collect();
     let mut ordered = match coordinates {
         Some(points) if points.len() != n => {
-            return Err(LinalgError::Size {
-                what: Datum::Coordinates,
-                expected: n,
-                found: points.len(),
-            });
+            return Err(LinalgError::Size { what: Datum::Coordinates, expected: n, found: points.len() });
         }
         Some(points) => {
             let points = complete(graph, points);
@@ -57,10 +53,7 @@ fn held_back(graph: &Adjacency, last: &[u32]) -> Result<Vec<bool>, LinalgError> 
     let dense = (DENSE_BASE + DENSE_ROOT * (n as f64).sqrt()) as usize;
     let mut held: Vec<bool> = (0..n).map(|v| graph.degree(v) > dense).collect();
     for &v in last {
-        let place = held.get_mut(v as usize).ok_or(LinalgError::NoSuchUnknown {
-            unknown: v as usize,
-            unknowns: n,
-        })?;
+        let place = held.get_mut(v as usize).ok_or(LinalgError::NoSuchUnknown { unknown: v as usize, unknowns: n })?;
         *place = true;
     }
     Ok(held)
@@ -154,22 +147,11 @@ fn minimum_degree(graph: &Adjacency, free: &[u32]) -> Result<Vec<u32>, LinalgErr
         starts.push(rows.len());
     }
     let entries = rows.len();
-    let too_large = || LinalgError::TooLarge {
-        unknowns: n,
-        entries,
-    };
+    let too_large = || LinalgError::TooLarge { unknowns: n, entries };
     let matrix = SymbolicSparseColMatRef::new_checked(n, n, &starts, None, &rows);
-    let mut memory =
-        MemBuffer::try_new(amd::order_scratch::<usize>(n, entries)).map_err(|_| too_large())?;
+    let mut memory = MemBuffer::try_new(amd::order_scratch::<usize>(n, entries)).map_err(|_| too_large())?;
     let (mut forward, mut inverse) = (vec![0_usize; n], vec![0_usize; n]);
     let stack = MemStack::new(&mut memory);
-    amd::order(
-        &mut forward,
-        &mut inverse,
-        matrix,
-        amd::Control::default(),
-        stack,
-    )
-    .map_err(|_| too_large())?;
+    amd::order(&mut forward, &mut inverse, matrix, amd::Control::default(), stack).map_err(|_| too_large())?;
     Ok(forward.iter().map(|&k| free[k]).collect())
 }

@@ -91,10 +91,8 @@ impl Pattern {
         out.clear();
         for (i, &row) in dofs.iter().enumerate() {
             for &col in &dofs[..=i] {
-                let slot = self.slot(row, col).ok_or(LinalgError::NotInPattern {
-                    row: row as usize,
-                    col: col as usize,
-                })?;
+                let slot =
+                    self.slot(row, col).ok_or(LinalgError::NotInPattern { row: row as usize, col: col as usize })?;
                 out.push(slot as u32);
             }
         }

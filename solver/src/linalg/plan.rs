@@ -24,7 +24,7 @@ pub(super) struct Front {
     pub(super) pivots: usize,
     /// Number of rows below the pivot block.
     pub(super) border: usize,
-    /// Where its border rows lie in [`Plan::rows`] and [`Plan::relative`].
+    /// Where its border rows lie in [`Plan::relative`].
     pub(super) rows: Range<usize>,
     /// Where its panel, `(pivots + border)` rows by `pivots` columns, lies among the factor's values.
     pub(super) panel: Range<usize>,
@@ -52,8 +52,6 @@ pub struct Plan {
     pub(super) order: Vec<u32>,
     /// Fronts in postorder.
     pub(super) fronts: Vec<Front>,
-    /// Border rows of all fronts, rising within each.
-    pub(super) rows: Vec<u32>,
     /// For each border row of a front, its row in the parent's front.
     pub(super) relative: Vec<u32>,
     /// For each matrix entry: its slot in the pattern, and its place in the panel of its front.
@@ -76,19 +74,12 @@ impl Plan {
     /// # Errors
     /// [`LinalgError::Size`] for a wrong number of points, [`LinalgError::NoSuchUnknown`] if `last` names one outside
     /// the system, [`LinalgError::TooLarge`] if minimum degree runs out of memory.
-    pub fn new(
-        pattern: Arc<Pattern>,
-        coordinates: Option<&[[f64; 2]]>,
-        last: &[u32],
-    ) -> Result<Self, LinalgError> {
+    pub fn new(pattern: Arc<Pattern>, coordinates: Option<&[[f64; 2]]>, last: &[u32]) -> Result<Self, LinalgError> {
         let graph = Adjacency::new(&pattern);
         let first_order = order::order(&graph, coordinates, last)?;
         let parent = etree::elimination_tree(&graph, &first_order, &etree::inverse(&first_order));
         let post = etree::postorder(&parent);
-        let order: Vec<u32> = post
-            .iter()
-            .map(|&step| first_order[step as usize])
-            .collect();
+        let order: Vec<u32> = post.iter().map(|&step| first_order[step as usize]).collect();
         let parent = etree::renumber(&parent, &post);
         let place = etree::inverse(&order);
         let counts = etree::column_counts(&graph, &order, &place, &parent);
@@ -99,26 +90,11 @@ impl Plan {
             build.add_front(k, *node, &pattern);
         }
         let relative = build.relative_rows();
-        let fill = build
-            .fronts
-            .iter()
-            .map(|f| f.pivots * (f.pivots + 1) / 2 + f.pivots * f.border)
-            .sum();
+        let fill = build.fronts.iter().map(|f| f.pivots * (f.pivots + 1) / 2 + f.pivots * f.border).sum();
         let flops = build.fronts.iter().map(operations).sum();
-        let (fronts, rows, scatter) = (build.fronts, build.rows, build.scatter);
+        let (fronts, scatter) = (build.fronts, build.scatter);
         let (children, roots) = (build.children, build.roots);
-        Ok(Self {
-            pattern,
-            order,
-            fronts,
-            rows,
-            relative,
-            scatter,
-            children,
-            roots,
-            fill,
-            flops,
-        })
+        Ok(Self { pattern, order, fronts, relative, scatter, children, roots, fill, flops })
     }
 
     /// Pattern this plan was made for.
@@ -146,6 +122,18 @@ impl Plan {
         &self.children[front.children.clone()]
     }
 
+    /// First front from `k` down that has not exactly one heavy child: above it there is nothing to do in parallel.
+    pub(super) fn branch(&self, k: usize, heavy: impl Fn(u32) -> bool) -> usize {
+        let mut branch = k;
+        loop {
+            let mut children = self.children(&self.fronts[branch]).iter().filter(|&&child| heavy(child));
+            match (children.next(), children.next()) {
+                (Some(&only), None) => branch = only as usize,
+                _ => return branch,
+            }
+        }
+    }
+
     /// Values of the factor, panels one after the other.
     pub(super) fn panel_values(&self) -> usize {
         self.fronts.last().map_or(0, |front| front.panel.end)
@@ -155,10 +143,7 @@ impl Plan {
 impl fmt::Debug for Plan {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         let mut shape = f.debug_struct("Plan");
-        shape
-            .field("unknowns", &self.n())
-            .field("fronts", &self.fronts.len())
-            .field("fill", &self.fill);
+        shape.field("unknowns", &self.n()).field("fronts", &self.fronts.len()).field("fill", &self.fill);
         shape.finish_non_exhaustive()
     }
 }
@@ -222,9 +207,7 @@ impl<'a> Build<'a> {
         let height = pivots + rows.len();
         let entries = self.scatter_entries(columns, height, pattern);
         let start = self.fronts.last().map_or(0, |front| front.panel.end);
-        let below = self.children[children.clone()]
-            .iter()
-            .map(|&c| &self.fronts[c as usize]);
+        let below = self.children[children.clone()].iter().map(|&c| &self.fronts[c as usize]);
         let (mut work, mut subtree) = (0.0, k);
         for child in below {
             work += child.work;
@@ -265,12 +248,7 @@ impl<'a> Build<'a> {
     }
 
     /// Rows below the pivots: those of the matrix and those the children leave.
-    fn collect_rows(
-        &mut self,
-        k: usize,
-        columns: Range<u32>,
-        children: Range<usize>,
-    ) -> Range<usize> {
+    fn collect_rows(&mut self, k: usize, columns: Range<u32>, children: Range<usize>) -> Range<usize> {
         let start = self.rows.len();
         for column in columns.clone() {
             for &neighbour in self.graph.of(self.order[column as usize] as usize) {
@@ -298,28 +276,18 @@ impl<'a> Build<'a> {
     }
 
     /// Where the matrix entries of these columns go in the panel.
-    fn scatter_entries(
-        &mut self,
-        columns: Range<u32>,
-        height: usize,
-        pattern: &Pattern,
-    ) -> Range<usize> {
+    fn scatter_entries(&mut self, columns: Range<u32>, height: usize, pattern: &Pattern) -> Range<usize> {
         let start = self.scatter.len();
         for column in columns.clone() {
             let unknown = self.order[column as usize] as usize;
             let local = column - columns.start;
             let top = local * height as u32;
-            self.scatter
-                .push([pattern.starts()[unknown] as u32, top + local]);
+            self.scatter.push([pattern.starts()[unknown] as u32, top + local]);
             for (neighbour, slot) in self.graph.with_slots(unknown) {
                 let row = self.place[neighbour as usize];
                 if row > column {
                     let inside = row < columns.end;
-                    let local = if inside {
-                        row - columns.start
-                    } else {
-                        self.position[row as usize]
-                    };
+                    let local = if inside { row - columns.start } else { self.position[row as usize] };
                     self.scatter.push([slot, top + local]);
                 }
             }

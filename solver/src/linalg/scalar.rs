@@ -4,6 +4,7 @@
 use std::iter::Sum;
 use std::ops::{Add, AddAssign, Div, Mul, MulAssign, Neg, Sub, SubAssign};
 
+use faer::traits::pulp::Simd;
 use num_complex::Complex64;
 
 /// A field element with the arithmetic of a direct solver.
@@ -41,9 +42,29 @@ pub trait Scalar:
     /// Whether every part is finite.
     fn finite(self) -> bool;
 
-    /// `self + a b` with fused operations where the processor has them.
-    #[must_use]
-    fn plus_product(self, a: Self, b: Self) -> Self;
+    /// Vector register of the unit `S` with such numbers in its lanes.
+    type Vector<S: Simd>: Copy;
+
+    /// Cuts a slice into whole vectors and a rest.
+    fn vectors<S: Simd>(slice: &[Self]) -> (&[Self::Vector<S>], &[Self]);
+
+    /// As [`Scalar::vectors`], to write to.
+    fn vectors_mut<S: Simd>(slice: &mut [Self]) -> (&mut [Self::Vector<S>], &mut [Self]);
+
+    /// The same number in all lanes.
+    fn splat<S: Simd>(simd: S, value: Self) -> Self::Vector<S>;
+
+    /// `a b`, lane by lane.
+    fn times<S: Simd>(simd: S, a: Self::Vector<S>, b: Self::Vector<S>) -> Self::Vector<S>;
+
+    /// `a b + c`, lane by lane, fused if the unit can.
+    fn times_plus<S: Simd>(simd: S, a: Self::Vector<S>, b: Self::Vector<S>, c: Self::Vector<S>) -> Self::Vector<S>;
+
+    /// `a + b`, lane by lane.
+    fn plus<S: Simd>(simd: S, a: Self::Vector<S>, b: Self::Vector<S>) -> Self::Vector<S>;
+
+    /// Sum over the lanes.
+    fn sum_of_lanes<S: Simd>(simd: S, a: Self::Vector<S>) -> Self;
 }
 
 impl Scalar for f64 {
@@ -65,9 +86,41 @@ impl Scalar for f64 {
         self.is_finite()
     }
 
+    type Vector<S: Simd> = S::f64s;
+
     #[inline(always)]
-    fn plus_product(self, a: Self, b: Self) -> Self {
-        self + a * b
+    fn vectors<S: Simd>(slice: &[Self]) -> (&[S::f64s], &[Self]) {
+        S::as_simd_f64s(slice)
+    }
+
+    #[inline(always)]
+    fn vectors_mut<S: Simd>(slice: &mut [Self]) -> (&mut [S::f64s], &mut [Self]) {
+        S::as_mut_simd_f64s(slice)
+    }
+
+    #[inline(always)]
+    fn splat<S: Simd>(simd: S, value: Self) -> S::f64s {
+        simd.splat_f64s(value)
+    }
+
+    #[inline(always)]
+    fn times<S: Simd>(simd: S, a: S::f64s, b: S::f64s) -> S::f64s {
+        simd.mul_f64s(a, b)
+    }
+
+    #[inline(always)]
+    fn times_plus<S: Simd>(simd: S, a: S::f64s, b: S::f64s, c: S::f64s) -> S::f64s {
+        simd.mul_add_e_f64s(a, b, c)
+    }
+
+    #[inline(always)]
+    fn plus<S: Simd>(simd: S, a: S::f64s, b: S::f64s) -> S::f64s {
+        simd.add_f64s(a, b)
+    }
+
+    #[inline(always)]
+    fn sum_of_lanes<S: Simd>(simd: S, a: S::f64s) -> Self {
+        simd.reduce_sum_f64s(a)
     }
 }
 
@@ -99,11 +152,40 @@ impl Scalar for Complex64 {
         self.re.is_finite() && self.im.is_finite()
     }
 
+    type Vector<S: Simd> = S::c64s;
+
     #[inline(always)]
-    fn plus_product(self, a: Self, b: Self) -> Self {
-        Self::new(
-            self.re + (a.re * b.re - a.im * b.im),
-            self.im + (a.re * b.im + a.im * b.re),
-        )
+    fn vectors<S: Simd>(slice: &[Self]) -> (&[S::c64s], &[Self]) {
+        S::as_simd_c64s(slice)
+    }
+
+    #[inline(always)]
+    fn vectors_mut<S: Simd>(slice: &mut [Self]) -> (&mut [S::c64s], &mut [Self]) {
+        S::as_mut_simd_c64s(slice)
+    }
+
+    #[inline(always)]
+    fn splat<S: Simd>(simd: S, value: Self) -> S::c64s {
+        simd.splat_c64s(value)
+    }
+
+    #[inline(always)]
+    fn times<S: Simd>(simd: S, a: S::c64s, b: S::c64s) -> S::c64s {
+        simd.mul_c64s(a, b)
+    }
+
+    #[inline(always)]
+    fn times_plus<S: Simd>(simd: S, a: S::c64s, b: S::c64s, c: S::c64s) -> S::c64s {
+        simd.mul_add_e_c64s(a, b, c)
+    }
+
+    #[inline(always)]
+    fn plus<S: Simd>(simd: S, a: S::c64s, b: S::c64s) -> S::c64s {
+        simd.add_c64s(a, b)
+    }
+
+    #[inline(always)]
+    fn sum_of_lanes<S: Simd>(simd: S, a: S::c64s) -> Self {
+        simd.reduce_sum_c64s(a)
     }
 }

@@ -6,8 +6,6 @@
 //! C. M. Fiduccia and R. M. Mattheyses, Proc. 19th DAC (1982) 175-181 (moves with roll-back), in the form for vertex
 //! separators.
 
-use std::collections::BinaryHeap;
-
 use super::dissect::Part;
 
 /// Mark of a separator vertex among the sides 0 and 1.
@@ -67,25 +65,16 @@ pub(super) fn bisect(part: &Part) -> Bisection {
     let n = part.n();
     let circles = n > CIRCLES_ABOVE;
     let (centre, lifted) = lift(&part.points, circles);
-    let normal = best_normal(
-        part,
-        &lifted,
-        if circles { NORMALS.len() } else { STRAIGHT },
-    );
-    let mut keys: Vec<(f64, u32)> = lifted
-        .iter()
-        .zip(0..)
-        .map(|(&p, v)| (dot(p, normal), v))
-        .collect();
+    let normal = best_normal(part, &lifted, if circles { NORMALS.len() } else { STRAIGHT });
+    let mut keys: Vec<(f64, u32)> = lifted.iter().zip(0..).map(|(&p, v)| (dot(p, normal), v)).collect();
     let by_key = |a: &(f64, u32), b: &(f64, u32)| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1));
     keys.select_nth_unstable_by(n / 2, by_key);
     let mut sides = vec![1_u8; n];
     for &(_, v) in &keys[..n / 2] {
         sides[v as usize] = 0;
     }
-    let separator: Vec<u32> = (0..n as u32)
-        .filter(|&v| sides[v as usize] == 1 && part.own(v as usize).any(|w| sides[w] == 0))
-        .collect();
+    let separator: Vec<u32> =
+        (0..n as u32).filter(|&v| sides[v as usize] == 1 && part.own(v as usize).any(|w| sides[w] == 0)).collect();
     for &v in &separator {
         sides[v as usize] = SEPARATOR;
     }
@@ -96,12 +85,7 @@ pub(super) fn bisect(part: &Part) -> Bisection {
             break;
         }
     }
-    Bisection {
-        sides: refinement.sides,
-        sizes: refinement.sizes,
-        normal,
-        centre,
-    }
+    Bisection { sides: refinement.sides, sizes: refinement.sizes, normal, centre }
 }
 
 fn dot(a: [f64; 3], b: [f64; 3]) -> f64 {
@@ -115,11 +99,7 @@ fn lift(points: &[[f64; 2]], to_sphere: bool) -> ([f64; 2], Vec<[f64; 3]>) {
     let centre = [mean(0), mean(1)];
     let square = |p: &[f64; 2]| (p[0] - centre[0]).powi(2) + (p[1] - centre[1]).powi(2);
     let spread = (points.iter().map(square).sum::<f64>() / n).sqrt();
-    let scale = if spread > 0.0 && spread.is_finite() {
-        1.0 / spread
-    } else {
-        1.0
-    };
+    let scale = if spread > 0.0 && spread.is_finite() { 1.0 / spread } else { 1.0 };
     let lifted = points.iter().map(|p| {
         let (x, y) = ((p[0] - centre[0]) * scale, (p[1] - centre[1]) * scale);
         if !to_sphere {
@@ -135,24 +115,68 @@ fn lift(points: &[[f64; 2]], to_sphere: bool) -> ([f64; 2], Vec<[f64; 3]>) {
 /// Of the first `count` normals, the one whose median plane has the fewest vertices on its edge.
 fn best_normal(part: &Part, lifted: &[[f64; 3]], count: usize) -> [f64; 3] {
     let n = part.n();
-    let stride = (n / 2000).clamp(1, 3);
-    let mut best = (usize::MAX, NORMALS[0]);
-    let mut keys = Vec::with_capacity(n);
+    let stride = (n / 2000).clamp(1, 8);
     let mut sample = Vec::with_capacity(n / stride + 1);
-    for &normal in &NORMALS[..count] {
-        keys.clear();
-        keys.extend(lifted.iter().map(|&p| dot(p, normal)));
+    // Bit k of a vertex: whether it lies beyond the median plane of normal k.
+    let mut beyond = vec![0_u16; n];
+    for (k, &normal) in NORMALS[..count].iter().enumerate() {
         sample.clear();
-        sample.extend(keys.iter().copied().step_by(stride));
+        sample.extend(lifted.iter().step_by(stride).map(|&p| dot(p, normal)));
         let middle = sample.len() / 2;
         let median = *sample.select_nth_unstable_by(middle, f64::total_cmp).1;
-        let crossing = |&v: &usize| keys[v] >= median && part.own(v).any(|w| keys[w] < median);
-        let crossings = (0..n).step_by(stride).filter(crossing).count();
-        if crossings < best.0 {
-            best = (crossings, normal);
+        for (bits, &p) in beyond.iter_mut().zip(lifted) {
+            *bits |= u16::from(dot(p, normal) >= median) << k;
         }
     }
-    best.1
+    let mut crossings = [0_usize; NORMALS.len()];
+    for (v, &bits) in beyond.iter().enumerate() {
+        let common = part.own(v).fold(u16::MAX, |common, w| common & beyond[w]);
+        let mut edge = bits & !common;
+        while edge != 0 {
+            crossings[edge.trailing_zeros() as usize] += 1;
+            edge &= edge - 1;
+        }
+    }
+    let best = (0..count).min_by_key(|&k| (crossings[k], k)).unwrap_or(0);
+    NORMALS[best]
+}
+
+/// Number of buckets of a [`Queue`]; worse moves share the last.
+const BUCKETS: usize = 48;
+
+/// Moves by gain, the best first and of equals the latest; entries may be out of date.
+struct Queue {
+    buckets: Vec<Vec<(i32, u32, u8)>>,
+    best: usize,
+}
+
+impl Queue {
+    fn new() -> Self {
+        Self { buckets: vec![Vec::new(); BUCKETS], best: BUCKETS }
+    }
+
+    fn push(&mut self, gain: i32, vertex: u32, side: u8) {
+        // No move gains more than the moved vertex itself.
+        let bucket = usize::try_from(1 - gain).unwrap_or(0).min(BUCKETS - 1);
+        self.buckets[bucket].push((gain, vertex, side));
+        self.best = self.best.min(bucket);
+    }
+
+    fn pop(&mut self) -> Option<(i32, u32, u8)> {
+        while self.best < BUCKETS {
+            let found = self.buckets[self.best].pop();
+            if found.is_some() {
+                return found;
+            }
+            self.best += 1;
+        }
+        None
+    }
+
+    fn clear(&mut self) {
+        self.buckets.iter_mut().for_each(Vec::clear);
+        self.best = BUCKETS;
+    }
 }
 
 /// One move, kept for the roll-back.
@@ -171,7 +195,7 @@ struct Refinement<'a> {
     /// Shrinkage of the separator if the vertex moved to side 0 or 1; true for separator vertices only.
     gains: Vec<[i32; 2]>,
     locked: Vec<bool>,
-    queue: BinaryHeap<(i32, u32, u8)>,
+    queue: Queue,
     moves: Vec<Move>,
     pulled: Vec<u32>,
     length: usize,
@@ -185,7 +209,7 @@ impl<'a> Refinement<'a> {
             gains: vec![[0; 2]; sides.len()],
             locked: vec![false; sides.len()],
             sides,
-            queue: BinaryHeap::new(),
+            queue: Queue::new(),
             moves: Vec::new(),
             pulled: Vec::new(),
             length: separator.len(),
@@ -241,8 +265,8 @@ impl<'a> Refinement<'a> {
         }
         self.gains[vertex as usize] = gains;
         if !self.locked[vertex as usize] {
-            self.queue.push((gains[0], vertex, 0));
-            self.queue.push((gains[1], vertex, 1));
+            self.queue.push(gains[0], vertex, 0);
+            self.queue.push(gains[1], vertex, 1);
         }
     }
 
@@ -251,7 +275,7 @@ impl<'a> Refinement<'a> {
         let gain = &mut self.gains[v][usize::from(side)];
         *gain += change;
         if !self.locked[v] {
-            self.queue.push((*gain, v as u32, side));
+            self.queue.push(*gain, v as u32, side);
         }
     }
 
@@ -281,11 +305,7 @@ impl<'a> Refinement<'a> {
         for k in first..self.pulled.len() {
             self.offer(self.pulled[k]);
         }
-        self.moves.push(Move {
-            vertex,
-            side,
-            pulled: self.pulled.len() - first,
-        });
+        self.moves.push(Move { vertex, side, pulled: self.pulled.len() - first });
     }
 
     /// Undoes all moves beyond the first `kept` and gathers the separator anew.

@@ -87,21 +87,14 @@ fn strict_supernodes(parent: &[u32], counts: &[u32]) -> Vec<Supernode> {
     let mut nodes: Vec<Supernode> = Vec::new();
     for column in 0..parent.len() {
         let count = f64::from(counts[column]);
-        let continues = column > 0
-            && parent[column - 1] == column as u32
-            && counts[column - 1] == counts[column] + 1;
+        let continues = column > 0 && parent[column - 1] == column as u32 && counts[column - 1] == counts[column] + 1;
         match nodes.last_mut() {
             Some(node) if continues => {
                 node.pivots += 1;
                 node.border = counts[column] - 1;
                 node.entries += count;
             }
-            _ => nodes.push(Supernode {
-                first: column as u32,
-                pivots: 1,
-                border: counts[column] - 1,
-                entries: count,
-            }),
+            _ => nodes.push(Supernode { first: column as u32, pivots: 1, border: counts[column] - 1, entries: count }),
         }
     }
     nodes

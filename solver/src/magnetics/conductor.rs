@@ -91,9 +91,8 @@ impl Turns {
         let blocks = map_elements(turn.elements.len(), |i, points| {
             let e = turn.elements[i] as usize;
             space.fill(e, points);
-            let value = |n: usize| -> f64 {
-                points.points().iter().map(|p| density * p.r * p.volume * p.value[n]).sum()
-            };
+            let value =
+                |n: usize| -> f64 { points.points().iter().map(|p| density * p.r * p.volume * p.value[n]).sum() };
             space.element(e).iter().enumerate().map(|(n, &dof)| (dof, value(n))).collect::<Vec<_>>()
         });
         blocks.into_iter().flatten().collect()

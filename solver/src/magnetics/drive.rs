@@ -84,11 +84,8 @@ mod tests {
     #![allow(clippy::unwrap_used, reason = "tests")]
     use super::*;
 
-    const PER: PerAmpere = PerAmpere {
-        impedance_ohm: Complex64::new(0.03, 0.04),
-        workpiece_power_w: 0.01,
-        terminal_power_w: 0.015,
-    };
+    const PER: PerAmpere =
+        PerAmpere { impedance_ohm: Complex64::new(0.03, 0.04), workpiece_power_w: 0.01, terminal_power_w: 0.015 };
 
     #[test]
     fn each_hold_gives_what_it_holds() {

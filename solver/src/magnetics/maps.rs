@@ -28,8 +28,7 @@ pub fn maps(
         let winding = windings[space.region(e).0 as usize];
         element_rows(field, operator, properties.sigma(e), &nearest, winding, e)
     });
-    let potential =
-        space.points().iter().zip(&field.x).map(|(p, u)| u * p[0]).collect();
+    let potential = space.points().iter().zip(&field.x).map(|(p, u)| u * p[0]).collect();
     let mut out = FieldMaps {
         vector_potential_wb_per_m: potential,
         joule_loss_w_per_m3: Vec::new(),

@@ -3,6 +3,10 @@
 //! With a function `chi` that is 1 on the part and falls to 0 in the air, `P = int grad(chi) . S dV` over the air,
 //! `S = 1/2 Re(E x H*)`: the mean of the Poynting flux over a family of surfaces (`div Re S = 0` where nothing
 //! conducts). `chi` falls over the second layer of elements, so that the corner of a conductor lies behind it.
+//!
+//! What it shows: that losses, field and measures belong together. A discrete field satisfies this balance but for the
+//! interpolation of `chi u` in the layer where `chi` falls, so it agrees far closer than the field is accurate; like
+//! the power balance it says little about the mesh inside the part.
 
 use num_complex::Complex64;
 
@@ -27,7 +31,8 @@ pub fn power_into(field: &UnitField, operator: &Operator, properties: &PointProp
     let own: Vec<bool> = (0..space.element_count()).map(|e| space.region(e).0 == region).collect();
     LAYERS.iter().find_map(|&layers| {
         let chi = weights(space, &own, layers);
-        let usable = (0..space.element_count()).all(|e| own[e] || (clear[e] && !current[e]) || flat_zero(space, &chi, e));
+        let usable =
+            (0..space.element_count()).all(|e| own[e] || (clear[e] && !current[e]) || flat_zero(space, &chi, e));
         usable.then(|| flux(field, operator, properties, &chi, &own))
     })
 }
@@ -51,7 +56,9 @@ fn weights(space: &Space, own: &[bool], layers: usize) -> Vec<f64> {
         let touched: Vec<usize> = (0..space.element_count())
             .filter(|&e| space.element(e)[..3].iter().any(|&n| chi[n as usize] == 1.0))
             .collect();
-        touched.into_iter().for_each(|e| mark(&mut chi, e));
+        for e in touched {
+            mark(&mut chi, e);
+        }
     }
     chi
 }
@@ -60,13 +67,7 @@ fn flat_zero(space: &Space, chi: &[f64], e: usize) -> bool {
     space.element(e)[..3].iter().all(|&n| chi[n as usize] == 0.0)
 }
 
-fn flux(
-    field: &UnitField,
-    operator: &Operator,
-    properties: &PointProperties,
-    chi: &[f64],
-    own: &[bool],
-) -> f64 {
+fn flux(field: &UnitField, operator: &Operator, properties: &PointProperties, chi: &[f64], own: &[bool]) -> f64 {
     let space = operator.space();
     let omega = operator.omega();
     map_elements(space.element_count(), |e, points| {

@@ -39,8 +39,7 @@ impl PointProperties {
     pub fn new(space: &Space, regions: &[RegionName], model: &Model, temperatures: &dyn PointTemperatures) -> Self {
         let stride = space.reference().point_count();
         let count = space.element_count() * stride;
-        let mut out =
-            Self { stride, sigma_s_per_m: vec![0.0; count], nu_m_per_h: vec![1.0 / MU_0; count] };
+        let mut out = Self { stride, sigma_s_per_m: vec![0.0; count], nu_m_per_h: vec![1.0 / MU_0; count] };
         let mut kelvin = vec![0.0; stride];
         for e in 0..space.element_count() {
             let range = e * stride..(e + 1) * stride;

@@ -12,7 +12,7 @@ use crate::fem::assemble::map_elements;
 use crate::model::{Coil, Model, Role, Water};
 use crate::results::{CoilNumbers, Electrical, PartNumbers, RegionName, Terminals, TurnRow};
 
-/// Heat capacity of a cubic metre of water at 35 °C and 0.3 MPa, J/(m^3 K): 994.1 kg/m^3 times 4178.5 J/(kg K).
+/// Heat capacity of a cubic metre of water at 35 °C and 3 bar, in `J/(m^3 K)`: density 994.1 times specific heat 4178.5.
 ///
 /// Source: IAPWS-IF97 (computed between the rows for 30 and 40 °C).
 const WATER_J_PER_M3_K: f64 = 994.1 * 4178.5;
@@ -85,9 +85,7 @@ impl Numbers {
         let workpiece_power_w = self.per.workpiece_power_w * square;
         Electrical {
             parts: model.parts.iter().zip(&self.parts).map(|(p, u)| part_numbers(&p.name, u, peak)).collect(),
-            electrical_efficiency: terminals
-                .filter(|t| t.power_w > 0.0)
-                .map(|t| workpiece_power_w / t.power_w),
+            electrical_efficiency: terminals.filter(|t| t.power_w > 0.0).map(|t| workpiece_power_w / t.power_w),
             coils,
             terminals,
             workpiece_power_w,

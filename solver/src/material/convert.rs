@@ -2,8 +2,7 @@
 
 use super::curve::Curve;
 use super::data::{
-    CurveData, EmissivityData, MagneticData, MaterialData, MeltingData, QuantityData, SegmentData,
-    Written,
+    CurveData, EmissivityData, MagneticData, MaterialData, MeltingData, QuantityData, SegmentData, Written,
 };
 use super::enthalpy::{Enthalpy, Melting};
 use super::error::{MaterialError, MaterialFault, Property};
@@ -27,27 +26,12 @@ fn material(data: MaterialData) -> Result<Material, MaterialError> {
         return Err(MaterialError::from(MaterialFault::NameEmpty).of(Property::Name));
     }
     let (density, density_source) = density(data.density).map_err(|e| e.of(Property::Density))?;
-    let resistivity = data
-        .resistivity
-        .map(|c| curve(c, Property::Resistivity, &units::RESISTIVITY))
-        .transpose()?;
-    let conductivity = curve(
-        data.thermal_conductivity,
-        Property::ThermalConductivity,
-        &units::THERMAL_CONDUCTIVITY,
-    )?;
-    let specific_heat = curve(
-        data.specific_heat,
-        Property::SpecificHeat,
-        &units::SPECIFIC_HEAT,
-    )?;
+    let resistivity = data.resistivity.map(|c| curve(c, Property::Resistivity, &units::RESISTIVITY)).transpose()?;
+    let conductivity = curve(data.thermal_conductivity, Property::ThermalConductivity, &units::THERMAL_CONDUCTIVITY)?;
+    let specific_heat = curve(data.specific_heat, Property::SpecificHeat, &units::SPECIFIC_HEAT)?;
     let melting = data.melting.map(melting).transpose()?;
     let enthalpy = Enthalpy::new(&specific_heat, melting.as_ref())?;
-    let emissivity = data
-        .emissivity
-        .map(emissivity)
-        .transpose()
-        .map_err(|e| e.of(Property::Emissivity))?;
+    let emissivity = data.emissivity.map(emissivity).transpose().map_err(|e| e.of(Property::Emissivity))?;
     let magnetic = data.magnetic.map(magnetic).transpose()?;
     let (emissivity, emissivity_source) = emissivity.unzip();
     Ok(Material {
@@ -71,10 +55,7 @@ fn material(data: MaterialData) -> Result<Material, MaterialError> {
 fn source(written: Option<Written<String, Source>>) -> Source {
     match written {
         None => Source::unstated(),
-        Some(Written::Plain(text)) => Source {
-            text,
-            ..Source::default()
-        },
+        Some(Written::Plain(text)) => Source { text, ..Source::default() },
         Some(Written::Full(source)) => source,
     }
 }
@@ -86,12 +67,7 @@ fn density(written: Written<String, QuantityData>) -> Result<(f64, Source), Mate
     };
     let value = units::DENSITY.parse(&text)?;
     if value <= 0.0 {
-        return Err(MaterialFault::NotPositive {
-            value,
-            unit: units::DENSITY.si,
-            at_c: None,
-        }
-        .into());
+        return Err(MaterialFault::NotPositive { value, unit: units::DENSITY.si, at_c: None }.into());
     }
     Ok((value, source))
 }
@@ -105,19 +81,9 @@ fn emissivity(written: Written<f64, EmissivityData>) -> Result<(f64, Source), Ma
     if !value.is_finite() {
         Err(MaterialFault::NotFinite { value }.into())
     } else if value < 0.0 {
-        Err(MaterialFault::TooLow {
-            value,
-            least: 0.0,
-            unit,
-        }
-        .into())
+        Err(MaterialFault::TooLow { value, least: 0.0, unit }.into())
     } else if value > 1.0 {
-        Err(MaterialFault::TooHigh {
-            value,
-            greatest: 1.0,
-            unit,
-        }
-        .into())
+        Err(MaterialFault::TooHigh { value, greatest: 1.0, unit }.into())
     } else {
         Ok((value, source))
     }
@@ -129,10 +95,7 @@ fn curve(
     dimension: &Dimension,
 ) -> Result<Curve, MaterialError> {
     let data = match written {
-        Written::Plain(text) => CurveData {
-            constant: Some(text),
-            ..CurveData::default()
-        },
+        Written::Plain(text) => CurveData { constant: Some(text), ..CurveData::default() },
         Written::Full(data) => data,
     };
     let checked = bare_curve(&data, dimension).and_then(|curve| {
@@ -154,54 +117,33 @@ fn bare_curve(data: &CurveData, dimension: &Dimension) -> Result<Curve, Material
         }
         (None, Some(rows), None) => {
             let factor = dimension.factor_of(unit)?;
-            let points: Vec<_> = rows
-                .iter()
-                .map(|&[t, value]| (t + zero_k, value * factor))
-                .collect();
+            let points: Vec<_> = rows.iter().map(|&[t, value]| (t + zero_k, value * factor)).collect();
             Curve::table(&points)
         }
         (None, None, Some(written)) => {
             let factor = dimension.factor_of(unit)?;
-            let segments = written
-                .iter()
-                .map(|s| segment(s, zero_k, factor))
-                .collect::<Result<_, _>>()?;
+            let segments = written.iter().map(|s| segment(s, zero_k, factor)).collect::<Result<_, _>>()?;
             Curve::segments(segments)
         }
         (constant, table, segments) => {
             let given = [constant.is_some(), table.is_some(), segments.is_some()];
-            Err(MaterialFault::FormCount {
-                count: given.iter().filter(|&&g| g).count(),
-            }
-            .into())
+            Err(MaterialFault::FormCount { count: given.iter().filter(|&&g| g).count() }.into())
         }
     }
 }
 
 fn segment(data: &SegmentData, zero_k: f64, factor: f64) -> Result<Segment, MaterialError> {
     let polynomial = data.polynomial.iter().map(|a| a * factor).collect();
-    let pole = data.pole.as_ref().map(|p| Pole {
-        numerator: p.numerator * factor,
-        at: p.at,
-    });
-    Segment::new(
-        data.from + zero_k,
-        data.to + zero_k,
-        zero_k,
-        polynomial,
-        pole,
-    )
+    let pole = data.pole.as_ref().map(|p| Pole { numerator: p.numerator * factor, at: p.at });
+    Segment::new(data.from + zero_k, data.to + zero_k, zero_k, polynomial, pole)
 }
 
 fn melting(data: MeltingData) -> Result<Melting, MaterialError> {
-    let temperature =
-        |text: &str, property| units::parse_temperature(text).map_err(|e| e.of(property));
+    let temperature = |text: &str, property| units::parse_temperature(text).map_err(|e| e.of(property));
     Ok(Melting {
         solidus_k: temperature(&data.solidus, Property::Solidus)?,
         liquidus_k: temperature(&data.liquidus, Property::Liquidus)?,
-        latent_heat_j_per_kg: units::LATENT_HEAT
-            .parse(&data.latent_heat)
-            .map_err(|e| e.of(Property::LatentHeat))?,
+        latent_heat_j_per_kg: units::LATENT_HEAT.parse(&data.latent_heat).map_err(|e| e.of(Property::LatentHeat))?,
         source: source(data.source),
     })
 }
@@ -210,8 +152,7 @@ fn magnetic(data: MagneticData) -> Result<Magnetic, MaterialError> {
     let saturation = units::POLARISATION.parse(&data.saturation_polarisation);
     let magnetic = Magnetic {
         relative_permeability_20c: data.relative_permeability_20c,
-        saturation_polarisation_t: saturation
-            .map_err(|e| e.of(Property::SaturationPolarisation))?,
+        saturation_polarisation_t: saturation.map_err(|e| e.of(Property::SaturationPolarisation))?,
         initial_relative_permeability: data.initial_relative_permeability,
         curie_k: units::parse_temperature(&data.curie).map_err(|e| e.of(Property::Curie))?,
         source: source(data.source),

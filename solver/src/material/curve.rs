@@ -3,7 +3,7 @@
 //! Convention: SI values over kelvin. Outside the range of the data the end value is held. At a temperature where two
 //! segments meet the upper one counts, as EN 1993-1-2 has it.
 
-use super::error::{MaterialError, MaterialFault};
+use super::error::{MaterialError, MaterialFault, celsius};
 use super::segment::Segment;
 use super::source::Source;
 use crate::constants::ZERO_CELSIUS_K;
@@ -57,18 +57,13 @@ impl Curve {
         for (row, &(t, value)) in points.iter().enumerate() {
             finite(t)?;
             finite(value)?;
-            let at_c = t - ZERO_CELSIUS_K;
+            let at_c = celsius(t);
             if t < 0.0 {
                 return Err(MaterialFault::BelowAbsoluteZero { at_c }.into());
             }
             if row > 0 && t <= points[row - 1].0 {
-                let previous_c = points[row - 1].0 - ZERO_CELSIUS_K;
-                return Err(MaterialFault::RowsNotRising {
-                    row: row + 1,
-                    at_c,
-                    previous_c,
-                }
-                .into());
+                let previous_c = celsius(points[row - 1].0);
+                return Err(MaterialFault::RowsNotRising { row: row + 1, at_c, previous_c }.into());
             }
         }
         let (t_k, value): (Vec<f64>, Vec<f64>) = points.iter().copied().unzip();
@@ -76,11 +71,7 @@ impl Curve {
         for i in 1..t_k.len() {
             integral[i] = integral[i - 1] + 0.5 * (value[i - 1] + value[i]) * (t_k[i] - t_k[i - 1]);
         }
-        Ok(Self::from_form(Form::Table {
-            t_k,
-            value,
-            integral,
-        }))
+        Ok(Self::from_form(Form::Table { t_k, value, integral }))
     }
 
     /// A property given by formulas, each segment beginning where the one before it ended.
@@ -95,7 +86,7 @@ impl Curve {
         for i in 1..segments.len() {
             let (end, begin) = (segments[i - 1].range_k().1, segments[i].range_k().0);
             if end != begin {
-                let (end_c, begin_c) = (end - ZERO_CELSIUS_K, begin - ZERO_CELSIUS_K);
+                let (end_c, begin_c) = (celsius(end), celsius(begin));
                 return Err(MaterialFault::SegmentsApart { end_c, begin_c }.into());
             }
             integral[i] = integral[i - 1] + segments[i - 1].integral(end);
@@ -104,11 +95,7 @@ impl Curve {
     }
 
     fn from_form(form: Form) -> Self {
-        let mut curve = Self {
-            form,
-            offset: 0.0,
-            source: Source::unstated(),
-        };
+        let mut curve = Self { form, offset: 0.0, source: Source::unstated() };
         curve.offset = -curve.integral(REFERENCE_K);
         curve
     }
@@ -130,10 +117,9 @@ impl Curve {
         match &self.form {
             Form::Constant(_) => None,
             Form::Table { t_k, .. } => Some((t_k[0], t_k[t_k.len() - 1])),
-            Form::Segments { segments, .. } => Some((
-                segments[0].range_k().0,
-                segments[segments.len() - 1].range_k().1,
-            )),
+            Form::Segments { segments, .. } => {
+                Some((segments[0].range_k().0, segments[segments.len() - 1].range_k().1))
+            }
         }
     }
 
@@ -150,25 +136,18 @@ impl Curve {
                 let s = (t - t_k[i]) / (next - t_k[i]);
                 value[i] * (1.0 - s) + value[i + 1] * s
             }
-            Form::Segments { segments, .. } => {
-                segments[row(segments.len(), |i| segments[i].range_k().0, t)].value(t)
-            }
+            Form::Segments { segments, .. } => segments[row(segments.len(), |i| segments[i].range_k().0, t)].value(t),
         }
     }
 
     /// Derivative at `t_k` per kelvin, from the right at a corner; zero outside the range and for a constant.
     pub fn slope(&self, t_k: f64) -> f64 {
-        if self
-            .range_k()
-            .is_none_or(|(low, high)| !(low..high).contains(&t_k))
-        {
+        if self.range_k().is_none_or(|(low, high)| !(low..high).contains(&t_k)) {
             return 0.0;
         }
         match &self.form {
             Form::Constant(_) => 0.0,
-            Form::Table {
-                t_k: knots, value, ..
-            } => {
+            Form::Table { t_k: knots, value, .. } => {
                 let i = row(knots.len(), |i| knots[i], t_k).min(knots.len() - 2);
                 (value[i + 1] - value[i]) / (knots[i + 1] - knots[i])
             }
@@ -185,11 +164,7 @@ impl Curve {
         let t = self.held(t_k);
         let inside = match &self.form {
             Form::Constant(value) => return value * (t_k - REFERENCE_K),
-            Form::Table {
-                t_k,
-                value,
-                integral,
-            } => {
+            Form::Table { t_k, value, integral } => {
                 let i = row(t_k.len(), |i| t_k[i], t);
                 integral[i] + 0.5 * (value[i] + self.value(t)) * (t - t_k[i])
             }
@@ -198,11 +173,7 @@ impl Curve {
                 integral[i] + segments[i].integral(t)
             }
         };
-        let outside = if t_k == t {
-            0.0
-        } else {
-            self.value(t) * (t_k - t)
-        };
+        let outside = if t_k == t { 0.0 } else { self.value(t) * (t_k - t) };
         self.offset + inside + outside
     }
 
@@ -213,9 +184,7 @@ impl Curve {
             Form::Table { t_k, .. } => t_k.clone(),
             Form::Segments { segments, .. } => {
                 let first = segments[0].range_k().0;
-                std::iter::once(first)
-                    .chain(segments.iter().map(|s| s.range_k().1))
-                    .collect()
+                std::iter::once(first).chain(segments.iter().map(|s| s.range_k().1)).collect()
             }
         }
     }
@@ -227,34 +196,21 @@ impl Curve {
     pub fn check_positive(&self, unit: &'static str) -> Result<(), MaterialError> {
         match &self.form {
             Form::Constant(value) if *value > 0.0 => Ok(()),
-            Form::Constant(value) => Err(MaterialFault::NotPositive {
-                value: *value,
-                unit,
-                at_c: None,
-            }
-            .into()),
+            Form::Constant(value) => Err(MaterialFault::NotPositive { value: *value, unit, at_c: None }.into()),
             Form::Table { t_k, value, .. } => match value.iter().position(|&v| v <= 0.0) {
                 None => Ok(()),
                 Some(i) => {
-                    let at_c = Some(t_k[i] - ZERO_CELSIUS_K);
-                    Err(MaterialFault::NotPositive {
-                        value: value[i],
-                        unit,
-                        at_c,
-                    }
-                    .into())
+                    let at_c = Some(celsius(t_k[i]));
+                    Err(MaterialFault::NotPositive { value: value[i], unit, at_c }.into())
                 }
             },
-            Form::Segments { segments, .. } => {
-                segments.iter().try_for_each(|s| s.check_positive(unit))
-            }
+            Form::Segments { segments, .. } => segments.iter().try_for_each(|s| s.check_positive(unit)),
         }
     }
 
     /// The temperature brought into the range of the data.
     fn held(&self, t_k: f64) -> f64 {
-        self.range_k()
-            .map_or(t_k, |(low, high)| t_k.clamp(low, high))
+        self.range_k().map_or(t_k, |(low, high)| t_k.clamp(low, high))
     }
 }
 
@@ -273,9 +229,5 @@ fn row(count: usize, begin: impl Fn(usize) -> f64, t: f64) -> usize {
 }
 
 fn finite(value: f64) -> Result<(), MaterialError> {
-    if value.is_finite() {
-        Ok(())
-    } else {
-        Err(MaterialFault::NotFinite { value }.into())
-    }
+    if value.is_finite() { Ok(()) } else { Err(MaterialFault::NotFinite { value }.into()) }
 }

@@ -124,6 +124,7 @@ impl TemperatureUnit {
     }
 
     /// Whether this is the scale taken where none is named.
+    #[allow(clippy::trivially_copy_pass_by_ref, reason = "the serialiser passes a reference")]
     fn is_default(&self) -> bool {
         *self == Self::default()
     }

@@ -5,12 +5,14 @@
 //! strictly rising function of temperature. Outside the range of the specific heat `h` continues linearly.
 
 use super::curve::{Curve, REFERENCE_K};
-use super::error::{MaterialError, MaterialFault, Property};
+use super::error::{MaterialError, MaterialFault, Property, celsius};
 use super::source::Source;
-use crate::constants::ZERO_CELSIUS_K;
 
 /// Narrowest melting range in kelvin.
 const LEAST_RANGE_K: f64 = 1.0;
+
+/// A relative Newton step that is round-off of `h(T)`.
+const ROUND_OFF: f64 = 4.0 * f64::EPSILON;
 
 /// Newton or bisection steps at most; bisection alone needs about 60.
 const MOST_STEPS: usize = 120;
@@ -44,12 +46,7 @@ impl Melting {
                 return Err(MaterialError::from(MaterialFault::NotFinite { value }).of(property));
             }
             if value <= 0.0 {
-                return Err(MaterialError::from(MaterialFault::NotPositive {
-                    value,
-                    unit,
-                    at_c: None,
-                })
-                .of(property));
+                return Err(MaterialError::from(MaterialFault::NotPositive { value, unit, at_c: None }).of(property));
             }
             Ok(())
         };
@@ -57,14 +54,8 @@ impl Melting {
         positive(self.liquidus_k, "K", Property::Liquidus)?;
         positive(self.latent_heat_j_per_kg, "J/kg", Property::LatentHeat)?;
         if self.liquidus_k < self.solidus_k {
-            let (solidus_c, liquidus_c) = (
-                self.solidus_k - ZERO_CELSIUS_K,
-                self.liquidus_k - ZERO_CELSIUS_K,
-            );
-            let fault = MaterialFault::LiquidusBelowSolidus {
-                solidus_c,
-                liquidus_c,
-            };
+            let (solidus_c, liquidus_c) = (celsius(self.solidus_k), celsius(self.liquidus_k));
+            let fault = MaterialFault::LiquidusBelowSolidus { solidus_c, liquidus_c };
             return Err(MaterialError::from(fault).of(Property::Liquidus));
         }
         Ok(())
@@ -88,9 +79,7 @@ impl Enthalpy {
     /// # Errors
     /// A specific heat that is not greater than zero everywhere; melting data that contradict themselves.
     pub fn new(specific_heat: &Curve, melting: Option<&Melting>) -> Result<Self, MaterialError> {
-        specific_heat
-            .check_positive("J/kg/K")
-            .map_err(|e| e.of(Property::SpecificHeat))?;
+        specific_heat.check_positive("J/kg/K").map_err(|e| e.of(Property::SpecificHeat))?;
         let mut knots_k = specific_heat.knots_k();
         let mut fusion = None;
         if let Some(melting) = melting {
@@ -104,30 +93,17 @@ impl Enthalpy {
         }
         knots_k.sort_by(f64::total_cmp);
         knots_k.dedup();
-        let mut enthalpy = Self {
-            specific_heat: specific_heat.clone(),
-            fusion,
-            knots_k,
-            knots_h: Vec::new(),
-        };
-        enthalpy.knots_h = enthalpy
-            .knots_k
-            .iter()
-            .map(|&t| enthalpy.value(t))
-            .collect();
+        let mut enthalpy = Self { specific_heat: specific_heat.clone(), fusion, knots_k, knots_h: Vec::new() };
+        enthalpy.knots_h = enthalpy.knots_k.iter().map(|&t| enthalpy.value(t)).collect();
         if let Some(&value) = enthalpy.knots_h.iter().find(|h| !h.is_finite()) {
-            return Err(
-                MaterialError::from(MaterialFault::NotFinite { value }).of(Property::SpecificHeat)
-            );
+            return Err(MaterialError::from(MaterialFault::NotFinite { value }).of(Property::SpecificHeat));
         }
         Ok(enthalpy)
     }
 
     /// Enthalpy in J/kg at `t_k` in kelvin.
     pub fn value(&self, t_k: f64) -> f64 {
-        let latent = self.fusion.map_or(0.0, |(begin, end, heat)| {
-            heat * ((t_k - begin) / (end - begin)).clamp(0.0, 1.0)
-        });
+        let latent = self.fusion.map_or(0.0, |(_, _, heat)| heat * self.liquid_fraction(t_k));
         self.specific_heat.integral(t_k) + latent
     }
 
@@ -142,9 +118,7 @@ impl Enthalpy {
 
     /// Liquid part of the mass at `t_k`, 0 to 1; 0 for a material without melting data.
     pub fn liquid_fraction(&self, t_k: f64) -> f64 {
-        self.fusion.map_or(0.0, |(begin, end, _)| {
-            ((t_k - begin) / (end - begin)).clamp(0.0, 1.0)
-        })
+        self.fusion.map_or(0.0, |(begin, end, _)| ((t_k - begin) / (end - begin)).clamp(0.0, 1.0))
     }
 
     /// Temperature in kelvin at which the enthalpy is `h` in J/kg: the inverse of [`Enthalpy::value`] to round-off.
@@ -152,18 +126,16 @@ impl Enthalpy {
     /// Every `h` has one, because `h(T)` rises strictly and is continued linearly; far below the data it may lie under
     /// absolute zero. NaN in, NaN out.
     pub fn temperature(&self, h: f64) -> f64 {
-        let last = self.knots_k.len() - 1;
-        let above = self.knots_h.partition_point(|&knot| knot <= h);
         if h.is_nan() {
             return h;
         }
+        let last = self.knots_k.len() - 1;
+        let above = self.knots_h.partition_point(|&knot| knot <= h);
         if above == 0 {
-            return self.knots_k[0]
-                + (h - self.knots_h[0]) / self.specific_heat.value(self.knots_k[0]);
+            return self.knots_k[0] + (h - self.knots_h[0]) / self.specific_heat.value(self.knots_k[0]);
         }
         if above > last {
-            return self.knots_k[last]
-                + (h - self.knots_h[last]) / self.specific_heat.value(self.knots_k[last]);
+            return self.knots_k[last] + (h - self.knots_h[last]) / self.specific_heat.value(self.knots_k[last]);
         }
         self.between(above - 1, h)
     }
@@ -175,21 +147,17 @@ impl Enthalpy {
         let mut t = low + share * (high - low);
         for _ in 0..MOST_STEPS {
             let excess = self.value(t) - h;
-            if excess == 0.0 {
-                return t;
-            }
             if excess > 0.0 {
                 high = t;
             } else {
                 low = t;
             }
             let newton = t - excess / self.slope(t);
-            let next = if newton > low && newton < high {
-                newton
-            } else {
-                low.midpoint(high)
-            };
-            if (next - t).abs() <= f64::EPSILON * t.abs() || next <= low || next >= high {
+            if (newton - t).abs() <= ROUND_OFF * t {
+                return newton.clamp(self.knots_k[i], self.knots_k[i + 1]);
+            }
+            let next = if newton > low && newton < high { newton } else { low.midpoint(high) };
+            if next <= low || next >= high {
                 return next;
             }
             t = next;

@@ -4,6 +4,8 @@
 
 use std::fmt;
 
+use crate::constants::ZERO_CELSIUS_K;
+
 /// A property of a material, named by its key in a file.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
 pub enum Property {
@@ -88,9 +90,7 @@ pub enum MaterialFault {
         at_c: Option<f64>,
     },
     /// The formula comes so close to zero, or varies so steeply, that it could not be shown to stay positive.
-    #[error(
-        "the formula could not be shown to stay greater than zero near {at_c} °C; use a table there"
-    )]
+    #[error("the formula could not be shown to stay greater than zero near {at_c} °C; use a table there")]
     PositivityUnclear {
         /// Temperature in °C.
         at_c: f64,
@@ -159,9 +159,7 @@ pub enum MaterialFault {
         begin_c: f64,
     },
     /// The pole of a rational segment lies in the segment, where the value would be infinite.
-    #[error(
-        "the pole at {at_c} °C lies inside its segment, {from_c} to {to_c} °C; end the segment before it"
-    )]
+    #[error("the pole at {at_c} °C lies inside its segment, {from_c} to {to_c} °C; end the segment before it")]
     PoleInside {
         /// Pole in °C.
         at_c: f64,
@@ -202,9 +200,7 @@ pub enum MaterialFault {
     #[error("`unit` stands beside a constant that carries its own unit; remove `unit`")]
     UnitTwice,
     /// Liquid before solid.
-    #[error(
-        "the liquidus {liquidus_c} °C is below the solidus {solidus_c} °C; exchange or correct them"
-    )]
+    #[error("the liquidus {liquidus_c} °C is below the solidus {solidus_c} °C; exchange or correct them")]
     LiquidusBelowSolidus {
         /// Solidus in °C.
         solidus_c: f64,
@@ -263,11 +259,7 @@ impl MaterialError {
 
 impl From<MaterialFault> for MaterialError {
     fn from(fault: MaterialFault) -> Self {
-        Self {
-            material: None,
-            property: None,
-            fault,
-        }
+        Self { material: None, property: None, fault }
     }
 }
 
@@ -281,5 +273,10 @@ fn place(material: Option<&str>, property: Option<Property>) -> String {
 }
 
 fn at(at_c: Option<f64>) -> String {
-    at_c.map_or_else(String::new, |t| format!(" at {t:.6} °C"))
+    at_c.map_or_else(String::new, |t| format!(" at {t} °C"))
+}
+
+/// Temperature in °C for a message, without the rounding of the conversion.
+pub(super) fn celsius(t_k: f64) -> f64 {
+    ((t_k - ZERO_CELSIUS_K) * 1e6).round() / 1e6
 }

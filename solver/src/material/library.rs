@@ -36,10 +36,7 @@ pub struct Library {
 /// A data file that does not hold together; it is read once, and the error is the same each time.
 pub fn library() -> Result<&'static Library, MaterialError> {
     static LIBRARY: OnceLock<Result<Library, MaterialError>> = OnceLock::new();
-    LIBRARY
-        .get_or_init(|| Library::read(&FILES))
-        .as_ref()
-        .map_err(Clone::clone)
+    LIBRARY.get_or_init(|| Library::read(&FILES)).as_ref().map_err(Clone::clone)
 }
 
 impl Library {
@@ -48,14 +45,9 @@ impl Library {
     /// # Errors
     /// Text that is not such a list, data that do not hold together, a value without a source, a name used twice.
     pub fn read(texts: &[&str]) -> Result<Self, MaterialError> {
-        let mut library = Self {
-            materials: Vec::new(),
-            places: BTreeMap::new(),
-        };
+        let mut library = Self { materials: Vec::new(), places: BTreeMap::new() };
         for text in texts {
-            let form = |error: serde_json::Error| MaterialFault::Form {
-                message: error.to_string(),
-            };
+            let form = |error: serde_json::Error| MaterialFault::Form { message: error.to_string() };
             let list: Vec<serde_json::Value> = serde_json::from_str(text).map_err(form)?;
             for value in &list {
                 let material = Material::try_from(MaterialData::from_json(value)?)?;
@@ -70,17 +62,9 @@ impl Library {
         let place = self.materials.len();
         for name in std::iter::once(&material.name).chain(&material.aliases) {
             if let Some(holder) = self.places.insert(key(name), place) {
-                let holder = self
-                    .materials
-                    .get(holder)
-                    .map_or_else(|| material.name.clone(), |m| m.name.clone());
-                let fault = MaterialFault::NameTaken {
-                    name: name.clone(),
-                    holder,
-                };
-                return Err(MaterialError::from(fault)
-                    .of(Property::Name)
-                    .in_material(&material.name));
+                let holder = self.materials.get(holder).map_or_else(|| material.name.clone(), |m| m.name.clone());
+                let fault = MaterialFault::NameTaken { name: name.clone(), holder };
+                return Err(MaterialError::from(fault).of(Property::Name).in_material(&material.name));
             }
         }
         self.materials.push(Arc::new(material));
@@ -94,10 +78,7 @@ impl Library {
 
     /// Names in the order of the data files, without aliases.
     pub fn names(&self) -> Vec<&str> {
-        self.materials
-            .iter()
-            .map(|material| material.name.as_str())
-            .collect()
+        self.materials.iter().map(|material| material.name.as_str()).collect()
     }
 
     /// All materials, in the order of the data files.
@@ -109,52 +90,28 @@ impl Library {
     pub fn suggest(&self, name: &str) -> Option<&str> {
         let wanted = key(name);
         let most = (wanted.chars().count() / 3).max(1);
-        let spellings = self
-            .materials
-            .iter()
-            .flat_map(|m| std::iter::once(&m.name).chain(&m.aliases));
-        let distances =
-            spellings.map(|s| (strsim::damerau_levenshtein(&wanted, &key(s)), s.as_str()));
+        let spellings = self.materials.iter().flat_map(|m| std::iter::once(&m.name).chain(&m.aliases));
+        let distances = spellings.map(|s| (strsim::damerau_levenshtein(&wanted, &key(s)), s.as_str()));
         let (distance, spelling) = distances.min_by_key(|(distance, _)| *distance)?;
-        (distance <= most).then_some(spelling)
+        (distance <= most && distance < wanted.chars().count()).then_some(spelling)
     }
 }
 
 /// The spelling by which names are compared.
 fn key(name: &str) -> String {
-    let kept = name
-        .chars()
-        .filter(|c| !c.is_whitespace() && !['-', '_', ','].contains(c));
+    let kept = name.chars().filter(|c| !c.is_whitespace() && !['-', '_', ','].contains(c));
     kept.flat_map(char::to_lowercase).collect()
 }
 
 fn require_sources(material: &Material) -> Result<(), MaterialError> {
     let sources: [(Property, Option<&Source>); 7] = [
         (Property::Density, Some(&material.density_source)),
-        (
-            Property::Resistivity,
-            material
-                .resistivity
-                .as_ref()
-                .map(super::curve::Curve::source),
-        ),
-        (
-            Property::ThermalConductivity,
-            Some(material.conductivity.source()),
-        ),
-        (
-            Property::SpecificHeat,
-            Some(material.specific_heat.source()),
-        ),
+        (Property::Resistivity, material.resistivity.as_ref().map(super::curve::Curve::source)),
+        (Property::ThermalConductivity, Some(material.conductivity.source())),
+        (Property::SpecificHeat, Some(material.specific_heat.source())),
         (Property::Emissivity, material.emissivity_source.as_ref()),
-        (
-            Property::Melting,
-            material.melting.as_ref().map(|m| &m.source),
-        ),
-        (
-            Property::Magnetic,
-            material.magnetic.as_ref().map(|m| &m.source),
-        ),
+        (Property::Melting, material.melting.as_ref().map(|m| &m.source)),
+        (Property::Magnetic, material.magnetic.as_ref().map(|m| &m.source)),
     ];
     for (property, source) in sources {
         if source.is_some_and(|s| s.kind == SourceKind::User || s.text.trim().is_empty()) {

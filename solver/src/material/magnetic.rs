@@ -27,9 +27,7 @@ impl Magnetic {
     ///
     /// `mu` is the value at 20 °C, or the weak-field value where none is given. `m` is [`reduced_polarisation`].
     pub fn relative_permeability(&self, t_k: f64) -> f64 {
-        let mu = self
-            .relative_permeability_20c
-            .unwrap_or(self.initial_relative_permeability);
+        let mu = self.relative_permeability_20c.unwrap_or(self.initial_relative_permeability);
         1.0 + (mu - 1.0) * self.relative_polarisation(t_k)
     }
 
@@ -49,27 +47,15 @@ impl Magnetic {
                 return Err(MaterialError::from(MaterialFault::NotFinite { value }).of(property));
             }
             if value < least {
-                return Err(
-                    MaterialError::from(MaterialFault::TooLow { value, least, unit }).of(property),
-                );
+                return Err(MaterialError::from(MaterialFault::TooLow { value, least, unit }).of(property));
             }
             Ok(())
         };
         if let Some(mu) = self.relative_permeability_20c {
             at_least(mu, 1.0, "", Property::Permeability20C)?;
         }
-        at_least(
-            self.initial_relative_permeability,
-            1.0,
-            "",
-            Property::InitialPermeability,
-        )?;
-        at_least(
-            self.saturation_polarisation_t,
-            f64::MIN_POSITIVE,
-            "T",
-            Property::SaturationPolarisation,
-        )?;
+        at_least(self.initial_relative_permeability, 1.0, "", Property::InitialPermeability)?;
+        at_least(self.saturation_polarisation_t, f64::MIN_POSITIVE, "T", Property::SaturationPolarisation)?;
         at_least(self.curie_k, REFERENCE_K + 1.0, "K", Property::Curie)
     }
 }
@@ -83,7 +69,5 @@ pub fn reduced_polarisation(tau: f64) -> f64 {
     }
     let tau = tau.max(0.0);
     let squared = tau * tau;
-    (1.0 - 0.35 * tau * tau.sqrt() - 0.65 * squared * squared)
-        .max(0.0)
-        .cbrt()
+    (1.0 - 0.35 * tau * tau.sqrt() - 0.65 * squared * squared).max(0.0).cbrt()
 }

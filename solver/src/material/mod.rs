@@ -21,8 +21,8 @@ mod units;
 
 pub use curve::Curve;
 pub use data::{
-    CurveData, EmissivityData, MagneticData, MaterialData, MeltingData, PoleData, QuantityData,
-    SegmentData, TemperatureUnit, Written,
+    CurveData, EmissivityData, MagneticData, MaterialData, MeltingData, PoleData, QuantityData, SegmentData,
+    TemperatureUnit, Written,
 };
 pub use enthalpy::{Enthalpy, Melting};
 pub use error::{MaterialError, MaterialFault, Property};

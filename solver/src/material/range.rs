@@ -2,6 +2,7 @@
 
 use std::fmt;
 
+use super::curve::Curve;
 use super::error::Property;
 use super::substance::Material;
 use crate::constants::ZERO_CELSIUS_K;
@@ -41,13 +42,9 @@ impl RangeNote {
     /// On which side, and by how much.
     pub fn side(&self) -> RangeUse {
         if self.used_k < self.range_k.0 {
-            RangeUse::Below {
-                by_k: self.range_k.0 - self.used_k,
-            }
+            RangeUse::Below { by_k: self.range_k.0 - self.used_k }
         } else {
-            RangeUse::Above {
-                by_k: self.used_k - self.range_k.1,
-            }
+            RangeUse::Above { by_k: self.used_k - self.range_k.1 }
         }
     }
 }
@@ -82,22 +79,15 @@ impl Material {
         ];
         let mut notes = Vec::new();
         for (property, curve) in curves {
-            let Some(range_k) = curve.and_then(|c| c.range_k()) else {
+            let Some(range_k) = curve.and_then(Curve::range_k) else {
                 continue;
             };
-            let mut note = |used_k| {
-                notes.push(RangeNote {
-                    material: self.name.clone(),
-                    property,
-                    used_k,
-                    range_k,
-                })
-            };
+            let note = |used_k| RangeNote { material: self.name.clone(), property, used_k, range_k };
             if t_min_k < range_k.0 - ROUNDING_K {
-                note(t_min_k);
+                notes.push(note(t_min_k));
             }
             if t_max_k > range_k.1 + ROUNDING_K {
-                note(t_max_k);
+                notes.push(note(t_max_k));
             }
         }
         notes

@@ -3,8 +3,7 @@
 //!
 //! Source of the form: EN 1993-1-2:2005, 3.4.1.2, whose specific heat of steel near 735 °C is written with such poles.
 
-use super::error::{MaterialError, MaterialFault};
-use crate::constants::ZERO_CELSIUS_K;
+use super::error::{MaterialError, MaterialFault, celsius};
 
 /// How many pieces a segment is cut into at most to show that it stays positive.
 const PIECES: usize = 4096;
@@ -44,16 +43,13 @@ impl Segment {
         pole: Option<Pole>,
     ) -> Result<Self, MaterialError> {
         let pole_numbers = pole.iter().flat_map(|p| [p.numerator, p.at]);
-        let numbers = [from_k, to_k, zero_k]
-            .into_iter()
-            .chain(polynomial.iter().copied())
-            .chain(pole_numbers);
+        let numbers = [from_k, to_k, zero_k].into_iter().chain(polynomial.iter().copied()).chain(pole_numbers);
         for value in numbers {
             if !value.is_finite() {
                 return Err(MaterialFault::NotFinite { value }.into());
             }
         }
-        let (from_c, to_c) = (from_k - ZERO_CELSIUS_K, to_k - ZERO_CELSIUS_K);
+        let (from_c, to_c) = (celsius(from_k), celsius(to_k));
         if from_k < 0.0 {
             return Err(MaterialFault::BelowAbsoluteZero { at_c: from_c }.into());
         }
@@ -64,16 +60,10 @@ impl Segment {
             && p.at >= from_k - zero_k
             && p.at <= to_k - zero_k
         {
-            let at_c = p.at + zero_k - ZERO_CELSIUS_K;
+            let at_c = celsius(p.at + zero_k);
             return Err(MaterialFault::PoleInside { at_c, from_c, to_c }.into());
         }
-        Ok(Self {
-            from_k,
-            to_k,
-            zero_k,
-            polynomial,
-            pole,
-        })
+        Ok(Self { from_k, to_k, zero_k, polynomial, pole })
     }
 
     /// Begin and end in kelvin.
@@ -93,10 +83,7 @@ impl Segment {
         let x = t_k - self.zero_k;
         let powers = self.polynomial.iter().enumerate().skip(1).rev();
         let polynomial = powers.fold(0.0, |sum, (k, a)| sum * x + k as f64 * a);
-        polynomial
-            - self
-                .pole
-                .map_or(0.0, |p| p.numerator / ((x - p.at) * (x - p.at)))
+        polynomial - self.pole.map_or(0.0, |p| p.numerator / ((x - p.at) * (x - p.at)))
     }
 
     /// Exact integral from the begin of the segment to `t_k` (inside it), in the unit of the property times kelvin.
@@ -108,10 +95,7 @@ impl Segment {
         };
         let polynomial = antiderivative(x) - antiderivative(x0);
         // ln((x - p)/(x0 - p)): the ratio is positive because the pole is outside the segment.
-        polynomial
-            + self
-                .pole
-                .map_or(0.0, |p| p.numerator * ((x - x0) / (x0 - p.at)).ln_1p())
+        polynomial + self.pole.map_or(0.0, |p| p.numerator * ((x - x0) / (x0 - p.at)).ln_1p())
     }
 
     /// Whether the formula is greater than zero on the whole segment, shown by bounds and not by samples.
@@ -128,36 +112,31 @@ impl Segment {
             for t in [a, middle, b] {
                 let value = self.value(t);
                 if value.is_nan() || value <= 0.0 {
-                    return Err(MaterialFault::NotPositive {
-                        value,
-                        unit,
-                        at_c: Some(t - ZERO_CELSIUS_K),
-                    }
-                    .into());
+                    return Err(MaterialFault::NotPositive { value, unit, at_c: Some(celsius(t)) }.into());
                 }
             }
-            if self.value(middle) <= 0.5 * (b - a) * self.steepest(a, b) {
+            // Taylor: f(middle + x) >= f - |f'| x - max|f''| x^2 / 2.
+            let half = 0.5 * (b - a);
+            let fall = half * (self.slope(middle).abs() + 0.5 * half * self.most_curved(a, b));
+            if self.value(middle) <= fall {
                 pending.extend([(middle, b), (a, middle)]);
             }
         }
         match pending.pop() {
             None => Ok(()),
-            Some((a, _)) => Err(MaterialFault::PositivityUnclear {
-                at_c: a - ZERO_CELSIUS_K,
-            }
-            .into()),
+            Some((a, _)) => Err(MaterialFault::PositivityUnclear { at_c: celsius(a) }.into()),
         }
     }
 
-    /// An upper bound of `|slope|` between two temperatures of the segment, per kelvin.
-    fn steepest(&self, a_k: f64, b_k: f64) -> f64 {
+    /// An upper bound of the magnitude of the second derivative between two temperatures of the segment, per kelvin squared.
+    fn most_curved(&self, a_k: f64, b_k: f64) -> f64 {
         let (a, b) = (a_k - self.zero_k, b_k - self.zero_k);
         let largest = a.abs().max(b.abs());
-        let powers = self.polynomial.iter().enumerate().skip(1).rev();
-        let polynomial = powers.fold(0.0, |sum, (k, c)| sum * largest + k as f64 * c.abs());
+        let powers = self.polynomial.iter().enumerate().skip(2).rev();
+        let polynomial = powers.fold(0.0, |sum, (k, c)| sum * largest + (k * (k - 1)) as f64 * c.abs());
         let pole = self.pole.map_or(0.0, |p| {
             let distance = (a - p.at).abs().min((b - p.at).abs());
-            p.numerator.abs() / (distance * distance)
+            2.0 * p.numerator.abs() / distance.powi(3)
         });
         polynomial + pole
     }

@@ -49,10 +49,7 @@ pub struct Source {
 impl Source {
     /// Source of a value that came without one.
     pub fn unstated() -> Self {
-        Self {
-            kind: SourceKind::User,
-            text: "no source stated".to_owned(),
-        }
+        Self { kind: SourceKind::User, text: "no source stated".to_owned() }
     }
 }
 

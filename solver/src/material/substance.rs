@@ -1,7 +1,7 @@
 //! A material as the solver uses it: validated, SI, kelvin.
 
 use super::curve::Curve;
-use super::data::MaterialData;
+use super::data::{CurveData, EmissivityData, MagneticData, MaterialData, MeltingData, QuantityData, Written};
 use super::enthalpy::{Enthalpy, Melting};
 use super::error::{MaterialError, MaterialFault, Property};
 use super::magnetic::Magnetic;
@@ -43,16 +43,12 @@ pub struct Material {
 impl Material {
     /// Electrical conductivity in S/m at `t_k` in kelvin; 0 for an insulator.
     pub fn electrical_conductivity_s_per_m(&self, t_k: f64) -> f64 {
-        self.resistivity
-            .as_ref()
-            .map_or(0.0, |resistivity| 1.0 / resistivity.value(t_k))
+        self.resistivity.as_ref().map_or(0.0, |resistivity| 1.0 / resistivity.value(t_k))
     }
 
     /// Relative permeability at `t_k` in kelvin, linear in the field; 1 without magnetic data.
     pub fn relative_permeability(&self, t_k: f64) -> f64 {
-        self.magnetic
-            .as_ref()
-            .map_or(1.0, |magnetic| magnetic.relative_permeability(t_k))
+        self.magnetic.as_ref().map_or(1.0, |magnetic| magnetic.relative_permeability(t_k))
     }
 
     /// A material from the JSON object [`MaterialData`] describes.
@@ -80,15 +76,8 @@ impl MaterialData {
                 Some((property, message)) => (Some(property), message),
                 None => (None, error.to_string()),
             };
-            let material = value
-                .get("name")
-                .and_then(serde_json::Value::as_str)
-                .map(str::to_owned);
-            MaterialError {
-                material,
-                property,
-                fault: MaterialFault::Form { message },
-            }
+            let material = value.get("name").and_then(serde_json::Value::as_str).map(str::to_owned);
+            MaterialError { material, property, fault: MaterialFault::Form { message } }
         })
     }
 }
@@ -97,32 +86,15 @@ impl MaterialData {
 type Reader = fn(&serde_json::Value) -> Result<(), String>;
 
 const PARTS: [(Property, Reader); 7] = [
-    (
-        Property::Density,
-        reads::<super::data::Written<String, super::data::QuantityData>>,
-    ),
-    (
-        Property::Resistivity,
-        reads::<super::data::Written<String, super::data::CurveData>>,
-    ),
-    (
-        Property::ThermalConductivity,
-        reads::<super::data::Written<String, super::data::CurveData>>,
-    ),
-    (
-        Property::SpecificHeat,
-        reads::<super::data::Written<String, super::data::CurveData>>,
-    ),
-    (
-        Property::Emissivity,
-        reads::<super::data::Written<f64, super::data::EmissivityData>>,
-    ),
-    (Property::Melting, reads::<super::data::MeltingData>),
-    (Property::Magnetic, reads::<super::data::MagneticData>),
+    (Property::Density, reads::<Written<String, QuantityData>>),
+    (Property::Resistivity, reads::<Written<String, CurveData>>),
+    (Property::ThermalConductivity, reads::<Written<String, CurveData>>),
+    (Property::SpecificHeat, reads::<Written<String, CurveData>>),
+    (Property::Emissivity, reads::<Written<f64, EmissivityData>>),
+    (Property::Melting, reads::<MeltingData>),
+    (Property::Magnetic, reads::<MagneticData>),
 ];
 
 fn reads<T: serde::de::DeserializeOwned>(value: &serde_json::Value) -> Result<(), String> {
-    serde_json::from_value::<T>(value.clone())
-        .map(|_| ())
-        .map_err(|error| error.to_string())
+    serde_json::from_value::<T>(value.clone()).map(|_| ()).map_err(|error| error.to_string())
 }

@@ -1,6 +1,6 @@
 //! Engineers' units of material data and their factors to SI. Temperatures are written in °C, K or °F.
 
-use super::error::{MaterialError, MaterialFault};
+use super::error::{MaterialError, MaterialFault, celsius};
 use crate::constants::ZERO_CELSIUS_K;
 
 /// A physical dimension of material data: its SI unit, the units accepted in words, and their factors.
@@ -21,44 +21,23 @@ pub(super) const DENSITY: Dimension = Dimension {
 pub(super) const RESISTIVITY: Dimension = Dimension {
     si: "ohm m",
     accepted: "ohm m, uohm m, uohm cm, nohm m, ohm mm2/m (ohm may be Ω, u may be µ)",
-    factors: &[
-        ("ohmm", 1.0),
-        ("uohmm", 1e-6),
-        ("uohmcm", 1e-8),
-        ("nohmm", 1e-9),
-        ("ohmmm2/m", 1e-6),
-    ],
+    factors: &[("ohmm", 1.0), ("uohmm", 1e-6), ("uohmcm", 1e-8), ("nohmm", 1e-9), ("ohmmm2/m", 1e-6)],
 };
 
-pub(super) const THERMAL_CONDUCTIVITY: Dimension = Dimension {
-    si: "W/m/K",
-    accepted: "W/m/K, W/(m K)",
-    factors: &[("W/m/K", 1.0), ("W/mK", 1.0)],
-};
+pub(super) const THERMAL_CONDUCTIVITY: Dimension =
+    Dimension { si: "W/m/K", accepted: "W/m/K, W/(m K)", factors: &[("W/m/K", 1.0), ("W/mK", 1.0)] };
 
 pub(super) const SPECIFIC_HEAT: Dimension = Dimension {
     si: "J/kg/K",
     accepted: "J/kg/K, J/(kg K), kJ/kg/K, kJ/(kg K), J/g/K",
-    factors: &[
-        ("J/kg/K", 1.0),
-        ("J/kgK", 1.0),
-        ("kJ/kg/K", 1e3),
-        ("kJ/kgK", 1e3),
-        ("J/g/K", 1e3),
-    ],
+    factors: &[("J/kg/K", 1.0), ("J/kgK", 1.0), ("kJ/kg/K", 1e3), ("kJ/kgK", 1e3), ("J/g/K", 1e3)],
 };
 
-pub(super) const LATENT_HEAT: Dimension = Dimension {
-    si: "J/kg",
-    accepted: "kJ/kg, J/g, J/kg",
-    factors: &[("J/kg", 1.0), ("kJ/kg", 1e3), ("J/g", 1e3)],
-};
+pub(super) const LATENT_HEAT: Dimension =
+    Dimension { si: "J/kg", accepted: "kJ/kg, J/g, J/kg", factors: &[("J/kg", 1.0), ("kJ/kg", 1e3), ("J/g", 1e3)] };
 
-pub(super) const POLARISATION: Dimension = Dimension {
-    si: "T",
-    accepted: "T, mT",
-    factors: &[("T", 1.0), ("mT", 1e-3)],
-};
+pub(super) const POLARISATION: Dimension =
+    Dimension { si: "T", accepted: "T, mT", factors: &[("T", 1.0), ("mT", 1e-3)] };
 
 const TEMPERATURES: &str = "°C, K, °F";
 
@@ -69,17 +48,8 @@ impl Dimension {
     /// A unit that is not one of this dimension.
     pub(super) fn factor(&self, unit: &str) -> Result<f64, MaterialError> {
         let written = plain(unit);
-        let found = self
-            .factors
-            .iter()
-            .find(|(spelling, _)| *spelling == written);
-        let unknown = || {
-            MaterialFault::UnknownUnit {
-                written: unit.to_owned(),
-                accepted: self.accepted,
-            }
-            .into()
-        };
+        let found = self.factors.iter().find(|(spelling, _)| *spelling == written);
+        let unknown = || MaterialFault::UnknownUnit { written: unit.to_owned(), accepted: self.accepted }.into();
         found.map(|(_, factor)| *factor).ok_or_else(unknown)
     }
 
@@ -90,10 +60,7 @@ impl Dimension {
     pub(super) fn factor_of(&self, unit: Option<&str>) -> Result<f64, MaterialError> {
         match unit {
             Some(unit) => self.factor(unit),
-            None => Err(MaterialFault::UnitMissing {
-                accepted: self.accepted,
-            }
-            .into()),
+            None => Err(MaterialFault::UnitMissing { accepted: self.accepted }.into()),
         }
     }
 
@@ -104,11 +71,7 @@ impl Dimension {
     pub(super) fn parse(&self, text: &str) -> Result<f64, MaterialError> {
         let (number, unit) = split(text, self.accepted)?;
         let value = number * self.factor(unit)?;
-        if value.is_finite() {
-            Ok(value)
-        } else {
-            Err(MaterialFault::NotFinite { value }.into())
-        }
+        if value.is_finite() { Ok(value) } else { Err(MaterialFault::NotFinite { value }.into()) }
     }
 }
 
@@ -123,18 +86,11 @@ pub(super) fn parse_temperature(text: &str) -> Result<f64, MaterialError> {
         "K" => number,
         "°F" | "degF" => (number - 32.0) / 1.8 + ZERO_CELSIUS_K,
         _ => {
-            return Err(MaterialFault::UnknownUnit {
-                written: unit.to_owned(),
-                accepted: TEMPERATURES,
-            }
-            .into());
+            return Err(MaterialFault::UnknownUnit { written: unit.to_owned(), accepted: TEMPERATURES }.into());
         }
     };
     if kelvin < 0.0 {
-        return Err(MaterialFault::BelowAbsoluteZero {
-            at_c: kelvin - ZERO_CELSIUS_K,
-        }
-        .into());
+        return Err(MaterialFault::BelowAbsoluteZero { at_c: celsius(kelvin) }.into());
     }
     Ok(kelvin)
 }
@@ -142,20 +98,9 @@ pub(super) fn parse_temperature(text: &str) -> Result<f64, MaterialError> {
 /// The number at the front of a text and the unit behind it.
 fn split<'a>(text: &'a str, accepted: &'static str) -> Result<(f64, &'a str), MaterialError> {
     let trimmed = text.trim();
-    let refused = || MaterialFault::NotAQuantity {
-        written: text.to_owned(),
-        accepted,
-    };
-    let cut = |end: usize| {
-        Some((
-            trimmed.get(..end)?.trim_end().parse::<f64>().ok()?,
-            trimmed.get(end..)?.trim(),
-        ))
-    };
-    let (number, unit) = (1..=trimmed.len())
-        .rev()
-        .find_map(cut)
-        .ok_or_else(refused)?;
+    let refused = || MaterialFault::NotAQuantity { written: text.to_owned(), accepted };
+    let cut = |end: usize| Some((trimmed.get(..end)?.trim_end().parse::<f64>().ok()?, trimmed.get(end..)?.trim()));
+    let (number, unit) = (1..=trimmed.len()).rev().find_map(cut).ok_or_else(refused)?;
     if !number.is_finite() {
         return Err(MaterialFault::NotFinite { value: number }.into());
     }

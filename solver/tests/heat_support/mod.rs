@@ -1,6 +1,6 @@
 //! Small heat problems for the tests: slices of endless cylinders and bodies in air. SI units.
 #![allow(dead_code, reason = "each test file uses a part of this")]
-#![allow(clippy::unwrap_used, clippy::missing_panics_doc, reason = "tests")]
+#![allow(clippy::unwrap_used, unreachable_pub, reason = "tests")]
 
 use std::sync::Arc;
 

@@ -4,9 +4,7 @@
 //! default one. A slice between two mirror planes stands for the endless cylinder.
 
 use mesher::Outline;
-use solver::model::{
-    Face, FaceCondition, Gauge, GaugeKind, Heating, Hold, Mirrors, Model, Stage, StageEnd, Surface,
-};
+use solver::model::{Face, FaceCondition, Gauge, GaugeKind, Heating, Hold, Mirrors, Model, Stage, StageEnd, Surface};
 use solver::observe::Silent;
 
 use crate::check::{CaseError, Check};
@@ -29,14 +27,9 @@ fn slice(condition: Option<FaceCondition>, fourier: f64, resistivity: f64, hold:
     let material = models::thermal_material(resistivity, 1.0, CONDUCTIVITY, SPECIFIC_HEAT, DENSITY)?;
     let mut bar = models::part("bar", outline, material);
     bar.faces = condition.map(|c| (Face::Outside, c)).into_iter().collect();
-    let mut model =
-        models::in_field(vec![bar], 1000.0, 2e4, Mirrors::Two { lower_m: 0.0, upper_m: length });
-    let gauge = |name: &str, r| Gauge {
-        name: name.to_owned(),
-        kind: GaugeKind::Thermocouple,
-        part: 0,
-        at: [r, 0.5 * length],
-    };
+    let mut model = models::in_field(vec![bar], 1000.0, 2e4, Mirrors::Two { lower_m: 0.0, upper_m: length });
+    let gauge =
+        |name: &str, r| Gauge { name: name.to_owned(), kind: GaugeKind::Thermocouple, part: 0, at: [r, 0.5 * length] };
     model.gauges = vec![gauge("core", 0.0), gauge("surface", RADIUS_M)];
     model.heating = Some(Heating {
         ambient_k: models::START_K,
@@ -76,10 +69,8 @@ fn constant_flux(checks: &mut Vec<Check>) -> Result<(), CaseError> {
 
 fn convection(checks: &mut Vec<Check>) -> Result<(), CaseError> {
     let (biot, start_k) = (1.0, models::START_K + 500.0);
-    let exchange = FaceCondition::Exchange(Surface {
-        emissivity: 0.0,
-        convection_w_per_m2_k: biot * CONDUCTIVITY / RADIUS_M,
-    });
+    let exchange =
+        FaceCondition::Exchange(Surface { emissivity: 0.0, convection_w_per_m2_k: biot * CONDUCTIVITY / RADIUS_M });
     for fourier in [0.2, 1.0] {
         let mut model = slice(Some(exchange), fourier, f64::INFINITY, Hold::Off)?;
         model.parts[0].start_k = start_k;

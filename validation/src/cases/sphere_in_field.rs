@@ -30,9 +30,12 @@ pub(super) fn run() -> Result<Vec<Check>, CaseError> {
     let mut checks = Vec::new();
     let whole = Mirrors::None;
     let half = Mirrors::One { z_m: 0.0 };
-    for (ratio, mu, mirrors, how) in
-        [(1.0, 1.0, whole, "whole"), (8.0, 1.0, whole, "whole"), (8.0, 1.0, half, "mirrored"), (8.0, 50.0, whole, "whole")]
-    {
+    for (ratio, mu, mirrors, how) in [
+        (1.0, 1.0, whole, "whole"),
+        (8.0, 1.0, whole, "whole"),
+        (8.0, 1.0, half, "mirrored"),
+        (8.0, 50.0, whole, "whole"),
+    ] {
         let resistivity = models::resistivity_for(RADIUS_M / ratio, FREQUENCY_HZ, mu);
         let peak_t = MU0 * FIELD_A_PER_M_RMS * std::f64::consts::SQRT_2;
         checks.push(Check {

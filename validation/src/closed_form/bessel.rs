@@ -4,9 +4,7 @@
 //! Source: `complex-bessel` (Amos, ACM TOMS 644) for the functions; DLMF 10.22.2, 10.35 and 11.6.1 for the moment.
 
 use super::error::ClosedFormError;
-use complex_bessel::{
-    Scaling, besseli_scaled, besselj, besselj_scaled, besselj_seq, besselk_scaled,
-};
+use complex_bessel::{Scaling, besseli_scaled, besselj, besselj_scaled, besselj_seq, besselk_scaled};
 use num_complex::Complex64;
 use std::f64::consts::PI;
 
@@ -21,39 +19,21 @@ fn wrap(
     z: Complex64,
     value: Result<Complex64, complex_bessel::Error>,
 ) -> Result<Complex64, ClosedFormError> {
-    value.map_err(|reason| ClosedFormError::Bessel {
-        place,
-        order,
-        re: z.re,
-        im: z.im,
-        reason,
-    })
+    value.map_err(|reason| ClosedFormError::Bessel { place, order, re: z.re, im: z.im, reason })
 }
 
 /// `exp(-|Im z|) J_n(z)`.
-pub(crate) fn j_scaled(
-    place: &'static str,
-    n: f64,
-    z: Complex64,
-) -> Result<Complex64, ClosedFormError> {
+pub(crate) fn j_scaled(place: &'static str, n: f64, z: Complex64) -> Result<Complex64, ClosedFormError> {
     wrap(place, n, z, besselj_scaled(n, z))
 }
 
 /// `exp(-Re z) I_n(z)`, for `Re z >= 0`.
-pub(crate) fn i_scaled(
-    place: &'static str,
-    n: f64,
-    z: Complex64,
-) -> Result<Complex64, ClosedFormError> {
+pub(crate) fn i_scaled(place: &'static str, n: f64, z: Complex64) -> Result<Complex64, ClosedFormError> {
     wrap(place, n, z, besseli_scaled(n, z))
 }
 
 /// `exp(z) K_n(z)`.
-pub(crate) fn k_scaled(
-    place: &'static str,
-    n: f64,
-    z: Complex64,
-) -> Result<Complex64, ClosedFormError> {
+pub(crate) fn k_scaled(place: &'static str, n: f64, z: Complex64) -> Result<Complex64, ClosedFormError> {
     wrap(place, n, z, besselk_scaled(n, z))
 }
 
@@ -89,13 +69,7 @@ pub(crate) fn moment_j1(place: &'static str, x: f64) -> Result<f64, ClosedFormEr
     let z = Complex64::from(x);
     let orders = (1.3 * x) as usize + 30;
     let values = besselj_seq(0.0, z, orders, Scaling::Unscaled)
-        .map_err(|reason| ClosedFormError::Bessel {
-            place,
-            order: 0.0,
-            re: x,
-            im: 0.0,
-            reason,
-        })?
+        .map_err(|reason| ClosedFormError::Bessel { place, order: 0.0, re: x, im: 0.0, reason })?
         .values;
     let odd: f64 = values.iter().skip(1).step_by(2).rev().map(|v| v.re).sum();
     let first = values.first().map_or(0.0, |v| v.re);

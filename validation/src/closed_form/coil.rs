@@ -43,14 +43,7 @@ pub struct FlatConductor {
 impl Coil {
     pub(crate) fn check(&self) -> Result<(), ClosedFormError> {
         positive(PLACE, "inner", self.inner, "m")?;
-        within(
-            PLACE,
-            "outer",
-            self.outer,
-            "m",
-            self.outer > self.inner,
-            "greater than the inner radius",
-        )?;
+        within(PLACE, "outer", self.outer, "m", self.outer > self.inner, "greater than the inner radius")?;
         positive(PLACE, "length", self.length, "m")?;
         positive(PLACE, "turns", self.turns, "turns")
     }
@@ -167,10 +160,7 @@ impl FlatConductor {
 /// `e^x - 1` without cancellation near zero.
 fn expm1(x: Complex64) -> Complex64 {
     let half_sine = (0.5 * x.im).sin();
-    Complex64::new(
-        x.re.exp_m1() * x.im.cos() - 2.0 * half_sine * half_sine,
-        x.re.exp() * x.im.sin(),
-    )
+    Complex64::new(x.re.exp_m1() * x.im.cos() - 2.0 * half_sine * half_sine, x.re.exp() * x.im.sin())
 }
 
 /// Change of impedance, ohm, of one filament loop of `radius` (m) at height `lift_off` (m) above a flat conductor.

@@ -30,25 +30,13 @@ impl AxialCylinder {
     ///
     /// # Errors
     /// [`ClosedFormError::Argument`] unless all are positive; [`ClosedFormError::Bessel`] beyond the library's range.
-    pub fn new(
-        radius: f64,
-        resistivity: f64,
-        mu_r: f64,
-        frequency: f64,
-    ) -> Result<Self, ClosedFormError> {
+    pub fn new(radius: f64, resistivity: f64, mu_r: f64, frequency: f64) -> Result<Self, ClosedFormError> {
         positive(PLACE, "radius", radius, "m")?;
         let delta = skin_depth(resistivity, mu_r, frequency)?;
         let k = Complex64::new(1.0, -1.0) / delta;
         let j0 = j_scaled(PLACE, 0.0, k * radius)?;
         let j1 = j_scaled(PLACE, 1.0, k * radius)?;
-        Ok(Self {
-            radius,
-            resistivity,
-            delta,
-            k,
-            j0,
-            ratio: j1 / j0,
-        })
+        Ok(Self { radius, resistivity, delta, k, j0, ratio: j1 / j0 })
     }
 
     /// Skin depth `delta`, m.
@@ -83,11 +71,7 @@ impl AxialCylinder {
     ///
     /// # Errors
     /// [`ClosedFormError::Argument`] if `r` is not within the cylinder.
-    pub fn current_density_squared_peak(
-        &self,
-        r: f64,
-        h0_peak: f64,
-    ) -> Result<f64, ClosedFormError> {
+    pub fn current_density_squared_peak(&self, r: f64, h0_peak: f64) -> Result<f64, ClosedFormError> {
         Ok((h0_peak * self.k * self.scaled_at(1.0, r)?).norm_sqr())
     }
 
@@ -101,14 +85,7 @@ impl AxialCylinder {
 
     /// `J_n(kr)/J0(ka)` without overflow.
     fn scaled_at(&self, order: f64, r: f64) -> Result<Complex64, ClosedFormError> {
-        within(
-            PLACE,
-            "r",
-            r,
-            "m",
-            (0.0..=self.radius).contains(&r),
-            "from 0 to the radius",
-        )?;
+        within(PLACE, "r", r, "m", (0.0..=self.radius).contains(&r), "from 0 to the radius")?;
         let decay = ((r - self.radius) / self.delta).exp();
         Ok(j_scaled(PLACE, order, self.k * r)? * decay / self.j0)
     }

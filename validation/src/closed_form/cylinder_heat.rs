@@ -17,22 +17,8 @@ const SMALLEST_FO: f64 = 1e-6;
 
 /// Checks the arguments the series share.
 fn check(place: &'static str, fo: f64, x: f64) -> Result<(), ClosedFormError> {
-    within(
-        place,
-        "fo",
-        fo,
-        "(no unit)",
-        fo >= SMALLEST_FO,
-        "at least 1e-6",
-    )?;
-    within(
-        place,
-        "r_over_radius",
-        x,
-        "(no unit)",
-        (0.0..=1.0).contains(&x),
-        "from 0 to 1",
-    )
+    within(place, "fo", fo, "(no unit)", fo >= SMALLEST_FO, "at least 1e-6")?;
+    within(place, "r_over_radius", x, "(no unit)", (0.0..=1.0).contains(&x), "from 0 to 1")
 }
 
 /// Rise `(T - T0) k/(q R)`, no unit, of a cylinder under a constant surface flux `q`.
@@ -74,30 +60,14 @@ pub struct ConvectionTerm {
 pub fn convection_term(bi: f64, n: u32) -> Result<ConvectionTerm, ClosedFormError> {
     const PLACE: &str = "cylinder_heat::convection_term";
     positive(PLACE, "bi", bi, "(no unit)")?;
-    within(
-        PLACE,
-        "n",
-        f64::from(n),
-        "(no unit)",
-        (1..=100_000).contains(&n),
-        "from 1 to 100000",
-    )?;
-    let low = if n == 1 {
-        0.0
-    } else {
-        bessel_zero(PLACE, 1, n - 1)?
-    };
+    within(PLACE, "n", f64::from(n), "(no unit)", (1..=100_000).contains(&n), "from 1 to 100000")?;
+    let low = if n == 1 { 0.0 } else { bessel_zero(PLACE, 1, n - 1)? };
     let high = bessel_zero(PLACE, 0, n)?;
     // Counted from the lower end the function has one sign before the root and the other after it.
     let sign = if n % 2 == 1 { 1.0 } else { -1.0 };
-    let zeta = bisect(low, high, |z| {
-        Ok(sign * (z * j_real(PLACE, 1.0, z)? - bi * j_real(PLACE, 0.0, z)?))
-    })?;
+    let zeta = bisect(low, high, |z| Ok(sign * (z * j_real(PLACE, 1.0, z)? - bi * j_real(PLACE, 0.0, z)?)))?;
     let (j0, j1) = (j_real(PLACE, 0.0, zeta)?, j_real(PLACE, 1.0, zeta)?);
-    Ok(ConvectionTerm {
-        zeta,
-        coefficient: 2.0 / zeta * j1 / (j0 * j0 + j1 * j1),
-    })
+    Ok(ConvectionTerm { zeta, coefficient: 2.0 / zeta * j1 / (j0 * j0 + j1 * j1) })
 }
 
 /// `(T - Ta)/(T0 - Ta)`, no unit, of a cylinder that exchanges heat with surroundings at `Ta`.
@@ -113,8 +83,7 @@ pub fn convection_ratio(bi: f64, fo: f64, r_over_radius: f64) -> Result<f64, Clo
     for n in 1_u32.. {
         let term = convection_term(bi, n)?;
         let exponent = term.zeta * term.zeta * fo;
-        sum +=
-            term.coefficient * (-exponent).exp() * j_real(PLACE, 0.0, term.zeta * r_over_radius)?;
+        sum += term.coefficient * (-exponent).exp() * j_real(PLACE, 0.0, term.zeta * r_over_radius)?;
         if exponent > EXPONENT_CUT {
             break;
         }
@@ -141,9 +110,7 @@ pub fn core_surface_factor(radius_over_delta: f64) -> Result<f64, ClosedFormErro
     let rule = Quadrature::new(PLACE, 1e-13);
     // Distances from the surface in skin depths; 20 of them hold all the power.
     let deepest = 1.0 - (20.0 / x).min(1.0);
-    let edges: Vec<f64> = (0..=16)
-        .map(|i| deepest + (1.0 - deepest) * f64::from(i) / 16.0)
-        .collect();
+    let edges: Vec<f64> = (0..=16).map(|i| deepest + (1.0 - deepest) * f64::from(i) / 16.0).collect();
     let power = rule.integrate(&edges, |s| Ok(Complex64::from(source(s)?)))?;
     let moment = rule.integrate(&edges, |s| Ok(Complex64::from(-source(s)? * s.ln())))?;
     Ok(1.0 - 2.0 * moment.re / power.re)
@@ -156,9 +123,7 @@ fn bessel_zero(place: &'static str, order: u32, n: u32) -> Result<f64, ClosedFor
     let guess = (f64::from(n) + 0.5 * f64::from(order) - 0.25) * PI;
     let nu = f64::from(order);
     let sign = if n % 2 == 1 { -1.0 } else { 1.0 };
-    bisect(guess - 0.3, guess + 0.3, |z| {
-        Ok(sign * j_real(place, nu, z)?)
-    })
+    bisect(guess - 0.3, guess + 0.3, |z| Ok(sign * j_real(place, nu, z)?))
 }
 
 /// Root of `f` between `low`, where it is negative, and `high`, where it is positive, to the last bit.

@@ -39,9 +39,7 @@ pub enum ClosedFormError {
         reason: complex_bessel::Error,
     },
     /// A complete elliptic integral could not be evaluated.
-    #[error(
-        "{place}: elliptic integral at parameter {parameter}: {reason}; the loops or filaments coincide"
-    )]
+    #[error("{place}: elliptic integral at parameter {parameter}: {reason}; the loops or filaments coincide")]
     Elliptic {
         /// Function that needed the value.
         place: &'static str,
@@ -97,14 +95,7 @@ pub(crate) fn not_negative(
     value: f64,
     unit: &'static str,
 ) -> Result<(), ClosedFormError> {
-    within(
-        place,
-        name,
-        value,
-        unit,
-        value >= 0.0,
-        "zero or positive, and finite",
-    )
+    within(place, name, value, unit, value >= 0.0, "zero or positive, and finite")
 }
 
 /// Accepts any finite number.
@@ -126,15 +117,5 @@ pub(crate) fn within(
     holds: bool,
     limit: &'static str,
 ) -> Result<(), ClosedFormError> {
-    if value.is_finite() && holds {
-        Ok(())
-    } else {
-        Err(ClosedFormError::Argument {
-            place,
-            name,
-            value,
-            unit,
-            limit,
-        })
-    }
+    if value.is_finite() && holds { Ok(()) } else { Err(ClosedFormError::Argument { place, name, value, unit, limit }) }
 }

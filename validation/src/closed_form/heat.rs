@@ -41,14 +41,7 @@ impl LumpedRadiator {
         positive(PLACE, "start", start, "K")?;
         let ts = self.surroundings;
         let between = (end > ts && end <= start) || (end < ts && end >= start);
-        within(
-            PLACE,
-            "end",
-            end,
-            "K",
-            end > 0.0 && between,
-            "between the start and the surroundings",
-        )?;
+        within(PLACE, "end", end, "K", end > 0.0 && between, "between the start and the surroundings")?;
         let rate = self.emissivity * STEFAN_BOLTZMANN * self.area / self.heat_capacity;
         if ts <= RADIATION_SERIES * end.min(start) {
             return Ok((radiation_series(end, ts) - radiation_series(start, ts)) / rate);
@@ -77,14 +70,7 @@ fn radiation_series(t: f64, ts: f64) -> f64 {
 /// [`ClosedFormError::Argument`] unless `0 <= lambda <= 20`.
 pub fn stefan_number(lambda: f64) -> Result<f64, ClosedFormError> {
     let holds = (0.0..=20.0).contains(&lambda);
-    within(
-        "heat::stefan_number",
-        "lambda",
-        lambda,
-        "(no unit)",
-        holds,
-        "from 0 to 20",
-    )?;
+    within("heat::stefan_number", "lambda", lambda, "(no unit)", holds, "from 0 to 20")?;
     let x = 2.0 * lambda * lambda;
     let (mut term, mut total, mut n) = (x, 0.0_f64, 1.0);
     while term > 1e-18 * total {
@@ -103,14 +89,7 @@ pub fn stefan_number(lambda: f64) -> Result<f64, ClosedFormError> {
 /// [`ClosedFormError::Argument`] unless `0 < stefan <= 1e6`.
 pub fn stefan_lambda(stefan: f64) -> Result<f64, ClosedFormError> {
     let holds = stefan > 0.0 && stefan <= 1e6;
-    within(
-        "heat::stefan_lambda",
-        "stefan",
-        stefan,
-        "(no unit)",
-        holds,
-        "above 0 and at most 1e6",
-    )?;
+    within("heat::stefan_lambda", "stefan", stefan, "(no unit)", holds, "above 0 and at most 1e6")?;
     // The function is at least 2 lambda^2, so the root lies below sqrt(St/2); 4.1 is above the root for St = 1e6.
     let (mut low, mut high) = (0.0_f64, (0.5 * stefan).sqrt().min(4.1));
     for _ in 0..200 {
@@ -173,11 +152,7 @@ pub fn half_space_flux_rise(
 ///
 /// # Errors
 /// [`ClosedFormError::Argument`] unless radius (m) and conductivity (W/(m K)) are positive.
-pub fn steady_generation_difference(
-    generation: f64,
-    radius: f64,
-    conductivity: f64,
-) -> Result<f64, ClosedFormError> {
+pub fn steady_generation_difference(generation: f64, radius: f64, conductivity: f64) -> Result<f64, ClosedFormError> {
     const PLACE: &str = "heat::steady_generation_difference";
     finite(PLACE, "generation", generation, "W/m^3")?;
     positive(PLACE, "radius", radius, "m")?;

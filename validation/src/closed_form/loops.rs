@@ -27,14 +27,7 @@ fn pair(a: f64, b: f64, distance: f64) -> Result<Pair, ClosedFormError> {
     positive(PLACE, "b", b, "m")?;
     finite(PLACE, "distance", distance, "m")?;
     let (far, near) = ((a + b).hypot(distance), (a - b).hypot(distance));
-    within(
-        PLACE,
-        "distance",
-        distance,
-        "m",
-        near > 0.0,
-        "such that the loops do not coincide",
-    )?;
+    within(PLACE, "distance", distance, "m", near > 0.0, "such that the loops do not coincide")?;
     let sum = far + near;
     let k1 = 4.0 * a * b / (sum * sum);
     let complement = 4.0 * far * near / (sum * sum);
@@ -43,13 +36,7 @@ fn pair(a: f64, b: f64, distance: f64) -> Result<Pair, ClosedFormError> {
         parameter: complement,
         reason,
     })?;
-    Ok(Pair {
-        far,
-        near,
-        k1,
-        complement,
-        rd,
-    })
+    Ok(Pair { far, near, k1, complement, rd })
 }
 
 /// Mutual inductance `M`, H, of coaxial loops of radii `a` and `b` (m) in planes `distance` (m) apart.
@@ -70,11 +57,7 @@ pub fn mutual_inductance(a: f64, b: f64, distance: f64) -> Result<f64, ClosedFor
 pub fn mutual_inductance_slope(a: f64, b: f64, distance: f64) -> Result<f64, ClosedFormError> {
     let p = pair(a, b, distance)?;
     let parameter = p.k1 * p.k1;
-    let e = ellipe(parameter).map_err(|reason| ClosedFormError::Elliptic {
-        place: PLACE,
-        parameter,
-        reason,
-    })?;
+    let e = ellipe(parameter).map_err(|reason| ClosedFormError::Elliptic { place: PLACE, parameter, reason })?;
     let bracket = e / p.complement - p.rd / 6.0;
     Ok(-4.0 * MU0 * (a * b).sqrt() * p.k1.powf(1.5) * distance / (p.far * p.near) * bracket)
 }
@@ -85,13 +68,7 @@ pub fn mutual_inductance_slope(a: f64, b: f64, distance: f64) -> Result<f64, Clo
 ///
 /// # Errors
 /// As [`mutual_inductance`].
-pub fn axial_force(
-    a: f64,
-    b: f64,
-    distance: f64,
-    current_a: f64,
-    current_b: f64,
-) -> Result<f64, ClosedFormError> {
+pub fn axial_force(a: f64, b: f64, distance: f64, current_a: f64, current_b: f64) -> Result<f64, ClosedFormError> {
     Ok(current_a * current_b * mutual_inductance_slope(a, b, distance)?)
 }
 
@@ -108,21 +85,10 @@ pub enum WireCurrent {
 ///
 /// # Errors
 /// [`ClosedFormError::Argument`] unless `0 < wire_radius < radius` (m).
-pub fn ring_inductance(
-    radius: f64,
-    wire_radius: f64,
-    current: WireCurrent,
-) -> Result<f64, ClosedFormError> {
+pub fn ring_inductance(radius: f64, wire_radius: f64, current: WireCurrent) -> Result<f64, ClosedFormError> {
     const RING: &str = "loops::ring_inductance";
     positive(RING, "wire_radius", wire_radius, "m")?;
-    within(
-        RING,
-        "radius",
-        radius,
-        "m",
-        radius > wire_radius,
-        "greater than the wire radius",
-    )?;
+    within(RING, "radius", radius, "m", radius > wire_radius, "greater than the wire radius")?;
     let constant = match current {
         WireCurrent::Uniform => 1.75,
         WireCurrent::SurfaceOnly => 2.0,

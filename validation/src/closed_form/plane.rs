@@ -14,12 +14,7 @@ const SERIES_UP_TO: f64 = 0.5;
 /// # Errors
 /// [`ClosedFormError::Argument`] unless the argument is positive.
 pub fn slab_factor(t_over_delta: f64) -> Result<f64, ClosedFormError> {
-    positive(
-        "plane::slab_factor",
-        "t_over_delta",
-        t_over_delta,
-        "(no unit)",
-    )?;
+    positive("plane::slab_factor", "t_over_delta", t_over_delta, "(no unit)")?;
     let u = t_over_delta;
     if u <= SERIES_UP_TO {
         // sinh u - sin u = 2 (u^3/3! + u^7/7! + ...)

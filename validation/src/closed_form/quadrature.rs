@@ -29,11 +29,7 @@ pub(crate) struct Quadrature {
 impl Quadrature {
     /// A quadrature for the function called `place`, with a relative tolerance.
     pub(crate) fn new(place: &'static str, relative: f64) -> Self {
-        Self {
-            place,
-            rule: GaussLegendre::new(POINTS),
-            relative,
-        }
+        Self { place, rule: GaussLegendre::new(POINTS), relative }
     }
 
     /// Integral of `f` over one panel by the plain rule.
@@ -91,9 +87,7 @@ impl Quadrature {
             let fine = left + right;
             let change = fine - coarse;
             let round_off = 16.0 * f64::EPSILON * coarse.norm();
-            if change.re.abs() <= allowed.re.max(round_off)
-                && change.im.abs() <= allowed.im.max(round_off)
-            {
+            if change.re.abs() <= allowed.re.max(round_off) && change.im.abs() <= allowed.im.max(round_off) {
                 total += fine;
             } else if depth < HALVINGS && change.norm().is_finite() {
                 stack.push((a, middle, left, depth + 1));
@@ -113,18 +107,10 @@ impl Quadrature {
 }
 
 /// Edges of equal panels on `[0, top]`, none wider than `width`.
-pub(crate) fn equal_panels(
-    place: &'static str,
-    top: f64,
-    width: f64,
-) -> Result<Vec<f64>, ClosedFormError> {
+pub(crate) fn equal_panels(place: &'static str, top: f64, width: f64) -> Result<Vec<f64>, ClosedFormError> {
     let panels = (top / width).ceil().max(1.0);
     if panels.is_nan() || panels > PANEL_LIMIT {
-        return Err(ClosedFormError::TooManyPanels {
-            place,
-            panels,
-            limit: PANEL_LIMIT,
-        });
+        return Err(ClosedFormError::TooManyPanels { place, panels, limit: PANEL_LIMIT });
     }
     let count = panels as u32;
     Ok((0..=count).map(|i| top * f64::from(i) / panels).collect())

@@ -37,25 +37,14 @@ pub struct Rod {
 /// # Errors
 /// [`ClosedFormError::Argument`] for an impossible coil or a rod that touches it, [`ClosedFormError::TooManyPanels`] for a
 /// gap far below the length, [`ClosedFormError::Quadrature`] if the integral does not settle.
-pub fn impedance_change(
-    coil: &Coil,
-    rod: &Rod,
-    frequency: f64,
-) -> Result<Complex64, ClosedFormError> {
+pub fn impedance_change(coil: &Coil, rod: &Rod, frequency: f64) -> Result<Complex64, ClosedFormError> {
     coil.check()?;
     positive(PLACE, "radius", rod.radius, "m")?;
     positive(PLACE, "resistivity", rod.resistivity, "ohm m")?;
     positive(PLACE, "mu_r", rod.mu_r, "(no unit)")?;
     positive(PLACE, "frequency", frequency, "Hz")?;
     let gap = coil.inner - rod.radius;
-    within(
-        PLACE,
-        "radius",
-        rod.radius,
-        "m",
-        gap > 0.0,
-        "less than the inner radius of the coil",
-    )?;
+    within(PLACE, "radius", rod.radius, "m", gap > 0.0, "less than the inner radius of the coil")?;
     let w = 2.0 * PI * frequency;
     let rule = Quadrature::new(PLACE, RELATIVE);
     let width = 2.0 * PI / coil.length.max(coil.outer);

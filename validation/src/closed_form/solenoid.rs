@@ -17,21 +17,10 @@ const PLACE: &str = "solenoid::nagaoka_factor";
 /// [`ClosedFormError::Argument`] outside that range.
 pub fn nagaoka_factor(diameter_over_length: f64) -> Result<f64, ClosedFormError> {
     let u = diameter_over_length;
-    within(
-        PLACE,
-        "diameter_over_length",
-        u,
-        "(no unit)",
-        u > 0.0 && u <= 1000.0,
-        "above 0 and at most 1000",
-    )?;
+    within(PLACE, "diameter_over_length", u, "(no unit)", u > 0.0 && u <= 1000.0, "above 0 and at most 1000")?;
     let complement = 1.0 / (1.0 + u * u);
     let k = u * complement.sqrt();
-    let wrap = |reason| ClosedFormError::Elliptic {
-        place: PLACE,
-        parameter: complement,
-        reason,
-    };
+    let wrap = |reason| ClosedFormError::Elliptic { place: PLACE, parameter: complement, reason };
     let first = elliprf(0.0, complement, 1.0).map_err(wrap)?;
     // (K - E)/k^2 = R_D(0, k'^2, 1)/3
     let difference = elliprd(0.0, complement, 1.0).map_err(wrap)? / 3.0;
@@ -59,12 +48,7 @@ pub fn solenoid_inductance(turns: f64, radius: f64, length: f64) -> Result<f64, 
 ///
 /// # Errors
 /// [`ClosedFormError::Argument`] unless `radius` and `length` (m) are positive.
-pub fn sheet_axis_field(
-    current_per_length: f64,
-    radius: f64,
-    length: f64,
-    z: f64,
-) -> Result<f64, ClosedFormError> {
+pub fn sheet_axis_field(current_per_length: f64, radius: f64, length: f64, z: f64) -> Result<f64, ClosedFormError> {
     const SHEET: &str = "solenoid::sheet_axis_field";
     finite(SHEET, "current_per_length", current_per_length, "A/m")?;
     positive(SHEET, "radius", radius, "m")?;

@@ -29,21 +29,11 @@ impl UniformFieldSphere {
     ///
     /// # Errors
     /// [`ClosedFormError::Argument`] unless all are positive.
-    pub fn new(
-        radius: f64,
-        resistivity: f64,
-        mu_r: f64,
-        frequency: f64,
-    ) -> Result<Self, ClosedFormError> {
+    pub fn new(radius: f64, resistivity: f64, mu_r: f64, frequency: f64) -> Result<Self, ClosedFormError> {
         positive(PLACE, "radius", radius, "m")?;
         let delta = skin_depth(resistivity, mu_r, frequency)?;
         let excess = excess(Complex64::new(1.0, 1.0) * (radius / delta));
-        Ok(Self {
-            radius,
-            frequency,
-            mu_r,
-            excess,
-        })
+        Ok(Self { radius, frequency, mu_r, excess })
     }
 
     /// Magnetic dipole moment `m = 2 pi a^3 (B0/mu0)(2 mu_r - g)/(mu_r + g)`, A m^2 peak, in a peak field `b0_peak` (T).
@@ -58,8 +48,7 @@ impl UniformFieldSphere {
     /// `pi w^2 B0^2 a^5/(15 rho)` for `mu_r = 1`.
     pub fn power(&self, b0_peak: f64) -> f64 {
         let w = 2.0 * PI * self.frequency;
-        let imaginary =
-            3.0 * self.mu_r * self.excess.im / (self.mu_r + 2.0 + self.excess).norm_sqr();
+        let imaginary = 3.0 * self.mu_r * self.excess.im / (self.mu_r + 2.0 + self.excess).norm_sqr();
         w * PI * self.radius.powi(3) * b0_peak * b0_peak / MU0 * imaginary
     }
 }

@@ -25,22 +25,9 @@ impl AxialTube {
     ///
     /// # Errors
     /// [`ClosedFormError::Argument`] unless all are positive and `inner < outer`.
-    pub fn new(
-        inner: f64,
-        outer: f64,
-        resistivity: f64,
-        mu_r: f64,
-        frequency: f64,
-    ) -> Result<Self, ClosedFormError> {
+    pub fn new(inner: f64, outer: f64, resistivity: f64, mu_r: f64, frequency: f64) -> Result<Self, ClosedFormError> {
         positive(PLACE, "inner", inner, "m")?;
-        within(
-            PLACE,
-            "outer",
-            outer,
-            "m",
-            outer > inner,
-            "greater than the inner radius",
-        )?;
+        within(PLACE, "outer", outer, "m", outer > inner, "greater than the inner radius")?;
         let delta = skin_depth(resistivity, mu_r, frequency)?;
         let kappa = Complex64::new(1.0, 1.0) / delta;
         let (xi, xo) = (kappa * inner, kappa * outer);
@@ -53,20 +40,13 @@ impl AxialTube {
         let decay_u = (-(xo.re - xi.re)).exp();
         // Everything at the outer wall is divided by e^{Re(xo - xi)}.
         let at_outer = |n: f64| -> Result<(Complex64, Complex64), ClosedFormError> {
-            Ok((
-                i_scaled(PLACE, n, xo)? * b,
-                k_scaled(PLACE, n, xo)? * a * decay_v * decay_u,
-            ))
+            Ok((i_scaled(PLACE, n, xo)? * b, k_scaled(PLACE, n, xo)? * a * decay_v * decay_u))
         };
         let (u0, v0) = at_outer(0.0)?;
         let (u1, v1) = at_outer(1.0)?;
         let field_outer = u0 + v0;
         let field_inner = i_scaled(PLACE, 0.0, xi)? * b + k_scaled(PLACE, 0.0, xi)? * a;
-        Ok(Self {
-            outer,
-            impedance: z * (u1 - v1) / field_outer,
-            bore: field_inner * decay_u / field_outer,
-        })
+        Ok(Self { outer, impedance: z * (u1 - v1) / field_outer, bore: field_inner * decay_u / field_outer })
     }
 
     /// Surface impedance at the outer wall `-E_phi/H_z`, ohm.

@@ -30,8 +30,5 @@ pub fn internal_impedance_ratios(radius_over_delta: f64) -> Result<WireRatios, C
     let z = Complex64::new(1.0, -1.0) * radius_over_delta;
     let ratio = 0.5 * z * j_scaled(PLACE, 0.0, z)? / j_scaled(PLACE, 1.0, z)?;
     let uniform_reactance = 0.25 * radius_over_delta * radius_over_delta;
-    Ok(WireRatios {
-        resistance: ratio.re,
-        inductance: ratio.im / uniform_reactance,
-    })
+    Ok(WireRatios { resistance: ratio.re, inductance: ratio.im / uniform_reactance })
 }

@@ -1,6 +1,6 @@
 //! The sheet a picture is drawn on: text, lines and boxes at twice the final resolution, then reduced and encoded.
 //! Convention: coordinates are pixels of the finished picture, from its upper left corner, y downwards. Text is set in
-//! the embedded font DejaVu Sans (licence beside it in `assets/`), so a picture needs nothing of the machine it is made on.
+//! the embedded font `DejaVu Sans` (licence beside it in `assets/`), so a picture needs nothing of the machine it is made on.
 
 use plotters::backend::{BitMapBackend, DrawingBackend};
 use plotters::style::{Color, FontDesc, FontFamily, FontStyle, FontTransform, RGBColor, TextStyle, register_font};
@@ -121,10 +121,11 @@ impl Canvas {
     /// Fills the space between two curves over the same abscissae.
     pub(super) fn band(&mut self, lower: &[[f64; 2]], upper: &[[f64; 2]], colour: Rgb) -> Result<(), PictureError> {
         let fine = |p: &[f64; 2]| p.map(|v| (v * OVERSAMPLING as f64).round() as i32);
-        let outline: Vec<(i32, i32)> =
-            upper.iter().chain(lower.iter().rev()).map(fine).map(|[x, y]| (x, y)).collect();
+        let outline: Vec<(i32, i32)> = upper.iter().chain(lower.iter().rev()).map(fine).map(|[x, y]| (x, y)).collect();
         let style = ink(colour).filled();
-        self.backend().fill_polygon(outline, &style).map_err(|e| PictureError::Draw { what: "a band", reason: e.to_string() })
+        self.backend()
+            .fill_polygon(outline, &style)
+            .map_err(|e| PictureError::Draw { what: "a band", reason: e.to_string() })
     }
 
     fn backend(&mut self) -> BitMapBackend<'_> {

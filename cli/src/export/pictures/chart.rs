@@ -91,14 +91,16 @@ impl Panel {
         let zero = self.from_zero.then_some(0.0);
         let [low, high] = span(lines.chain(bands).chain(zero));
         let (low, high) = if self.from_zero && low == 0.0 && high == 0.0 { (0.0, 1.0) } else { (low, high) };
-        round_range(low, high, count).into()
+        // Room above, so that a line does not run along the frame.
+        round_range(low, high + 0.02 * (high - low), count).into()
     }
 
-    /// Draws the panel; axes of a panel without values run from 0 to 1.
-    pub(super) fn draw(&self, canvas: &mut Canvas, place: Place) -> Result<(), PictureError> {
+    /// Draws the panel; axes of a panel without values run from 0 to 1. True where the marks bear numbers that the legend
+    /// must explain.
+    pub(super) fn draw(&self, canvas: &mut Canvas, place: Place) -> Result<bool, PictureError> {
         let Place { from, to } = place;
         let x_count = ((to[0] - from[0]) / 110.0).clamp(2.0, 12.0) as usize;
-        let y_count = ((to[1] - from[1]) / 62.0).clamp(2.0, 10.0) as usize;
+        let y_count = ((to[1] - from[1]) / 50.0).clamp(2.0, 10.0) as usize;
         let x = self.x_range();
         let x = if x[1] - x[0] > 0.0 { x } else { round_range(x[0], x[1], x_count).into() };
         let y = self.y_range(y_count);
@@ -129,7 +131,13 @@ impl Panel {
     }
 
     /// Tick labels and names of the axes.
-    fn grid(&self, canvas: &mut Canvas, place: Place, ranges: [[f64; 2]; 2], counts: [usize; 2]) -> Result<(), PictureError> {
+    fn grid(
+        &self,
+        canvas: &mut Canvas,
+        place: Place,
+        ranges: [[f64; 2]; 2],
+        counts: [usize; 2],
+    ) -> Result<(), PictureError> {
         let Place { from, to } = place;
         let fraction = |v: f64, r: [f64; 2]| (v - r[0]) / (r[1] - r[0]);
         let values = ticks(ranges[0][0], ranges[0][1], counts[0]);
@@ -149,31 +157,56 @@ impl Panel {
         canvas.text_upwards(&self.y_label, [from[0] - 105.0, middle], lettering(LABEL_SIZE, Align::Centre))
     }
 
-    /// Draws the legend of the lines and bands, from `at` downwards; returns the height used.
-    pub(super) fn legend(&self, canvas: &mut Canvas, at: [f64; 2], size: [f64; 2]) -> Result<f64, PictureError> {
-        let named: Vec<(&Series, &String)> = self.series.iter().filter_map(|s| s.name.as_ref().map(|n| (s, n))).collect();
+    /// Draws the legend of lines and bands, and of marks where they are numbered, from `at` downwards.
+    pub(super) fn legend(
+        &self,
+        canvas: &mut Canvas,
+        at: [f64; 2],
+        size: [f64; 2],
+        numbered: bool,
+    ) -> Result<(), PictureError> {
+        let lines =
+            self.series.iter().filter_map(|s| s.name.as_ref().map(|name| (Sample::Line(s.style), name.clone())));
+        let bands = self.bands.iter().map(|b| (Sample::Band(b.colour), b.name.clone()));
+        let marks = self.marks.iter().enumerate().filter(|_| numbered);
+        let marks = marks.map(|(i, m)| (Sample::Number(i + 1), m.name.clone()));
+        let entries: Vec<(Sample, String)> = lines.chain(bands).chain(marks).collect();
         let room = (size[1] / LEGEND_ROW).max(1.0) as usize;
-        let total = named.len() + self.bands.len();
-        let shown = if total > room { room - 1 } else { total };
-        let mut y = at[1];
-        for (series, name) in named.iter().take(shown) {
-            let middle = y + 0.5 * LEGEND_ROW;
-            let Style { colour, dashes, width } = series.style;
-            canvas.polyline(&[[at[0], middle], [at[0] + 64.0, middle]], width, colour, dashes);
+        let shown = if entries.len() > room { room - 1 } else { entries.len() };
+        let mut middle = at[1] + 0.5 * LEGEND_ROW;
+        for (sample, name) in &entries[..shown] {
+            sample.draw(canvas, [at[0], middle])?;
             entry(canvas, name, [at[0] + 78.0, middle + 8.0], size[0] - 78.0)?;
-            y += LEGEND_ROW;
+            middle += LEGEND_ROW;
         }
-        for band in self.bands.iter().take(shown.saturating_sub(named.len())) {
-            canvas.fill([at[0], y + 8.0], [at[0] + 64.0, y + LEGEND_ROW - 8.0], band.colour);
-            entry(canvas, &band.name, [at[0] + 78.0, y + 0.5 * LEGEND_ROW + 8.0], size[0] - 78.0)?;
-            y += LEGEND_ROW;
+        if entries.len() > shown {
+            let text = format!("and {} more", entries.len() - shown);
+            entry(canvas, &text, [at[0] + 78.0, middle + 8.0], size[0] - 78.0)?;
         }
-        if total > shown {
-            let text = format!("and {} more", total - shown);
-            entry(canvas, &text, [at[0] + 78.0, y + 0.5 * LEGEND_ROW + 8.0], size[0] - 78.0)?;
-            y += LEGEND_ROW;
+        Ok(())
+    }
+}
+
+/// What stands before a name in a legend.
+enum Sample {
+    Line(Style),
+    Band(Rgb),
+    Number(usize),
+}
+
+impl Sample {
+    fn draw(&self, canvas: &mut Canvas, at: [f64; 2]) -> Result<(), PictureError> {
+        match self {
+            Self::Line(style) => {
+                canvas.polyline(&[at, [at[0] + 64.0, at[1]]], style.width, style.colour, style.dashes);
+            }
+            Self::Band(colour) => canvas.fill([at[0], at[1] - 11.0], [at[0] + 64.0, at[1] + 11.0], *colour),
+            Self::Number(number) => {
+                let style = Lettering { size: TICK_SIZE, align: Align::Right, colour: GREY_INK };
+                canvas.text(&number.to_string(), [at[0] + 64.0, at[1] + 8.0], style)?;
+            }
         }
-        Ok(y - at[1])
+        Ok(())
     }
 }
 
@@ -184,9 +217,9 @@ fn entry(canvas: &mut Canvas, text: &str, at: [f64; 2], width: f64) -> Result<()
 
 /// Least and greatest of the finite values; `[0, 1]` without any.
 fn span(values: impl Iterator<Item = f64>) -> [f64; 2] {
-    let found = values.filter(|v| v.is_finite()).fold(None, |range: Option<[f64; 2]>, v| {
-        Some(range.map_or([v, v], |[low, high]| [low.min(v), high.max(v)]))
-    });
+    let found = values
+        .filter(|v| v.is_finite())
+        .fold(None, |range: Option<[f64; 2]>, v| Some(range.map_or([v, v], |[low, high]| [low.min(v), high.max(v)])));
     found.unwrap_or([0.0, 1.0])
 }
 
@@ -218,33 +251,59 @@ fn draw_band(canvas: &mut Canvas, band: &Band, at: impl Fn([f64; 2]) -> [f64; 2]
     Ok(())
 }
 
-/// Names of marks above the panel, in as many rows as they need to stand clear of each other.
-fn name_marks(canvas: &mut Canvas, place: Place, marks: &[(f64, &str)]) -> Result<(), PictureError> {
-    const SIZE: f64 = 23.0;
-    let mut rows: Vec<f64> = Vec::new();
-    let mut placed = Vec::new();
-    for &(x, name) in marks {
-        let text = canvas.shortened(name, SIZE, 0.6 * (place.to[0] - place.from[0]))?;
-        let width = canvas.text_width(&text, SIZE)?;
-        let left = (x - 0.5 * width).min(place.to[0] + 60.0 - width).max(place.from[0] - 60.0);
-        let row = rows.iter().position(|&end| end < left).unwrap_or(rows.len());
-        if row == rows.len() {
-            rows.push(f64::NEG_INFINITY);
-        }
-        rows[row] = left + width + 18.0;
-        placed.push((x, left, width, row, text));
+/// A name of a mark in its place: the mark's abscissa, left end, width and row.
+struct MarkName {
+    x: f64,
+    left: f64,
+    width: f64,
+    row: usize,
+    text: String,
+}
+
+/// Names of marks above the panel, in rows where they stand clear of each other; true where they found room only as
+/// numbers, to be explained in the legend. Numbers without room are left out.
+fn name_marks(canvas: &mut Canvas, place: Place, marks: &[(f64, &str)]) -> Result<bool, PictureError> {
+    let full: Vec<(f64, String)> = marks.iter().map(|&(x, name)| (x, name.to_owned())).collect();
+    let mut names = arrange(canvas, place, &full)?;
+    let numbered = names.iter().any(|n| n.row >= MARK_ROWS);
+    if numbered {
+        let numbers: Vec<(f64, String)> = marks.iter().enumerate().map(|(i, m)| (m.0, (i + 1).to_string())).collect();
+        names = arrange(canvas, place, &numbers)?;
+        names.retain(|n| n.row < MARK_ROWS);
     }
     // Leaders first, from the farthest row down, so that a nearer name covers the leader behind it.
-    placed.sort_by_key(|p| std::cmp::Reverse(p.3));
-    for (x, left, width, row, text) in placed {
+    names.sort_by_key(|n| std::cmp::Reverse(n.row));
+    for MarkName { x, left, width, row, text } in names {
         let baseline = place.from[1] - 12.0 - MARK_ROW * row as f64;
         canvas.polyline(&[[x, place.from[1]], [x, baseline + 6.0]], 1.2, GREY_INK, &[]);
         canvas.fill([left - 4.0, baseline - 19.0], [left + width + 4.0, baseline + 6.0], PAPER);
-        canvas.text(&text, [left, baseline], Lettering { size: SIZE, align: Align::Left, colour: GREY_INK })?;
+        canvas.text(&text, [left, baseline], Lettering { size: MARK_SIZE, align: Align::Left, colour: GREY_INK })?;
     }
-    Ok(())
+    Ok(numbered)
 }
 
+/// Puts each name into the lowest row in which it stands clear of the names before it.
+fn arrange(canvas: &mut Canvas, place: Place, names: &[(f64, String)]) -> Result<Vec<MarkName>, PictureError> {
+    let mut ends: Vec<f64> = Vec::new();
+    let mut arranged = Vec::new();
+    for (x, name) in names {
+        let text = canvas.shortened(name, MARK_SIZE, 0.6 * (place.to[0] - place.from[0]))?;
+        let width = canvas.text_width(&text, MARK_SIZE)?;
+        let left = (x - 0.5 * width).min(place.to[0] + 60.0 - width).max(place.from[0] - 60.0);
+        let row = ends.iter().position(|&end| end < left).unwrap_or(ends.len());
+        if row == ends.len() {
+            ends.push(f64::NEG_INFINITY);
+        }
+        ends[row] = left + width + 18.0;
+        arranged.push(MarkName { x: *x, left, width, row, text });
+    }
+    Ok(arranged)
+}
+
+/// Size of names of marks.
+const MARK_SIZE: f64 = 23.0;
+/// Most rows of names of marks.
+pub(super) const MARK_ROWS: usize = 3;
 /// Distance of rows of names of marks.
 pub(super) const MARK_ROW: f64 = 30.0;
 
@@ -252,7 +311,7 @@ pub(super) const MARK_ROW: f64 = 30.0;
 mod tests {
     #![allow(clippy::unwrap_used, reason = "tests")]
 
-    use super::{Panel, Place, Series, style};
+    use super::{Mark, Panel, Place, Series, style};
     use crate::export::pictures::canvas::{Canvas, PAPER};
 
     const PLACE: Place = Place { from: [150.0, 50.0], to: [750.0, 450.0] };
@@ -262,23 +321,43 @@ mod tests {
         let series = vec![Series { name: Some("line".into()), points, style: style(0) }];
         let panel = Panel { x_label: "t in s".into(), y_label: "T in \u{b0}C".into(), series, ..Panel::default() };
         panel.draw(&mut canvas, PLACE).unwrap();
-        panel.legend(&mut canvas, [770.0, 50.0], [120.0, 300.0]).unwrap();
+        panel.legend(&mut canvas, [770.0, 50.0], [120.0, 300.0], false).unwrap();
         canvas
     }
 
     #[test]
-    fn a_line_runs_between_the_corners_of_its_range() {
-        let mut canvas = drawn(vec![[0.0, 0.0], [100.0, 1000.0]]);
+    fn a_line_runs_where_its_values_are() {
+        // The scale ends at 1000, the next tick above 950.
+        let mut canvas = drawn(vec![[0.0, 0.0], [100.0, 950.0]]);
         let image = canvas.fine_pixels();
-        assert_eq!(image.pixel(2 * 350, 2 * 450 - 2 * 400 / 3 - 1), style(0).colour, "at a third of both ranges");
+        let y = 450.0 - 400.0 * 0.95 / 3.0;
+        assert_eq!(image.pixel(2 * 350, (2.0 * y) as usize), style(0).colour, "at a third of the time");
     }
 
     #[test]
     fn lines_without_points_numbers_or_extent_draw_their_axes() {
-        for points in [vec![], vec![[0.0, f64::NAN]], vec![[1.0, 5.0]], vec![[0.0, 5.0], [10.0, 5.0]], vec![[f64::NAN, 1.0]]] {
+        for points in
+            [vec![], vec![[0.0, f64::NAN]], vec![[1.0, 5.0]], vec![[0.0, 5.0], [10.0, 5.0]], vec![[f64::NAN, 1.0]]]
+        {
             let mut canvas = drawn(points);
             assert_ne!(canvas.fine_pixels().pixel(2 * 150, 2 * 300), PAPER, "left axis");
         }
+    }
+
+    #[test]
+    fn names_of_crowded_marks_become_numbers() {
+        let marks = |count: usize| {
+            let mark = |i: usize| Mark { x: 50.0 + i as f64, name: format!("surface at Curie {i}") };
+            (0..count).map(mark).collect::<Vec<_>>()
+        };
+        let numbered = |count: usize| {
+            let points = vec![[0.0, 0.0], [100.0, 1.0]];
+            let series = vec![Series { name: None, points, style: style(0) }];
+            let panel = Panel { series, marks: marks(count), ..Panel::default() };
+            panel.draw(&mut Canvas::new(900, 600).unwrap(), PLACE).unwrap()
+        };
+        assert!(!numbered(0) && !numbered(3));
+        assert!(numbered(4));
     }
 
     #[test]

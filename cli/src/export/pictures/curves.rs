@@ -3,11 +3,11 @@
 //! and currents rms.
 
 use solver::constants::ZERO_CELSIUS_K;
-use solver::results::{HistoryRow, Results, Terminals};
+use solver::results::{HistoryRow, Results, State, Terminals};
 
 use super::PictureError;
 use super::canvas::Canvas;
-use super::chart::{Band, MARK_ROW, Mark, Panel, Place, Series, pale, style};
+use super::chart::{Band, MARK_ROW, MARK_ROWS, Mark, Panel, Place, Series, pale, style};
 use super::heading::{HEADING, Heading};
 use super::sheet::Sheet;
 
@@ -21,7 +21,12 @@ const MOST_PARTS: usize = 5;
 const MOST_GAUGES: usize = 12;
 
 /// Temperatures of gauges and parts over time.
-pub(super) fn heating(results: &Results, sheet: &Sheet<'_>, gauges: &[String], job: &str) -> Result<Canvas, PictureError> {
+pub(super) fn heating(
+    results: &Results,
+    sheet: &Sheet<'_>,
+    gauges: &[String],
+    job: &str,
+) -> Result<Canvas, PictureError> {
     let clock = Clock::of(&results.history);
     let mut panel = Panel {
         x_label: format!("time in {}", clock.unit),
@@ -38,11 +43,11 @@ pub(super) fn heating(results: &Results, sheet: &Sheet<'_>, gauges: &[String], j
     }
     add_parts(&mut panel, rows, sheet, &clock, gauge_count.min(MOST_GAUGES));
     let mut canvas = Canvas::new(SIZE[0] as usize, SIZE[1] as usize)?;
-    let top = HEADING + 20.0 + 3.0 * MARK_ROW;
+    let top = HEADING + 20.0 + MARK_ROWS as f64 * MARK_ROW;
     let place = Place { from: [LEFT, top], to: [SIZE[0] - LEGEND - 20.0, SIZE[1] - 100.0] };
-    panel.draw(&mut canvas, place)?;
+    let numbered = panel.draw(&mut canvas, place)?;
     let legend = [place.to[0] + 30.0, top];
-    panel.legend(&mut canvas, legend, [SIZE[0] - legend[0] - 20.0, place.to[1] - top])?;
+    panel.legend(&mut canvas, legend, [SIZE[0] - legend[0] - 20.0, place.to[1] - top], numbered)?;
     let note = heated_note(rows);
     Heading { title: "Heating curve".into(), job: job.to_owned(), note }.draw(&mut canvas)?;
     Ok(canvas)
@@ -69,11 +74,15 @@ fn add_parts(panel: &mut Panel, rows: &[HistoryRow], sheet: &Sheet<'_>, clock: &
 
 /// Differences at the end of the run.
 fn heated_note(rows: &[HistoryRow]) -> String {
-    let Some(last) = rows.last() else { return "no steps".into() };
+    let Some(last) = rows.last() else {
+        return "no steps".into();
+    };
     let first = last.parts.first();
     let difference = first.map(|p| p.surface_minus_core_k).filter(|d| d.is_finite());
-    difference.map_or_else(String::new, |d| format!("at the end the surface is {d:.0} K above the core at mid-length"))
-        .replace('-', "\u{2212}")
+    difference.map_or_else(String::new, |d| {
+        let (size, side) = (d.abs(), if d < 0.0 { "below" } else { "above" });
+        format!("at the end the surface is {size:.0} K {side} the core at mid-length")
+    })
 }
 
 /// Power in its own panel; voltage, current, resistance and inductance in four below it where there is a supply.
@@ -84,12 +93,12 @@ pub(super) fn power(results: &Results, job: &str) -> Result<Canvas, PictureError
     let supplied = rows.iter().any(|r| r.terminals.is_some());
     let mut panel = power_panel(rows, &clock, supplied);
     panel.marks = marks(results, &clock);
-    let top = HEADING + 20.0 + 2.0 * MARK_ROW;
+    let top = HEADING + 20.0 + MARK_ROWS as f64 * MARK_ROW;
     let bottom = if supplied { 550.0 } else { SIZE[1] - 100.0 };
     let place = Place { from: [LEFT, top], to: [SIZE[0] - LEGEND - 20.0, bottom] };
-    panel.draw(&mut canvas, place)?;
+    let numbered = panel.draw(&mut canvas, place)?;
     let legend = [place.to[0] + 30.0, top];
-    panel.legend(&mut canvas, legend, [SIZE[0] - legend[0] - 20.0, bottom - top])?;
+    panel.legend(&mut canvas, legend, [SIZE[0] - legend[0] - 20.0, bottom - top], numbered)?;
     if supplied {
         let columns = [[LEFT, 770.0], [LEFT + 800.0, SIZE[0] - 30.0]];
         let heights = [[650.0, 835.0], [925.0, 1110.0]];
@@ -172,7 +181,9 @@ impl Clock {
 fn marks(results: &Results, clock: &Clock) -> Vec<Mark> {
     let end = results.history.last().map_or(0.0, |r| r.time_s);
     let mut marks: Vec<Mark> = Vec::new();
-    for state in &results.states {
+    let mut states: Vec<&State> = results.states.iter().collect();
+    states.sort_by(|a, b| a.time_s.total_cmp(&b.time_s));
+    for state in states {
         let wanted = state.label.contains("Curie") || state.label.starts_with("end of");
         if !wanted || !state.time_s.is_finite() || state.time_s > end {
             continue;

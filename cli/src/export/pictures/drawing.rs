@@ -41,7 +41,8 @@ struct Dimension {
     range: [f64; 2],
     /// Where extension lines start, in the other direction.
     edge: f64,
-    text: String,
+    number: String,
+    names: Vec<String>,
 }
 
 /// Draws the section with outlines, names and overall dimensions.
@@ -54,7 +55,7 @@ pub(super) fn section(sheet: &Sheet<'_>, title: &str) -> Result<Canvas, PictureE
     let entries = bodies.len().min(MOST_ENTRIES + 1) as f64;
     let margins = Margins {
         left: 140.0,
-        right: 60.0 + ROW * beside.len() as f64,
+        right: 50.0 + ROW * beside.len() as f64,
         top: HEADING + ROW * above.len() as f64 + 14.0,
         bottom: 125.0 + ENTRY * entries,
     };
@@ -71,10 +72,12 @@ pub(super) fn section(sheet: &Sheet<'_>, title: &str) -> Result<Canvas, PictureE
         draw_above(&mut canvas, &frame, dimension, frame.from[1] - 16.0 - ROW * row as f64)?;
     }
     for (row, dimension) in beside.iter().enumerate() {
-        draw_beside(&mut canvas, &frame, dimension, frame.to[0] + 30.0 + ROW * row as f64)?;
+        draw_beside(&mut canvas, &frame, dimension, frame.to[0] + 50.0 + ROW * row as f64)?;
     }
+    name_parts(&mut canvas, &frame, &bodies)?;
     list(&mut canvas, &frame, &bodies)?;
-    let note = "dimensions in mm, cold".to_owned();
+    let side = if window.both_sides { "" } else { ", one side of the axis" };
+    let note = format!("dimensions in mm, cold{side}");
     Heading { title: "Section".into(), job: title.to_owned(), note }.draw(&mut canvas)?;
     Ok(canvas)
 }
@@ -109,7 +112,12 @@ fn bodies(sheet: &Sheet<'_>) -> Vec<Body> {
         let of_part = |kind: &RegionName| matches!(kind, RegionName::Part(i, _) if *i == index);
         if let Some(extent) = sheet.extent(of_part) {
             let colour = kind_colour(&RegionName::Part(index, String::new()));
-            bodies.push(Body { name: name.to_owned(), colour, extent: whole(extent, sheet.mirrors, false), turns: None });
+            bodies.push(Body {
+                name: name.to_owned(),
+                colour,
+                extent: whole(extent, sheet.mirrors, false),
+                turns: None,
+            });
         }
     }
     for (index, name) in sheet.coils() {
@@ -153,19 +161,17 @@ fn turn_count(sheet: &Sheet<'_>, coil: usize) -> usize {
 /// Dimensions across (diameters) and along (lengths), the shortest first, equal ones on one line.
 fn dimensions(bodies: &[Body], window: &Window) -> (Vec<Dimension>, Vec<Dimension>) {
     let (mut across, mut along) = (Vec::new(), Vec::new());
-    for body in bodies {
-        let Extent { r, z } = body.extent;
+    for Body { name, extent, .. } in bodies {
+        let Extent { r, z } = *extent;
         if window.both_sides {
-            let hollow = r[0] > 1e-9 + 1e-6 * r[1];
-            for radius in [r[0], r[1]].into_iter().skip(usize::from(!hollow)) {
-                let text = format!("\u{2300} {}", millimetres(2.0 * radius));
-                join(&mut across, Dimension { radial: true, range: [-radius, radius], edge: z[1], text }, &body.name);
+            for radius in if is_hollow(extent) { vec![r[0], r[1]] } else { vec![r[1]] } {
+                let number = format!("\u{d8} {}", millimetres(2.0 * radius));
+                add(&mut across, Dimension::new(true, [-radius, radius], z[1], &number, name));
             }
         } else {
-            join(&mut across, Dimension { radial: true, range: r, edge: z[1], text: millimetres(r[1] - r[0]) }, &body.name);
+            add(&mut across, Dimension::new(true, r, z[1], &millimetres(r[1] - r[0]), name));
         }
-        let text = millimetres(z[1] - z[0]);
-        join(&mut along, Dimension { radial: false, range: z, edge: r[1], text }, &body.name);
+        add(&mut along, Dimension::new(false, z, r[1], &millimetres(z[1] - z[0]), name));
     }
     for list in [&mut across, &mut along] {
         list.sort_by(|a, b| (a.range[1] - a.range[0]).total_cmp(&(b.range[1] - b.range[0])));
@@ -174,16 +180,31 @@ fn dimensions(bodies: &[Body], window: &Window) -> (Vec<Dimension>, Vec<Dimensio
     (across, along)
 }
 
-/// Adds a dimension, or the name of its body to an equal one.
-fn join(list: &mut Vec<Dimension>, new: Dimension, name: &str) {
+impl Dimension {
+    fn new(radial: bool, range: [f64; 2], edge: f64, number: &str, name: &str) -> Self {
+        Self { radial, range, edge, number: number.to_owned(), names: vec![name.to_owned()] }
+    }
+
+    fn text(&self) -> String {
+        format!("{} {}", self.number, self.names.join(", "))
+    }
+}
+
+/// Adds a dimension, or the names of its bodies to an equal one.
+fn add(list: &mut Vec<Dimension>, new: Dimension) {
     let near = |a: f64, b: f64| (a - b).abs() <= 1e-7;
     match list.iter_mut().find(|d| near(d.range[0], new.range[0]) && near(d.range[1], new.range[1])) {
         Some(same) => {
-            same.text = format!("{}, {name}", same.text);
+            same.names.extend(new.names);
             same.edge = same.edge.max(new.edge);
         }
-        None => list.push(Dimension { text: format!("{} {name}", new.text), ..new }),
+        None => list.push(new),
     }
+}
+
+/// True where a body does not reach the axis.
+fn is_hollow(extent: &Extent) -> bool {
+    extent.r[0] > 1e-9 + 1e-6 * extent.r[1]
 }
 
 /// A horizontal dimension line at height `y`, with extension lines down to the body.
@@ -196,15 +217,16 @@ fn draw_above(canvas: &mut Canvas, frame: &Frame, d: &Dimension, y: f64) -> Resu
     canvas.line([a[0], y], [b[0], y], 1.4, INK);
     arrow(canvas, [a[0], y], [1.0, 0.0]);
     arrow(canvas, [b[0], y], [-1.0, 0.0]);
-    let width = canvas.text_width(&d.text, TEXT)?;
+    let text = canvas.shortened(&d.text(), TEXT, 500.0)?;
+    let width = canvas.text_width(&text, TEXT)?;
     if width < b[0] - a[0] - 20.0 {
-        return canvas.text(&d.text, [0.5 * (a[0] + b[0]), y - 8.0], lettering(TEXT, Align::Centre));
+        return canvas.text(&text, [0.5 * (a[0] + b[0]), y - 8.0], lettering(TEXT, Align::Centre));
     }
     let right = b[0] + 14.0;
     if right + width < canvas.width() - 10.0 {
-        canvas.text(&d.text, [right, y + 8.0], lettering(TEXT, Align::Left))
+        canvas.text(&text, [right, y + 8.0], lettering(TEXT, Align::Left))
     } else {
-        canvas.text(&d.text, [a[0] - 14.0, y + 8.0], lettering(TEXT, Align::Right))
+        canvas.text(&text, [a[0] - 14.0, y + 8.0], lettering(TEXT, Align::Right))
     }
 }
 
@@ -219,13 +241,14 @@ fn draw_beside(canvas: &mut Canvas, frame: &Frame, d: &Dimension, x: f64) -> Res
     arrow(canvas, [x, a[1]], [0.0, -1.0]);
     arrow(canvas, [x, b[1]], [0.0, 1.0]);
     let (low, high) = (a[1].max(b[1]), a[1].min(b[1]));
-    let width = canvas.text_width(&d.text, TEXT)?;
+    let text = canvas.shortened(&d.text(), TEXT, 500.0)?;
+    let width = canvas.text_width(&text, TEXT)?;
     if width < low - high - 20.0 {
-        return canvas.text_upwards(&d.text, [x - 8.0, 0.5 * (low + high)], lettering(TEXT, Align::Centre));
+        return canvas.text_upwards(&text, [x - 8.0, 0.5 * (low + high)], lettering(TEXT, Align::Centre));
     }
     let above = high - 14.0 > width + HEADING;
     let (start, align) = if above { (high - 14.0, Align::Left) } else { (low + 14.0, Align::Right) };
-    canvas.text_upwards(&d.text, [x + 8.0, start], lettering(TEXT, align))
+    canvas.text_upwards(&text, [x + 8.0, start], lettering(TEXT, align))
 }
 
 /// An arrow head at `tip`, whose line runs on in `direction`.
@@ -237,6 +260,24 @@ fn arrow(canvas: &mut Canvas, tip: [f64; 2], direction: [f64; 2]) {
         ];
         canvas.line(tip, end, 1.6, INK);
     }
+}
+
+/// Writes the names of parts into them where they find room: off the axis, and off the middle, where a mirror plane may be.
+fn name_parts(canvas: &mut Canvas, frame: &Frame, bodies: &[Body]) -> Result<(), PictureError> {
+    for body in bodies.iter().filter(|b| b.turns.is_none()) {
+        let Extent { r, z } = body.extent;
+        let (a, b) = (frame.place([r[0], 0.5 * (z[0] + z[1])]), frame.place([r[1], z[1]]));
+        let width = canvas.text_width(&body.name, TEXT)?;
+        let (room, height) = ((b[0] - a[0]).abs(), (b[1] - a[1]).abs());
+        if width + 16.0 < room && height > 1.3 * TEXT {
+            let at = [0.5 * (a[0] + b[0]), 0.5 * (a[1] + b[1]) + 0.31 * TEXT];
+            canvas.text(&body.name, at, lettering(TEXT, Align::Centre))?;
+        } else if width + 16.0 < height && room > 1.3 * TEXT {
+            let at = [0.5 * (a[0] + b[0]) + 0.31 * TEXT, 0.5 * (a[1] + b[1])];
+            canvas.text_upwards(&body.name, at, lettering(TEXT, Align::Centre))?;
+        }
+    }
+    Ok(())
 }
 
 /// The list of bodies with their sizes and places, below the map.
@@ -264,12 +305,16 @@ fn description(body: &Body) -> String {
         Some(n) => format!("{n} turns, "),
         None => String::new(),
     };
-    let hollow = r[0] > 1e-9 + 1e-6 * r[1];
-    let diameters = if hollow {
-        format!("\u{2300} {} inside, \u{2300} {} outside", millimetres(2.0 * r[0]), millimetres(2.0 * r[1]))
+    let diameters = if is_hollow(&body.extent) {
+        format!("\u{d8} {} inside, \u{d8} {} outside", millimetres(2.0 * r[0]), millimetres(2.0 * r[1]))
     } else {
-        format!("\u{2300} {}", millimetres(2.0 * r[1]))
+        format!("\u{d8} {}", millimetres(2.0 * r[1]))
     };
     let length = millimetres(z[1] - z[0]);
-    format!("{}: {turns}{diameters}, length {length}, from z = {} to {}", body.name, millimetres(z[0]), millimetres(z[1]))
+    format!(
+        "{}: {turns}{diameters}, length {length}, from z = {} to {}",
+        body.name,
+        millimetres(z[0]),
+        millimetres(z[1])
+    )
 }

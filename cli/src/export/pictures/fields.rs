@@ -21,6 +21,7 @@ pub(super) fn loss_density(sheet: &Sheet<'_>, snapshot: &Snapshot) -> Result<Map
         gradient: colorous::VIRIDIS,
         spread: Spread::ByRange,
         field,
+        leading_parts: Vec::new(),
         least_matters: false,
         remark: "grey: no loss",
     })
@@ -39,11 +40,12 @@ pub(super) fn current_density(sheet: &Sheet<'_>, snapshot: &Snapshot) -> Result<
     check(sheet, "current densities", density.len())?;
     let factor = snapshot.field_factor.abs() * std::f64::consts::FRAC_1_SQRT_2 * 1e-6;
     Ok(MapOf {
-        label: "Current density in A/mm\u{b2} rms".into(),
+        label: "Current density in A/mm\u{b2}, rms".into(),
         unit: "A/mm\u{b2} rms",
         gradient: colorous::PLASMA,
         spread: Spread::ByRange,
         field: where_present(sheet, density.iter().map(|j| j.norm() * factor).collect()),
+        leading_parts: Vec::new(),
         least_matters: false,
         remark: "grey: no current",
     })
@@ -56,11 +58,12 @@ pub(super) fn flux_density(sheet: &Sheet<'_>, snapshot: &Snapshot) -> Result<Map
     let factor = snapshot.field_factor.abs();
     let values = density.iter().map(|&b| factor * greatest_over_period(b)).collect();
     Ok(MapOf {
-        label: "Flux density in T peak".into(),
-        unit: "T peak",
+        label: "Flux density in T, peak".into(),
+        unit: "T",
         gradient: colorous::CIVIDIS,
         spread: Spread::LinearWithoutOutliers,
         field: ElementValues { values, shown: vec![true; sheet.element_count()] },
+        leading_parts: Vec::new(),
         least_matters: false,
         remark: "",
     })
@@ -75,14 +78,20 @@ fn greatest_over_period(b: [Complex64; 2]) -> f64 {
     (0.5 * (constant + (b[0] * b[0] + b[1] * b[1]).norm())).sqrt()
 }
 
-/// Temperature in °C of nodes in kelvin.
-pub(super) fn temperature(sheet: &Sheet<'_>, kelvin: &[f64], label: &str) -> Result<MapOf, PictureError> {
+/// Temperature in °C of nodes in kelvin; the scale goes by `leading_parts` where others are much colder or hotter.
+pub(super) fn temperature(
+    sheet: &Sheet<'_>,
+    kelvin: &[f64],
+    label: &str,
+    leading_parts: &[usize],
+) -> Result<MapOf, PictureError> {
     Ok(MapOf {
         label: format!("{label} in \u{b0}C"),
         unit: "\u{b0}C",
         gradient: colorous::INFERNO,
         spread: Spread::Linear,
         field: temperature_values(sheet, kelvin)?,
+        leading_parts: leading_parts.to_vec(),
         least_matters: true,
         remark: "grey: not heated",
     })
@@ -99,11 +108,9 @@ pub(super) fn temperature_values(sheet: &Sheet<'_>, kelvin: &[f64]) -> Result<El
     }
     let mut field = ElementValues { values, shown: vec![false; sheet.element_count()] };
     // A part is heated where all its nodes have a temperature; a neighbour shares only those on its rim.
-    for (index, _) in sheet.parts() {
-        let elements = sheet.elements_of(|kind| matches!(kind, RegionName::Part(i, _) if *i == index));
-        if elements.iter().all(|&e| field.of(sheet, e).iter().all(|t| t.is_finite())) {
-            elements.into_iter().for_each(|e| field.shown[e] = true);
-        }
+    for elements in bodies(sheet) {
+        let heated = elements.iter().all(|&e| field.of(sheet, e).iter().all(|t| t.is_finite()));
+        show(&mut field, &elements, heated);
     }
     Ok(field)
 }
@@ -111,18 +118,25 @@ pub(super) fn temperature_values(sheet: &Sheet<'_>, kelvin: &[f64]) -> Result<El
 /// Values shown in the parts and coils in which they are not all zero.
 fn where_present(sheet: &Sheet<'_>, values: Vec<f64>) -> ElementValues {
     let mut field = ElementValues { values, shown: vec![false; sheet.element_count()] };
-    let present = |e: usize, field: &ElementValues| field.of(sheet, e).iter().any(|v| *v > 0.0);
-    for (index, _) in sheet.parts() {
-        let elements = sheet.elements_of(|kind| matches!(kind, RegionName::Part(i, _) if *i == index));
-        let any = elements.iter().any(|&e| present(e, &field));
-        elements.into_iter().for_each(|e| field.shown[e] = any);
-    }
-    for (index, _) in sheet.coils() {
-        let elements = sheet.elements_of(|kind| matches!(kind, RegionName::Turn(i, _, _) if *i == index));
-        let any = elements.iter().any(|&e| present(e, &field));
-        elements.into_iter().for_each(|e| field.shown[e] = any);
+    for elements in bodies(sheet) {
+        let present = elements.iter().any(|&e| field.of(sheet, e).iter().any(|v| *v > 0.0));
+        show(&mut field, &elements, present);
     }
     field
+}
+
+/// Elements of each part and of each coil.
+fn bodies(sheet: &Sheet<'_>) -> Vec<Vec<usize>> {
+    let part = |index: usize| sheet.elements_of(|kind| matches!(kind, RegionName::Part(i, _) if *i == index));
+    let coil = |index: usize| sheet.elements_of(|kind| matches!(kind, RegionName::Turn(i, _, _) if *i == index));
+    let parts = sheet.parts().into_iter().map(|p| part(p.0));
+    parts.chain(sheet.coils().into_iter().map(|c| coil(c.0))).collect()
+}
+
+fn show(field: &mut ElementValues, elements: &[usize], shown: bool) {
+    for &element in elements {
+        field.shown[element] = shown;
+    }
 }
 
 /// Refuses arrays that do not have one value an element and local node.

@@ -85,12 +85,7 @@ fn instant(sheet: &Sheet<'_>, snapshot: &Snapshot) -> Complex64 {
 }
 
 /// Draws all lines and returns the flux between neighbours, webers; zero where there is nothing to draw.
-fn spacing(
-    image: &mut Image,
-    sheet: &Sheet<'_>,
-    flux: &[f64],
-    places: impl Fn(usize) -> Vec<[f64; 2]>,
-) -> f64 {
+fn spacing(image: &mut Image, sheet: &Sheet<'_>, flux: &[f64], places: impl Fn(usize) -> Vec<[f64; 2]>) -> f64 {
     let visible: Vec<(usize, Vec<[f64; 2]>)> =
         (0..sheet.element_count()).map(|e| (e, places(e))).filter(|(_, p)| !misses(image, p)).collect();
     let values = visible.iter().flat_map(|(e, _)| sheet.nodes(*e)).map(|&n| flux[n as usize]).filter(|v| v.is_finite());
@@ -154,7 +149,9 @@ fn webers(value: f64) -> String {
         v if v >= 1e-7 => (v * 1e6, "\u{b5}Wb"),
         v => (v * 1e9, "nWb"),
     };
-    format!("{} {unit}", three_digits(scaled))
+    let digits = three_digits(scaled);
+    let short = if digits.contains('.') { digits.trim_end_matches('0').trim_end_matches('.') } else { &digits };
+    format!("{short} {unit}")
 }
 
 #[cfg(test)]
@@ -189,7 +186,7 @@ mod tests {
 
     #[test]
     fn fluxes_are_written_with_a_prefix() {
-        assert_eq!(webers(2e-5), "20.0 \u{b5}Wb");
-        assert_eq!(webers(0.5), "0.500 Wb");
+        assert_eq!(webers(2e-5), "20 \u{b5}Wb");
+        assert_eq!(webers(0.5), "0.5 Wb");
     }
 }

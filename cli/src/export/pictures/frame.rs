@@ -105,7 +105,8 @@ impl Frame {
     pub(super) fn place(&self, p: [f64; 2]) -> [f64; 2] {
         let per_metre = self.scale / OVERSAMPLING as f64;
         let half = self.half.map(|n| (n / OVERSAMPLING) as f64);
-        let right = if self.window.both_sides { half[0] + p[0] * per_metre } else { (p[0] - self.window.r[0]) * per_metre };
+        let right =
+            if self.window.both_sides { half[0] + p[0] * per_metre } else { (p[0] - self.window.r[0]) * per_metre };
         let below = if self.window.both_halves { half[1] } else { 0.0 };
         let up = below + (p[1] - self.window.z[0]) * per_metre;
         if self.turned { [self.from[0] + up, self.to[1] - right] } else { [self.from[0] + right, self.to[1] - up] }
@@ -118,7 +119,15 @@ impl Frame {
         let top = self.from[1] as usize * OVERSAMPLING;
         let full_r = nr * (1 + usize::from(self.window.both_sides));
         let full_z = nz * (1 + usize::from(self.window.both_halves));
-        let column = |i: usize| if !self.window.both_sides { i } else if i < nr { nr - 1 - i } else { i - nr };
+        let column = |i: usize| {
+            if !self.window.both_sides {
+                i
+            } else if i < nr {
+                nr - 1 - i
+            } else {
+                i - nr
+            }
+        };
         let row = |j: usize| if j < nz { j } else { 2 * nz - 1 - j };
         let fine = canvas.fine_pixels();
         for j in 0..full_z {
@@ -155,7 +164,7 @@ impl Frame {
     }
 
     fn ticks_beside(&self, canvas: &mut Canvas, range: [f64; 2]) -> Result<(), PictureError> {
-        let count = ((self.to[1] - self.from[1]) / 80.0).clamp(2.0, 12.0) as usize;
+        let count = ((self.to[1] - self.from[1]) / 64.0).clamp(3.0, 12.0) as usize;
         for (value, label) in self.marks(range, count, self.turned) {
             let y = if self.turned { self.place([value, 0.0])[1] } else { self.place([0.0, value])[1] };
             canvas.line([self.from[0] - 9.0, y], [self.from[0], y], 1.5, INK);
@@ -168,7 +177,9 @@ impl Frame {
         let values = ticks(range[0] * 1e3, range[1] * 1e3, count);
         let mut text = labels(&values);
         if radial && self.window.both_sides {
-            text.iter_mut().for_each(|t| *t = t.trim_start_matches('\u{2212}').to_owned());
+            for label in &mut text {
+                *label = label.trim_start_matches('\u{2212}').to_owned();
+            }
         }
         values.into_iter().map(|v| v * 1e-3).zip(text).collect()
     }

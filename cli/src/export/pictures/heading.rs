@@ -27,7 +27,8 @@ pub(super) struct Heading {
 
 impl Heading {
     pub(super) fn draw(&self, canvas: &mut Canvas) -> Result<(), PictureError> {
-        let lines = [(&self.title, 38.0, 56.0, INK), (&self.job, 27.0, 96.0, GREY_INK), (&self.note, 25.0, 132.0, GREY_INK)];
+        let lines =
+            [(&self.title, 38.0, 56.0, INK), (&self.job, 27.0, 96.0, GREY_INK), (&self.note, 25.0, 132.0, GREY_INK)];
         for (text, size, baseline, colour) in lines {
             let fitting = canvas.shortened(text, size, canvas.width() - 2.0 * INDENT)?;
             canvas.text(&fitting, [INDENT, baseline], Lettering { size, align: Align::Left, colour })?;

@@ -4,9 +4,6 @@
 /// Red, green and blue, 0 to 255, in the sRGB colour space.
 pub(super) type Rgb = [u8; 3];
 
-/// Longest piece of a stroke that is drawn at once, pixels; bounds the pixels looked at.
-const PIECE: f64 = 24.0;
-
 /// Rows of pixels, three bytes each.
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub(super) struct Image {
@@ -45,24 +42,22 @@ impl Image {
         if !(length.is_finite() && length < limit) {
             return;
         }
-        let pieces = (length / PIECE).ceil().max(1.0);
-        let at = |t: f64| [a[0] + t * (b[0] - a[0]), a[1] + t * (b[1] - a[1])];
-        for i in 0..pieces as usize {
-            self.piece(at(i as f64 / pieces), at((i + 1) as f64 / pieces), 0.5 * width, colour);
-        }
-    }
-
-    fn piece(&mut self, a: [f64; 2], b: [f64; 2], half: f64, colour: Rgb) {
+        let half = 0.5 * width;
         let reach = half + 1.0;
-        let range = |p: f64, q: f64, size: usize| {
-            let low = (p.min(q) - reach).floor().clamp(0.0, size as f64) as usize;
-            let high = (p.max(q) + reach).ceil().clamp(0.0, size as f64) as usize;
-            low..high
+        let clamped = |low: f64, high: f64, size: usize| {
+            let index = |v: f64| v.clamp(0.0, size as f64) as usize;
+            index(low.floor())..index(high.ceil())
         };
         let d = [b[0] - a[0], b[1] - a[1]];
         let squared = d[0] * d[0] + d[1] * d[1];
-        for y in range(a[1], b[1], self.height) {
-            for x in range(a[0], b[0], self.width) {
+        let ends = [a[0].min(b[0]) - reach, a[0].max(b[0]) + reach];
+        for y in clamped(a[1].min(b[1]) - reach, a[1].max(b[1]) + reach, self.height) {
+            // Pixels of this row within reach of the endless line, and between the ends of the stroke.
+            let middle = a[0] + (y as f64 + 0.5 - a[1]) / d[1] * d[0];
+            let beside = (reach + 1.0) * length / d[1].abs();
+            let [low, high] =
+                if beside.is_finite() && middle.is_finite() { [middle - beside, middle + beside] } else { ends };
+            for x in clamped(low.max(ends[0]), high.min(ends[1]), self.width) {
                 let p = [x as f64 + 0.5 - a[0], y as f64 + 0.5 - a[1]];
                 let t = if squared > 0.0 { ((p[0] * d[0] + p[1] * d[1]) / squared).clamp(0.0, 1.0) } else { 0.0 };
                 let distance = (p[0] - t * d[0]).hypot(p[1] - t * d[1]);

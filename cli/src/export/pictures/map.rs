@@ -29,6 +29,8 @@ pub(super) struct MapOf {
     pub(super) gradient: Gradient,
     pub(super) spread: Spread,
     pub(super) field: ElementValues,
+    /// Parts whose values make the scale where all values would stretch it to more than twice theirs; none for all.
+    pub(super) leading_parts: Vec<usize>,
     /// True where the note names the least value too.
     pub(super) least_matters: bool,
     /// What else to know, such as what grey means.
@@ -40,7 +42,7 @@ pub(super) fn draw(sheet: &Sheet<'_>, map: &MapOf, title: String, job: &str) -> 
     let window = Window::round(sheet, MARGIN);
     let below = is_turned(&window) || aspect(&window) > FLAT;
     let frame = Frame::fit(window, map_margins(below));
-    let scale = Scale::fit(map.gradient, map.spread, &weighted(sheet, &map.field, &window));
+    let scale = scale(sheet, map, &window);
     let mut half = frame.half_plane(AIR);
     let view = frame.view();
     paint_values(&mut half, &view, sheet, &map.field, &scale);
@@ -54,13 +56,33 @@ pub(super) fn draw(sheet: &Sheet<'_>, map: &MapOf, title: String, job: &str) -> 
     Ok(canvas)
 }
 
+/// The scale of a map.
+fn scale(sheet: &Sheet<'_>, map: &MapOf, window: &Window) -> Scale {
+    let all = weighted(sheet, &map.field, window, |_| true);
+    let whole = Scale::fit(map.gradient, map.spread, &all);
+    let leads = |kind: &RegionName| matches!(kind, RegionName::Part(i, _) if map.leading_parts.contains(i));
+    let leading = weighted(sheet, &map.field, window, leads);
+    if leading.is_empty() {
+        return whole;
+    }
+    let own = Scale::fit(map.gradient, map.spread, &leading);
+    let span = |s: &Scale| s.range[1] - s.range[0];
+    if span(&own) < 0.5 * span(&whole) { own.within(&all) } else { whole }
+}
+
 /// Values of the nodes of elements in the window, each with its share of the area of its element.
-fn weighted(sheet: &Sheet<'_>, field: &ElementValues, window: &Window) -> Vec<(f64, f64)> {
+fn weighted(
+    sheet: &Sheet<'_>,
+    field: &ElementValues,
+    window: &Window,
+    of: impl Fn(&RegionName) -> bool,
+) -> Vec<(f64, f64)> {
     let mut pairs = Vec::new();
     let stride = shape::node_count(sheet.order) as f64;
-    for element in (0..sheet.element_count()).filter(|&e| field.shown[e]) {
+    for element in (0..sheet.element_count()).filter(|&e| field.shown[e] && of(sheet.kind(e))) {
         let places = sheet.places(element);
-        let inside = |p: &[f64; 2]| p[0] <= window.r[1] && p[0] >= window.r[0] && p[1] <= window.z[1] && p[1] >= window.z[0];
+        let inside =
+            |p: &[f64; 2]| p[0] <= window.r[1] && p[0] >= window.r[0] && p[1] <= window.z[1] && p[1] >= window.z[0];
         if !places.iter().any(inside) {
             continue;
         }
@@ -75,9 +97,11 @@ fn weighted(sheet: &Sheet<'_>, field: &ElementValues, window: &Window) -> Vec<(f
 fn note(sheet: &Sheet<'_>, map: &MapOf) -> String {
     let mut sentences = Vec::new();
     if map.least_matters {
-        sentences.extend(extreme(sheet, map, "least", |a, b| a < b));
+        let leads = |kind: &RegionName| matches!(kind, RegionName::Part(i, _) if map.leading_parts.contains(i));
+        let among = |kind: &RegionName| map.leading_parts.is_empty() || leads(kind);
+        sentences.extend(extreme(sheet, map, "least", among, |a, b| a < b));
     }
-    sentences.extend(extreme(sheet, map, "greatest", |a, b| a > b));
+    sentences.extend(extreme(sheet, map, "greatest", |_| true, |a, b| a > b));
     if sentences.is_empty() {
         sentences.push("no values".to_owned());
     }
@@ -87,9 +111,15 @@ fn note(sheet: &Sheet<'_>, map: &MapOf) -> String {
     sentences.join(" \u{b7} ")
 }
 
-fn extreme(sheet: &Sheet<'_>, map: &MapOf, word: &str, beats: impl Fn(f64, f64) -> bool) -> Option<String> {
+fn extreme(
+    sheet: &Sheet<'_>,
+    map: &MapOf,
+    word: &str,
+    among: impl Fn(&RegionName) -> bool,
+    beats: impl Fn(f64, f64) -> bool,
+) -> Option<String> {
     let mut best: Option<(f64, usize, usize)> = None;
-    for element in (0..sheet.element_count()).filter(|&e| map.field.shown[e]) {
+    for element in (0..sheet.element_count()).filter(|&e| map.field.shown[e] && among(sheet.kind(e))) {
         for (i, &value) in map.field.of(sheet, element).iter().enumerate() {
             if value.is_finite() && best.is_none_or(|b| beats(value, b.0)) {
                 best = Some((value, element, i));

@@ -169,14 +169,22 @@ fn job_line(results: &Results) -> String {
         Outcome::StageLimit { stage, time_s } => {
             format!("{title} \u{b7} stage {stage} ended at its longest time, {time_s:.1} s")
         }
-        Outcome::Stopped { time_s } => format!("{title} \u{b7} partial result, stopped on request at {time_s:.1} s"),
-        Outcome::NotConverged { time_s, .. } => format!("{title} \u{b7} partial result, no solution after {time_s:.1} s"),
+        Outcome::Stopped { time_s } => {
+            format!("{title} \u{b7} partial result, stopped on request at {time_s:.1} s")
+        }
+        Outcome::NotConverged { time_s, .. } => {
+            format!("{title} \u{b7} partial result, no solution after {time_s:.1} s")
+        }
     }
 }
 
 /// The words for a moment: `start`, or `end of heat, 182.4 s`.
 fn moment(snapshot: &Snapshot) -> String {
-    if snapshot.time_s == 0.0 { snapshot.label.clone() } else { format!("{}, {:.1} s", snapshot.label, snapshot.time_s) }
+    if snapshot.time_s == 0.0 {
+        snapshot.label.clone()
+    } else {
+        format!("{}, {:.1} s", snapshot.label, snapshot.time_s)
+    }
 }
 
 type MapMaker = fn(&Sheet<'_>, &Snapshot) -> Result<MapOf, PictureError>;
@@ -216,20 +224,22 @@ fn stage_ends(results: &Results) -> Vec<&Snapshot> {
 }
 
 fn add_temperature_maps<'a>(tasks: &mut Vec<Task<'a>>, results: &'a Results, sheet: &'a Sheet<'a>, job: &'a str) {
+    let leading: Vec<usize> = heated_by_field(results).into_iter().map(|p| p.0).collect();
     let mut names: Vec<String> = Vec::new();
     for snapshot in stage_ends(results).into_iter().filter(|s| !s.temperature_k.is_empty()) {
         let stem = format!("maps/temperature-{}", slug(&snapshot.label));
         let same = names.iter().filter(|n| **n == stem).count();
         let name = if same == 0 { format!("{stem}.png") } else { format!("{stem}-{}.png", same + 1) };
         names.push(stem);
+        let leading = leading.clone();
         tasks.push(Task::new(&name, move || {
-            let map = fields::temperature(sheet, &snapshot.temperature_k, "Temperature")?;
+            let map = fields::temperature(sheet, &snapshot.temperature_k, "Temperature", &leading)?;
             map::draw(sheet, &map, format!("Temperature: {}", moment(snapshot)), job)
         }));
     }
     if !results.peak_temperature_k.is_empty() {
         tasks.push(Task::new("maps/peak-temperature.png", move || {
-            let map = fields::temperature(sheet, &results.peak_temperature_k, "Peak temperature")?;
+            let map = fields::temperature(sheet, &results.peak_temperature_k, "Peak temperature", &leading)?;
             map::draw(sheet, &map, "Peak temperature over the whole run".into(), job)
         }));
     }
@@ -247,8 +257,7 @@ fn add_profiles<'a>(tasks: &mut Vec<Task<'a>>, results: &'a Results, sheet: &'a 
         let same = names.iter().filter(|n| **n == stem).count();
         let file = if same == 0 { stem.clone() } else { format!("{stem}-{}", same + 1) };
         names.push(stem);
-        let named = |list: &[&'a Snapshot]| list.iter().map(|&s| (s, moment(s))).collect::<Vec<_>>();
-        let (first, second) = (named(&moments), named(&moments));
+        let (first, second) = (moments.clone(), moments.clone());
         tasks.push(Task::new(&format!("charts/radial-profile-{file}.png"), move || {
             let paths = paths(sheet, index)?;
             profile_charts::radial(sheet, &paths, &first, name, job)

@@ -2,7 +2,6 @@
 
 use solver::results::Snapshot;
 
-use super::PictureError;
 use super::canvas::Canvas;
 use super::chart::{Panel, Place, Series, style};
 use super::fields::{loss_values, temperature_values};
@@ -10,6 +9,7 @@ use super::heading::{HEADING, Heading};
 use super::profiles::Paths;
 use super::sheet::Sheet;
 use super::ticks::millimetres;
+use super::{PictureError, moment};
 
 const SIZE: [f64; 2] = [1600.0, 1200.0];
 const LEFT: f64 = 160.0;
@@ -17,57 +17,80 @@ const LEGEND: f64 = 390.0;
 /// Dashes of lines along the core.
 const CORE: &[f64] = &[9.0, 7.0];
 
-/// A snapshot with the words for its moment.
-pub(super) type Moment<'a> = (&'a Snapshot, String);
-
 /// Loss density and temperature across the wall at mid-length.
 pub(super) fn radial(
     sheet: &Sheet<'_>,
     paths: &Paths,
-    moments: &[Moment<'_>],
+    moments: &[&Snapshot],
     part: &str,
     job: &str,
 ) -> Result<Canvas, PictureError> {
     let mut panels = Panels::new("r in mm");
-    for (number, (snapshot, moment)) in moments.iter().enumerate() {
-        let points = |values: Vec<f64>| paths.across.iter().zip(values).map(|(p, v)| [p[0] * 1e3, v]).collect();
+    for (number, snapshot) in moments.iter().enumerate() {
+        let points = |values: Vec<f64>| paths.across.iter().zip(values).map(|(p, v)| [shown_mm(p[0]), v]).collect();
         let loss = loss_values(sheet, &snapshot.field, snapshot.field_factor)?;
-        panels.loss.push(line(moment, points(paths.sample(sheet, &loss, &paths.across)), number));
-        if !snapshot.temperature_k.is_empty() {
+        panels.loss.push(line(&moment(snapshot), points(paths.sample(sheet, &loss, &paths.across)), number));
+        if has_temperatures(snapshot, moments) {
             let heat = temperature_values(sheet, &snapshot.temperature_k)?;
-            panels.temperature.push(line(moment, points(paths.sample(sheet, &heat, &paths.across)), number));
+            panels.temperature.push(line(&moment(snapshot), points(paths.sample(sheet, &heat, &paths.across)), number));
         }
     }
     let height = millimetres((paths.middle_z * 1e4).round() * 1e-4);
     let note = format!("from the inner to the outer surface at z = {height} mm");
-    panels.draw(Heading { title: format!("Radial profile of {part} at mid-length"), job: job.to_owned(), note })
+    panels.draw(&Heading { title: format!("Radial profile of {part} at mid-length"), job: job.to_owned(), note })
 }
 
 /// Loss density along the surface, and temperature along surface and core.
 pub(super) fn axial(
     sheet: &Sheet<'_>,
     paths: &Paths,
-    moments: &[Moment<'_>],
+    moments: &[&Snapshot],
     part: &str,
     job: &str,
 ) -> Result<Canvas, PictureError> {
     let mut panels = Panels::new("z in mm");
-    for (number, (snapshot, moment)) in moments.iter().enumerate() {
-        let points = |path: &[[f64; 2]], values: Vec<f64>| path.iter().zip(values).map(|(p, v)| [p[1] * 1e3, v]).collect();
+    for (number, snapshot) in moments.iter().enumerate() {
+        let points = |path: &[[f64; 2]], values: Vec<f64>| along(path, &values, paths.plane);
         let loss = loss_values(sheet, &snapshot.field, snapshot.field_factor)?;
         let values = paths.sample(sheet, &loss, &paths.surface);
-        panels.loss.push(plain(&format!("{moment}, surface"), points(&paths.surface, values), number, &[]));
-        if snapshot.temperature_k.is_empty() {
+        panels.loss.push(plain(&moment(snapshot), points(&paths.surface, values), number, &[]));
+        if !has_temperatures(snapshot, moments) {
             continue;
         }
         let heat = temperature_values(sheet, &snapshot.temperature_k)?;
         for (path, place, dashes) in [(&paths.surface, "surface", &[] as &[f64]), (&paths.core, "core", CORE)] {
             let values = paths.sample(sheet, &heat, path);
-            panels.temperature.push(plain(&format!("{moment}, {place}"), points(path, values), number, dashes));
+            panels.temperature.push(plain(
+                &format!("{}, {place}", snapshot.label),
+                points(path, values),
+                number,
+                dashes,
+            ));
         }
     }
-    let note = "core: the axis, or the inner surface of a hollow part".to_owned();
-    panels.draw(Heading { title: format!("Axial profile of {part}"), job: job.to_owned(), note })
+    let note = "loss density at the outer surface; core: the axis, or the inner surface of a hollow part".to_owned();
+    panels.draw(&Heading { title: format!("Axial profile of {part}"), job: job.to_owned(), note })
+}
+
+/// True where the temperatures of a snapshot are drawn: those of the start, even all over, only where there are no others.
+fn has_temperatures(snapshot: &Snapshot, moments: &[&Snapshot]) -> bool {
+    !snapshot.temperature_k.is_empty() && (snapshot.time_s > 0.0 || moments.len() == 1)
+}
+
+/// Millimetres, to the micrometre: the place on the surface that a sample just inside stands for.
+fn shown_mm(metres: f64) -> f64 {
+    (metres * 1e6).round() * 1e-3
+}
+
+/// Points over z, with their mirror images below a mirror plane.
+fn along(path: &[[f64; 2]], values: &[f64], plane: Option<f64>) -> Vec<[f64; 2]> {
+    let upper = || path.iter().zip(values);
+    let mut points = Vec::new();
+    if let Some(z_m) = plane {
+        points.extend(upper().rev().map(|(p, v)| [shown_mm(2.0 * z_m - p[1]), *v]));
+    }
+    points.extend(upper().map(|(p, v)| [shown_mm(p[1]), *v]));
+    points
 }
 
 fn line(name: &str, points: Vec<[f64; 2]>, number: usize) -> Series {
@@ -92,7 +115,7 @@ impl Panels {
         Self { x_label, loss: Vec::new(), temperature: Vec::new() }
     }
 
-    fn draw(self, heading: Heading) -> Result<Canvas, PictureError> {
+    fn draw(self, heading: &Heading) -> Result<Canvas, PictureError> {
         let mut canvas = Canvas::new(SIZE[0] as usize, SIZE[1] as usize)?;
         let panel = |y_label: &str, series: Vec<Series>, from_zero: bool| Panel {
             x_label: self.x_label.into(),
@@ -110,9 +133,9 @@ impl Panels {
         for (index, panel) in panels.iter().enumerate() {
             let from = [LEFT, top + height * index as f64];
             let to = [SIZE[0] - LEGEND - 20.0, from[1] + height - 105.0];
-            panel.draw(&mut canvas, Place { from, to })?;
+            let numbered = panel.draw(&mut canvas, Place { from, to })?;
             let legend = [to[0] + 30.0, from[1]];
-            panel.legend(&mut canvas, legend, [SIZE[0] - legend[0] - 20.0, to[1] - from[1]])?;
+            panel.legend(&mut canvas, legend, [SIZE[0] - legend[0] - 20.0, to[1] - from[1]], numbered)?;
         }
         heading.draw(&mut canvas)?;
         Ok(canvas)

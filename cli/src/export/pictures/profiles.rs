@@ -1,5 +1,5 @@
 //! Profiles of a part: across its wall at mid-length, and along its surface and its core.
-//! Convention: metres; values are taken a millionth of the part's size inside its surface.
+//! Convention: metres; values are taken a ten-millionth of the part's size inside its surface.
 
 use solver::model::Mirrors;
 use solver::results::RegionName;
@@ -11,7 +11,7 @@ use super::sheet::{Extent, Sheet};
 /// Points of a profile.
 const POINTS: usize = 240;
 /// Distance of samples from the surface, as a fraction of the part's size.
-const INSIDE: f64 = 1e-6;
+const INSIDE: f64 = 1e-7;
 /// Barycentric coordinates may be this much below zero in the element of a sample.
 const EXACT: f64 = 1e-7;
 /// The same for a sample beside a hollow curved surface, whose straight pieces run a little outside the body.
@@ -21,6 +21,8 @@ const BESIDE: f64 = 0.02;
 #[derive(Debug, Clone)]
 pub(super) struct Paths {
     elements: Vec<usize>,
+    /// Height of the mirror plane where the part reaches to it, so that the paths along it are half as long as the part.
+    pub(super) plane: Option<f64>,
     /// Height of mid-length.
     pub(super) middle_z: f64,
     /// Across at mid-length: places from the inner to the outer surface.
@@ -38,13 +40,12 @@ impl Paths {
         let Extent { r, z } = sheet.extent(of_part)?;
         let outline = outline(sheet, part);
         let slack = INSIDE * (r[1] - r[0]).max(z[1] - z[0]);
-        let middle_z = match sheet.mirrors {
-            Mirrors::One { z_m } if z[0] - z_m <= slack => z_m + slack,
-            _ => 0.5 * (z[0] + z[1]),
+        let plane = match sheet.mirrors {
+            Mirrors::One { z_m } if z[0] - z_m <= slack => Some(z_m),
+            _ => None,
         };
-        let steps = |low: f64, high: f64| {
-            (0..=POINTS).map(move |i| low + (high - low) * i as f64 / POINTS as f64)
-        };
+        let middle_z = plane.map_or(0.5 * (z[0] + z[1]), |z_m| z_m + slack);
+        let steps = |low: f64, high: f64| (0..=POINTS).map(move |i| low + (high - low) * i as f64 / POINTS as f64);
         let limits = radii(&outline, middle_z);
         let across = limits.map_or_else(Vec::new, |[inner, outer]| {
             steps(inner_start(inner, slack), outer - slack).map(|r| [r, middle_z]).collect()
@@ -56,7 +57,7 @@ impl Paths {
                 core.push([inner_start(inner, slack), z]);
             }
         }
-        Some(Self { elements: sheet.elements_of(of_part), middle_z, across, surface, core })
+        Some(Self { elements: sheet.elements_of(of_part), plane, middle_z, across, surface, core })
     }
 
     /// Values of a field at places of the part; `NaN` where the part has a hole.

@@ -48,12 +48,7 @@ pub(super) fn pieces(order: usize, pixels: &[[f64; 2]]) -> usize {
 }
 
 /// Paints an element; `colour` is asked for every pixel with the barycentric coordinates of its centre.
-pub(super) fn paint(
-    image: &mut Image,
-    order: usize,
-    pixels: &[[f64; 2]],
-    colour: impl Fn([f64; 3]) -> Option<Rgb>,
-) {
+pub(super) fn paint(image: &mut Image, order: usize, pixels: &[[f64; 2]], colour: impl Fn([f64; 3]) -> Option<Rgb>) {
     if pixels.iter().flatten().any(|v| !v.is_finite()) || misses(image, pixels) {
         return;
     }

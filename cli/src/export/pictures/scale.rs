@@ -1,6 +1,6 @@
 //! Values to colours. The colour maps are perceptually uniform and chosen once: inferno for temperatures, viridis for
-//! loss density, cividis for flux density, plasma for current density (the colorous crate; from matplotlib's and from
-//! Nunez, Anderton and Renslow, PLoS ONE 13 (2018) e0199239).
+//! loss density, cividis for flux density, plasma for current density (colour tables of
+//! the `colorous` crate; cividis: J. R. Nuñez, C. R. Anderton, R. S. Renslow, `PLoS ONE` 13 (2018) e0199239).
 //!
 //! A quantity that falls off by decades, as losses do below a surface, is shown on a logarithmic scale of three decades;
 //! a few extreme values at sharp corners do not stretch a linear scale, but are shown in the last colour and marked so.
@@ -50,7 +50,7 @@ impl Scale {
             return Self { gradient, range: [0.0, 1.0], logarithmic: false, cut: [false; 2] };
         };
         if spread == Spread::ByRange && high > 0.0 && low >= 0.0 && quantile(&sorted, 0.1) < WIDE * high {
-            let first = high * 10f64.powi(-DECADES);
+            let first = round_up(high * 10f64.powi(-DECADES));
             return Self { gradient, range: [first, high], logarithmic: true, cut: [low < first, false] };
         }
         let usual = quantile(&sorted, 1.0 - OUTLYING);
@@ -61,6 +61,16 @@ impl Scale {
             }
         }
         Self { gradient, range: extended(low, high), logarithmic: false, cut: [false; 2] }
+    }
+
+    /// The scale of some values, for a map that shows all values: ends are moved to ticks where values lie beyond them.
+    pub(super) fn within(self, all: &[(f64, f64)]) -> Self {
+        let [low, high] = self.range;
+        let (below, above) = (all.iter().any(|v| v.0 < low), all.iter().any(|v| v.0 > high));
+        let outer = round_range(low, high, 10);
+        let range = [if below { outer.0 } else { low }, if above { outer.1 } else { high }];
+        let cut = [all.iter().any(|v| v.0 < range[0]), all.iter().any(|v| v.0 > range[1])];
+        Self { range, cut, ..self }
     }
 
     /// Colour of a value; `None` where it is not a number.
@@ -85,13 +95,20 @@ impl Scale {
 
     /// Round ticks with their text, at most about `count`.
     pub(super) fn ticks(&self, count: usize) -> Vec<(f64, String)> {
-        let values = if self.logarithmic { decades(self.range, count) } else { ticks(self.range[0], self.range[1], count) };
+        let values =
+            if self.logarithmic { decades(self.range, count) } else { ticks(self.range[0], self.range[1], count) };
         if self.logarithmic {
             return values.into_iter().map(|v| (v, power_label(v))).collect();
         }
         let text = labels(&values);
         values.into_iter().zip(text).collect()
     }
+}
+
+/// The next of 1, 2 and 5 times a power of ten.
+fn round_up(value: f64) -> f64 {
+    let decade = 10f64.powf(value.log10().floor());
+    [1.0, 2.0, 5.0].into_iter().map(|m| m * decade).find(|&s| s >= value * (1.0 - 1e-9)).unwrap_or(10.0 * decade)
 }
 
 /// A constant is put into the middle of a range of 2 % about it.
@@ -159,7 +176,11 @@ mod tests {
 
     #[test]
     fn values_over_many_decades_go_by_the_logarithm() {
-        let scale = Scale::fit(colorous::VIRIDIS, Spread::ByRange, &even((0..=60).map(|i| 10f64.powf(f64::from(i) / 10.0 - 4.0))));
+        let scale = Scale::fit(
+            colorous::VIRIDIS,
+            Spread::ByRange,
+            &even((0..=60).map(|i| 10f64.powf(f64::from(i) / 10.0 - 4.0))),
+        );
         assert!(scale.logarithmic && scale.cut[0]);
         assert!((scale.range[0] - 0.1).abs() < 1e-12 && (scale.range[1] - 100.0).abs() < 1e-9);
         assert!((scale.fraction(1.0) - 1.0 / 3.0).abs() < 1e-12);

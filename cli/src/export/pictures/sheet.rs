@@ -9,6 +9,9 @@ use solver::results::{RegionName, Section};
 use super::PictureError;
 use super::shape::{self, edge_nodes, node_count};
 
+/// Straight pieces a curved edge is traced by.
+const TRACE_PIECES: usize = 12;
+
 /// Elements and what they belong to.
 #[derive(Debug, Clone, Copy)]
 pub(super) struct Sheet<'a> {
@@ -141,10 +144,11 @@ impl<'a> Sheet<'a> {
             for edge in 0..3 {
                 let along: Vec<u32> = edge_nodes(self.order, edge).into_iter().map(|i| nodes[i]).collect();
                 let (a, b) = (along[0], along[along.len() - 1]);
-                edges
-                    .entry([a.min(b), a.max(b)])
-                    .and_modify(|e| e.second = Some(element))
-                    .or_insert(SheetEdge { nodes: along, first: element, second: None });
+                edges.entry([a.min(b), a.max(b)]).and_modify(|e| e.second = Some(element)).or_insert(SheetEdge {
+                    nodes: along,
+                    first: element,
+                    second: None,
+                });
             }
         }
         edges.into_values().collect()
@@ -183,8 +187,7 @@ impl<'a> Sheet<'a> {
         if bulge.fold(0.0, f64::max) <= 1e-4 * chord * chord {
             return vec![a, b];
         }
-        const PIECES: usize = 12;
-        (0..=PIECES).map(|i| along_edge(&places, i as f64 / PIECES as f64)).collect()
+        (0..=TRACE_PIECES).map(|i| along_edge(&places, i as f64 / TRACE_PIECES as f64)).collect()
     }
 
     /// The first element of `among` that holds a point, and where in it; `slack` is how far barycentric coordinates may

@@ -24,13 +24,19 @@ pub(super) struct Window {
 }
 
 impl Window {
-    /// Bodies with a margin, a fraction of their greater extent. Without bodies the whole mesh; without a mesh a square.
+    /// Bodies with a margin, a fraction of their greater extent, or of four times the lesser where that is less. Without bodies the whole mesh; without a mesh a square.
     pub(super) fn round(sheet: &Sheet<'_>, margin: f64) -> Self {
         let bodies = sheet.extent(|kind| !matches!(kind, RegionName::Air)).or_else(|| sheet.extent(|_| true));
         let extent = bodies.unwrap_or(Extent { r: [0.0, 0.1], z: [0.0, 0.1] });
-        let greatest = extent.r[1].max(extent.z[1] - extent.z[0]).max(1e-6);
+        let height = match sheet.mirrors {
+            Mirrors::One { z_m } => 2.0 * (extent.z[1] - z_m),
+            _ => extent.z[1] - extent.z[0],
+        };
+        let width = 2.0 * extent.r[1];
+        let greatest = width.max(height).min(4.0 * width.min(height)).max(1e-6);
         let both_sides = extent.r[0] <= EMPTY_MIDDLE * extent.r[1];
-        let add = margin * if both_sides { greatest } else { greatest.min(4.0 * (extent.r[1] - extent.r[0])).max(1e-6) };
+        let add =
+            margin * if both_sides { greatest } else { greatest.min(4.0 * (extent.r[1] - extent.r[0])).max(1e-6) };
         let low_r = if both_sides { 0.0 } else { (extent.r[0] - add).max(0.0) };
         let (low_z, high_z) = match sheet.mirrors {
             Mirrors::None => (extent.z[0] - add, extent.z[1] + add),
