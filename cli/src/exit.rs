@@ -1,5 +1,6 @@
 //! How a command ends: the exit codes, and every failure with the code it leads to.
 
+use mesher::MeshError;
 use solver::error::SolveError;
 use solver::results::Outcome;
 
@@ -95,12 +96,12 @@ impl Failure {
 
 fn solve_exit(error: &SolveError) -> Exit {
     match error {
+        SolveError::Mesh(MeshError::Stopped) | SolveError::StoppedEarly => Exit::StoppedEarly,
         SolveError::Mesh(_) | SolveError::Outline(_) => Exit::MeshImpossible,
         SolveError::Linear { .. } | SolveError::HeatStep { .. } => Exit::NotConverged,
         SolveError::Material(_)
         | SolveError::CannotHold { .. }
         | SolveError::TurnOnAxis { .. }
         | SolveError::GaugeOutside { .. } => Exit::JobRefused,
-        SolveError::StoppedEarly => Exit::StoppedEarly,
     }
 }

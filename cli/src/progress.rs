@@ -262,7 +262,7 @@ mod tests {
         assert_eq!(lines.len(), 2);
         assert_eq!(lines[0]["event"], "meshed");
         assert_eq!(lines[0]["triangles"], 10);
-        assert_eq!(lines[1]["hottest_degc"], 800.0);
+        assert!((lines[1]["hottest_degc"].as_f64().unwrap() - 800.0).abs() < 1e-9, "{text}");
         assert_eq!(lines[1]["time_s"], 12.5);
     }
 

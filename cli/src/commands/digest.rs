@@ -6,7 +6,7 @@ use solver::results::{Electrical, Outcome, PartNumbers, State};
 use crate::export::Finished;
 use crate::export::history::part_name;
 use crate::export::states::limit_word;
-use crate::export::summary::{Goal, energy_per_tonne, goals};
+use crate::export::summary::{Goal, energy_per_tonne, first_state, goals, last_state};
 use crate::figures::{Page, count, degc, row, seconds, si, significant};
 
 /// W/m^2 in a kW/cm^2.
@@ -26,7 +26,7 @@ pub(super) fn digest(run: Finished<'_>) -> String {
         count(results.counts.heat_steps, "heat step"),
     ));
     electrical(&mut page, &results.states);
-    if let Some(last) = results.states.last() {
+    if let Some(last) = last_state(&results.states) {
         water(&mut page, run, &last.electrical);
     }
     surfaces(&mut page, run);
@@ -131,9 +131,10 @@ fn surfaces(page: &mut Page, run: Finished<'_>) {
             continue;
         }
         let values: Vec<f64> = states.iter().filter_map(|s| s.electrical.parts.get(index)).map(density).collect();
-        if let (Some(first), Some(last)) = (values.first(), values.last()) {
-            let greatest = values.iter().copied().fold(*first, f64::max);
-            let cells = [*first, *last, greatest].map(|value| significant(value, 3));
+        let at = |state: Option<&State>| state.and_then(|s| s.electrical.parts.get(index)).map(density);
+        if let (Some(first), Some(last)) = (at(first_state(states)), at(last_state(states))) {
+            let greatest = values.into_iter().fold(first, f64::max);
+            let cells = [first, last, greatest].map(|value| significant(value, 3));
             rows.push(std::iter::once(part.name.clone()).chain(cells).collect());
         }
     }

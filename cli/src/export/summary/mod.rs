@@ -112,7 +112,7 @@ fn count_numbers(counts: Counts) -> CountNumbers {
 }
 
 fn totals(run: Finished<'_>) -> Option<Totals> {
-    let state = run.results.states.last()?;
+    let state = last_state(&run.results.states)?;
     let electrical = &state.electrical;
     let energy = run.results.energy.as_ref();
     let coil_loss: f64 = electrical.coils.iter().map(|coil| coil.loss_w).sum();
@@ -133,13 +133,23 @@ fn totals(run: Finished<'_>) -> Option<Totals> {
 fn first_and_last(run: Finished<'_>) -> Named<StateNumbers> {
     let states = &run.results.states;
     let mut named = Vec::new();
-    if let Some(first) = states.first() {
+    if let Some(first) = first_state(states) {
         named.push(("first".to_owned(), state_numbers(run, first)));
     }
-    if let Some(last) = states.last() {
+    if let Some(last) = last_state(states) {
         named.push(("last".to_owned(), state_numbers(run, last)));
     }
     Named(named)
+}
+
+/// The state at the least time, the first of several.
+pub fn first_state(states: &[State]) -> Option<&State> {
+    states.iter().min_by(|a, b| a.time_s.total_cmp(&b.time_s))
+}
+
+/// The state at the greatest time, the first of several: rows for maxima may stand after it.
+pub fn last_state(states: &[State]) -> Option<&State> {
+    states.iter().rev().max_by(|a, b| a.time_s.total_cmp(&b.time_s))
 }
 
 fn state_numbers(run: Finished<'_>, state: &State) -> StateNumbers {
