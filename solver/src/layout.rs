@@ -15,7 +15,7 @@ const SAMPLES: usize = 60;
 const HOTTEST_K: f64 = 1600.0;
 /// Share of the wall that skin layers may take from each side.
 const WALL_SHARE: f64 = 0.4;
-/// Growth of element size per unit of distance.
+/// Growth of element size per unit of distance; a finer mesh divides it too, or the air would stay as coarse as it was.
 const GRADATION: f64 = 0.4;
 
 /// A drawing and what its regions are.
@@ -66,7 +66,7 @@ pub fn layout(model: &Model) -> Result<Layout, SolveError> {
         domain_region: RegionId(0),
         domain_size: extent / 6.0 / model.mesh.fineness,
         regions: drawn,
-        gradation: GRADATION,
+        gradation: GRADATION / model.mesh.fineness.max(1.0),
         boundary_size: Some(extent / 14.0 / model.mesh.fineness),
     };
     Ok(Layout { drawing, regions, open_boundary, skin_depths_m })

@@ -120,3 +120,39 @@ fn results_are_the_same_bits_for_one_and_two_threads() {
     };
     assert!(with(1) == with(2), "results differ between one and two threads");
 }
+
+#[test]
+fn powers_and_energy_scale_with_the_square_of_the_current() {
+    let mut model = steel_bar(Mirrors::One { z_m: 0.0 });
+    model.mesh.fineness = 0.7;
+    let mut at = |amperes| {
+        if let solver::model::Drive::Supply { hold, .. } = &mut model.drive {
+            *hold = Hold::CoilCurrent(amperes);
+        }
+        solver::run(&model, &Silent).unwrap()
+    };
+    let (small, large) = (at(2.0), at(600.0));
+    let (a, b) = (&small.states[0].electrical, &large.states[0].electrical);
+    let square = 300.0 * 300.0;
+    for (what, x, y, factor) in [
+        ("workpiece power", a.workpiece_power_w, b.workpiece_power_w, square),
+        ("energy", a.stored_energy_j, b.stored_energy_j, square),
+        ("coil loss", a.coils[0].loss_w, b.coils[0].loss_w, square),
+        ("Poynting power", a.parts[0].poynting_power_w.unwrap(), b.parts[0].poynting_power_w.unwrap(), square),
+        ("largest loss", a.parts[0].largest_loss_w_per_m3, b.parts[0].largest_loss_w_per_m3, square),
+        (
+            "surface power",
+            a.parts[0].mean_surface_power_density_w_per_m2,
+            b.parts[0].mean_surface_power_density_w_per_m2,
+            square,
+        ),
+        ("field", a.parts[0].largest_field_a_per_m_rms, b.parts[0].largest_field_a_per_m_rms, 300.0),
+        ("terminal power", a.terminals.unwrap().power_w, b.terminals.unwrap().power_w, square),
+        ("voltage", a.terminals.unwrap().voltage_v_rms, b.terminals.unwrap().voltage_v_rms, 300.0),
+        ("resistance", a.terminals.unwrap().resistance_ohm, b.terminals.unwrap().resistance_ohm, 1.0),
+        ("loss of a turn", small.turns[3].loss_w, large.turns[3].loss_w, square),
+        ("voltage of a turn", small.turns[3].voltage_v_rms, large.turns[3].voltage_v_rms, 300.0),
+    ] {
+        assert!((y / (factor * x) - 1.0).abs() < 1e-12, "{what}: {x:.6e} at 2 A, {y:.6e} at 600 A");
+    }
+}
