@@ -15,6 +15,8 @@ pub(super) const REFERENCE_K: f64 = ZERO_CELSIUS_K + 20.0;
 #[derive(Debug, Clone, PartialEq)]
 pub struct Curve {
     form: Form,
+    /// First and last temperature of the data in kelvin; without bounds for a constant.
+    range_k: (f64, f64),
     /// Integral from the reference temperature to the begin of the data.
     offset: f64,
     source: Source,
@@ -29,9 +31,10 @@ enum Form {
         value: Vec<f64>,
         integral: Vec<f64>,
     },
-    /// Segments in ascending order and the integral from the first begin to each begin.
+    /// Segments in ascending order, their begins in kelvin, and the integral from the first begin to each begin.
     Segments {
         segments: Vec<Segment>,
+        begin_k: Vec<f64>,
         integral: Vec<f64>,
     },
 }
@@ -91,11 +94,17 @@ impl Curve {
             }
             integral[i] = integral[i - 1] + segments[i - 1].integral(end);
         }
-        Ok(Self::from_form(Form::Segments { segments, integral }))
+        let begin_k = segments.iter().map(|s| s.range_k().0).collect();
+        Ok(Self::from_form(Form::Segments { segments, begin_k, integral }))
     }
 
     fn from_form(form: Form) -> Self {
-        let mut curve = Self { form, offset: 0.0, source: Source::unstated() };
+        let range_k = match &form {
+            Form::Constant(_) => (f64::NEG_INFINITY, f64::INFINITY),
+            Form::Table { t_k, .. } => (t_k[0], t_k[t_k.len() - 1]),
+            Form::Segments { segments, begin_k, .. } => (begin_k[0], segments[segments.len() - 1].range_k().1),
+        };
+        let mut curve = Self { form, range_k, offset: 0.0, source: Source::unstated() };
         curve.offset = -curve.integral(REFERENCE_K);
         curve
     }
@@ -114,12 +123,9 @@ impl Curve {
 
     /// First and last temperature of the data in kelvin; `None` for a constant.
     pub fn range_k(&self) -> Option<(f64, f64)> {
-        match &self.form {
+        match self.form {
             Form::Constant(_) => None,
-            Form::Table { t_k, .. } => Some((t_k[0], t_k[t_k.len() - 1])),
-            Form::Segments { segments, .. } => {
-                Some((segments[0].range_k().0, segments[segments.len() - 1].range_k().1))
-            }
+            Form::Table { .. } | Form::Segments { .. } => Some(self.range_k),
         }
     }
 
@@ -128,32 +134,23 @@ impl Curve {
         let t = self.held(t_k);
         match &self.form {
             Form::Constant(value) => *value,
-            Form::Table { t_k, value, .. } => {
-                let i = row(t_k.len(), |i| t_k[i], t);
-                let Some(&next) = t_k.get(i + 1) else {
-                    return value[i];
-                };
-                let s = (t - t_k[i]) / (next - t_k[i]);
-                value[i] * (1.0 - s) + value[i + 1] * s
-            }
-            Form::Segments { segments, .. } => segments[row(segments.len(), |i| segments[i].range_k().0, t)].value(t),
+            Form::Table { t_k, value, .. } => between_rows(t_k, value, row(t_k, t), t),
+            Form::Segments { segments, begin_k, .. } => segments[row(begin_k, t)].value(t),
         }
     }
 
     /// Derivative at `t_k` per kelvin, from the right at a corner; zero outside the range and for a constant.
     pub fn slope(&self, t_k: f64) -> f64 {
-        if self.range_k().is_none_or(|(low, high)| !(low..high).contains(&t_k)) {
+        if !(self.range_k.0..self.range_k.1).contains(&t_k) {
             return 0.0;
         }
         match &self.form {
             Form::Constant(_) => 0.0,
             Form::Table { t_k: knots, value, .. } => {
-                let i = row(knots.len(), |i| knots[i], t_k).min(knots.len() - 2);
+                let i = row(knots, t_k).min(knots.len() - 2);
                 (value[i + 1] - value[i]) / (knots[i + 1] - knots[i])
             }
-            Form::Segments { segments, .. } => {
-                segments[row(segments.len(), |i| segments[i].range_k().0, t_k)].slope(t_k)
-            }
+            Form::Segments { segments, begin_k, .. } => segments[row(begin_k, t_k)].slope(t_k),
         }
     }
 
@@ -165,11 +162,11 @@ impl Curve {
         let inside = match &self.form {
             Form::Constant(value) => return value * (t_k - REFERENCE_K),
             Form::Table { t_k, value, integral } => {
-                let i = row(t_k.len(), |i| t_k[i], t);
-                integral[i] + 0.5 * (value[i] + self.value(t)) * (t - t_k[i])
+                let i = row(t_k, t);
+                integral[i] + 0.5 * (value[i] + between_rows(t_k, value, i, t)) * (t - t_k[i])
             }
-            Form::Segments { segments, integral } => {
-                let i = row(segments.len(), |i| segments[i].range_k().0, t);
+            Form::Segments { segments, begin_k, integral } => {
+                let i = row(begin_k, t);
                 integral[i] + segments[i].integral(t)
             }
         };
@@ -210,22 +207,22 @@ impl Curve {
 
     /// The temperature brought into the range of the data.
     fn held(&self, t_k: f64) -> f64 {
-        self.range_k().map_or(t_k, |(low, high)| t_k.clamp(low, high))
+        t_k.clamp(self.range_k.0, self.range_k.1)
     }
 }
 
-/// Last index `i` with `begin(i) <= t`, at least 0.
-fn row(count: usize, begin: impl Fn(usize) -> f64, t: f64) -> usize {
-    let (mut low, mut high) = (0, count);
-    while high - low > 1 {
-        let middle = low.midpoint(high);
-        if begin(middle) <= t {
-            low = middle;
-        } else {
-            high = middle;
-        }
-    }
-    low
+/// Last index `i` with `begins[i] <= t`, at least 0.
+fn row(begins: &[f64], t: f64) -> usize {
+    begins.partition_point(|&begin| begin <= t).saturating_sub(1)
+}
+
+/// Value at `t` of the straight line from row `i` to the next; of row `i` itself if it is the last.
+fn between_rows(t_k: &[f64], value: &[f64], i: usize, t: f64) -> f64 {
+    let Some(&next) = t_k.get(i + 1) else {
+        return value[i];
+    };
+    let s = (t - t_k[i]) / (next - t_k[i]);
+    value[i] * (1.0 - s) + value[i + 1] * s
 }
 
 fn finite(value: f64) -> Result<(), MaterialError> {

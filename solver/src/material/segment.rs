@@ -24,6 +24,10 @@ pub struct Segment {
     to_k: f64,
     zero_k: f64,
     polynomial: Vec<f64>,
+    /// Coefficients of the polynomial's integral divided by `x`: `a_k / (k + 1)`.
+    integrated: Vec<f64>,
+    /// Integral of the polynomial from `x = 0` to the begin of the segment.
+    polynomial_at_begin: f64,
     pole: Option<Pole>,
 }
 
@@ -63,7 +67,10 @@ impl Segment {
             let at_c = celsius(p.at + zero_k);
             return Err(MaterialFault::PoleInside { at_c, from_c, to_c }.into());
         }
-        Ok(Self { from_k, to_k, zero_k, polynomial, pole })
+        let integrated: Vec<f64> = polynomial.iter().enumerate().map(|(k, a)| a / (k as f64 + 1.0)).collect();
+        let begin = from_k - zero_k;
+        let polynomial_at_begin = horner(&integrated, begin) * begin;
+        Ok(Self { from_k, to_k, zero_k, polynomial, integrated, polynomial_at_begin, pole })
     }
 
     /// Begin and end in kelvin.
@@ -74,8 +81,7 @@ impl Segment {
     /// Value at `t_k`, in the unit of the property; the formula continues outside the segment.
     pub fn value(&self, t_k: f64) -> f64 {
         let x = t_k - self.zero_k;
-        let polynomial = self.polynomial.iter().rev().fold(0.0, |sum, a| sum * x + a);
-        polynomial + self.pole.map_or(0.0, |p| p.numerator / (x - p.at))
+        horner(&self.polynomial, x) + self.pole.map_or(0.0, |p| p.numerator / (x - p.at))
     }
 
     /// Derivative at `t_k`, per kelvin.
@@ -88,14 +94,11 @@ impl Segment {
 
     /// Exact integral from the begin of the segment to `t_k` (inside it), in the unit of the property times kelvin.
     pub fn integral(&self, t_k: f64) -> f64 {
-        let (x, x0) = (t_k - self.zero_k, self.from_k - self.zero_k);
-        let antiderivative = |x: f64| {
-            let terms = self.polynomial.iter().enumerate().rev();
-            terms.fold(0.0, |sum, (k, a)| sum * x + a / (k as f64 + 1.0)) * x
-        };
-        let polynomial = antiderivative(x) - antiderivative(x0);
+        let x = t_k - self.zero_k;
+        let polynomial = horner(&self.integrated, x) * x - self.polynomial_at_begin;
         // ln((x - p)/(x0 - p)): the ratio is positive because the pole is outside the segment.
-        polynomial + self.pole.map_or(0.0, |p| p.numerator * ((x - x0) / (x0 - p.at)).ln_1p())
+        let logarithm = |p: Pole| p.numerator * ((x - p.at) / (self.from_k - self.zero_k - p.at)).ln();
+        polynomial + self.pole.map_or(0.0, logarithm)
     }
 
     /// Whether the formula is greater than zero on the whole segment, shown by bounds and not by samples.
@@ -140,4 +143,9 @@ impl Segment {
         });
         polynomial + pole
     }
+}
+
+/// Polynomial with coefficients from the constant upwards.
+fn horner(coefficients: &[f64], x: f64) -> f64 {
+    coefficients.iter().rev().fold(0.0, |sum, a| sum * x + a)
 }
