@@ -5,11 +5,8 @@
 use rayon::prelude::*;
 
 use super::element::ElementPoints;
-use super::reference::MAX_NODES;
 use crate::linalg::{LinalgError, Pattern, Scalar};
 
-/// Largest number of unknowns an element couples: its nodes and one more (a turn's voltage).
-pub const MAX_BLOCK: usize = MAX_NODES + 1;
 /// Elements a task computes before the next is handed out.
 const CHUNK: usize = 64;
 
@@ -44,18 +41,14 @@ impl Scatter {
     pub fn is_empty(&self) -> bool {
         self.len() == 0
     }
-
-    fn of(&self, e: usize) -> &[u32] {
-        &self.slots[self.starts[e] as usize..self.starts[e + 1] as usize]
-    }
 }
 
 /// A dense symmetric block: lower triangle by rows, entry `(i, j)`, `i >= j`, at `i (i + 1) / 2 + j`.
-pub type Block<T> = [T; MAX_BLOCK * (MAX_BLOCK + 1) / 2];
+pub type Block<T> = [T];
 
 /// Adds the block of every element into `values`.
 ///
-/// `block(e, points, out)` fills the leading entries of a block that arrives as zeros.
+/// `block(e, points, out)` fills a block that arrives as zeros.
 pub fn add_blocks<T: Scalar + Default>(
     scatter: &Scatter,
     values: &mut [T],
@@ -63,25 +56,23 @@ pub fn add_blocks<T: Scalar + Default>(
 ) {
     let starts: Vec<usize> = (0..scatter.len()).step_by(CHUNK).collect();
     for group in starts.chunks(64) {
-        let blocks: Vec<Vec<Block<T>>> = group
+        let blocks: Vec<Vec<T>> = group
             .par_iter()
-            .map(|&start| {
-                let mut points = ElementPoints::default();
+            .map_init(ElementPoints::default, |points, &start| {
                 let end = (start + CHUNK).min(scatter.len());
-                (start..end)
-                    .map(|e| {
-                        let mut out = [T::default(); MAX_BLOCK * (MAX_BLOCK + 1) / 2];
-                        block(e, &mut points, &mut out);
-                        out
-                    })
-                    .collect()
+                let first = scatter.starts[start] as usize;
+                let mut out = vec![T::default(); scatter.starts[end] as usize - first];
+                for e in start..end {
+                    let own = scatter.starts[e] as usize - first..scatter.starts[e + 1] as usize - first;
+                    block(e, points, &mut out[own]);
+                }
+                out
             })
             .collect();
         for (&start, chunk) in group.iter().zip(&blocks) {
-            for (k, block) in chunk.iter().enumerate() {
-                for (&slot, &v) in scatter.of(start + k).iter().zip(block) {
-                    values[slot as usize] += v;
-                }
+            let slots = &scatter.slots[scatter.starts[start] as usize..];
+            for (&slot, &v) in slots.iter().zip(chunk) {
+                values[slot as usize] += v;
             }
         }
     }

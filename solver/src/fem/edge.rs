@@ -82,4 +82,22 @@ impl Space {
         }
         sides
     }
+
+    /// Surface of each of `regions` regions towards other regions, m^2: without the axis and the edge of the mesh.
+    pub fn surface_by_region(&self, regions: usize) -> Vec<f64> {
+        let mesh = self.mesh();
+        let mut out = vec![0.0; regions];
+        for e in 0..self.element_count() {
+            let t = self.triangle(e);
+            for (edge, &id) in mesh.triangle_edges()[t].iter().enumerate() {
+                let pair = mesh.edges()[id as usize].triangles;
+                let other = if pair[0] as usize == t { pair[1] } else { pair[0] };
+                if other != mesher::NO_TRIANGLE && mesh.regions()[other as usize] != self.region(e) {
+                    let points = self.side_points(Side { element: e, edge });
+                    out[self.region(e).0 as usize] += points.iter().map(|p| p.surface).sum::<f64>();
+                }
+            }
+        }
+        out
+    }
 }

@@ -32,6 +32,7 @@ pub struct Operator {
     matrix: SymmetricMatrix<Complex64>,
     factor: Option<Factor<Complex64>>,
     source: Vec<Complex64>,
+    surfaces_m2: Vec<f64>,
 }
 
 impl Operator {
@@ -66,6 +67,7 @@ impl Operator {
             exterior_block: exterior.as_ref().map(Exterior::block).unwrap_or_default(),
             factor: None,
             source: vec![Complex64::ZERO; n],
+            surfaces_m2: space.surface_by_region(regions.len()),
             space,
             turns,
             border_of_element,
@@ -97,6 +99,11 @@ impl Operator {
     /// Meshed sections in the whole device: 2 with one mirror plane, else 1.
     pub fn copies(&self) -> f64 {
         self.copies
+    }
+
+    /// Surface of each region towards other regions in the meshed section, m^2.
+    pub fn surfaces_m2(&self) -> &[f64] {
+        &self.surfaces_m2
     }
 
     /// Number of unknowns.
@@ -201,14 +208,7 @@ fn plan(pattern: &Arc<Pattern>, space: &Space, ring: &[u32], n: usize) -> Result
 }
 
 /// Lower triangle of `K + j w M` of an element, with the row of its turn's voltage last where it has one.
-fn element_block(
-    points: &ElementPoints,
-    sigma: &[f64],
-    nu: &[f64],
-    omega: f64,
-    border: bool,
-    out: &mut Block<Complex64>,
-) {
+fn element_block(points: &ElementPoints, sigma: &[f64], nu: &[f64], omega: f64, border: bool, out: &mut [Complex64]) {
     let n = points.nodes;
     for ((p, &sigma), &nu) in points.points().iter().zip(sigma).zip(nu) {
         let (k, m) = (nu * p.volume, omega * sigma * p.volume);

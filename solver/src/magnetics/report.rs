@@ -6,9 +6,8 @@ use super::drive::PerAmpere;
 use super::operator::Operator;
 use super::poynting::power_into;
 use super::properties::PointProperties;
-use super::unit_field::{UnitField, flux_density, local};
+use super::unit_field::UnitField;
 use crate::constants::skin_depth;
-use crate::fem::assemble::map_elements;
 use crate::model::{Coil, Model, Role, Water};
 use crate::results::{CoilNumbers, Electrical, PartNumbers, RegionName, Terminals, TurnRow};
 
@@ -224,7 +223,7 @@ fn unit_parts(
     model: &Model,
     by_region: &[f64],
 ) -> Vec<UnitPart> {
-    let surfaces = surfaces_by_region(operator, regions.len());
+    let surfaces = operator.surfaces_m2();
     let extremes = extremes_by_region(field, operator, properties, regions.len());
     (0..model.parts.len())
         .map(|part| {
@@ -259,47 +258,14 @@ fn extremes_by_region(
 ) -> Vec<Extremes> {
     let space = operator.space();
     let frequency = operator.omega() / std::f64::consts::TAU;
-    let rows = map_elements(space.element_count(), |e, points| {
-        space.fill(e, points);
-        let (u, _) = local(operator, &field.x, e);
-        let mut out = Extremes { loss: 0.0, skin: f64::INFINITY, field: 0.0 };
-        let materials = properties.sigma(e).iter().zip(properties.nu(e));
-        for ((p, (&sigma, &nu)), &loss) in points.points().iter().zip(materials).zip(field.loss(e)) {
-            let b = flux_density(p, &u);
-            out.field = out.field.max(nu * (b[0].norm_sqr() + b[1].norm_sqr()).sqrt());
-            out.loss = out.loss.max(loss);
-            if sigma > 0.0 {
-                out.skin = out.skin.min(skin_depth(frequency, sigma, 1.0 / (nu * crate::constants::MU_0)));
-            }
-        }
-        out
-    });
     let mut by_region = vec![Extremes { loss: 0.0, skin: f64::INFINITY, field: 0.0 }; regions];
-    for (e, row) in rows.into_iter().enumerate() {
+    for (e, sums) in field.by_element.iter().enumerate() {
         let slot = &mut by_region[space.region(e).0 as usize];
-        slot.loss = slot.loss.max(row.loss);
-        slot.skin = slot.skin.min(row.skin);
-        slot.field = slot.field.max(row.field);
+        slot.loss = slot.loss.max(sums.largest_loss_w_per_m3);
+        slot.field = slot.field.max(sums.largest_field_a_per_m);
+        for (&sigma, &nu) in properties.sigma(e).iter().zip(properties.nu(e)).filter(|(s, _)| **s > 0.0) {
+            slot.skin = slot.skin.min(skin_depth(frequency, sigma, 1.0 / (nu * crate::constants::MU_0)));
+        }
     }
     by_region
-}
-
-/// Surface of each region towards other regions, m^2, for the meshed section: without the axis and mirror planes.
-fn surfaces_by_region(operator: &Operator, regions: usize) -> Vec<f64> {
-    let space = operator.space();
-    let mesh = space.mesh();
-    let mut out = vec![0.0; regions];
-    for e in 0..space.element_count() {
-        let t = space.triangle(e);
-        for (edge, &id) in mesh.triangle_edges()[t].iter().enumerate() {
-            let pair = mesh.edges()[id as usize].triangles;
-            let other = if pair[0] as usize == t { pair[1] } else { pair[0] };
-            if other == mesher::NO_TRIANGLE || mesh.regions()[other as usize] == space.region(e) {
-                continue;
-            }
-            let side = crate::fem::edge::Side { element: e, edge };
-            out[space.region(e).0 as usize] += space.side_points(side).iter().map(|p| p.surface).sum::<f64>();
-        }
-    }
-    out
 }

@@ -21,12 +21,27 @@ pub struct UnitField {
     pub stride: usize,
     /// Loss density carried by eddy currents at every quadrature point, W/m^3, element-major.
     pub loss_w_per_m3: Vec<f64>,
+    /// Sums and extremes of every element.
+    pub by_element: Vec<ElementSums>,
     /// Stored energy of the meshed section and its share of the outside, joules.
     pub energy_j: f64,
     /// Componentwise backward error of the solve.
     pub backward_error: f64,
     /// Power that the source puts into the meshed section, watts: `1/2 Re(V I*)` without stranded resistances.
     pub source_power_w: f64,
+}
+
+/// Sums and extremes of one element per unit drive squared, or per unit drive for the field strength.
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
+pub struct ElementSums {
+    /// Eddy-current loss in watts.
+    pub loss_w: f64,
+    /// Stored energy in joules.
+    pub energy_j: f64,
+    /// Largest loss density at a quadrature point, W/m^3.
+    pub largest_loss_w_per_m3: f64,
+    /// Largest field strength at a quadrature point, A/m (peak).
+    pub largest_field_a_per_m: f64,
 }
 
 impl UnitField {
@@ -38,22 +53,28 @@ impl UnitField {
         let rows = map_elements(space.element_count(), |e, points| {
             space.fill(e, points);
             let (u, w) = local(operator, &x, e);
-            let mut energy = 0.0;
+            let mut sums = ElementSums::default();
             let mut loss = Vec::with_capacity(stride);
             for ((p, &sigma), &nu) in points.points().iter().zip(properties.sigma(e)).zip(properties.nu(e)) {
-                let field = electric_field(p, &u, w, omega);
-                loss.push(0.5 * sigma * field.norm_sqr());
+                let density = if sigma > 0.0 { 0.5 * sigma * electric_field(p, &u, w, omega).norm_sqr() } else { 0.0 };
                 let b = flux_density(p, &u);
-                energy += 0.25 * nu * (b[0].norm_sqr() + b[1].norm_sqr()) * p.volume;
+                let square = b[0].norm_sqr() + b[1].norm_sqr();
+                loss.push(density);
+                sums.loss_w += density * p.volume;
+                sums.energy_j += 0.25 * nu * square * p.volume;
+                sums.largest_loss_w_per_m3 = sums.largest_loss_w_per_m3.max(density);
+                sums.largest_field_a_per_m = sums.largest_field_a_per_m.max(nu * square.sqrt());
             }
-            (loss, energy)
+            (loss, sums)
         });
-        let energy: f64 = rows.iter().map(|r| r.1).sum();
+        let energy: f64 = rows.iter().map(|r| r.1.energy_j).sum();
         let exterior = if operator.turns().meshed.is_empty() { 0.0 } else { 0.25 * operator.exterior_form(&x) };
         let work: f64 = x.iter().zip(operator.source()).map(|(x, b)| (x.conj() * b).im).sum();
+        let (losses, by_element): (Vec<_>, Vec<_>) = rows.into_iter().unzip();
         Self {
             stride,
-            loss_w_per_m3: rows.into_iter().flat_map(|r| r.0).collect(),
+            loss_w_per_m3: losses.concat(),
+            by_element,
             energy_j: energy + exterior,
             backward_error,
             source_power_w: 0.5 * omega * work,
@@ -68,18 +89,9 @@ impl UnitField {
 
     /// Eddy-current loss of every region of the meshed section, watts.
     pub fn loss_by_region(&self, operator: &Operator, regions: usize) -> Vec<f64> {
-        let space = operator.space();
-        let sums = map_elements(space.element_count(), |e, points| {
-            let loss = self.loss(e);
-            if loss.iter().all(|&p| p == 0.0) {
-                return 0.0;
-            }
-            space.fill(e, points);
-            points.points().iter().zip(loss).map(|(p, l)| p.volume * l).sum()
-        });
         let mut out = vec![0.0; regions];
-        for (e, sum) in sums.into_iter().enumerate() {
-            out[space.region(e).0 as usize] += sum;
+        for (e, sums) in self.by_element.iter().enumerate() {
+            out[operator.space().region(e).0 as usize] += sums.loss_w;
         }
         out
     }
