@@ -1,33 +1,36 @@
-//! Volumes in m^3 and basis gradients in 1/m of every element at its quadrature points, computed once a problem.
-//! Convention: element-major, then quadrature point, then node.
+//! Volumes in m^3 and the map of gradients of every element at its quadrature points, computed once a problem.
+//! Convention: element-major, then quadrature point.
 
 use crate::fem::assemble::map_elements;
+use crate::fem::reference::node_positions;
 use crate::fem::space::Space;
+
+/// Gradients in 1/m of the two reference coordinates, each `[d/dr, d/dz]`: `grad f = xi' df/dxi + eta' df/deta`.
+pub(super) type Map = [[f64; 2]; 2];
 
 /// The measures of a space.
 #[derive(Debug, Clone)]
 pub(super) struct Geometry {
     points: usize,
-    nodes: usize,
     volume: Vec<f64>,
-    gradient: Vec<[f64; 2]>,
+    map: Vec<Map>,
 }
 
 impl Geometry {
     pub(super) fn new(space: &Space) -> Self {
-        let nodes = space.reference().node_count();
+        let nodes = node_positions(space.reference().order());
         let rows = map_elements(space.element_count(), |e, points| {
             space.fill(e, points);
             let volume: Vec<f64> = points.points().iter().map(|p| p.volume).collect();
-            let gradient: Vec<[f64; 2]> = points.points().iter().flat_map(|p| p.gradient[..nodes].to_vec()).collect();
-            (volume, gradient)
+            let map: Vec<Map> = points.points().iter().map(|p| coordinate_gradients(&nodes, &p.gradient)).collect();
+            (volume, map)
         });
-        let (mut volume, mut gradient) = (Vec::new(), Vec::new());
-        for (v, g) in rows {
+        let (mut volume, mut map) = (Vec::new(), Vec::new());
+        for (v, m) in rows {
             volume.extend(v);
-            gradient.extend(g);
+            map.extend(m);
         }
-        Self { points: space.reference().point_count(), nodes, volume, gradient }
+        Self { points: space.reference().point_count(), volume, map }
     }
 
     /// Quadrature points of an element.
@@ -45,9 +48,20 @@ impl Geometry {
         &self.volume[e * self.points..(e + 1) * self.points]
     }
 
-    /// Gradients of the nodes of element `e` at its point `q`.
-    pub(super) fn gradient(&self, e: usize, q: usize) -> &[[f64; 2]] {
-        let start = (e * self.points + q) * self.nodes;
-        &self.gradient[start..start + self.nodes]
+    /// Maps of gradients at the points of element `e`.
+    pub(super) fn map(&self, e: usize) -> &[Map] {
+        &self.map[e * self.points..(e + 1) * self.points]
     }
+}
+
+/// The basis reproduces the reference coordinates, so their gradients are sums over the nodes.
+fn coordinate_gradients(nodes: &[[f64; 2]], gradients: &[[f64; 2]]) -> Map {
+    let mut map = [[0.0; 2]; 2];
+    for (x, g) in nodes.iter().zip(gradients) {
+        for (row, x) in map.iter_mut().zip(x) {
+            row[0] += x * g[0];
+            row[1] += x * g[1];
+        }
+    }
+    map
 }

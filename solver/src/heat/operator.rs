@@ -6,7 +6,7 @@
 //! Convention: arrays over points are element-major; sums run in element order, for any number of threads.
 
 use super::boundary::{ActiveSide, Boundary, SideLaw, exchange};
-use super::geometry::Geometry;
+use super::geometry::{Geometry, Map};
 use super::parts::HeatedPart;
 use crate::fem::assemble::{Block, Scatter, add_blocks, map_elements};
 use crate::fem::reference::{MAX_NODES, MAX_POINTS};
@@ -58,6 +58,7 @@ pub(super) struct Terms {
 }
 
 /// Terms of one element.
+#[derive(Default)]
 struct Local {
     storage: [f64; MAX_NODES],
     rate: [f64; MAX_NODES],
@@ -67,7 +68,12 @@ struct Local {
 impl Operator {
     /// Storage against `enthalpy` (`rho h_n` in J/m^3 a point) and rate with `source` (W/m^3 a point) at `t`.
     pub(super) fn terms(&self, t: &[f64], enthalpy: &[f64], source: &[f64]) -> Terms {
-        let locals = map_elements(self.space.element_count(), |e, _| self.local_terms(e, t, enthalpy, source));
+        let local = match self.space.reference().node_count() {
+            3 => Self::local_terms::<3>,
+            6 => Self::local_terms::<6>,
+            _ => Self::local_terms::<MAX_NODES>,
+        };
+        let locals = map_elements(self.space.element_count(), |e, _| local(self, e, t, enthalpy, source));
         let n = self.space.len();
         let mut terms = Terms { storage: vec![0.0; n], rate: vec![0.0; n], flows: Flows::default() };
         for (e, local) in locals.iter().enumerate() {
@@ -80,29 +86,32 @@ impl Operator {
         terms
     }
 
-    fn local_terms(&self, e: usize, t: &[f64], enthalpy: &[f64], source: &[f64]) -> Local {
+    /// Terms of element `e` of `N` nodes; a constant number lets the compiler unroll the inner loops.
+    fn local_terms<const N: usize>(&self, e: usize, t: &[f64], enthalpy: &[f64], source: &[f64]) -> Local {
         let part = self.part(e);
         let material = &part.material;
         let (nodal, _) = self.nodal(e, t);
-        let mut out = Local { storage: [0.0; MAX_NODES], rate: [0.0; MAX_NODES], flows: Flows::default() };
-        let first = e * self.geometry.points();
-        for (q, (shape, &volume)) in self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate() {
-            let gradients = self.geometry.gradient(e, q);
+        let mut out = Local::default();
+        let own = e * self.geometry.points()..(e + 1) * self.geometry.points();
+        let measures = self.geometry.volume(e).iter().zip(self.geometry.map(e));
+        let data = enthalpy[own.clone()].iter().zip(&source[own]);
+        for ((shape, (&volume, map)), (h_before, source)) in
+            self.space.reference().shapes().iter().zip(measures).zip(data)
+        {
             let (mut at, mut slope) = (0.0, [0.0; 2]);
-            for ((t, v), g) in nodal.iter().zip(&shape.value).zip(gradients) {
+            for ((t, v), d) in nodal.iter().zip(&shape.value).zip(&shape.derivative).take(N) {
                 at += v * t;
                 // Differences first: what is common to the element must not spoil the gradient's last digits.
-                slope[0] += g[0] * (t - nodal[0]);
-                slope[1] += g[1] * (t - nodal[0]);
+                slope[0] += d[0] * (t - nodal[0]);
+                slope[1] += d[1] * (t - nodal[0]);
             }
-            let h = material.density_kg_per_m3 * material.enthalpy.value(at);
-            let stored = volume * (h - enthalpy[first + q]);
-            let supplied = volume * source[first + q];
-            let k = volume * part.conductivity.value(at);
+            let stored = volume * (material.density_kg_per_m3 * material.enthalpy.value(at) - h_before);
+            let supplied = volume * source;
+            let flux = coupled(map, volume * part.conductivity.value(at), slope);
             let rows = out.storage.iter_mut().zip(&mut out.rate);
-            for ((storage, rate), (v, g)) in rows.zip(shape.value.iter().zip(gradients)) {
+            for (((storage, rate), v), d) in rows.zip(&shape.value).zip(&shape.derivative).take(N) {
                 *storage += stored * v;
-                *rate += supplied * v - k * (g[0] * slope[0] + g[1] * slope[1]);
+                *rate += supplied * v - (d[0] * flux[0] + d[1] * flux[1]);
             }
             out.flows.supplied += supplied;
         }
@@ -135,29 +144,35 @@ impl Operator {
 
     /// Adds the tangent of `storage - w rate` at `t` to `values`, in J/K; `w` in seconds.
     pub(super) fn add_tangent(&self, scatter: &Scatter, t: &[f64], w: f64, values: &mut [f64]) {
-        add_blocks(scatter, values, |e, _, block: &mut Block<f64>| {
-            let part = self.part(e);
-            let material = &part.material;
-            let (nodal, nodes) = self.nodal(e, t);
-            for (q, (shape, &volume)) in self.space.reference().shapes().iter().zip(self.geometry.volume(e)).enumerate()
-            {
-                let at: f64 = shape.value[..nodes].iter().zip(&nodal).map(|(v, t)| v * t).sum();
-                let gradients = self.geometry.gradient(e, q);
-                let capacity = volume * material.density_kg_per_m3 * material.enthalpy.slope(at);
-                let k = w * volume * part.conductivity.value(at);
-                let mut slot = 0;
-                for (i, (v, g)) in shape.value.iter().zip(gradients).enumerate() {
-                    let (mass, flow) = (capacity * v, g.map(|d| k * d));
-                    for (other, h) in shape.value.iter().zip(&gradients[..=i]) {
-                        block[slot] += mass * other + flow[0] * h[0] + flow[1] * h[1];
-                        slot += 1;
-                    }
+        let local = match self.space.reference().node_count() {
+            3 => Self::local_tangent::<3>,
+            6 => Self::local_tangent::<6>,
+            _ => Self::local_tangent::<MAX_NODES>,
+        };
+        add_blocks(scatter, values, |e, _, block: &mut Block<f64>| local(self, e, t, w, block));
+    }
+
+    fn local_tangent<const N: usize>(&self, e: usize, t: &[f64], w: f64, block: &mut Block<f64>) {
+        let part = self.part(e);
+        let material = &part.material;
+        let (nodal, _) = self.nodal(e, t);
+        let measures = self.geometry.volume(e).iter().zip(self.geometry.map(e));
+        for (shape, (&volume, map)) in self.space.reference().shapes().iter().zip(measures) {
+            let at: f64 = shape.value.iter().zip(&nodal).take(N).map(|(v, t)| v * t).sum();
+            let capacity = volume * material.density_kg_per_m3 * material.enthalpy.slope(at);
+            let k = w * volume * part.conductivity.value(at);
+            let mut slot = 0;
+            for (i, (v, &d)) in shape.value.iter().zip(&shape.derivative).enumerate().take(N) {
+                let (mass, flow) = (capacity * v, coupled(map, k, d));
+                for (other, d) in shape.value.iter().zip(&shape.derivative).take(i + 1) {
+                    block[slot] += mass * other + flow[0] * d[0] + flow[1] * d[1];
+                    slot += 1;
                 }
             }
-            for side in self.boundary.of(e) {
-                self.side_tangent(side, &nodal, w, block);
-            }
-        });
+        }
+        for side in self.boundary.of(e) {
+            self.side_tangent(side, &nodal, w, block);
+        }
     }
 
     fn side_tangent(&self, side: &ActiveSide, nodal: &[f64; MAX_NODES], w: f64, block: &mut Block<f64>) {
@@ -209,6 +224,13 @@ impl Operator {
         }
         (nodal, unknowns.len())
     }
+}
+
+/// Flow `k grad f` from the reference derivatives of `f`, against the gradients of the reference coordinates.
+fn coupled(map: &Map, k: f64, slope: [f64; 2]) -> [f64; 2] {
+    let r = k * (map[0][0] * slope[0] + map[1][0] * slope[1]);
+    let z = k * (map[0][1] * slope[0] + map[1][1] * slope[1]);
+    [map[0][0] * r + map[0][1] * z, map[1][0] * r + map[1][1] * z]
 }
 
 fn side_temperature(side: &ActiveSide, value: &[f64], nodal: &[f64; MAX_NODES]) -> f64 {
