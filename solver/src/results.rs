@@ -21,7 +21,7 @@ pub struct Results {
     pub warnings: Vec<Warning>,
     /// The section, its mesh and names.
     pub section: Section,
-    /// Electrical states in time order: start, Curie crossings, ends of stages, maxima.
+    /// Electrical states: start, Curie crossings and ends of stages in time order, then the greatest values of a heating.
     pub states: Vec<State>,
     /// One row an accepted heat step, starting with the start; empty without heating.
     pub history: Vec<HistoryRow>,

@@ -328,7 +328,7 @@ impl<'a> Recorder<'a> {
             let highest_k = own().map(|t| t.max_k).fold(part.start_k, f64::max);
             warnings::of_temperatures(part, lowest_k, highest_k, &mut self.warnings);
         }
-        for maximum in self.maxima {
+        for maximum in self.maxima.into_iter().filter(|_| self.model.heating.is_some()) {
             self.states.extend(maximum.at.map(|(_, state)| state));
         }
         Results {
