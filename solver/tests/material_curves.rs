@@ -298,3 +298,31 @@ fn use_outside_the_data_is_noted_on_the_side_it_happens() {
         "material `C45`: `thermal_conductivity` was used at 1250 °C, its data cover 20 to 1200 °C; the last value was held"
     );
 }
+
+#[test]
+fn temperatures_taken_together_give_what_each_gives_alone() {
+    let library = library().unwrap();
+    for name in ["C45", "copper", "aluminium"] {
+        let material = library.find(name).unwrap();
+        // Inside one segment, across several, at a pole's end, while melting, and outside the data.
+        for (from, step) in
+            [(300.0, 7.0), (850.0, 0.9), (900.0, 11.0), (1003.0, 1.03), (930.0, 1.0), (1300.0, 20.0), (150.0, 9.0)]
+        {
+            for count in [1, 4, 9, 16, 25] {
+                let t: Vec<f64> = (0..count).map(|i| from + step * f64::from(i)).collect();
+                let (mut values, mut integrals, mut enthalpies) = (t.clone(), t.clone(), t.clone());
+                material.conductivity.values(&mut values);
+                material.specific_heat.integrals(&mut integrals);
+                material.enthalpy.values(&mut enthalpies);
+                for (i, &t) in t.iter().enumerate() {
+                    assert_eq!(values[i], material.conductivity.value(t), "{name} at {t} K");
+                    assert_eq!(integrals[i], material.specific_heat.integral(t), "{name} at {t} K");
+                    assert_eq!(enthalpies[i], material.enthalpy.value(t), "{name} at {t} K");
+                }
+            }
+        }
+    }
+    let mut spoilt = [400.0, f64::NAN, 500.0];
+    library.find("C45").unwrap().enthalpy.values(&mut spoilt);
+    assert!(spoilt[0].is_finite() && spoilt[1].is_nan() && spoilt[2].is_finite());
+}

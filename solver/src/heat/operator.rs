@@ -93,21 +93,28 @@ impl Operator {
         let (nodal, _) = self.nodal(e, t);
         let mut out = Local::default();
         let own = e * self.geometry.points()..(e + 1) * self.geometry.points();
-        let measures = self.geometry.volume(e).iter().zip(self.geometry.map(e));
-        let data = enthalpy[own.clone()].iter().zip(&source[own]);
-        for ((shape, (&volume, map)), (h_before, source)) in
-            self.space.reference().shapes().iter().zip(measures).zip(data)
-        {
-            let (mut at, mut slope) = (0.0, [0.0; 2]);
+        let shapes = self.space.reference().shapes();
+        let (mut at, mut slopes) = ([0.0; MAX_POINTS], [[0.0; 2]; MAX_POINTS]);
+        for ((shape, at), slope) in shapes.iter().zip(&mut at).zip(&mut slopes) {
             for ((t, v), d) in nodal.iter().zip(&shape.value).zip(&shape.derivative).take(N) {
-                at += v * t;
+                *at += v * t;
                 // Differences first: what is common to the element must not spoil the gradient's last digits.
                 slope[0] += d[0] * (t - nodal[0]);
                 slope[1] += d[1] * (t - nodal[0]);
             }
-            let stored = volume * (material.density_kg_per_m3 * material.enthalpy.value(at) - h_before);
+        }
+        let (mut h, mut k) = (at, at);
+        material.enthalpy.values(&mut h[..own.len()]);
+        part.conductivity.values(&mut k[..own.len()]);
+        let properties = h.iter().zip(&k).zip(&slopes);
+        let measures = self.geometry.volume(e).iter().zip(self.geometry.map(e));
+        let data = enthalpy[own.clone()].iter().zip(&source[own]);
+        for (((shape, ((h, k), &slope)), (&volume, map)), (h_before, source)) in
+            shapes.iter().zip(properties).zip(measures).zip(data)
+        {
+            let stored = volume * (material.density_kg_per_m3 * h - h_before);
             let supplied = volume * source;
-            let flux = coupled(map, volume * part.conductivity.value(at), slope);
+            let flux = coupled(map, volume * k, slope);
             let rows = out.storage.iter_mut().zip(&mut out.rate);
             for (((storage, rate), v), d) in rows.zip(&shape.value).zip(&shape.derivative).take(N) {
                 *storage += stored * v;
@@ -196,9 +203,8 @@ impl Operator {
             let material = &self.part(e).material;
             let mut row = [0.0; MAX_POINTS];
             self.at_points(e, t, &mut row[..count]);
-            for v in &mut row[..count] {
-                *v = material.density_kg_per_m3 * material.enthalpy.value(*v);
-            }
+            material.enthalpy.values(&mut row[..count]);
+            row[..count].iter_mut().for_each(|h| *h *= material.density_kg_per_m3);
             row
         });
         rows.iter().flat_map(|row| &row[..count]).copied().collect()

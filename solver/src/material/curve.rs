@@ -174,6 +174,32 @@ impl Curve {
         self.offset + inside + outside
     }
 
+    /// [`Curve::value`] at every temperature of `t_k`, written over it; quickest for temperatures near each other.
+    pub fn values(&self, t_k: &mut [f64]) {
+        match self.common_segment(t_k) {
+            Some((segment, _)) => segment.values(t_k),
+            None => t_k.iter_mut().for_each(|t| *t = self.value(*t)),
+        }
+    }
+
+    /// [`Curve::integral`] to every temperature of `t_k`, written over it; quickest for temperatures near each other.
+    pub fn integrals(&self, t_k: &mut [f64]) {
+        let Some((segment, before)) = self.common_segment(t_k) else {
+            t_k.iter_mut().for_each(|t| *t = self.integral(*t));
+            return;
+        };
+        segment.integrals(t_k);
+        t_k.iter_mut().for_each(|inside| *inside = self.offset + (before + *inside));
+    }
+
+    /// The segment all these temperatures lie in, and the integral from the first begin to its begin.
+    fn common_segment(&self, t_k: &[f64]) -> Option<(&Segment, f64)> {
+        let Form::Segments { segments, begin_k, integral } = &self.form else { return None };
+        let i = row(begin_k, *t_k.first()?);
+        let (begin, end) = segments[i].range_k();
+        t_k.iter().all(|&t| begin <= t && t < end).then(|| (&segments[i], integral[i]))
+    }
+
     /// Temperatures in kelvin between which the curve is smooth, ascending; empty for a constant.
     pub(super) fn knots_k(&self) -> Vec<f64> {
         match &self.form {

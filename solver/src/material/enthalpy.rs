@@ -107,6 +107,15 @@ impl Enthalpy {
         self.specific_heat.integral(t_k) + latent
     }
 
+    /// [`Enthalpy::value`] at every temperature of `t_k`, written over it; quickest for temperatures near each other.
+    pub fn values(&self, t_k: &mut [f64]) {
+        if self.fusion.is_some_and(|(begin, ..)| t_k.iter().any(|&t| t > begin)) {
+            t_k.iter_mut().for_each(|t| *t = self.value(*t));
+        } else {
+            self.specific_heat.integrals(t_k);
+        }
+    }
+
     /// Derivative in J/(kg K) at `t_k`, from the right at a corner: the effective specific heat, latent heat included.
     pub fn slope(&self, t_k: f64) -> f64 {
         let latent = match self.fusion {

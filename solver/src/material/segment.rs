@@ -28,7 +28,8 @@ pub struct Segment {
     integrated: Vec<f64>,
     /// Integral of the polynomial from `x = 0` to the begin of the segment.
     polynomial_at_begin: f64,
-    pole: Option<Pole>,
+    /// The pole; its numerator is zero where the formula has none.
+    pole: Pole,
 }
 
 impl Segment {
@@ -70,6 +71,7 @@ impl Segment {
         let integrated: Vec<f64> = polynomial.iter().enumerate().map(|(k, a)| a / (k as f64 + 1.0)).collect();
         let begin = from_k - zero_k;
         let polynomial_at_begin = horner(&integrated, begin) * begin;
+        let pole = pole.unwrap_or(Pole { numerator: 0.0, at: 0.0 });
         Ok(Self { from_k, to_k, zero_k, polynomial, integrated, polynomial_at_begin, pole })
     }
 
@@ -81,7 +83,7 @@ impl Segment {
     /// Value at `t_k`, in the unit of the property; the formula continues outside the segment.
     pub fn value(&self, t_k: f64) -> f64 {
         let x = t_k - self.zero_k;
-        horner(&self.polynomial, x) + self.pole.map_or(0.0, |p| p.numerator / (x - p.at))
+        horner(&self.polynomial, x) + self.fraction(x)
     }
 
     /// Derivative at `t_k`, per kelvin.
@@ -89,16 +91,52 @@ impl Segment {
         let x = t_k - self.zero_k;
         let powers = self.polynomial.iter().enumerate().skip(1).rev();
         let polynomial = powers.fold(0.0, |sum, (k, a)| sum * x + k as f64 * a);
-        polynomial - self.pole.map_or(0.0, |p| p.numerator / ((x - p.at) * (x - p.at)))
+        if self.has_pole() { polynomial - self.fraction(x) / (x - self.pole.at) } else { polynomial }
     }
 
     /// Exact integral from the begin of the segment to `t_k` (inside it), in the unit of the property times kelvin.
     pub fn integral(&self, t_k: f64) -> f64 {
         let x = t_k - self.zero_k;
-        let polynomial = horner(&self.integrated, x) * x - self.polynomial_at_begin;
-        // ln((x - p)/(x0 - p)): the ratio is positive because the pole is outside the segment.
-        let logarithm = |p: Pole| p.numerator * ((x - p.at) / (self.from_k - self.zero_k - p.at)).ln();
-        polynomial + self.pole.map_or(0.0, logarithm)
+        horner(&self.integrated, x) * x - self.polynomial_at_begin + self.logarithm(x)
+    }
+
+    /// [`Segment::value`] at every temperature of `t_k`, written over it.
+    pub(super) fn values(&self, t_k: &mut [f64]) {
+        let polynomial = |x| horner_lanes(&self.polynomial, x);
+        if self.has_pole() {
+            in_lanes(t_k, self.zero_k, |x| add(polynomial(x), x.map(|x| self.fraction(x))));
+        } else {
+            in_lanes(t_k, self.zero_k, polynomial);
+        }
+    }
+
+    /// [`Segment::integral`] to every temperature of `t_k`, written over it.
+    pub(super) fn integrals(&self, t_k: &mut [f64]) {
+        let polynomial = |x: [f64; LANES]| -> [f64; LANES] {
+            let sums = horner_lanes(&self.integrated, x);
+            std::array::from_fn(|i| sums[i] * x[i] - self.polynomial_at_begin)
+        };
+        if self.has_pole() {
+            in_lanes(t_k, self.zero_k, |x| add(polynomial(x), x.map(|x| self.logarithm(x))));
+        } else {
+            in_lanes(t_k, self.zero_k, polynomial);
+        }
+    }
+
+    fn has_pole(&self) -> bool {
+        self.pole.numerator != 0.0
+    }
+
+    /// Value of the pole.
+    fn fraction(&self, x: f64) -> f64 {
+        if self.has_pole() { self.pole.numerator / (x - self.pole.at) } else { 0.0 }
+    }
+
+    /// Integral of the pole from the begin of the segment: `n ln((x - p)/(x0 - p))`, whose ratio is positive because the
+    /// pole is outside the segment.
+    fn logarithm(&self, x: f64) -> f64 {
+        let Pole { numerator, at } = self.pole;
+        if self.has_pole() { numerator * ((x - at) / (self.from_k - self.zero_k - at)).ln() } else { 0.0 }
     }
 
     /// Whether the formula is greater than zero on the whole segment, shown by bounds and not by samples.
@@ -137,12 +175,37 @@ impl Segment {
         let largest = a.abs().max(b.abs());
         let powers = self.polynomial.iter().enumerate().skip(2).rev();
         let polynomial = powers.fold(0.0, |sum, (k, c)| sum * largest + (k * (k - 1)) as f64 * c.abs());
-        let pole = self.pole.map_or(0.0, |p| {
-            let distance = (a - p.at).abs().min((b - p.at).abs());
-            2.0 * p.numerator.abs() / distance.powi(3)
-        });
-        polynomial + pole
+        if !self.has_pole() {
+            return polynomial;
+        }
+        let distance = (a - self.pole.at).abs().min((b - self.pole.at).abs());
+        polynomial + 2.0 * self.pole.numerator.abs() / distance.powi(3)
     }
+}
+
+/// Numbers worked on side by side.
+const LANES: usize = 4;
+
+/// Replaces every temperature by what `f` makes of its distance from `zero_k`, several at a time.
+fn in_lanes(t_k: &mut [f64], zero_k: f64, f: impl Fn([f64; LANES]) -> [f64; LANES]) {
+    let (groups, rest) = t_k.as_chunks_mut::<LANES>();
+    for group in groups {
+        *group = f(group.map(|t| t - zero_k));
+    }
+    if let Some(&first) = rest.first() {
+        let mut group = [first; LANES];
+        group[..rest.len()].copy_from_slice(rest);
+        rest.copy_from_slice(&f(group.map(|t| t - zero_k))[..rest.len()]);
+    }
+}
+
+fn add(a: [f64; LANES], b: [f64; LANES]) -> [f64; LANES] {
+    std::array::from_fn(|i| a[i] + b[i])
+}
+
+/// [`horner`] at several points.
+fn horner_lanes(coefficients: &[f64], x: [f64; LANES]) -> [f64; LANES] {
+    coefficients.iter().rev().fold([0.0; LANES], |sum, a| std::array::from_fn(|i| sum[i] * x[i] + a))
 }
 
 /// Polynomial with coefficients from the constant upwards.
