@@ -6,9 +6,11 @@ pub mod coil_over_plate;
 pub mod coil_round_rod;
 pub mod coils_in_series;
 pub mod cylinder_in_field;
+pub mod cylinder_surface;
 pub mod direct_current;
 pub mod element_order;
 pub mod endless_solenoid;
+pub mod force_between_rings;
 pub mod permeable_sphere;
 pub mod round_wire;
 pub mod sphere_in_field;
@@ -26,6 +28,7 @@ pub type Case = fn() -> Result<Vec<Check>, CaseError>;
 /// All cases in order.
 pub const ALL: &[Case] = &[
     cylinder_in_field::run,
+    cylinder_surface::run,
     tube_in_field::run,
     sphere_in_field::run,
     permeable_sphere::run,
@@ -35,6 +38,7 @@ pub const ALL: &[Case] = &[
     endless_solenoid::run,
     coil_inductance::run,
     coils_in_series::run,
+    force_between_rings::run,
     coil_round_rod::run,
     coil_over_plate::run,
     bar_heat::run,
