@@ -102,6 +102,9 @@ fn solve_exit(error: &SolveError) -> Exit {
         SolveError::Material(_)
         | SolveError::CannotHold { .. }
         | SolveError::TurnOnAxis { .. }
-        | SolveError::GaugeOutside { .. } => Exit::JobRefused,
+        | SolveError::GaugeOutside { .. }
+        | SolveError::Value { .. }
+        | SolveError::Absent { .. } => Exit::JobRefused,
+        SolveError::StoppedEarly => Exit::StoppedEarly,
     }
 }

@@ -6,6 +6,26 @@ use crate::material::MaterialError;
 /// Failures of a run; each says where, what value, which limit and what to do.
 #[derive(Debug, thiserror::Error)]
 pub enum SolveError {
+    /// A number of the model is out of range.
+    #[error("{place} is {value:e} {unit}: it must be {expected}")]
+    Value {
+        /// What it is, and of which part or coil.
+        place: String,
+        /// The number as given.
+        value: f64,
+        /// Its unit.
+        unit: &'static str,
+        /// What it must be.
+        expected: &'static str,
+    },
+    /// Something the model needs is not there.
+    #[error("the model lacks {place}: {remedy}")]
+    Absent {
+        /// What is not there.
+        place: String,
+        /// What to do.
+        remedy: &'static str,
+    },
     /// The section could not be meshed.
     #[error("the section could not be meshed: {0}")]
     Mesh(#[from] mesher::MeshError),

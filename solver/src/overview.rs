@@ -29,8 +29,9 @@ impl Meshed {
     /// Lays out and meshes a model.
     ///
     /// # Errors
-    /// A section the mesher refuses, or a stop on request.
+    /// A model that makes no sense, a section the mesher refuses, or a stop on request.
     pub fn new(model: &Model, stop: &dyn Fn() -> bool) -> Result<Self, SolveError> {
+        model.check()?;
         let layout = layout(model)?;
         let mesh = mesher::triangulate(&layout.drawing, &Limits { max_triangles: MAX_TRIANGLES }, stop)?;
         let nodes = Arc::new(mesh.nodes(model.mesh.order));

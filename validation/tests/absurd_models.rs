@@ -4,7 +4,10 @@
 
 use mesher::Outline;
 use solver::SolveError;
-use solver::model::{Coil, ConductorKind, Drive, Hold, MeshSettings, Mirrors, Model, Part, Turn};
+use solver::model::{
+    Coil, ConductorKind, Drive, Gauge, GaugeKind, Heating, Hold, MeshSettings, Mirrors, Model, Part, Stage, StageEnd,
+    Turn, Water,
+};
 use solver::observe::Silent;
 use validation::models;
 
@@ -136,4 +139,112 @@ fn a_quantity_that_nothing_takes_up_is_refused() {
         hold(m, Hold::WorkpiecePower(1e3));
     });
     assert!(matches!(refusal(&insulator), Ok(SolveError::CannotHold { .. })));
+}
+
+/// A bar in one turn, heated for five seconds, changed.
+fn heated(change: impl Fn(&mut Model, &mut Heating)) -> Model {
+    device(SOLID, |m| {
+        hold(m, Hold::CoilCurrent(2000.0));
+        m.gauges = vec![Gauge { name: "core".to_owned(), kind: GaugeKind::Thermocouple, part: 0, at: [0.0, 0.0] }];
+        let stage = Stage { name: "heat".to_owned(), end: StageEnd::After(5.0), hold: None };
+        let mut heating = Heating { ambient_k: models::START_K, stages: vec![stage], step_tolerance_k: 2.0 };
+        change(m, &mut heating);
+        m.heating = Some(heating);
+    })
+}
+
+#[test]
+fn a_frequency_of_zero_or_below_is_refused() {
+    for hertz in [0.0, -50.0] {
+        all_are_refused(vec![
+            ("solid", device(SOLID, |m| frequency(m, hertz))),
+            ("stranded", device(STRANDED, |m| frequency(m, hertz))),
+            ("field", in_field(vec![bar()], |m| frequency(m, hertz))),
+        ]);
+    }
+}
+
+#[test]
+fn a_held_value_that_is_not_a_number_or_below_zero_is_refused() {
+    for x in [NAN, -1.0, INF] {
+        let applied = in_field(vec![bar()], |m| {
+            m.drive = Drive::AppliedField { frequency_hz: 1000.0, field_a_per_m_rms: x };
+        });
+        let limited = device(SOLID, |m| {
+            if let Drive::Supply { limits, .. } = &mut m.drive {
+                limits.voltage_v_rms = Some(x);
+            }
+        });
+        all_are_refused(vec![
+            ("current", device(SOLID, |m| hold(m, Hold::CoilCurrent(x)))),
+            ("voltage", device(SOLID, |m| hold(m, Hold::CoilVoltage(x)))),
+            ("workpiece power", device(SOLID, |m| hold(m, Hold::WorkpiecePower(x)))),
+            ("terminal power", device(SOLID, |m| hold(m, Hold::TerminalPower(x)))),
+            ("applied field", applied),
+            ("voltage limit", limited),
+        ]);
+    }
+}
+
+#[test]
+fn a_coil_that_cannot_be_is_refused() {
+    let water = |paths, inlet_k| Some(Water { paths, inlet_k, flow_per_path_m3_per_s: 1e-4 });
+    let insulator = || models::material(INF, 1.0).unwrap();
+    all_are_refused(vec![
+        ("no turns", device(SOLID, |m| m.coils[0].turns.clear())),
+        ("no coil", device(SOLID, |m| m.coils.clear())),
+        ("a coil in an applied field", in_field(vec![bar()], |m| m.coils = vec![coil(SOLID)])),
+        ("fill 0", device(ConductorKind::Stranded { fill: 0.0 }, |_| ())),
+        ("fill above 1", device(ConductorKind::Stranded { fill: 1.5 }, |_| ())),
+        ("fill not a number", device(ConductorKind::Stranded { fill: NAN }, |_| ())),
+        ("solid insulator", device(SOLID, |m| m.coils[0].material = insulator())),
+        ("stranded insulator", device(STRANDED, |m| m.coils[0].material = insulator())),
+        ("temperature not a number", device(SOLID, |m| m.coils[0].temperature_k = NAN)),
+        ("no water path", device(SOLID, |m| m.coils[0].water = water(0, 293.0))),
+        ("water inlet not a number", device(SOLID, |m| m.coils[0].water = water(1, NAN))),
+    ]);
+}
+
+#[test]
+fn a_section_that_cannot_be_is_refused() {
+    let two = |lower_m, upper_m| Mirrors::Two { lower_m, upper_m };
+    all_are_refused(vec![
+        ("order 0", mesh(|s| s.order = 0)),
+        ("order 4", mesh(|s| s.order = 4)),
+        ("no layers", mesh(|s| s.per_skin_depth = 0.0)),
+        ("boundary inside the device", mesh(|s| s.boundary_factor = 0.5)),
+        ("mirrors in reverse order", device(SOLID, |m| m.mirrors = two(0.005, -0.005))),
+        ("mirrors beyond the device", device(SOLID, |m| m.mirrors = two(1.0, 2.0))),
+        ("a mirror above the device", device(STRANDED, |m| m.mirrors = Mirrors::One { z_m: 1.0 })),
+        ("start temperature not a number", device(SOLID, |m| m.parts[0].start_k = NAN)),
+    ]);
+}
+
+#[test]
+fn a_heating_that_cannot_be_is_refused() {
+    let goal = |gauge, at_k, at_most_s| StageEnd::GaugeReaches { gauge, at_k, at_most_s };
+    let controller = |gauge| Some(Hold::GaugeTemperature { gauge, at_k: 400.0 });
+    all_are_refused(vec![
+        ("no stages", heated(|_, h| h.stages.clear())),
+        ("stage of no number", heated(|_, h| h.stages[0].end = StageEnd::After(NAN))),
+        ("stage without end", heated(|_, h| h.stages[0].end = StageEnd::After(INF))),
+        ("stage below 0", heated(|_, h| h.stages[0].end = StageEnd::After(-1.0))),
+        ("goal of a gauge that is not there", heated(|_, h| h.stages[0].end = goal(9, 400.0, 2.0))),
+        ("goal not a number", heated(|_, h| h.stages[0].end = goal(0, NAN, 2.0))),
+        ("controller on a gauge that is not there", heated(|_, h| h.stages[0].hold = controller(9))),
+        ("gauge of a part that is not there", heated(|m, _| m.gauges[0].part = 7)),
+        ("step tolerance 0", heated(|_, h| h.step_tolerance_k = 0.0)),
+        ("step tolerance not a number", heated(|_, h| h.step_tolerance_k = NAN)),
+        ("ambient not a number", heated(|_, h| h.ambient_k = NAN)),
+        ("start below 0 K", heated(|m, _| m.parts[0].start_k = -1.0)),
+        ("emissivity above 1", heated(|m, _| m.parts[0].surface.emissivity = 1.5)),
+        ("convection below 0", heated(|m, _| m.parts[0].surface.convection_w_per_m2_k = -1.0)),
+        (
+            "no part at all",
+            heated(|m, _| {
+                m.parts.clear();
+                m.gauges.clear();
+            }),
+        ),
+    ]);
 }

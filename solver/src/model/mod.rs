@@ -3,6 +3,7 @@
 //! `parts` and `coils` are drawn in the meridian half plane `[r, z]`, `r >= 0`. Parts do not overlap each other or a
 //! turn; touching is allowed. Currents, voltages and the applied field are rms, as people quote them.
 
+mod check;
 mod heating;
 mod section;
 
