@@ -105,6 +105,5 @@ fn solve_exit(error: &SolveError) -> Exit {
         | SolveError::GaugeOutside { .. }
         | SolveError::Value { .. }
         | SolveError::Absent { .. } => Exit::JobRefused,
-        SolveError::StoppedEarly => Exit::StoppedEarly,
     }
 }

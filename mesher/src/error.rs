@@ -63,7 +63,7 @@ pub enum OutlineError {
         area: f64,
     },
     /// A radius or side that is not positive, or a fillet that does not fit.
-    #[error("{what} is {value} m; it must be more than 0 and at most {limit} m")]
+    #[error("{what} is {value} m; it must be more than 0{}", at_most(*limit, " m"))]
     BadSize {
         /// Name of the dimension.
         what: &'static str,
@@ -78,7 +78,7 @@ pub enum OutlineError {
 #[derive(Debug, Clone, PartialEq, Error)]
 pub enum MeshError {
     /// A size or growth in the drawing is out of its range.
-    #[error("{what} is {value}; it must be more than {above} and at most {limit}")]
+    #[error("{what} is {value}; it must be more than {above}{}", at_most(*limit, ""))]
     BadNumber {
         /// What it is the value of.
         what: &'static str,
@@ -176,4 +176,9 @@ pub enum MeshDefect {
         /// Area of the domain in square metres.
         wanted: f64,
     },
+}
+
+/// The upper limit in words, where there is one.
+fn at_most(limit: f64, unit: &str) -> String {
+    if limit < f64::MAX { format!(" and at most {limit}{unit}") } else { String::new() }
 }

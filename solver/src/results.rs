@@ -1,7 +1,8 @@
 //! What a run gives: plain data in SI units, ready for any exporter.
 //!
 //! Powers are time averages for the whole device (both halves with one mirror plane, the slice with two). Fields are
-//! peak phasors at `e^{+jwt}`, scaled to the state they belong to.
+//! peak phasors at `e^{+jwt}`; numbers belong to their state, while [`FieldMaps`] are per unit drive and a
+//! [`Snapshot`] carries the factor of its moment.
 
 use std::sync::Arc;
 
@@ -344,7 +345,8 @@ pub struct Snapshot {
     pub temperature_k: Vec<f64>,
 }
 
-/// Maps of one field solve. Per-element values are discontinuous: one row an element, one value a local node, in the
+/// Maps of one field solve per unit drive: phasors scale with [`Snapshot::field_factor`], losses and forces with its
+/// square. Per-element values are discontinuous: one row an element, one value a local node, in the
 /// order of [`NodeSet::elements`].
 #[derive(Debug, Clone)]
 pub struct FieldMaps {

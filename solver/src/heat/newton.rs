@@ -266,7 +266,9 @@ impl Secants {
         if !(0.5..2.0).contains(&rest) {
             return z;
         }
-        step.iter_mut().for_each(|a| *a /= rest);
+        for a in &mut step {
+            *a /= rest;
+        }
         step
     }
 }

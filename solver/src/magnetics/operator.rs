@@ -208,7 +208,14 @@ fn plan(pattern: &Arc<Pattern>, space: &Space, ring: &[u32], n: usize) -> Result
 }
 
 /// Lower triangle of `K + j w M` of an element, with the row of its turn's voltage last where it has one.
-fn element_block(points: &ElementPoints, sigma: &[f64], nu: &[f64], omega: f64, border: bool, out: &mut Block<Complex64>) {
+fn element_block(
+    points: &ElementPoints,
+    sigma: &[f64],
+    nu: &[f64],
+    omega: f64,
+    border: bool,
+    out: &mut Block<Complex64>,
+) {
     let n = points.nodes;
     for ((p, &sigma), &nu) in points.points().iter().zip(sigma).zip(nu) {
         let (k, m) = (nu * p.volume, omega * sigma * p.volume);

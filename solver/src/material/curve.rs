@@ -185,11 +185,15 @@ impl Curve {
     /// [`Curve::integral`] to every temperature of `t_k`, written over it; quickest for temperatures near each other.
     pub fn integrals(&self, t_k: &mut [f64]) {
         let Some((segment, before)) = self.common_segment(t_k) else {
-            t_k.iter_mut().for_each(|t| *t = self.integral(*t));
+            for t in t_k {
+                *t = self.integral(*t);
+            }
             return;
         };
         segment.integrals(t_k);
-        t_k.iter_mut().for_each(|inside| *inside = self.offset + (before + *inside));
+        for inside in t_k {
+            *inside = self.offset + (before + *inside);
+        }
     }
 
     /// The segment all these temperatures lie in, and the integral from the first begin to its begin.
