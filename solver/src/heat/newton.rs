@@ -89,7 +89,6 @@ impl Solver<'_> {
         let mut now = self.trial(stage, temperature)?;
         let mut stale = fresh;
         let mut stalls = 0;
-        let mut secants = Secants::default();
         for iterations in 0..=MOST_ITERATIONS {
             if !(stale && iterations == 0) && now.norm <= self.limit(stage, &now) {
                 let Trial { temperature, terms, residual, .. } = now;
@@ -97,15 +96,9 @@ impl Solver<'_> {
             }
             if stale {
                 self.renew(stage, &now.temperature)?;
-                secants = Secants::default();
             }
-            let direction = self.direction(stage, &now, &secants)?;
-            let (next, whole) = self.walk(stage, &now, &direction)?;
-            if whole {
-                secants.push(direction);
-            } else {
-                secants = Secants::default();
-            }
+            let direction = self.direction(stage, &now)?;
+            let next = self.walk(stage, &now, &direction)?;
             stalls = if stale && next.norm > 0.999 * now.norm { stalls + 1 } else { 0 };
             if stalls > MOST_STALLS {
                 return Err(self.not_converged(stage, &next, iterations + 1));
@@ -170,9 +163,9 @@ impl Solver<'_> {
     }
 
     /// Change of temperature that the tangent asks for, no node by more than the largest update.
-    fn direction(&self, stage: &Stage, now: &Trial, secants: &Secants) -> Result<Vec<f64>, StepFailure> {
+    fn direction(&self, stage: &Stage, now: &Trial) -> Result<Vec<f64>, StepFailure> {
         let load = now.residual.iter().map(|r| -r).collect();
-        let mut direction = secants.corrected(self.filtered(stage.time_s, load)?);
+        let mut direction = self.filtered(stage.time_s, load)?;
         let largest = direction.iter().fold(0.0_f64, |m, d| m.max(d.abs()));
         if largest > LARGEST_UPDATE_K {
             for d in &mut direction {
@@ -183,9 +176,7 @@ impl Solver<'_> {
     }
 
     /// Goes along `direction`, all the way if that does not overshoot much, else to where the slope nearly vanishes.
-    ///
-    /// True with the trial if it went all the way.
-    fn walk(&self, stage: &Stage, now: &Trial, direction: &[f64]) -> Result<(Trial, bool), StepFailure> {
+    fn walk(&self, stage: &Stage, now: &Trial, direction: &[f64]) -> Result<Trial, StepFailure> {
         let slope = |trial: &Trial| -> f64 {
             let free = direction.iter().zip(&trial.residual).zip(self.is_held).filter(|(_, held)| !**held);
             free.map(|((d, r), _)| d * r).sum()
@@ -197,11 +188,11 @@ impl Solver<'_> {
         let start = slope(now);
         let mut best = along(1.0)?;
         if best.norm <= 0.5 * now.norm {
-            return Ok((best, true));
+            return Ok(best);
         }
         let (mut low, mut high) = ((0.0, start), (1.0, slope(&best)));
         if high.1 <= 0.5 * start.abs() {
-            return Ok((best, true));
+            return Ok(best);
         }
         for cut in 0..MOST_CUTS {
             // Regula falsi and halving in turn: the one is fast, the other certain.
@@ -218,7 +209,7 @@ impl Solver<'_> {
                 low = (share, here);
             }
         }
-        Ok((best, false))
+        Ok(best)
     }
 
     fn not_converged(&self, stage: &Stage, now: &Trial, iterations: usize) -> StepFailure {
@@ -236,45 +227,6 @@ impl Solver<'_> {
             temperature_k: now.temperature[worst],
         }
     }
-}
-
-/// Whole steps taken with one factor. They tell how the true tangent differs from the factored one: Broyden's update.
-///
-/// Source: C. T. Kelley, Iterative Methods for Linear and Nonlinear Equations, SIAM 1995, section 7.3.
-#[derive(Default)]
-struct Secants {
-    /// Steps in kelvin and the sums of their squares.
-    steps: Vec<(Vec<f64>, f64)>,
-}
-
-impl Secants {
-    fn push(&mut self, step: Vec<f64>) {
-        let square = dot(&step, &step);
-        self.steps.push((step, square));
-    }
-
-    /// The step that the updated tangent asks for where the factored one asks for `z`; `z` itself where the update
-    /// would change it out of proportion.
-    fn corrected(&self, z: Vec<f64>) -> Vec<f64> {
-        let Some((last, square)) = self.steps.last() else { return z };
-        let mut step = z.clone();
-        for pair in self.steps.windows(2) {
-            let share = dot(&pair[0].0, &step) / pair[0].1;
-            step.iter_mut().zip(&pair[1].0).for_each(|(a, b)| *a += share * b);
-        }
-        let rest = 1.0 - dot(last, &step) / square;
-        if !(0.5..2.0).contains(&rest) {
-            return z;
-        }
-        for a in &mut step {
-            *a /= rest;
-        }
-        step
-    }
-}
-
-fn dot(a: &[f64], b: &[f64]) -> f64 {
-    a.iter().zip(b).map(|(a, b)| a * b).sum()
 }
 
 impl Tangent {
