@@ -124,6 +124,22 @@ fn check_prints_what_was_understood_and_draws_the_section() {
 }
 
 #[test]
+fn a_drawing_never_replaces_anything_but_a_picture() {
+    let folder = tempfile::tempdir().unwrap();
+    let job = job_in(folder.path(), heated);
+    let before = fs::read(&job).unwrap();
+    let notes = folder.path().join("notes.png");
+    fs::write(&notes, "not a picture").unwrap();
+    for target in [&job, &notes, &folder.path().join("section.jpg")] {
+        let said = say(&["check", path_text(&job), "--draw", path_text(target)]);
+        assert_eq!(said.code, 6, "{}", said.err);
+        assert!(said.err.contains(".png"), "{}", said.err);
+    }
+    assert_eq!(fs::read(&job).unwrap(), before);
+    assert_eq!(fs::read(&notes).unwrap(), b"not a picture");
+}
+
+#[test]
 fn a_run_writes_the_whole_folder_and_prints_a_digest() {
     let folder = tempfile::tempdir().unwrap();
     let job = job_in(folder.path(), heated);

@@ -24,7 +24,7 @@ pub struct Results {
     pub section: Section,
     /// Electrical states: start, Curie crossings and ends of stages in time order, then the greatest values of a heating.
     pub states: Vec<State>,
-    /// One row an accepted heat step, starting with the start; empty without heating.
+    /// One row an accepted heat step, and one at the start of each stage; empty without heating.
     pub history: Vec<HistoryRow>,
     /// Turns at the last state.
     pub turns: Vec<TurnRow>,
@@ -90,6 +90,8 @@ pub enum WarningKind {
     EnclosedRadiation,
     /// The permeability does not depend on the field strength.
     LinearPermeability,
+    /// A gauge was not brought to the temperature a stage holds.
+    HoldMissed,
     /// Turns are rings.
     RingModel,
     /// Stranded conductors leave out strand losses.
@@ -272,7 +274,8 @@ pub struct HistoryRow {
     pub gauges_k: Vec<f64>,
     /// Heated parts in job order.
     pub parts: Vec<PartTemperatures>,
-    /// Power in all workpieces, watts.
+    /// Power in all workpieces, watts; electrical numbers are interpolated between field solves, while the heat balance in
+    /// `energy` uses the loss as it was extrapolated.
     pub workpiece_power_w: f64,
     /// What the supply sees; `None` with an applied field.
     pub terminals: Option<Terminals>,

@@ -11,7 +11,7 @@ use super::{on_threads, print, read_job};
 use crate::Surroundings;
 use crate::args::{CheckArguments, How};
 use crate::exit::{Exit, Failure};
-use crate::export::folder::write_file;
+use crate::export::folder::{picture_path, write_file};
 use crate::export::pictures;
 use crate::figures::{Page, count, degc, millimetres, row, seconds, si, significant};
 
@@ -25,6 +25,9 @@ pub(super) fn check(
     out: &mut dyn Write,
     surroundings: &Surroundings,
 ) -> Result<Exit, Failure> {
+    if let Some(path) = &arguments.draw {
+        picture_path(path)?;
+    }
     let (_, model) = read_job(&arguments.job)?;
     let stop = || surroundings.stop.load(Ordering::Relaxed);
     let seen = on_threads(how, || overview(&model, &stop))??;

@@ -5,7 +5,7 @@ use solver::results::{Electrical, Outcome, PartNumbers, State};
 
 use crate::export::Finished;
 use crate::export::history::part_name;
-use crate::export::states::limit_word;
+use crate::export::states::{limit_word, other_parts_w};
 use crate::export::summary::{Goal, energy_per_tonne, first_state, goals, last_state};
 use crate::figures::{Page, count, degc, row, seconds, si, significant};
 
@@ -25,9 +25,10 @@ pub(super) fn digest(run: Finished<'_>) -> String {
         count(results.counts.field_solves, "field solve"),
         count(results.counts.heat_steps, "heat step"),
     ));
-    electrical(&mut page, &results.states);
-    if let Some(last) = last_state(&results.states) {
-        water(&mut page, run, &last.electrical);
+    electrical(&mut page, run);
+    let coil_loss = |state: &State| state.electrical.coils.iter().map(|coil| coil.loss_w).sum::<f64>();
+    if let Some(hardest) = results.states.iter().max_by(|a, b| coil_loss(a).total_cmp(&coil_loss(b))) {
+        water(&mut page, run, &hardest.electrical);
     }
     surfaces(&mut page, run);
     heating(&mut page, run);
@@ -51,12 +52,17 @@ fn outcome_words(outcome: &Outcome) -> String {
 }
 
 /// A table with a row a state.
-fn electrical(page: &mut Page, states: &[State]) {
+fn electrical(page: &mut Page, run: Finished<'_>) {
+    let states = &run.results.states;
     if states.is_empty() {
         return;
     }
     let supplied = states.iter().any(|state| state.electrical.terminals.is_some());
+    let shared = states.iter().any(|state| other_parts_w(run, &state.electrical) > 0.0);
     let mut head = row(["state", "time", "frequency", "in the work"]);
+    if shared {
+        head.extend(row(["in other parts"]));
+    }
     if supplied {
         head.extend(row([
             "coil loss",
@@ -70,13 +76,13 @@ fn electrical(page: &mut Page, states: &[State]) {
         ]));
     }
     let mut rows = vec![head];
-    rows.extend(states.iter().map(|state| state_row(state, supplied)));
+    rows.extend(states.iter().map(|state| state_row(run, state, shared, supplied)));
     page.gap();
     page.line(if supplied { "At the coil terminals, rms, leads excluded" } else { "In the applied field" });
     page.table(&rows, 1);
 }
 
-fn state_row(state: &State, supplied: bool) -> Vec<String> {
+fn state_row(run: Finished<'_>, state: &State, shared: bool, supplied: bool) -> Vec<String> {
     let electrical = &state.electrical;
     let mut row = vec![
         state.label.clone(),
@@ -84,6 +90,9 @@ fn state_row(state: &State, supplied: bool) -> Vec<String> {
         si(state.frequency_hz, "Hz"),
         si(electrical.workpiece_power_w, "W"),
     ];
+    if shared {
+        row.push(si(other_parts_w(run, electrical), "W"));
+    }
     if supplied {
         row.push(si(electrical.coils.iter().map(|coil| coil.loss_w).sum(), "W"));
         row.push(electrical.electrical_efficiency.map_or_else(dash, |share| format!("{:.1} %", 100.0 * share)));
@@ -110,7 +119,10 @@ fn water(page: &mut Page, run: Finished<'_>, electrical: &Electrical) {
     let cooled = electrical.coils.iter().zip(&run.model.coils).filter_map(|(coil, model)| {
         let (outlet_k, water) = coil.water_outlet_k.zip(model.water)?;
         let (outlet, rise_k, paths) = (degc(outlet_k), outlet_k - water.inlet_k, count(water.paths, "path"));
-        Some(format!("Water of `{}` at the last state: {outlet} at the outlet, {rise_k:.1} K rise, {paths}", coil.name))
+        Some(format!(
+            "Water of `{}` at its greatest loss: {outlet} at the outlet, {rise_k:.1} K rise, {paths}",
+            coil.name
+        ))
     });
     let lines: Vec<String> = cooled.collect();
     if !lines.is_empty() {

@@ -5,13 +5,16 @@
 //! everything that replaces it has been computed, and only the files that this program writes are removed.
 
 use std::fs;
-use std::io::{self, Write};
+use std::io::{self, Read, Write};
 use std::path::{Path, PathBuf};
 
 /// Name of the file that marks a folder whose result is not complete.
 pub const MARKER: &str = "unfinished.txt";
 /// Name of the file that is written last.
 pub const SUMMARY: &str = "summary.json";
+
+/// First bytes of a PNG file (ISO/IEC 15948, section 5.2).
+const PNG_BEGIN: [u8; 8] = *b"\x89PNG\r\n\x1a\n";
 
 const MARKER_TEXT: &str = "A run has not finished writing this folder, or was killed before it could.\n";
 
@@ -59,6 +62,12 @@ pub enum OutputError {
         /// What the system said.
         source: io::Error,
     },
+    /// A picture would replace something that is not a picture.
+    #[error("`{}` is not a picture to replace; choose a new name that ends in `.png`", path.display())]
+    NotAPicture {
+        /// The path.
+        path: PathBuf,
+    },
     /// Standard output could not be written.
     #[error("standard output could not be written: {0}")]
     Stdout(#[from] io::Error),
@@ -67,6 +76,20 @@ pub enum OutputError {
 fn system(action: &'static str, path: &Path) -> impl FnOnce(io::Error) -> OutputError {
     let path = path.to_path_buf();
     move |source| OutputError::System { action, path, source }
+}
+
+/// Refuses a path for a picture that does not end in `.png`, or that holds a file that is no PNG picture.
+///
+/// # Errors
+/// [`OutputError::NotAPicture`].
+pub fn picture_path(path: &Path) -> Result<(), OutputError> {
+    let named = path.extension().is_some_and(|e| e.eq_ignore_ascii_case("png"));
+    let mut begin = [0; 8];
+    let free = match fs::File::open(path) {
+        Ok(mut file) => file.read_exact(&mut begin).is_ok() && begin == PNG_BEGIN,
+        Err(error) => error.kind() == io::ErrorKind::NotFound,
+    };
+    if named && free { Ok(()) } else { Err(OutputError::NotAPicture { path: path.to_path_buf() }) }
 }
 
 /// What a path holds before a run.

@@ -6,9 +6,10 @@ use solver::results::{HistoryRow, Terminals};
 use super::csv_table::Table;
 use super::{EncodeError, Finished};
 
-const ELECTRICAL: [&str; 9] = [
+const ELECTRICAL: [&str; 10] = [
     "workpiece_power_w",
     "coil_loss_w",
+    "other_parts_power_w",
     "terminal_power_w",
     "reactive_power_var",
     "voltage_v_rms",
@@ -81,6 +82,11 @@ fn electrical(table: &mut Table, row: &HistoryRow) {
     let seen = |value: fn(&Terminals) -> f64| row.terminals.as_ref().map(value);
     table.number(row.workpiece_power_w);
     table.number(row.coil_loss_w);
+    // What the terminals give and neither work nor coil takes, without the rounding of the difference.
+    table.optional(seen(|t| t.power_w).map(|power| {
+        let other = power - row.workpiece_power_w - row.coil_loss_w;
+        if other > 1e-9 * power { other } else { 0.0 }
+    }));
     table.optional(seen(|t| t.power_w));
     table.optional(seen(|t| t.reactive_power_var));
     table.optional(seen(|t| t.voltage_v_rms));

@@ -1,7 +1,8 @@
 //! `states.csv`: electrical numbers at the moments that matter, a row a coil. This is what the supply maker gets.
 //! Voltages and currents are rms at the coil's own ends; with several coils a further row has them all in series.
 
-use solver::results::{State, SupplyLimit, Terminals};
+use solver::model::Role;
+use solver::results::{Electrical, State, SupplyLimit, Terminals};
 
 use super::csv_table::Table;
 use super::{EncodeError, Finished};
@@ -9,7 +10,7 @@ use super::{EncodeError, Finished};
 /// Name of the row that has all coils in series.
 pub const ALL_COILS: &str = "(all in series)";
 
-const HEADER: [&str; 20] = [
+const HEADER: [&str; 21] = [
     "time_s",
     "state",
     "coil",
@@ -28,9 +29,16 @@ const HEADER: [&str; 20] = [
     "water_outlet_degc",
     "limit_reached",
     "workpiece_power_kw",
+    "other_parts_power_kw",
     "electrical_efficiency",
     "power_balance_relative",
 ];
+
+/// Power in parts that are not workpieces, watts.
+pub(crate) fn other_parts_w(run: Finished<'_>, electrical: &Electrical) -> f64 {
+    let others = run.model.parts.iter().zip(&electrical.parts).filter(|(part, _)| part.role != Role::Workpiece);
+    others.map(|(_, numbers)| numbers.joule_loss_w + numbers.hysteresis_loss_w).sum()
+}
 
 /// The table as bytes.
 ///
@@ -42,12 +50,12 @@ pub fn table(run: Finished<'_>) -> Result<Vec<u8>, EncodeError> {
         let coils = &state.electrical.coils;
         for coil in coils {
             let water = coil.water_outlet_k.unwrap_or(f64::NAN);
-            row(&mut table, state, &coil.name, Some(&coil.terminals), coil.loss_w, water)?;
+            row(&mut table, run, state, &coil.name, Some(&coil.terminals), coil.loss_w, water)?;
         }
         if coils.len() != 1 {
             let name = if coils.is_empty() { "" } else { ALL_COILS };
             let loss = if coils.is_empty() { f64::NAN } else { coils.iter().map(|coil| coil.loss_w).sum() };
-            row(&mut table, state, name, state.electrical.terminals.as_ref(), loss, f64::NAN)?;
+            row(&mut table, run, state, name, state.electrical.terminals.as_ref(), loss, f64::NAN)?;
         }
     }
     table.into_bytes()
@@ -55,6 +63,7 @@ pub fn table(run: Finished<'_>) -> Result<Vec<u8>, EncodeError> {
 
 fn row(
     table: &mut Table,
+    run: Finished<'_>,
     state: &State,
     coil: &str,
     terminals: Option<&Terminals>,
@@ -80,6 +89,7 @@ fn row(
     table.degc(water_k);
     table.text(state.limited_by.map_or("", limit_word));
     table.number(state.electrical.workpiece_power_w / 1e3);
+    table.number(other_parts_w(run, &state.electrical) / 1e3);
     table.optional(state.electrical.electrical_efficiency);
     table.number(state.electrical.power_balance_relative);
     table.end_row()

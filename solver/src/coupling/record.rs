@@ -5,10 +5,11 @@ use std::sync::Arc;
 use super::field::FieldSolver;
 use super::loss::FieldState;
 use super::stage::{HeatRun, Progress};
+use crate::constants::ZERO_CELSIUS_K;
 use crate::error::SolveError;
 use crate::heat::HeatState;
 use crate::magnetics::drive::PerAmpere;
-use crate::model::{Hold, Model};
+use crate::model::{Hold, Model, Stage};
 use crate::results::{
     Counts, EnergyBalance, FieldMaps, HistoryRow, Outcome, PartTemperatures, Results, Section, Snapshot, State,
     SupplyLimit, Terminals, TurnRow, Warning, WarningKind,
@@ -17,6 +18,8 @@ use crate::warnings::{self, Warnings};
 
 /// A map is kept when some node has moved this far since the last one, kelvin.
 const MAP_EVERY_K: f64 = 100.0;
+/// A gauge this close to what a stage holds counts as held, kelvin.
+const HELD_WITHIN_K: f64 = 5.0;
 
 /// A heat step before its electrical numbers are known.
 pub(super) struct StepRow {
@@ -24,7 +27,6 @@ pub(super) struct StepRow {
     pub(super) gauges_k: Vec<f64>,
     parts: Vec<PartTemperatures>,
     pub(super) hottest_k: f64,
-    workpiece_power_w: f64,
     factor: f64,
     energy: EnergyBalance,
     temperature_k: Arc<Vec<f64>>,
@@ -33,15 +35,11 @@ pub(super) struct StepRow {
 impl StepRow {
     pub(super) fn new(run: &HeatRun<'_, '_>, now: &Progress) -> Self {
         let state = &now.state;
-        let mut loss = vec![0.0; run.volumes_m3.len()];
-        now.losses.at(state.time_s, now.factor, &mut loss);
-        let useful = loss.iter().zip(&run.volumes_m3).zip(&run.workpiece_points).filter(|(_, useful)| **useful);
         Self {
             time_s: state.time_s,
             gauges_k: run.heat.gauge_values(&state.temperature_k),
             parts: run.heat.part_temperatures(state),
             hottest_k: state.temperature_k.iter().copied().fold(0.0, f64::max),
-            workpiece_power_w: useful.map(|((p, v), _)| p * v).sum(),
             factor: now.factor,
             energy: state.energy,
             temperature_k: Arc::new(state.temperature_k.clone()),
@@ -177,6 +175,11 @@ impl<'a> Recorder<'a> {
             self.peak_temperature_k[node as usize] = t;
         }
         self.mapped_k.clone_from(&state.temperature_k);
+        for t in run.heat.part_temperatures(state) {
+            if let Some(magnetic) = &self.model.parts[t.part].material.magnetic {
+                self.curie_crossed[t.part] = [t.max_k >= magnetic.curie_k, t.min_k >= magnetic.curie_k];
+            }
+        }
         let per = field.numbers.per;
         self.last_per = Some((field.time_s, per, field.numbers.coil_loss_w(run.solver.operator())));
         let power = per.workpiece_power_w * field.scaled.peak * field.scaled.peak;
@@ -206,12 +209,19 @@ impl<'a> Recorder<'a> {
         let operator = run.solver.operator();
         let new = (now.losses.last.time_s, now.losses.last.numbers.per, now.losses.last.numbers.coil_loss_w(operator));
         let old = self.last_per.unwrap_or(new);
-        for row in rows {
-            let share = if new.0 > old.0 { ((row.time_s - old.0) / (new.0 - old.0)).clamp(0.0, 1.0) } else { 1.0 };
+        let at = |time_s: f64, factor: f64| -> Result<Moment, SolveError> {
+            let share = if new.0 > old.0 { ((time_s - old.0) / (new.0 - old.0)).clamp(0.0, 1.0) } else { 1.0 };
             let per = between(&old.1, &new.1, share);
-            let peak = run.solver.scale(&per, hold)?.peak * row.factor.sqrt();
-            let coil_loss_w = (old.2 + share * (new.2 - old.2)) * peak * peak;
-            self.row(run, stage, row, run_terminals(run, &per, peak), coil_loss_w);
+            let peak = run.solver.scale(&per, hold)?.peak * factor.sqrt();
+            Ok(Moment { per, peak, coil_loss_w: (old.2 + share * (new.2 - old.2)) * peak * peak })
+        };
+        let mut begin_s = self.history.last().map_or(0.0, |h| h.time_s);
+        for row in rows {
+            let (begin, end) = (at(begin_s, row.factor)?, at(row.time_s, row.factor)?);
+            let drawn_j = 0.5 * (begin.terminal_power_w() + end.terminal_power_w()) * (row.time_s - begin_s);
+            begin_s = row.time_s;
+            self.counts.heat_steps += 1;
+            self.row(run, stage, row, &end, drawn_j);
         }
         self.last_per = Some(new);
         self.counts.field_solves = run.solver.solves();
@@ -223,21 +233,17 @@ impl<'a> Recorder<'a> {
         Ok(())
     }
 
-    fn row(
-        &mut self,
-        run: &HeatRun<'_, '_>,
-        stage: usize,
-        row: StepRow,
-        terminals: Option<Terminals>,
-        coil_loss_w: f64,
-    ) {
-        self.counts.heat_steps += 1;
+    /// The row at the switch to a later stage: the temperatures of its start under its own hold.
+    pub(super) fn switched(&mut self, run: &HeatRun<'_, '_>, now: &Progress, stage: usize) {
+        let field = &now.losses.last;
+        let coil_loss_w = field.numbers.coil_loss_w(run.solver.operator()) * field.scaled.peak * field.scaled.peak;
+        let moment = Moment { per: field.numbers.per, peak: field.scaled.peak, coil_loss_w };
+        self.row(run, stage, StepRow::new(run, now), &moment, 0.0);
+    }
+
+    fn row(&mut self, run: &HeatRun<'_, '_>, stage: usize, row: StepRow, moment: &Moment, drawn_j: f64) {
         let mut energy = row.energy;
-        if let Some(last) = self.history.last() {
-            let power = |t: &Option<Terminals>| t.map_or(0.0, |t| t.power_w);
-            let mean = 0.5 * (power(&last.terminals) + power(&terminals));
-            energy.terminal_j = last.energy.terminal_j + mean * (row.time_s - last.time_s);
-        }
+        energy.terminal_j = self.history.last().map_or(0.0, |h| h.energy.terminal_j) + drawn_j;
         for (&node, &t) in run.heat.space().mesh_nodes().iter().zip(row.temperature_k.iter()) {
             let slot = &mut self.peak_temperature_k[node as usize];
             *slot = slot.max(t);
@@ -247,9 +253,9 @@ impl<'a> Recorder<'a> {
             stage,
             gauges_k: row.gauges_k,
             parts: row.parts,
-            workpiece_power_w: row.workpiece_power_w,
-            terminals,
-            coil_loss_w,
+            workpiece_power_w: moment.per.workpiece_power_w * moment.peak * moment.peak,
+            terminals: run_terminals(run, &moment.per, moment.peak),
+            coil_loss_w: moment.coil_loss_w,
             energy,
         });
     }
@@ -268,7 +274,7 @@ impl<'a> Recorder<'a> {
                 let text = format!(
                     "part `{}`: its {word} place passed the Curie point ({:.0} °C) before t = {:.2} s",
                     part.name,
-                    magnetic.curie_k - crate::constants::ZERO_CELSIUS_K,
+                    magnetic.curie_k - ZERO_CELSIUS_K,
                     now.state.time_s
                 );
                 self.warnings.add(WarningKind::Curie, text);
@@ -281,6 +287,24 @@ impl<'a> Recorder<'a> {
                 );
             }
         }
+    }
+
+    /// Warns where a stage that holds a gauge did not bring it there.
+    pub(super) fn held(&mut self, run: &HeatRun<'_, '_>, now: &Progress, stage: &Stage) {
+        let Some(Hold::GaugeTemperature { gauge, at_k }) = stage.hold else { return };
+        let miss = run.heat.gauge_values(&now.state.temperature_k)[gauge] - at_k;
+        if miss.abs() <= HELD_WITHIN_K {
+            return;
+        }
+        let side = if miss < 0.0 { "below; the supply gives no more" } else { "above; it cools no faster" };
+        let text = format!(
+            "stage `{}`: gauge `{}` was to be held at {:.0} °C but ended {:.0} K {side}",
+            stage.name,
+            self.model.gauges[gauge].name,
+            at_k - ZERO_CELSIUS_K,
+            miss.abs()
+        );
+        self.warnings.add(WarningKind::HoldMissed, text);
     }
 
     /// End of a stage: a state and a map.
@@ -344,6 +368,19 @@ impl<'a> Recorder<'a> {
             peak_temperature_k: self.peak_temperature_k,
             counts: self.counts,
         }
+    }
+}
+
+/// Electrical numbers at one moment between two field solves.
+struct Moment {
+    per: PerAmpere,
+    peak: f64,
+    coil_loss_w: f64,
+}
+
+impl Moment {
+    fn terminal_power_w(&self) -> f64 {
+        self.per.terminal_power_w * self.peak * self.peak
     }
 }
 

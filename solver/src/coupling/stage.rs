@@ -50,7 +50,6 @@ pub(super) struct HeatRun<'a, 'b> {
     pub(super) observer: &'a dyn Observer,
     element_of_triangle: Vec<Option<u32>>,
     pub(super) volumes_m3: Vec<f64>,
-    pub(super) workpiece_points: Vec<bool>,
 }
 
 /// What moves while a heating runs.
@@ -83,17 +82,15 @@ impl<'a, 'b> HeatRun<'a, 'b> {
         let heat = HeatProblem::new(&meshed.mesh, &meshed.nodes, &heated, model)?;
         let space = heat.space();
         let mut element_of_triangle = vec![None; meshed.mesh.triangles().len()];
-        let (mut volumes_m3, mut workpiece_points) = (Vec::new(), Vec::new());
+        let mut volumes_m3 = Vec::new();
         let mut points = ElementPoints::default();
         for e in 0..space.element_count() {
             element_of_triangle[space.triangle(e)] = Some(e as u32);
             space.fill(e, &mut points);
-            let useful = model.parts[heat.part_of_element(e)].role == crate::model::Role::Workpiece;
             volumes_m3.extend(points.points().iter().map(|p| p.volume * solver.operator().copies()));
-            workpiece_points.extend(points.points().iter().map(|_| useful));
         }
         solver.set_heated((0..space.element_count()).map(|e| space.triangle(e)).collect());
-        Ok(Self { model, heating, solver, heat, observer, element_of_triangle, volumes_m3, workpiece_points })
+        Ok(Self { model, heating, solver, heat, observer, element_of_triangle, volumes_m3 })
     }
 
     /// Runs all stages.
@@ -118,6 +115,7 @@ impl<'a, 'b> HeatRun<'a, 'b> {
                 recorder.end(&self, &now, &format!("end of {} (not finished)", self.heating.stages[index].name));
                 return Ok(outcome);
             }
+            recorder.held(&self, &now, &self.heating.stages[index]);
             recorder.end(&self, &now, &format!("end of {}", self.heating.stages[index].name));
         }
         Ok(Outcome::Complete)
@@ -159,6 +157,9 @@ impl<'a, 'b> HeatRun<'a, 'b> {
             time_s: now.state.time_s,
             at_most_s: tracker.end_s - now.state.time_s,
         });
+        if index > 0 {
+            recorder.switched(self, now, index);
+        }
         if tracker.met_at_start(GAUGE_MET_K) {
             return Ok(None);
         }

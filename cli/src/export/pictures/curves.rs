@@ -48,7 +48,7 @@ pub(super) fn heating(
     let numbered = panel.draw(&mut canvas, place)?;
     let legend = [place.to[0] + 30.0, top];
     panel.legend(&mut canvas, legend, [SIZE[0] - legend[0] - 20.0, place.to[1] - top], numbered)?;
-    let note = heated_note(rows);
+    let note = heated_note(rows, sheet);
     Heading { title: "Heating curve".into(), job: job.to_owned(), note }.draw(&mut canvas)?;
     Ok(canvas)
 }
@@ -73,15 +73,17 @@ fn add_parts(panel: &mut Panel, rows: &[HistoryRow], sheet: &Sheet<'_>, clock: &
 }
 
 /// Differences at the end of the run.
-fn heated_note(rows: &[HistoryRow]) -> String {
+fn heated_note(rows: &[HistoryRow], sheet: &Sheet<'_>) -> String {
     let Some(last) = rows.last() else {
         return "no steps".into();
     };
     let first = last.parts.first();
     let difference = first.map(|p| p.surface_minus_core_k).filter(|d| d.is_finite());
+    let names = sheet.parts();
+    let name = first.and_then(|p| names.iter().find(|n| n.0 == p.part)).map_or("the part", |n| n.1);
     difference.map_or_else(String::new, |d| {
         let (size, side) = (d.abs(), if d < 0.0 { "below" } else { "above" });
-        format!("at the end the surface is {size:.0} K {side} the core at mid-length")
+        format!("at the end the outside of {name} is {size:.0} K {side} its inside, at mid-length")
     })
 }
 

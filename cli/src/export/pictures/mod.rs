@@ -194,7 +194,9 @@ fn add_field_maps<'a>(tasks: &mut Vec<Task<'a>>, results: &'a Results, sheet: &'
     if let Some(first) = results.snapshots.first() {
         snapshots.push((first, String::new()));
     }
-    if let [first, .., last] = results.snapshots.as_slice()
+    // A field that is switched off shows nothing: the last one that is on stands for the end.
+    let on: Vec<&Snapshot> = results.snapshots.iter().filter(|s| s.field_factor != 0.0).collect();
+    if let [first, .., last] = on.as_slice()
         && !(Arc::ptr_eq(&first.field, &last.field) && first.field_factor == last.field_factor)
     {
         snapshots.push((last, format!("-{}", slug(&last.label))));

@@ -87,6 +87,7 @@ pub fn warning_word(kind: WarningKind) -> &'static str {
         WarningKind::Mesh => "mesh",
         WarningKind::Water => "water",
         WarningKind::PoyntingCheck => "poynting_check",
+        WarningKind::HoldMissed => "hold_missed",
     }
 }
 
