@@ -28,15 +28,14 @@ pub(super) fn radial(
     let mut panels = Panels::new("r in mm");
     for (number, snapshot) in moments.iter().enumerate() {
         let points = |values: Vec<f64>| paths.across.iter().zip(values).map(|(p, v)| [shown_mm(p[0]), v]).collect();
-        let loss = loss_values(sheet, &snapshot.field, snapshot.field_factor)?;
-        panels.loss.push(line(&moment(snapshot), points(paths.sample(sheet, &loss, &paths.across)), number));
+        panels.loss.push(line(&moment(snapshot), points(loss_along(sheet, paths, snapshot, &paths.across)?), number));
         if has_temperatures(snapshot, moments) {
             let heat = temperature_values(sheet, &snapshot.temperature_k)?;
             panels.temperature.push(line(&moment(snapshot), points(paths.sample(sheet, &heat, &paths.across)), number));
         }
     }
     let height = millimetres((paths.middle_z * 1e4).round() * 1e-4);
-    let note = format!("from the inner to the outer surface at z = {height} mm");
+    let note = format!("across the wall, from inside to outside, at z = {height} mm");
     panels.draw(&Heading { title: format!("Radial profile of {part} at mid-length"), job: job.to_owned(), note })
 }
 
@@ -51,8 +50,7 @@ pub(super) fn axial(
     let mut panels = Panels::new("z in mm");
     for (number, snapshot) in moments.iter().enumerate() {
         let points = |path: &[[f64; 2]], values: Vec<f64>| along(path, &values, paths.plane);
-        let loss = loss_values(sheet, &snapshot.field, snapshot.field_factor)?;
-        let values = paths.sample(sheet, &loss, &paths.surface);
+        let values = loss_along(sheet, paths, snapshot, &paths.surface)?;
         panels.loss.push(plain(&moment(snapshot), points(&paths.surface, values), number, &[]));
         if !has_temperatures(snapshot, moments) {
             continue;
@@ -70,6 +68,17 @@ pub(super) fn axial(
     }
     let note = "loss density at the outer surface; core: the axis, or the inner surface of a hollow part".to_owned();
     panels.draw(&Heading { title: format!("Axial profile of {part}"), job: job.to_owned(), note })
+}
+
+/// Loss density along a path in W/cm³. Between nodes the interpolation of a steep loss may dip below zero; the loss cannot.
+fn loss_along(
+    sheet: &Sheet<'_>,
+    paths: &Paths,
+    snapshot: &Snapshot,
+    path: &[[f64; 2]],
+) -> Result<Vec<f64>, PictureError> {
+    let loss = loss_values(sheet, &snapshot.field, snapshot.field_factor)?;
+    Ok(paths.sample(sheet, &loss, path).into_iter().map(|p| if p < 0.0 { 0.0 } else { p }).collect())
 }
 
 /// True where the temperatures of a snapshot are drawn: those of the start, even all over, only where there are no others.
