@@ -111,7 +111,10 @@ impl<'a, 'b> HeatRun<'a, 'b> {
             state,
         };
         for index in 0..self.heating.stages.len() {
-            if let Some(outcome) = self.stage(index, &mut now, recorder)? {
+            let ended_early = self.stage(index, &mut now, recorder).unwrap_or_else(|error| {
+                Some(Outcome::NotConverged { time_s: now.state.time_s, reason: error.to_string() })
+            });
+            if let Some(outcome) = ended_early {
                 recorder.end(&self, &now, &format!("end of {} (not finished)", self.heating.stages[index].name));
                 return Ok(outcome);
             }
@@ -164,7 +167,7 @@ impl<'a, 'b> HeatRun<'a, 'b> {
             return Ok(None);
         }
         loop {
-            let (ended, rows) = self.solved_interval(now, hold, &tracker, recorder)?;
+            let (ended, rows) = self.solved_interval(now, hold, &tracker, recorder);
             recorder.rows(self, now, hold, index, rows)?;
             match ended {
                 Ended::Goal => return Ok(None),
@@ -208,32 +211,36 @@ impl<'a, 'b> HeatRun<'a, 'b> {
         hold: Hold,
         tracker: &Tracker,
         recorder: &mut Recorder<'a>,
-    ) -> Result<(Ended, Vec<StepRow>), SolveError> {
+    ) -> (Ended, Vec<StepRow>) {
         let powered = now.losses.last.scaled.peak > 0.0;
-        for attempt in 0.. {
+        let mut attempts = 0;
+        loop {
             let (state, factor, control) = (now.state.clone(), now.factor, now.control.clone());
             let end_s = if powered { (state.time_s + now.interval_s).min(tracker.end_s) } else { tracker.end_s };
             let (ended, rows) = Interval { run: self, tracker, end_s, hold }.run(now, recorder);
             let elapsed = now.state.time_s - state.time_s;
             if !powered || elapsed <= 0.0 {
-                return Ok((ended, rows));
+                return (ended, rows);
             }
-            let new = self.solve(&now.state, hold)?;
+            let new = match self.solve(&now.state, hold) {
+                Ok(new) => new,
+                Err(error) => return (Ended::Failed(error.to_string()), rows),
+            };
             let defect = now.losses.defect(&new, &self.volumes_m3);
             let shorter = next_interval(elapsed, defect);
             let again = defect > REDO_FACTOR * DEFECT_TOLERANCE
-                && attempt < REDO_LIMIT
+                && attempts < REDO_LIMIT
                 && elapsed > SHORTEST_INTERVAL_S
                 && !matches!(ended, Ended::Stopped | Ended::Failed(_));
             if again {
                 (now.state, now.factor, now.control) = (state, factor, control);
                 now.interval_s = shorter;
+                attempts += 1;
                 continue;
             }
             self.accept(now, new, elapsed, shorter, recorder);
-            return Ok((ended, rows));
+            return (ended, rows);
         }
-        Ok((Ended::Failed("the field did not settle".to_owned()), Vec::new()))
     }
 
     fn accept(&mut self, now: &mut Progress, new: FieldState, elapsed: f64, next: f64, recorder: &mut Recorder<'a>) {

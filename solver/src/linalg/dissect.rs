@@ -8,7 +8,7 @@
 use super::leaf_order::{self, LEAF_LIMIT};
 use super::separator::{self, Bisection, SEPARATOR};
 
-/// Parts of at most this many vertices are not cut (measured: fill rises slowly above 100).
+/// Parts of at most this many vertices are not cut (a usual size; not tuned).
 const LEAF: usize = 96;
 const _: () = assert!(LEAF <= LEAF_LIMIT, "a leaf must fit the bit sets of the minimum-degree order");
 

@@ -231,7 +231,7 @@ impl<'a> Build<'a> {
             subtree,
             work,
         };
-        // Filling and adding an entry of the front costs about as much as six multiplications (measured).
+        // Filling and adding an entry of the front is taken to cost six multiplications (an estimate).
         front.work += operations(&front) + 6.0 * (height * height) as f64;
         self.fronts.push(front);
     }

@@ -29,13 +29,13 @@ const NORMALS: [[f64; 3]; 13] = [
 ];
 /// Number of candidates tried on small parts: the straight ones.
 const STRAIGHT: usize = 4;
-/// Parts of more vertices than this try the circles too (measured: no less fill from circles below).
+/// Parts of more vertices than this try the circles too (below, circles are not worth their search).
 const CIRCLES_ABOVE: usize = 1000;
 /// Passes of improvement.
 const PASSES: usize = 3;
-/// Largest share of the vertices one side may hold (measured).
+/// Largest share of the vertices one side may hold.
 const LARGEST_SIDE: f64 = 0.58;
-/// Weight of imbalance against separator size (measured).
+/// Weight of imbalance against separator size.
 const IMBALANCE_WEIGHT: f64 = 0.3;
 
 /// A part cut in two.

@@ -1,7 +1,7 @@
 //! Supernodes: runs of columns of the factor with the same rows, eliminated together in one dense front.
 //!
 //! A child whose columns directly precede its parent's joins it when that costs few explicit zeros.
-//! Source: C. Ashcraft and R. Grimes, ACM TOMS 15 (1989) 291-309 (relaxed supernodes); the thresholds are measured.
+//! Source: C. Ashcraft and R. Grimes, ACM TOMS 15 (1989) 291-309 (relaxed supernodes); the thresholds are usual ones, not tuned.
 
 use super::etree::NONE;
 
