@@ -54,7 +54,9 @@ impl Conductivity {
     /// [`Conductivity::value`] at every temperature of `t_k`, written over it; quickest for temperatures near each other.
     pub(super) fn values(&self, t_k: &mut [f64]) {
         if self.bridges.iter().any(|bridge| t_k.iter().any(|&t| bridge.spans(t))) {
-            t_k.iter_mut().for_each(|t| *t = self.value(*t));
+            for t in t_k {
+                *t = self.value(*t);
+            }
         } else {
             self.curve.values(t_k);
         }

@@ -178,18 +178,26 @@ impl Curve {
     pub fn values(&self, t_k: &mut [f64]) {
         match self.common_segment(t_k) {
             Some((segment, _)) => segment.values(t_k),
-            None => t_k.iter_mut().for_each(|t| *t = self.value(*t)),
+            None => {
+                for t in t_k {
+                    *t = self.value(*t);
+                }
+            }
         }
     }
 
     /// [`Curve::integral`] to every temperature of `t_k`, written over it; quickest for temperatures near each other.
     pub fn integrals(&self, t_k: &mut [f64]) {
         let Some((segment, before)) = self.common_segment(t_k) else {
-            t_k.iter_mut().for_each(|t| *t = self.integral(*t));
+            for t in t_k {
+                *t = self.integral(*t);
+            }
             return;
         };
         segment.integrals(t_k);
-        t_k.iter_mut().for_each(|inside| *inside = self.offset + (before + *inside));
+        for inside in t_k {
+            *inside = self.offset + (before + *inside);
+        }
     }
 
     /// The segment all these temperatures lie in, and the integral from the first begin to its begin.

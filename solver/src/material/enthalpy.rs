@@ -110,7 +110,9 @@ impl Enthalpy {
     /// [`Enthalpy::value`] at every temperature of `t_k`, written over it; quickest for temperatures near each other.
     pub fn values(&self, t_k: &mut [f64]) {
         if self.fusion.is_some_and(|(begin, ..)| t_k.iter().any(|&t| t > begin)) {
-            t_k.iter_mut().for_each(|t| *t = self.value(*t));
+            for t in t_k {
+                *t = self.value(*t);
+            }
         } else {
             self.specific_heat.integrals(t_k);
         }
