@@ -204,7 +204,9 @@ impl Operator {
             let mut row = [0.0; MAX_POINTS];
             self.at_points(e, t, &mut row[..count]);
             material.enthalpy.values(&mut row[..count]);
-            row[..count].iter_mut().for_each(|h| *h *= material.density_kg_per_m3);
+            for h in &mut row[..count] {
+                *h *= material.density_kg_per_m3;
+            }
             row
         });
         rows.iter().flat_map(|row| &row[..count]).copied().collect()

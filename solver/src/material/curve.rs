@@ -178,7 +178,11 @@ impl Curve {
     pub fn values(&self, t_k: &mut [f64]) {
         match self.common_segment(t_k) {
             Some((segment, _)) => segment.values(t_k),
-            None => t_k.iter_mut().for_each(|t| *t = self.value(*t)),
+            None => {
+                for t in t_k {
+                    *t = self.value(*t);
+                }
+            }
         }
     }
 
