@@ -22,7 +22,7 @@ from vtk.util.numpy_support import vtk_to_numpy
 CELL_TYPES = {1: (5, "triangle"), 2: (22, "triangle6"), 3: (69, "VTK_LAGRANGE_TRIANGLE")}
 POINT_FIELDS = ["A_phi_re_peak_wb_per_m", "A_phi_im_peak_wb_per_m", "A_phi_abs_peak_wb_per_m", "r_A_re_peak_wb", "r_A_im_peak_wb"]
 CELL_FIELDS = ["region", "part", "joule_loss_w_per_m3", "J_phi_re_peak_a_per_m2", "J_phi_im_peak_a_per_m2",
-               "B_re_peak_t", "B_im_peak_t", "force_density_n_per_m3"]
+               "B_re_peak_t", "B_im_peak_t", "H_re_peak_a_per_m", "H_im_peak_a_per_m", "force_density_n_per_m3"]
 LENGTHS = {"mm": 1e-3, "cm": 1e-2, "m": 1.0, "in": 0.0254, "µm": 1e-6, "um": 1e-6}
 
 checks = 0

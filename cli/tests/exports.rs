@@ -66,6 +66,7 @@ fn maps(section: &Section) -> FieldMaps {
         vector_potential_wb_per_m: nodes.points.iter().map(|p| Complex64::new(p[0], -2.0 * p[0])).collect(),
         joule_loss_w_per_m3: local.iter().map(|&p| loss(p)).collect(),
         current_density_a_per_m2: local.iter().map(|p| Complex64::new(p[1], 3.0)).collect(),
+        field_strength_a_per_m: local.iter().map(|_| [Complex64::new(5.0, 6.0), Complex64::new(7.0, 8.0)]).collect(),
         flux_density_t: local.iter().map(|_| [Complex64::new(0.1, 0.2), Complex64::new(0.3, 0.4)]).collect(),
         force_density_n_per_m3: local.iter().map(|_| [5.0, 6.0]).collect(),
     }
@@ -306,6 +307,9 @@ fn a_field_file_holds_the_mesh_and_the_fields_that_were_put_in_for_every_order()
 fn phasors_follow_the_factor_of_their_moment_and_losses_its_square() {
     let results = results(2);
     let (_, arrays) = read_xml(&vtu::snapshot(&results, &results.snapshots[1]).unwrap());
+    for h in arrays["H_re_peak_a_per_m"].floats().chunks_exact(3) {
+        assert!((h[0] - 10.0).abs() < 1e-12 && (h[1] - 14.0).abs() < 1e-12 && h[2] == 0.0, "{h:?}");
+    }
     let b = &arrays["B_im_peak_t"];
     assert_eq!(b.components, 3);
     for b in b.floats().chunks_exact(3) {

@@ -113,6 +113,7 @@ fn fields(section: &Section) -> FieldMaps {
         joule_loss_w_per_m3: Vec::new(),
         current_density_a_per_m2: Vec::new(),
         flux_density_t: Vec::new(),
+        field_strength_a_per_m: Vec::new(),
         force_density_n_per_m3: vec![[0.0; 2]; nodes.elements.len()],
     };
     for (element, local) in nodes.elements.chunks(stride).enumerate() {

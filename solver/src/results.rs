@@ -361,6 +361,8 @@ pub struct FieldMaps {
     pub current_density_a_per_m2: Vec<Complex64>,
     /// Flux density `[B_r, B_z]`, tesla, peak phasor, per element and local node.
     pub flux_density_t: Vec<[Complex64; 2]>,
+    /// Field strength `[H_r, H_z]`, A/m, peak phasor, per element and local node.
+    pub field_strength_a_per_m: Vec<[Complex64; 2]>,
     /// Time-averaged Lorentz force density `[f_r, f_z]`, N/m^3, per element and local node.
     pub force_density_n_per_m3: Vec<[f64; 2]>,
 }

@@ -125,6 +125,9 @@ fn cell_data(xml: &mut Xml, section: &Section, snapshot: &Snapshot) -> io::Resul
     let flux = &field.flux_density_t;
     floats(xml, "B_re_peak_t", 3, &means(order, flux, |b| [factor * b[0].re, factor * b[1].re, 0.0]))?;
     floats(xml, "B_im_peak_t", 3, &means(order, flux, |b| [factor * b[0].im, factor * b[1].im, 0.0]))?;
+    let strength = &field.field_strength_a_per_m;
+    floats(xml, "H_re_peak_a_per_m", 3, &means(order, strength, |h| [factor * h[0].re, factor * h[1].re, 0.0]))?;
+    floats(xml, "H_im_peak_a_per_m", 3, &means(order, strength, |h| [factor * h[0].im, factor * h[1].im, 0.0]))?;
     let force = means(order, &field.force_density_n_per_m3, |f| [square * f[0], square * f[1], 0.0]);
     floats(xml, "force_density_n_per_m3", 3, &force)
 }

@@ -13,7 +13,7 @@ use crate::results::{FieldMaps, RegionName};
 
 /// Fields of a unit drive at the nodes of every element.
 ///
-/// Conductivity at a node is that of the nearest quadrature point of the element.
+/// Conductivity and reluctivity at a node are those of the nearest quadrature point of the element.
 pub fn maps(
     field: &UnitField,
     operator: &Operator,
@@ -26,7 +26,7 @@ pub fn maps(
     let nearest = nearest_points(operator);
     let rows = map_elements(space.element_count(), |e, _| {
         let winding = windings[space.region(e).0 as usize];
-        element_rows(field, operator, properties.sigma(e), &nearest, winding, e)
+        element_rows(field, operator, (properties.sigma(e), properties.nu(e)), &nearest, winding, e)
     });
     let potential = space.points().iter().zip(&field.x).map(|(p, u)| u * p[0]).collect();
     let mut out = FieldMaps {
@@ -34,12 +34,14 @@ pub fn maps(
         joule_loss_w_per_m3: Vec::new(),
         current_density_a_per_m2: Vec::new(),
         flux_density_t: Vec::new(),
+        field_strength_a_per_m: Vec::new(),
         force_density_n_per_m3: Vec::new(),
     };
     for row in rows.into_iter().flatten() {
         out.joule_loss_w_per_m3.push(row.loss);
         out.current_density_a_per_m2.push(row.current);
         out.flux_density_t.push(row.flux);
+        out.field_strength_a_per_m.push(row.field);
         out.force_density_n_per_m3.push(row.force);
     }
     out
@@ -49,13 +51,14 @@ struct NodeRow {
     loss: f64,
     current: Complex64,
     flux: [Complex64; 2],
+    field: [Complex64; 2],
     force: [f64; 2],
 }
 
 fn element_rows(
     field: &UnitField,
     operator: &Operator,
-    sigma: &[f64],
+    (sigma, nu): (&[f64], &[f64]),
     nearest: &[usize],
     winding: Option<(f64, f64)>,
     e: usize,
@@ -73,7 +76,7 @@ fn element_rows(
         };
         let flux = flux_density(&p, &u);
         let force = [0.5 * (current * flux[1].conj()).re, -0.5 * (current * flux[0].conj()).re];
-        NodeRow { loss, current, flux, force }
+        NodeRow { loss, current, flux, field: [flux[0] * nu[q], flux[1] * nu[q]], force }
     };
     space.reference().node_shapes().iter().zip(nearest).map(at_node).collect()
 }
