@@ -21,14 +21,15 @@ pub(crate) fn finish(
 ) -> Mesh {
     let mut triangle_of = vec![NONE; faces.faces.len()];
     let mut vertex_of = vec![NONE; faces.points.len()];
+    let count = faces.faces.iter().filter(|f| f.side != NONE).count();
     let mut mesh = Mesh {
-        vertices: Vec::new(),
-        triangles: Vec::new(),
-        regions: Vec::new(),
-        strip: Vec::new(),
-        triangle_edges: Vec::new(),
-        edges: Vec::new(),
-        bends: Vec::new(),
+        vertices: Vec::with_capacity(faces.points.len()),
+        triangles: Vec::with_capacity(count),
+        regions: Vec::with_capacity(count),
+        strip: Vec::with_capacity(count),
+        triangle_edges: Vec::with_capacity(count),
+        edges: Vec::with_capacity(faces.points.len() + count),
+        bends: Vec::with_capacity(faces.points.len() + count),
         curves: Vec::new(),
         notes,
         domain_area: drawing.domain.area(),
@@ -57,7 +58,8 @@ pub(crate) fn finish(
 /// Where an arc leaves a node along another curve (a fillet that touches a plane, say) no curved element fits: the arc edges at
 /// such `tips` are left straight, and noted. Without `tips`, so is every edge of a triangle that would fold.
 pub(crate) fn straighten(drawing: &Drawing, tips: Option<&[u32]>, mesh: &mut Mesh) {
-    let mut bad: Vec<usize> = (0..mesh.triangles.len()).filter(|&t| mesh.least_jacobian(t) <= LEAST_RATIO).collect();
+    let mut bad = mesh.bent_triangles();
+    bad.retain(|&t| mesh.least_jacobian(t) <= LEAST_RATIO);
     while let Some(t) = bad.pop() {
         if mesh.least_jacobian(t) > LEAST_RATIO {
             continue;

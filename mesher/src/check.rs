@@ -45,7 +45,7 @@ impl Mesh {
         }
         self.check_adjacency()?;
         self.check_regions()?;
-        for t in 0..self.triangles.len() {
+        for t in self.bent_triangles() {
             let ratio = self.least_jacobian(t);
             if ratio <= LEAST_RATIO || ratio.is_nan() {
                 return Err(MeshDefect::Inverted { triangle: t, at: self.corners(t)[0], ratio });
@@ -111,6 +111,16 @@ impl Mesh {
         } else {
             Err(MeshDefect::Area { covered, wanted: self.domain_area })
         }
+    }
+
+    /// Triangles with a bent edge, in order.
+    pub(crate) fn bent_triangles(&self) -> Vec<usize> {
+        let bent = self.edges.iter().zip(&self.bends).filter(|(_, bend)| !matches!(bend, Bend::Straight));
+        let mut triangles: Vec<usize> =
+            bent.flat_map(|(e, _)| e.triangles).filter(|&t| t != NO_TRIANGLE).map(|t| t as usize).collect();
+        triangles.sort_unstable();
+        triangles.dedup();
+        triangles
     }
 
     /// Least Jacobian of the quadratic map of a triangle over that of the straight-sided one; 1 for straight sides.

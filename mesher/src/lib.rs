@@ -5,6 +5,7 @@
 
 mod assemble;
 mod build;
+mod cavity;
 mod check;
 mod constrain;
 mod drawing;

@@ -117,7 +117,8 @@ impl Mesh {
 
     /// Corners of a triangle, in metres.
     pub fn corners(&self, triangle: usize) -> [Point; 3] {
-        self.triangles[triangle].map(|v| self.vertices[v as usize])
+        let [a, b, c] = self.triangles[triangle].map(|v| v as usize);
+        [self.vertices[a], self.vertices[b], self.vertices[c]]
     }
 
     /// The straight-sided triangle that holds a point, and the barycentric coordinates of the point in it.

@@ -15,30 +15,48 @@ pub(crate) fn bounds(points: &[Point]) -> (Point, Point) {
     (lo, hi)
 }
 
+/// Levels of the space-filling curve.
+const LEVELS: u32 = 16;
+
 /// Point indices along a space-filling curve, so that each is inserted near the one before it.
 pub(crate) fn along_curve(points: &[Point]) -> Vec<u32> {
     let (lo, hi) = bounds(points);
-    let scale = 65535.0 / (hi[0] - lo[0]).max(hi[1] - lo[1]).max(f64::MIN_POSITIVE);
+    let scale = f64::from((1u32 << LEVELS) - 1) / (hi[0] - lo[0]).max(hi[1] - lo[1]).max(f64::MIN_POSITIVE);
     let key = |p: &Point| hilbert(((p[0] - lo[0]) * scale) as u32, ((p[1] - lo[1]) * scale) as u32);
-    let mut order: Vec<(u64, u32)> = points.iter().enumerate().map(|(i, p)| (key(p), i as u32)).collect();
+    let mut order: Vec<u64> = points.iter().enumerate().map(|(i, p)| (u64::from(key(p)) << 32) | i as u64).collect();
     order.sort_unstable();
-    order.into_iter().map(|(_, i)| i).collect()
+    order.into_iter().map(|k| k as u32).collect()
 }
 
-fn hilbert(mut x: u32, mut y: u32) -> u64 {
-    let mut key = 0;
-    let mut s = 1u32 << 15;
-    while s > 0 {
-        let (right, up) = (u32::from(x & s > 0), u32::from(y & s > 0));
-        key += u64::from(s) * u64::from(s) * u64::from((3 * right) ^ up);
-        if up == 0 {
-            if right == 1 {
-                x = 65535 - x;
-                y = 65535 - y;
-            }
-            std::mem::swap(&mut x, &mut y);
-        }
-        s /= 2;
+/// Place of a cell along the curve: in each quadrant the curve is the same, with its axes swapped, turned over, or both.
+fn hilbert(x: u32, y: u32) -> u32 {
+    let (mut key, mut swap, mut invert) = (0, 0, 0);
+    for level in (0..LEVELS).rev() {
+        let (p, q) = ((x >> level) & 1, (y >> level) & 1);
+        let exchange = (p ^ q) & swap;
+        let (right, up) = (p ^ exchange ^ invert, q ^ exchange ^ invert);
+        key = (key << 2) | ((3 * right) ^ up);
+        let low = up ^ 1;
+        invert ^= low & right;
+        swap ^= low;
     }
     key
+}
+
+#[cfg(test)]
+mod tests {
+    use super::hilbert;
+
+    #[test]
+    fn cells_next_to_each_other_on_the_curve_touch() {
+        const SIDE: u32 = 32;
+        let top = super::LEVELS - SIDE.trailing_zeros();
+        let mut cells: Vec<(u32, u32, u32)> =
+            (0..SIDE * SIDE).map(|i| (i % SIDE, i / SIDE)).map(|(x, y)| (hilbert(x << top, y << top), x, y)).collect();
+        cells.sort_unstable();
+        for pair in cells.windows(2) {
+            let ((_, a, b), (_, c, d)) = (pair[0], pair[1]);
+            assert_eq!(a.abs_diff(c) + b.abs_diff(d), 1, "{pair:?}");
+        }
+    }
 }

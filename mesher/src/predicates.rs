@@ -10,6 +10,7 @@ fn coord(p: Point) -> Coord<f64> {
 }
 
 /// Twice the signed area of the triangle `abc`; its sign is exact.
+#[inline]
 pub(crate) fn orient(a: Point, b: Point, c: Point) -> f64 {
     let left = (a[0] - c[0]) * (b[1] - c[1]);
     let right = (a[1] - c[1]) * (b[0] - c[0]);
@@ -17,10 +18,16 @@ pub(crate) fn orient(a: Point, b: Point, c: Point) -> f64 {
     if det.abs() >= 3.330_669_073_875_472e-16 * (left.abs() + right.abs()) {
         return det;
     }
+    orient_exactly(a, b, c)
+}
+
+#[cold]
+fn orient_exactly(a: Point, b: Point, c: Point) -> f64 {
     robust::orient2d(coord(a), coord(b), coord(c))
 }
 
 /// Positive if `d` is inside the circle through the counter-clockwise `abc`; its sign is exact.
+#[inline]
 pub(crate) fn in_circle(a: Point, b: Point, c: Point, d: Point) -> f64 {
     let (u, v, w) = (sub(a, d), sub(b, d), sub(c, d));
     let (bc, cb) = (v[0] * w[1], w[0] * v[1]);
@@ -32,6 +39,11 @@ pub(crate) fn in_circle(a: Point, b: Point, c: Point, d: Point) -> f64 {
     if det.abs() > 1.110_223_024_625_157_7e-15 * permanent {
         return det;
     }
+    in_circle_exactly(a, b, c, d)
+}
+
+#[cold]
+fn in_circle_exactly(a: Point, b: Point, c: Point, d: Point) -> f64 {
     robust::incircle(coord(a), coord(b), coord(c), coord(d))
 }
 

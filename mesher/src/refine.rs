@@ -2,13 +2,13 @@
 //! are never touched; edges shorter than a share of the wanted size are left alone, so that narrow gaps and small input angles end.
 //! Source: A. Üngör, "Off-centers", 2004; J. R. Shewchuk, "Delaunay refinement algorithms", 2002 (lenses, concentric shells).
 
+use crate::cavity::Cavity;
 use crate::error::MeshError;
 use crate::ids::{Point, along, between, distance, distance_squared, dot, sub};
 use crate::plan::Tag;
-use crate::predicates::{circumcircle, in_circle, orient};
+use crate::predicates::{circumcircle, orient};
 use crate::size_field::SizeField;
 use crate::triangulate::{LAST, NEXT, NONE, Place, Triangulation};
-use std::collections::VecDeque;
 
 /// Circumradius over shortest edge at 28 degrees: `1 / (2 sin 28)`.
 const RADIUS_EDGE: f64 = 1.065_027_2;
@@ -41,8 +41,10 @@ struct Refiner<'a> {
     wanted: Vec<f64>,
     /// Tag of the constraint a vertex lies on, `NODE` for nodes of the drawing, 0 for free ones.
     on: Vec<u32>,
-    queue: VecDeque<(u32, [u32; 3])>,
-    encroached: Vec<(u32, u32)>,
+    /// Faces to look at, the last first: so the front of good faces grows from its newest edge.
+    queue: Vec<(u32, [u32; 3])>,
+    cavity: Cavity,
+    encroached: Vec<[u32; 2]>,
 }
 
 /// Refines in place. `nodes` is the number of leading points that are nodes of the drawing.
@@ -55,11 +57,12 @@ pub(crate) fn refine(
 ) -> Result<(), MeshError> {
     let wanted = wanted(mesh, sizes.field);
     let on = marks(mesh, nodes);
-    let mut refiner = Refiner { mesh, sizes, tags, wanted, on, queue: VecDeque::new(), encroached: Vec::new() };
+    let mut refiner =
+        Refiner { mesh, sizes, tags, wanted, on, queue: Vec::new(), cavity: Cavity::default(), encroached: Vec::new() };
     refiner.mesh.fresh = (0..refiner.mesh.faces.len() as u32).collect();
     refiner.queue_fresh();
     let mut steps = 0u32;
-    while let Some((face, vertices)) = refiner.queue.pop_front() {
+    while let Some((face, vertices)) = refiner.queue.pop() {
         if refiner.mesh.faces[face as usize].v != vertices {
             continue;
         }
@@ -71,8 +74,8 @@ pub(crate) fn refine(
         if refiner.mesh.faces.len() > budget.max_triangles + budget.max_triangles / 4 + 1000 {
             return Err(MeshError::TooManyTriangles { limit: budget.max_triangles, smallest_m: budget.smallest });
         }
-        if let Some(target) = refiner.target(face) {
-            refiner.insert(face, vertices, target);
+        if let Some((target, base)) = refiner.target(face) {
+            refiner.insert(4 * face + base, vertices, target);
             refiner.queue_fresh();
         }
     }
@@ -112,7 +115,7 @@ impl Refiner<'_> {
         for &t in &self.mesh.fresh {
             let face = &self.mesh.faces[t as usize];
             if face.side != NONE && face.cell == NONE {
-                self.queue.push_back((t, face.v));
+                self.queue.push((t, face.v));
             }
         }
         self.mesh.fresh.clear();
@@ -126,7 +129,7 @@ impl Refiner<'_> {
     }
 
     /// Where a point is to be added for a face that is too large or too sharp.
-    fn target(&self, face: u32) -> Option<Point> {
+    fn target(&self, face: u32) -> Option<(Point, u32)> {
         let [a, b, c] = self.mesh.corners(face);
         let squares = [distance_squared(b, c), distance_squared(c, a), distance_squared(a, b)];
         let mut i = 0;
@@ -145,7 +148,7 @@ impl Refiner<'_> {
         if !centre[0].is_finite() || !centre[1].is_finite() {
             return None;
         }
-        Some(self.off_centre(face, i, squares[i].sqrt(), centre))
+        Some((self.off_centre(face, i, squares[i].sqrt(), centre), i as u32))
     }
 
     /// Whether the shortest edge of a sharp face is one the drawing forces.
@@ -187,60 +190,81 @@ impl Refiner<'_> {
         if reach < depth { along(middle, out, reach / depth) } else { centre }
     }
 
-    fn insert(&mut self, face: u32, vertices: [u32; 3], target: Point) {
-        let place = self.mesh.locate(target, face, true);
-        let holder = match place {
-            Place::Behind(link) => {
-                if self.split(link) {
-                    self.queue.push_back((face, vertices));
-                }
-                return;
-            }
-            Place::AtVertex => return,
-            Place::Inside(holder) => holder,
-            Place::OnEdge(link) => link >> 2,
-        };
-        let held = self.mesh.faces[holder as usize];
-        if held.cell != NONE || held.side == NONE {
+    /// Adds a point for a face; or splits the constrained edges that hide it or that it encroaches on, and asks for the face again.
+    fn insert(&mut self, base: u32, vertices: [u32; 3], target: Point) {
+        // The target lies in the circle of the face that asks for it, so that face is part of the cavity.
+        let face = base >> 2;
+        if !self.mesh.find_cavity(base, target, &mut self.cavity) {
+            self.insert_hidden(face, vertices, target);
             return;
         }
-        self.collect_encroached(holder, target);
+        self.collect_encroached(target);
         if self.encroached.is_empty() {
-            self.add(place, held.v, target);
+            self.add(vertices, target);
+        } else if self.split_encroached() {
+            self.queue.push((face, vertices));
+        }
+    }
+
+    /// The same for a point that its face may not see, or that lies on an edge.
+    fn insert_hidden(&mut self, face: u32, vertices: [u32; 3], target: Point) {
+        let blocking = match self.mesh.locate(target, face, true) {
+            Place::Behind(link) => link,
+            Place::OnEdge(link) if self.mesh.tag(link) != 0 => link,
+            Place::AtVertex => return,
+            Place::Inside(holder) => return self.insert_at(holder, vertices, target),
+            Place::OnEdge(link) => return self.insert_at(link >> 2, vertices, target),
+        };
+        if self.split(blocking) {
+            self.queue.push((face, vertices));
+        }
+    }
+
+    fn insert_at(&mut self, holder: u32, vertices: [u32; 3], target: Point) {
+        if !self.mesh.find_cavity(4 * holder, target, &mut self.cavity) {
             return;
         }
+        self.collect_encroached(target);
+        if self.encroached.is_empty() {
+            self.add(vertices, target);
+        } else {
+            self.split_encroached();
+        }
+    }
+
+    /// Fills the cavity around a new free vertex.
+    fn add(&mut self, near: [u32; 3], p: Point) {
+        let gradation = self.sizes.field.gradation();
+        let bound = near.iter().fold(f64::INFINITY, |least, &v| {
+            least.min(self.wanted[v as usize] + gradation * distance(p, self.mesh.point(v)))
+        });
+        let id = self.mesh.add_point(p);
+        self.wanted.push(self.sizes.field.at_most(p, bound * (1.0 + 1e-12)));
+        self.on.push(0);
+        self.mesh.fill_cavity(id, &self.cavity);
+    }
+
+    /// Constrained edges on the rim of the cavity that the new point sees under too wide an angle.
+    fn collect_encroached(&mut self, x: Point) {
+        self.encroached.clear();
+        for rim in self.cavity.rim.iter().filter(|r| r.tag != 0) {
+            let [u, v] = rim.ends.map(|end| sub(self.mesh.point(end), x));
+            let d = dot(u, v);
+            if d < 0.0 && d * d >= LENS * LENS * dot(u, u) * dot(v, v) {
+                self.encroached.push(rim.ends);
+            }
+        }
+    }
+
+    /// Splits the encroached edges; whether any could be.
+    fn split_encroached(&mut self) -> bool {
         let mut changed = false;
-        for (a, b) in std::mem::take(&mut self.encroached) {
+        for [a, b] in std::mem::take(&mut self.encroached) {
             if let Some(link) = self.mesh.find(a, b) {
                 changed |= self.split(link);
             }
         }
-        if changed {
-            self.queue.push_back((face, vertices));
-        }
-    }
-
-    fn add(&mut self, place: Place, around: [u32; 3], p: Point) {
-        let gradation = self.sizes.field.gradation();
-        let bound = around.iter().fold(f64::INFINITY, |least, &v| {
-            least.min(self.wanted[v as usize] + gradation * distance(p, self.mesh.point(v)))
-        });
-        // A point on a constrained edge belongs to it; a free one to nothing.
-        let tag = if let Place::OnEdge(link) = place { self.mesh.tag(link) } else { 0 };
-        if tag != 0 {
-            if let Place::OnEdge(link) = place {
-                self.split(link);
-            }
-            return;
-        }
-        let id = self.mesh.add_point(p);
-        self.wanted.push(self.sizes.field.at_most(p, bound * (1.0 + 1e-12)));
-        self.on.push(0);
-        match place {
-            Place::Inside(face) => self.mesh.insert_inside(face, id),
-            Place::OnEdge(link) => self.mesh.insert_on_edge(link, id),
-            Place::AtVertex | Place::Behind(_) => {}
-        }
+        changed
     }
 
     /// Splits a constrained edge, unless a strip or the floor forbids it.
@@ -288,31 +312,5 @@ impl Refiner<'_> {
         }
         let share = (0.5 * length).log2().round().exp2() / length;
         if at_node(a) { between(pa, pb, share) } else { between(pb, pa, share) }
-    }
-
-    /// Constrained edges around the cavity of a new point that see it under too wide an angle.
-    fn collect_encroached(&mut self, holder: u32, x: Point) {
-        self.encroached.clear();
-        let mut open: Vec<u32> = (0..3).map(|i| 4 * holder + i).collect();
-        while let Some(link) = open.pop() {
-            let (a, b) = self.mesh.edge(link);
-            if self.mesh.tag(link) != 0 {
-                let (u, v) = (sub(self.mesh.point(a), x), sub(self.mesh.point(b), x));
-                let d = dot(u, v);
-                if d < 0.0 && d * d >= LENS * LENS * dot(u, u) * dot(v, v) {
-                    self.encroached.push((a, b));
-                }
-                continue;
-            }
-            let n = self.mesh.faces[(link >> 2) as usize].n[(link & 3) as usize];
-            if n == NONE {
-                continue;
-            }
-            let [p, q, r] = self.mesh.corners(n >> 2);
-            if in_circle(p, q, r, x) > 0.0 {
-                let j = (n & 3) as usize;
-                open.extend([(n & !3) | NEXT[j] as u32, (n & !3) | LAST[j] as u32]);
-            }
-        }
     }
 }

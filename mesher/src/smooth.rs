@@ -1,26 +1,28 @@
 //! Smoothing: free vertices move to where the worst angle around them is larger, and edges flip to stay Delaunay. Convention: vertices on
-//! lines and in strips stay. Source: L. Chen, J. Xu, "Optimal Delaunay triangulations", 2004 (area-weighted circumcentres).
+//! lines and in strips stay; a vertex is looked at again only if something around it has changed. Source: L. Chen, J. Xu, "Optimal
+//! Delaunay triangulations", 2004 (area-weighted circumcentres).
 
-use crate::ids::{Point, between, cross, distance_squared, sub};
-use crate::predicates::{circumcircle, in_circle};
+use crate::ids::{Point, between, cross, distance_squared, dot, sub};
+use crate::predicates::in_circle;
 use crate::triangulate::{LAST, NEXT, NONE, Triangulation};
 
-/// Sine squared of the angle above which a vertex is left alone: 50 degrees.
-const GOOD_ENOUGH: f64 = 0.586_824;
+/// Sine squared of the angle above which a vertex is left alone: 42 degrees.
+const GOOD_ENOUGH: f64 = 0.447_736;
 
 pub(crate) fn smooth(mesh: &mut Triangulation, passes: usize) {
     let movable = movable(mesh);
+    let mut smoother = Smoother { due: vec![false; movable.len()], movable, ring: Ring::default(), faces: Vec::new() };
+    smoother.find_due(mesh);
     for _ in 0..passes {
         for v in 0..mesh.points.len() as u32 {
-            if movable[v as usize] {
-                move_vertex(mesh, v);
+            if smoother.due[v as usize] {
+                smoother.visit(mesh, v);
             }
         }
-        for _ in 0..3 {
-            if !flip_all(mesh) {
-                break;
-            }
+        if smoother.faces.is_empty() {
+            return;
         }
+        smoother.flip(mesh);
     }
 }
 
@@ -37,55 +39,143 @@ fn movable(mesh: &Triangulation) -> Vec<bool> {
     movable
 }
 
-fn move_vertex(mesh: &mut Triangulation, v: u32) {
-    let mut ring: Vec<(Point, Point)> = Vec::with_capacity(8);
-    mesh.around::<()>(v, |face, k| {
-        let f = &mesh.faces[face as usize];
-        ring.push((mesh.point(f.v[NEXT[k]]), mesh.point(f.v[LAST[k]])));
-        None
-    });
-    let worst = |x: Point| ring.iter().fold(f64::INFINITY, |least, &(a, b)| least.min(sine_squared(x, a, b)));
-    let here = mesh.point(v);
-    let before = worst(here);
-    if before > GOOD_ENOUGH {
-        return;
-    }
-    let (mut sum, mut whole) = ([0.0; 2], 0.0);
-    for &(a, b) in &ring {
-        let area = cross(sub(a, here), sub(b, here));
-        let (centre, _) = circumcircle(here, a, b);
-        sum[0] += area * centre[0];
-        sum[1] += area * centre[1];
-        whole += area;
-    }
-    let optimal = [sum[0] / whole, sum[1] / whole];
-    let n = ring.len() as f64;
-    let mean = [ring.iter().map(|e| e.0[0]).sum::<f64>() / n, ring.iter().map(|e| e.0[1]).sum::<f64>() / n];
-    let tries = [optimal, between(here, optimal, 0.5), mean, between(here, mean, 0.5)];
-    if let Some(&better) = tries.iter().find(|&&x| worst(x) > before) {
-        mesh.points[v as usize] = better;
-    }
+/// What lies around a free vertex: faces, and their other corners counter-clockwise.
+#[derive(Default)]
+struct Ring {
+    faces: Vec<u32>,
+    corners: Vec<u32>,
+    places: Vec<Point>,
 }
 
-/// Flips every free edge that is not Delaunay, once; whether there was one.
-fn flip_all(mesh: &mut Triangulation) -> bool {
-    let mut any = false;
-    for t in 0..mesh.faces.len() as u32 {
-        for i in 0..3 {
-            let face = &mesh.faces[t as usize];
-            let n = face.n[i];
-            if face.side == NONE || face.cell != NONE || face.tag[i] != 0 || n == NONE || n >> 2 < t {
-                continue;
-            }
-            let w = mesh.faces[(n >> 2) as usize].v[(n & 3) as usize];
-            let [a, b, c] = mesh.corners(t);
-            if in_circle(a, b, c, mesh.point(w)) > 0.0 {
-                mesh.flip(4 * t + i as u32);
-                any = true;
+struct Smoother {
+    movable: Vec<bool>,
+    /// Free vertices around which something has changed.
+    due: Vec<bool>,
+    ring: Ring,
+    /// Faces whose edges may no longer be Delaunay.
+    faces: Vec<u32>,
+}
+
+impl Smoother {
+    /// Marks the free vertices of every face that is not good enough.
+    fn find_due(&mut self, mesh: &Triangulation) {
+        for face in mesh.faces.iter().filter(|f| f.side != NONE && f.cell == NONE) {
+            let [a, b, c] = face.v.map(|v| mesh.point(v));
+            if sine_squared(a, b, c) < GOOD_ENOUGH {
+                for v in face.v {
+                    self.due[v as usize] = self.movable[v as usize];
+                }
             }
         }
     }
-    any
+
+    /// Moves a vertex if that is better for the worst angle around it.
+    fn visit(&mut self, mesh: &mut Triangulation, v: u32) {
+        self.due[v as usize] = false;
+        self.ring.fill(mesh, v);
+        let here = mesh.point(v);
+        let before = self.ring.worst(here);
+        if before > GOOD_ENOUGH {
+            return;
+        }
+        let Some(better) = self.ring.better(here, before) else {
+            return;
+        };
+        mesh.points[v as usize] = better;
+        self.faces.extend(&self.ring.faces);
+        self.due[v as usize] = true;
+        for &w in &self.ring.corners {
+            self.due[w as usize] = self.movable[w as usize];
+        }
+    }
+
+    /// Flips the edges of the faces that have changed, and of those that change by it, until all are Delaunay.
+    fn flip(&mut self, mesh: &mut Triangulation) {
+        while let Some(t) = self.faces.pop() {
+            for i in 0..3 {
+                let face = &mesh.faces[t as usize];
+                let n = face.n[i];
+                if face.side == NONE || face.cell != NONE || face.tag[i] != 0 || n == NONE {
+                    continue;
+                }
+                let (face, w) = (face.v, mesh.faces[(n >> 2) as usize].v[(n & 3) as usize]);
+                let [a, b, c] = mesh.corners(t);
+                if in_circle(a, b, c, mesh.point(w)) > 0.0 {
+                    mesh.flip(4 * t + i as u32);
+                    self.faces.extend([t, n >> 2]);
+                    for v in face.into_iter().chain([w]) {
+                        self.due[v as usize] = self.movable[v as usize];
+                    }
+                    break;
+                }
+            }
+        }
+    }
+}
+
+impl Ring {
+    /// Gathers the faces around a vertex that lies inside the triangulation.
+    fn fill(&mut self, mesh: &Triangulation, v: u32) {
+        self.faces.clear();
+        self.corners.clear();
+        self.places.clear();
+        let start = mesh.face_at[v as usize];
+        let mut t = start;
+        loop {
+            let face = &mesh.faces[t as usize];
+            let k = mesh.position(t, v);
+            let corner = face.v[NEXT[k]];
+            self.faces.push(t);
+            self.corners.push(corner);
+            self.places.push(mesh.point(corner));
+            t = face.n[NEXT[k]] >> 2;
+            if t == start {
+                return;
+            }
+        }
+    }
+
+    /// Sides opposite the vertex, counter-clockwise.
+    fn sides(&self) -> impl Iterator<Item = (Point, Point)> + '_ {
+        let n = self.places.len();
+        (0..n).map(move |i| (self.places[i], self.places[if i + 1 == n { 0 } else { i + 1 }]))
+    }
+
+    /// Square of the sine of the least angle around a vertex at `x`; -1 if a triangle would turn over.
+    fn worst(&self, x: Point) -> f64 {
+        self.sides().fold(f64::INFINITY, |least, (a, b)| least.min(sine_squared(x, a, b)))
+    }
+
+    /// Whether every angle around a vertex at `x` is larger than `limit`.
+    fn is_above(&self, x: Point, limit: f64) -> bool {
+        self.sides().all(|(a, b)| sine_squared(x, a, b) > limit)
+    }
+
+    /// A place with a larger least angle than `before`.
+    fn better(&self, here: Point, before: f64) -> Option<Point> {
+        let optimal = self.optimal(here);
+        let better = |x: &Point| self.is_above(*x, before);
+        let first = [optimal, between(here, optimal, 0.5)];
+        first.into_iter().find(better).or_else(|| {
+            let n = self.places.len() as f64;
+            let mean = [0, 1].map(|k| self.places.iter().map(|p| p[k]).sum::<f64>() / n);
+            [mean, between(here, mean, 0.5)].into_iter().find(better)
+        })
+    }
+
+    /// Mean of the circumcentres around a vertex, weighted with the areas.
+    fn optimal(&self, here: Point) -> Point {
+        let (mut sum, mut whole) = ([0.0; 2], 0.0);
+        for (a, b) in self.sides() {
+            // Circumcentre from `here` times twice the area; the division by the area cancels.
+            let (u, v) = (sub(a, here), sub(b, here));
+            let (uu, vv) = (dot(u, u), dot(v, v));
+            sum[0] += 0.5 * (v[1] * uu - u[1] * vv);
+            sum[1] += 0.5 * (u[0] * vv - v[0] * uu);
+            whole += cross(u, v);
+        }
+        [here[0] + sum[0] / whole, here[1] + sum[1] / whole]
+    }
 }
 
 /// Square of the sine of the least angle; -1 if the triangle is not counter-clockwise.

@@ -87,7 +87,8 @@ impl Triangulation {
     }
 
     pub(crate) fn corners(&self, face: u32) -> [Point; 3] {
-        self.faces[face as usize].v.map(|v| self.point(v))
+        let [a, b, c] = self.faces[face as usize].v;
+        [self.point(a), self.point(b), self.point(c)]
     }
 
     /// Tag of the constraint along an edge given by its link.
