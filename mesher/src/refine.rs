@@ -14,6 +14,8 @@ use crate::triangulate::{LAST, NEXT, NONE, Place, Triangulation};
 const RADIUS_EDGE: f64 = 1.065_027_2;
 /// Largest circumradius over the wanted size; an equilateral triangle has 0.577.
 const RADIUS_SIZE: f64 = 0.70;
+/// Legs of a new triangle over the wanted size, so that the sizes of what is made lie on both sides of it.
+const LEG: f64 = 1.04;
 /// Edges between lines are not shortened under this share of the wanted size.
 const FLOOR: f64 = 0.12;
 /// Cosine of the lens angle: a point that sees a constrained edge under more than 120 degrees encroaches on it.
@@ -183,7 +185,7 @@ impl Refiner<'_> {
         let size = 0.5 * (self.wanted[x as usize] + self.wanted[y as usize]);
         let size = size.min(self.sizes.caps[f.side as usize]);
         if shortest < 1.5 * size {
-            let leg = size.max(0.75 * shortest);
+            let leg = (LEG * size).max(0.75 * shortest);
             let square = (leg * leg - 0.25 * shortest * shortest).max(0.25 * shortest * shortest);
             reach = reach.min(square.sqrt());
         }

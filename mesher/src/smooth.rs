@@ -1,13 +1,22 @@
 //! Smoothing: free vertices move to where the worst angle around them is larger, and edges flip to stay Delaunay. Convention: vertices on
-//! lines and in strips stay; a vertex is looked at again only if something around it has changed. Source: L. Chen, J. Xu, "Optimal
-//! Delaunay triangulations", 2004 (area-weighted circumcentres).
+//! lines and in strips stay; a vertex is looked at again only if something around it has changed. Sources: L. Chen, J. Xu, "Optimal
+//! Delaunay triangulations", 2004 (area-weighted circumcentres); L. A. Freitag, C. Ollivier-Gooch, "Tetrahedral mesh improvement using
+//! swapping and smoothing", 1997 (a search for the best worst angle where that fails).
 
-use crate::ids::{Point, between, cross, distance_squared, dot, sub};
+use crate::ids::{Point, along, between, cross, distance_squared, dot, sub};
 use crate::predicates::in_circle;
 use crate::triangulate::{LAST, NEXT, NONE, Triangulation};
 
 /// Sine squared of the angle above which a vertex is left alone: 42 degrees.
 const GOOD_ENOUGH: f64 = 0.447_736;
+/// Sine squared of the angle under which a vertex is worth a search: 40 degrees.
+const POOR: f64 = 0.413_176;
+/// Steps of the search, as shares of the distance of the neighbours, and the directions it takes.
+const STEPS: [f64; 4] = [0.2, 0.1, 0.05, 0.02];
+const DIRECTIONS: [Point; 8] = {
+    const D: f64 = std::f64::consts::FRAC_1_SQRT_2;
+    [[1.0, 0.0], [D, D], [0.0, 1.0], [-D, D], [-1.0, 0.0], [-D, -D], [0.0, -1.0], [D, -D]]
+};
 
 pub(crate) fn smooth(mesh: &mut Triangulation, passes: usize) {
     let movable = movable(mesh);
@@ -155,11 +164,30 @@ impl Ring {
     fn better(&self, here: Point, before: f64) -> Option<Point> {
         let optimal = self.optimal(here);
         let better = |x: &Point| self.is_above(*x, before);
-        let first = [optimal, between(here, optimal, 0.5)];
-        first.into_iter().find(better).or_else(|| {
-            let n = self.places.len() as f64;
-            let mean = [0, 1].map(|k| self.places.iter().map(|p| p[k]).sum::<f64>() / n);
-            [mean, between(here, mean, 0.5)].into_iter().find(better)
+        let near = [optimal, between(here, optimal, 0.5)];
+        near.into_iter()
+            .find(better)
+            .or_else(|| {
+                let mean = self.mean();
+                [mean, between(here, mean, 0.5)].into_iter().find(better)
+            })
+            .or_else(|| if before < POOR { self.search(here, before) } else { None })
+    }
+
+    fn mean(&self) -> Point {
+        let n = self.places.len() as f64;
+        [0, 1].map(|k| self.places.iter().map(|p| p[k]).sum::<f64>() / n)
+    }
+
+    /// The best of eight places around a poor vertex, at the longest step at which one is better than `before`.
+    fn search(&self, here: Point, before: f64) -> Option<Point> {
+        let n = self.places.len() as f64;
+        let reach = (self.places.iter().map(|&p| distance_squared(p, here)).sum::<f64>() / n).sqrt();
+        STEPS.into_iter().find_map(|step| {
+            let tries = DIRECTIONS.map(|d| along(here, d, step * reach));
+            let rated = tries.map(|x| (self.worst(x), x));
+            let best = rated.into_iter().fold((before, here), |best, next| if next.0 > best.0 { next } else { best });
+            (best.0 > before).then_some(best.1)
         })
     }
 
