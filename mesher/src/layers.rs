@@ -16,7 +16,7 @@ use crate::noding::Graph;
 use crate::note::{MeshNote, NoteReason};
 use crate::plan::{Cell, Tag};
 use crate::size_field::{Gaps, SizeField, SizeSource, cusp_sources, sources_of};
-use columns::{Chain, chains};
+use columns::{Chain, Height, chains};
 use loops::loops_of;
 use positions::divide_surfaces;
 
@@ -149,12 +149,12 @@ fn describe(drawing: &Drawing, graph: &Graph, chains: &[Chain], emitted: &mut em
         let Some(layers) = region.layers else {
             continue;
         };
-        for (stretch, placed) in chain.heights() {
+        for Height { stretch, tallest, bare } in chain.heights() {
             let on = &graph.stretches[stretch].on_regions;
-            let reason = if placed == 0 {
+            let reason = if bare {
                 NoteReason::NoStrip { size: layers.first }
-            } else if placed < layers.count {
-                NoteReason::LayersCut { placed, wanted: layers.count }
+            } else if tallest < layers.count {
+                NoteReason::LayersCut { placed: tallest, wanted: layers.count }
             } else {
                 continue;
             };

@@ -6,6 +6,7 @@
 mod assemble;
 mod build;
 mod check;
+mod chords;
 mod constrain;
 mod drawing;
 mod error;
@@ -23,6 +24,7 @@ mod predicates;
 mod quality;
 mod refine;
 mod shapes;
+mod sides;
 mod size_field;
 mod smooth;
 mod span;
