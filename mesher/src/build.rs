@@ -184,15 +184,14 @@ fn label_cells(plan: &Plan, mesh: &mut Triangulation) {
     }
     let (group, count) = mesh.groups(|tag| tag != 0);
     let mut cell_of = vec![NONE; count as usize];
-    let mut near = 0;
     for (i, cell) in plan.cells.iter().enumerate() {
-        use crate::triangulate::Place::{AtVertex, Behind, Inside, OnEdge};
-        near = match mesh.locate(cell.inside, near, false) {
-            Inside(face) => face,
-            OnEdge(link) => link >> 2,
-            AtVertex | Behind(_) => continue,
-        };
-        cell_of[group[near as usize] as usize] = i as u32;
+        let [a, b, c, d] = cell.corners;
+        // A side on an arc may have been divided; the others are edges.
+        let sides = [(a, b), (b, c), (c, d), (d, a)].into_iter().filter(|s| s.0 != s.1);
+        let left = |(from, to)| mesh.find(from, to).filter(|&link| mesh.edge(link) == (from, to));
+        if let Some(link) = sides.filter_map(left).next() {
+            cell_of[group[(link >> 2) as usize] as usize] = i as u32;
+        }
     }
     for (t, face) in mesh.faces.iter_mut().enumerate() {
         face.cell = cell_of[group[t] as usize];

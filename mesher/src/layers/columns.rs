@@ -80,6 +80,20 @@ impl Chain {
         out
     }
 
+    /// Lowers columns in the midst of a fan that would stand alone; whether there were any.
+    fn lower_lone(&mut self) -> bool {
+        let mut changed = false;
+        for two in self.pairs.windows(2).filter(|two| two.iter().all(|pair| pair.on.is_none())) {
+            let [before, lone, after] = [two[0].columns[0], two[0].columns[1], two[1].columns[1]];
+            let most = self.columns[before].height.max(self.columns[after].height);
+            if two[1].columns[0] == lone && self.columns[lone].height > most {
+                self.columns[lone].height = most;
+                changed = true;
+            }
+        }
+        changed
+    }
+
     /// Lowers columns until neighbours differ by one level at most.
     pub(super) fn level_out(&mut self) {
         loop {
@@ -96,6 +110,7 @@ impl Chain {
                     changed = true;
                 }
             }
+            changed |= self.lower_lone();
             if !changed {
                 return;
             }

@@ -190,7 +190,9 @@ fn nodes_on_arcs(mesh: &Mesh, extent: f64) -> Broken {
     for order in [1, 2, 3] {
         let nodes = mesh.nodes(order);
         for (e, edge) in mesh.edges().iter().enumerate() {
-            let Some(Shape::Arc { centre, radius }) = edge.curve.map(|c| mesh.curve(c).shape) else {
+            // Rings inside strips are not of the drawing; where one is left straight nothing of the drawing is lost.
+            let drawn = edge.curve.map(|c| mesh.curve(c)).filter(|c| c.on_domain.is_some() || !c.on_regions.is_empty());
+            let Some(Shape::Arc { centre, radius }) = drawn.map(|c| c.shape) else {
                 continue;
             };
             let first = nodes.vertex_count + e * (order - 1);
@@ -240,7 +242,12 @@ fn delaunay(mesh: &Mesh) -> Broken {
         }
     }
     if worst.0 > 1e-6 {
-        Err(format!("{bad} edges are not Delaunay, edge {} by {:.1e} degrees", worst.1, worst.0))
+        Err(format!(
+            "{bad} edges are not Delaunay, edge {} at {:?} by {:.1e} degrees",
+            worst.1,
+            mesh.vertices()[mesh.edges()[worst.1].vertices[0] as usize],
+            worst.0
+        ))
     } else {
         Ok(())
     }
@@ -266,7 +273,7 @@ fn strips_or_notes(drawing: &Drawing, mesh: &Mesh) -> Broken {
     Ok(())
 }
 
-/// Smallest angle of the triangles outside strips none of whose vertices is within [`AWAY`] edges of a gap, a small angle or a short
+/// Smallest angle of the triangles that touch no strip and none of whose vertices is within [`AWAY`] edges of a gap, a small angle or a short
 /// stretch, in degrees; and where it is. Constraints are the curves and the inner ends of strips. A gap is where a free edge joins two
 /// of them and is shorter than a constraint it starts from; a short stretch is a constraint under half its neighbour.
 pub(crate) fn least_angle_away(mesh: &Mesh) -> (f64, Point) {
@@ -279,9 +286,15 @@ pub(crate) fn least_angle_away(mesh: &Mesh) -> (f64, Point) {
             near[b] |= before[a];
         }
     }
+    let mut strip = vec![false; near.len()];
+    for (triangle, _) in mesh.triangles().iter().zip(mesh.strip_triangles()).filter(|(_, s)| **s) {
+        for &v in triangle {
+            strip[v as usize] = true;
+        }
+    }
     let mut least = (180.0, [0.0; 2]);
     for (t, triangle) in mesh.triangles().iter().enumerate() {
-        if mesh.strip_triangles()[t] || triangle.iter().any(|&v| near[v as usize]) {
+        if mesh.strip_triangles()[t] || triangle.iter().any(|&v| near[v as usize] || strip[v as usize]) {
             continue;
         }
         let p = mesh.corners(t);
