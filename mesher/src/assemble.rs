@@ -74,7 +74,10 @@ pub(crate) fn straighten(drawing: &Drawing, tips: Option<&[u32]>, mesh: &mut Mes
             bad.extend(triangles.iter().filter(|&&t| t != NO_TRIANGLE).map(|&t| t as usize));
             if let Some(&(index, piece)) = curve.and_then(|c| mesh.curve(c).on_regions.first()) {
                 let region = drawing.regions[index].id;
-                mesh.notes.push(MeshNote { region, index, piece: Some(piece), reason: NoteReason::ArcStraightened });
+                let note = MeshNote { region, index, piece: Some(piece), reason: NoteReason::ArcStraightened };
+                if !mesh.notes.contains(&note) {
+                    mesh.notes.push(note);
+                }
             }
         }
     }

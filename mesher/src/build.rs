@@ -1,11 +1,12 @@
 //! The whole way from a drawing to a checked mesh. Convention: arcs are divided finer and finer until the mesh passes its check.
 
 use crate::assemble::{finish, straighten};
+use crate::chords::untangle;
 use crate::drawing::{Drawing, Limits, OUTSIDE};
 use crate::error::MeshError;
 use crate::ids::Point;
 use crate::layers;
-use crate::mesh::Mesh;
+use crate::mesh::{Mesh, straight_area};
 use crate::noding::{Graph, node};
 use crate::note::{MeshNote, NoteReason};
 use crate::plan::Plan;
@@ -116,7 +117,9 @@ fn plan(drawing: &Drawing, graph: &Graph, max_turn: f64) -> (Plan, SizeField, Ve
     let mut strips = layers::build(drawing, graph, &rough, max_turn);
     let field = if strips.is_empty() { rough } else { field(strips.sources(graph, &sizes, &gaps)) };
     let notes = std::mem::take(&mut strips.notes);
-    (Plan::new(drawing, graph, strips, &field, max_turn), field, notes)
+    let mut plan = Plan::new(drawing, graph, strips, &field, max_turn);
+    untangle(&mut plan, graph.tolerance);
+    (plan, field, notes)
 }
 
 /// The constrained triangulation of a plan, with sides and strip cells set on its faces.
@@ -127,40 +130,51 @@ fn constrained(drawing: &Drawing, graph: &Graph, plan: &Plan) -> Result<Triangul
     for &(a, b, tag) in &plan.edges {
         mesh.constrain(a, b, tag).map_err(|crossed| too_close(crossed.at))?;
     }
-    label_sides(drawing, plan, &mut mesh).map_err(too_close)?;
+    label_sides(drawing, plan, &mut mesh);
     label_cells(plan, &mut mesh);
     Ok(mesh)
 }
 
-/// Gives every face the side that the stretches around its group agree on.
-fn label_sides(drawing: &Drawing, plan: &Plan, mesh: &mut Triangulation) -> Result<(), Point> {
+/// Gives every face the side that the stretches around its group agree on, or else the side on which its group's largest face lies.
+fn label_sides(drawing: &Drawing, plan: &Plan, mesh: &mut Triangulation) {
     let is_stretch = |tag: u32| tag != 0 && plan.tags[tag as usize - 1].ends.is_some();
     let (group, count) = mesh.groups(is_stretch);
-    let mut side: Vec<Option<u32>> = vec![None; count as usize];
+    let mut says: Vec<Vec<u32>> = vec![Vec::new(); count as usize];
     for &(a, b, tag) in &plan.edges {
         let Some(sides) = plan.tags[tag as usize - 1].sides else {
             continue;
         };
-        for (from, to, says) in [(a, b, sides[0]), (b, a, sides[1])] {
-            let Some(link) = mesh.find(from, to).filter(|&l| mesh.edge(l) == (from, to)) else {
-                continue;
-            };
-            let known = &mut side[group[(link >> 2) as usize] as usize];
-            if known.is_some_and(|k| k != says) {
-                return Err(mesh.point(a));
+        for (from, to, side) in [(a, b, sides[0]), (b, a, sides[1])] {
+            if let Some(link) = mesh.find(from, to).filter(|&l| mesh.edge(l) == (from, to)) {
+                let said = &mut says[group[(link >> 2) as usize] as usize];
+                if !said.contains(&side) {
+                    said.push(side);
+                }
             }
-            *known = Some(says);
         }
     }
-    for (t, face) in mesh.faces.iter_mut().enumerate() {
-        let known = side[group[t] as usize].unwrap_or_else(|| {
-            let corner = |k: usize| mesh.points[face.v[k] as usize];
-            let [a, b, c] = [corner(0), corner(1), corner(2)];
-            drawing.side_at([(a[0] + b[0] + c[0]) / 3.0, (a[1] + b[1] + c[1]) / 3.0])
-        });
-        face.side = if known == OUTSIDE { NONE } else { known };
+    let mut largest = vec![(-1.0, 0); count as usize];
+    for (t, &g) in group.iter().enumerate() {
+        let area = straight_area(mesh.corners(t as u32));
+        if area > largest[g as usize].0 {
+            largest[g as usize] = (area, t as u32);
+        }
     }
-    Ok(())
+    let sides: Vec<u32> = says
+        .iter()
+        .zip(&largest)
+        .map(|(said, &(_, face))| match said.as_slice() {
+            [one] => *one,
+            _ => {
+                let [a, b, c] = mesh.corners(face);
+                drawing.side_at([(a[0] + b[0] + c[0]) / 3.0, (a[1] + b[1] + c[1]) / 3.0])
+            }
+        })
+        .collect();
+    for (face, &g) in mesh.faces.iter_mut().zip(&group) {
+        let side = sides[g as usize];
+        face.side = if side == OUTSIDE { NONE } else { side };
+    }
 }
 
 /// Marks the faces of every strip cell.
@@ -170,15 +184,14 @@ fn label_cells(plan: &Plan, mesh: &mut Triangulation) {
     }
     let (group, count) = mesh.groups(|tag| tag != 0);
     let mut cell_of = vec![NONE; count as usize];
-    let mut near = 0;
     for (i, cell) in plan.cells.iter().enumerate() {
-        use crate::triangulate::Place::{AtVertex, Behind, Inside, OnEdge};
-        near = match mesh.locate(cell.inside, near, false) {
-            Inside(face) => face,
-            OnEdge(link) => link >> 2,
-            AtVertex | Behind(_) => continue,
-        };
-        cell_of[group[near as usize] as usize] = i as u32;
+        let [a, b, c, d] = cell.corners;
+        // A side on an arc may have been divided; the others are edges.
+        let sides = [(a, b), (b, c), (c, d), (d, a)].into_iter().filter(|s| s.0 != s.1);
+        let left = |(from, to)| mesh.find(from, to).filter(|&link| mesh.edge(link) == (from, to));
+        if let Some(link) = sides.filter_map(left).next() {
+            cell_of[group[(link >> 2) as usize] as usize] = i as u32;
+        }
     }
     for (t, face) in mesh.faces.iter_mut().enumerate() {
         face.cell = cell_of[group[t] as usize];

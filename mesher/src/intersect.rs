@@ -2,6 +2,7 @@
 //! found through their end points. Source: elementary plane geometry.
 
 use crate::ids::{Point, along, cross, distance, dot, left_of, sub};
+use crate::predicates::orient;
 use crate::span::{Kind, Span};
 
 /// All points where `a` and `b` cross or touch, end points of one on the other included.
@@ -70,4 +71,15 @@ pub(crate) fn circle_circle(c: Point, r: f64, d: Point, q: f64, tolerance: f64) 
     let half = ((r - reach) * (r + reach)).max(0.0).sqrt();
     let across = left_of(direction);
     vec![along(middle, across, half), along(middle, across, -half)]
+}
+
+/// Whether two segments have a point in common.
+pub(crate) fn segments_meet([a, b]: [Point; 2], [c, d]: [Point; 2]) -> bool {
+    let apart = |k: usize| a[k].max(b[k]) < c[k].min(d[k]) || c[k].max(d[k]) < a[k].min(b[k]);
+    if apart(0) || apart(1) {
+        return false;
+    }
+    let (p, q) = (orient(a, b, c), orient(a, b, d));
+    let (r, s) = (orient(c, d, a), orient(c, d, b));
+    p * q <= 0.0 && r * s <= 0.0
 }

@@ -16,8 +16,8 @@ use crate::noding::Graph;
 use crate::note::{MeshNote, NoteReason};
 use crate::plan::{Cell, Tag};
 use crate::size_field::{Gaps, SizeField, SizeSource, cusp_sources, sources_of};
-use columns::{Chain, chains};
-use loops::loops_of;
+use columns::{Chain, Height, chains};
+use loops::{Loop, loops_of};
 use positions::divide_surfaces;
 
 /// Largest growth of the layers added inside the ones asked for.
@@ -43,6 +43,8 @@ pub(crate) struct Strips {
     pub(crate) notes: Vec<MeshNote>,
     /// Element sizes along the strips.
     pub(crate) inner: Vec<SizeSource>,
+    /// Largest element along stretches that should have a strip and cannot.
+    pub(crate) bare: Vec<(usize, f64)>,
 }
 
 impl Strips {
@@ -52,7 +54,7 @@ impl Strips {
     }
 
     pub(crate) fn is_empty(&self) -> bool {
-        self.divisions.iter().all(Option::is_none)
+        self.divisions.iter().all(Option::is_none) && self.bare.is_empty()
     }
 
     /// Sources of the size field: the strips' own edges, and the stretches they leave alone.
@@ -61,7 +63,8 @@ impl Strips {
         out.extend(&self.inner);
         for (i, stretch) in graph.stretches.iter().enumerate() {
             if self.divisions[i].is_none() {
-                sources_of(i, stretch, sizes[i], gaps, &mut out);
+                let bare = self.bare.iter().filter(|b| b.0 == i).map(|b| b.1);
+                sources_of(i, stretch, bare.fold(sizes[i], f64::min), gaps, &mut out);
             }
         }
         out
@@ -104,6 +107,7 @@ pub(crate) fn build(drawing: &Drawing, graph: &Graph, field: &SizeField, max_tur
             loops.extend(loops_of(graph, k, &depths));
         }
     }
+    name_loose(drawing, graph, &loops, &mut strips);
     if loops.is_empty() {
         return strips;
     }
@@ -120,6 +124,25 @@ pub(crate) fn build(drawing: &Drawing, graph: &Graph, field: &SizeField, max_tur
     }
     describe(drawing, graph, &chains, &mut strips);
     strips.result
+}
+
+/// Notes the surfaces that should have a strip but are part of no closed loop, and asks for small elements there instead.
+fn name_loose(drawing: &Drawing, graph: &Graph, loops: &[Loop], strips: &mut Strips) {
+    for (i, stretch) in graph.stretches.iter().enumerate().filter(|(_, s)| s.on_domain.is_none()) {
+        for &side in &stretch.sides {
+            let Some((region, layers)) = drawing.region_of(side).and_then(|r| Some((r, r.layers?))) else {
+                continue;
+            };
+            let index = side as usize - 1;
+            if loops.iter().any(|l| l.region == index && l.uses.iter().any(|u| u.stretch == i)) {
+                continue;
+            }
+            strips.bare.push((i, layers.first));
+            let piece = stretch.on_regions.iter().find(|p| p.0 == index).map(|p| p.1);
+            let reason = NoteReason::NoStrip { size: layers.first };
+            strips.notes.push(MeshNote { region: region.id, index, piece, reason });
+        }
+    }
 }
 
 /// Sizes along the surfaces, and notes where less was placed than wanted.
@@ -149,17 +172,20 @@ fn describe(drawing: &Drawing, graph: &Graph, chains: &[Chain], emitted: &mut em
         let Some(layers) = region.layers else {
             continue;
         };
-        for (stretch, placed) in chain.heights() {
+        for Height { stretch, tallest, bare } in chain.heights() {
             let on = &graph.stretches[stretch].on_regions;
-            let reason = if placed == 0 {
+            let reason = if bare {
                 NoteReason::NoStrip { size: layers.first }
-            } else if placed < layers.count {
-                NoteReason::LayersCut { placed, wanted: layers.count }
+            } else if tallest < layers.count {
+                NoteReason::LayersCut { placed: tallest, wanted: layers.count }
             } else {
                 continue;
             };
             let piece = on.iter().find(|p| p.0 == chain.region).map(|p| p.1);
-            strips.notes.push(MeshNote { region: region.id, index: chain.region, piece, reason });
+            let note = MeshNote { region: region.id, index: chain.region, piece, reason };
+            if !strips.notes.contains(&note) {
+                strips.notes.push(note);
+            }
         }
     }
 }

@@ -1,14 +1,18 @@
 //! From overlapping outlines to a plane graph: every crossing and touching becomes a node, coincident stretches become one, what is
-//! outside the domain or painted over is dropped. Convention: two points closer than 1e-9 of the domain's extent are one.
+//! outside the domain or painted over is dropped. Convention: two points closer than 1e-9 of the domain's extent are one. Merging moves
+//! lines a little, so what they meet then is noded again until nothing new is met.
 
 use crate::drawing::{Drawing, OUTSIDE};
-use crate::ids::{Point, along, cross, distance, dot, left_of};
+use crate::ids::{Point, cross, distance, dot};
 use crate::intersect::meetings;
+use crate::sides::{Run, sides};
 use crate::span::{Kind, Span};
 use std::collections::HashMap;
 
 /// Two curves that leave a node under a smaller angle, in radians, make a cusp.
 pub(crate) const CUSP: f64 = 0.05;
+/// Most rounds of noding again what merging has moved.
+const ROUNDS: usize = 12;
 
 /// One stretch of the drawing between two nodes.
 #[derive(Debug, Clone)]
@@ -21,6 +25,8 @@ pub(crate) struct Stretch {
     pub(crate) on_domain: Option<usize>,
     /// (region index, piece index) of every outline that runs here.
     pub(crate) on_regions: Vec<(usize, usize)>,
+    /// Every outline that runs here, and which way.
+    pub(crate) runs: Vec<Run>,
 }
 
 /// The noded drawing.
@@ -70,11 +76,12 @@ pub(crate) fn node(drawing: &Drawing) -> Graph {
     let tolerance = 1e-9 * drawing.extent();
     let sources = sources(drawing);
     let mut nodes = Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
-    let cuts = cut(&sources, tolerance);
+    let mut cuts = cut(&sources, tolerance);
     place_on_domain(&sources, &cuts, &mut nodes);
     for source in &sources {
         nodes.place(source.span.start);
     }
+    settle(&sources, &mut cuts, &mut nodes);
     let mut stretches = Vec::new();
     let mut known: HashMap<[u32; 2], Vec<usize>> = HashMap::new();
     for (source, cuts) in sources.iter().zip(&cuts) {
@@ -83,7 +90,7 @@ pub(crate) fn node(drawing: &Drawing) -> Graph {
         }
     }
     for stretch in &mut stretches {
-        stretch.sides = sides(drawing, stretch, tolerance);
+        stretch.sides = sides(drawing, &stretch.span, &stretch.runs, tolerance);
     }
     stretches.retain(|s| s.sides[0] != s.sides[1]);
     let points = keep_used(&nodes.points, &mut stretches);
@@ -172,6 +179,43 @@ fn cut(sources: &[Source], tolerance: f64) -> Vec<Vec<Point>> {
     cuts
 }
 
+/// Adds the cuts that merging has made necessary: where a part of a source, its ends on their nodes, meets another or a node.
+fn settle(sources: &[Source], cuts: &mut [Vec<Point>], nodes: &mut Nodes) {
+    let reach = 2.0 * nodes.tolerance;
+    let mut stirred = vec![true; sources.len()];
+    for _ in 0..ROUNDS {
+        let all: Vec<(usize, Span, [u32; 2])> = sources
+            .iter()
+            .zip(cuts.iter())
+            .enumerate()
+            .flat_map(|(i, (source, cuts))| parts(source, cuts, nodes).into_iter().map(move |p| (i, p.0, p.1)))
+            .collect();
+        let boxes: Vec<_> = all.iter().map(|part| part.1.bounds()).collect();
+        let mut next = vec![false; sources.len()];
+        for (i, j) in (0..all.len()).flat_map(|i| (i + 1..all.len()).map(move |j| (i, j))) {
+            let ((a, b), (c, d)) = (boxes[i], boxes[j]);
+            let apart = (0..2).any(|k| a[k] > d[k] + reach || c[k] > b[k] + reach);
+            let (one, two) = (&all[i], &all[j]);
+            if apart || !(stirred[one.0] || stirred[two.0]) {
+                continue;
+            }
+            for point in meetings(&one.1, &two.1, reach) {
+                let node = nodes.place(point);
+                for (source, _, ends) in [one, two] {
+                    if !ends.contains(&node) {
+                        cuts[*source].push(nodes.points[node as usize]);
+                        next[*source] = true;
+                    }
+                }
+            }
+        }
+        stirred = next;
+        if !stirred.contains(&true) {
+            return;
+        }
+    }
+}
+
 /// The stretches of a source between successive nodes.
 fn parts(source: &Source, cuts: &[Point], nodes: &mut Nodes) -> Vec<(Span, [u32; 2])> {
     let span = &source.span;
@@ -181,7 +225,15 @@ fn parts(source: &Source, cuts: &[Point], nodes: &mut Nodes) -> Vec<(Span, [u32;
         .map(|(i, &p)| (if i < 2 { i as f64 } else { span.project(p) }, nodes.place(p)))
         .collect();
     stops.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
-    stops.dedup_by_key(|stop| stop.1);
+    // A long way back to the same node is a loop of its own: it gets a node half way.
+    let short = |a: f64, b: f64| (b - a) * span.length() <= 16.0 * nodes.tolerance;
+    stops.dedup_by(|b, a| a.1 == b.1 && short(a.0, b.0));
+    for k in (1..stops.len()).rev() {
+        if stops[k - 1].1 == stops[k].1 {
+            let half = 0.5 * (stops[k - 1].0 + stops[k].0);
+            stops.insert(k, (half, nodes.place(span.at(half))));
+        }
+    }
     stops
         .windows(2)
         .map(|pair| {
@@ -203,6 +255,7 @@ fn add(
 ) {
     let key = [ends[0].min(ends[1]), ends[0].max(ends[1])];
     let middle = span.at(0.5);
+    let region = source.region_piece.map(|piece| piece.0);
     let same = known.entry(key).or_default();
     for &i in same.iter() {
         let other: &mut Stretch = &mut stretches[i];
@@ -212,6 +265,7 @@ fn add(
             {
                 other.on_regions.push(piece);
             }
+            other.runs.push(Run { region, forward: other.ends == ends });
             return;
         }
     }
@@ -225,13 +279,6 @@ fn add(
         sides: [OUTSIDE; 2],
         on_domain: source.domain_piece,
         on_regions: source.region_piece.into_iter().collect(),
+        runs: vec![Run { region, forward: true }],
     });
-}
-
-fn sides(drawing: &Drawing, stretch: &Stretch, tolerance: f64) -> [u32; 2] {
-    let normal = left_of(stretch.span.tangent(0.5));
-    let middle = stretch.span.at(0.5);
-    let step = (2.2 * tolerance).min(0.1 * stretch.span.length());
-    let right = if stretch.on_domain.is_some() { OUTSIDE } else { drawing.side_at(along(middle, normal, -step)) };
-    [drawing.side_at(along(middle, normal, step)), right]
 }

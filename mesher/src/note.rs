@@ -25,7 +25,7 @@ pub enum NoteReason {
         /// Layers wanted.
         wanted: usize,
     },
-    /// No strip could be placed; the surface has small isotropic triangles instead.
+    /// No strip could be placed on all or part of it; the surface has small isotropic triangles there instead.
     NoStrip {
         /// Element size along the surface instead, in metres.
         size: f64,

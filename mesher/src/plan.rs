@@ -23,7 +23,8 @@ pub(crate) struct Tag {
 /// A cell of a strip: a triangle or quadrilateral of which the refinement keeps off.
 #[derive(Debug, Clone, Copy)]
 pub(crate) struct Cell {
-    pub(crate) inside: Point,
+    /// Its vertices, counter-clockwise; a triangle repeats the last.
+    pub(crate) corners: [u32; 4],
     /// Centre of the arcs it lies between, if it does.
     pub(crate) pole: Option<Point>,
 }

@@ -42,6 +42,14 @@ impl Span {
         Self { start, end, kind: Kind::Arc { centre, radius, from, sweep } }
     }
 
+    /// The arc with this radius, which its end points may miss by a rounding error.
+    pub(crate) fn on_circle(mut self, exact: f64) -> Self {
+        if let Kind::Arc { radius, .. } = &mut self.kind {
+            *radius = exact;
+        }
+        self
+    }
+
     pub(crate) fn reversed(&self) -> Self {
         let kind = match self.kind {
             Kind::Line => Kind::Line,

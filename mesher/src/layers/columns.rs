@@ -52,20 +52,46 @@ pub(super) struct Chain {
     pub(super) pairs: Vec<Pair>,
 }
 
+/// How tall a strip is on a stretch.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Height {
+    pub(super) stretch: usize,
+    pub(super) tallest: usize,
+    /// Whether some of it has no strip.
+    pub(super) bare: bool,
+}
+
 impl Chain {
-    /// Greatest height on every stretch of the chain.
-    pub(super) fn heights(&self) -> Vec<(usize, usize)> {
-        let mut out: Vec<(usize, usize)> = Vec::new();
+    /// What stands on every stretch of the chain.
+    pub(super) fn heights(&self) -> Vec<Height> {
+        let mut out: Vec<Height> = Vec::new();
         for pair in &self.pairs {
             let Some(on) = pair.on else { continue };
             let stretch = self.whole.uses[on].stretch;
-            let height = pair.columns.iter().map(|&c| self.columns[c].height).max().unwrap_or(0);
+            let tallest = pair.columns.iter().map(|&c| self.columns[c].height).max().unwrap_or(0);
             match out.last_mut() {
-                Some(last) if last.0 == stretch => last.1 = last.1.max(height),
-                _ => out.push((stretch, height)),
+                Some(last) if last.stretch == stretch => {
+                    last.tallest = last.tallest.max(tallest);
+                    last.bare |= tallest == 0;
+                }
+                _ => out.push(Height { stretch, tallest, bare: tallest == 0 }),
             }
         }
         out
+    }
+
+    /// Lowers columns in the midst of a fan that would stand alone; whether there were any.
+    fn lower_lone(&mut self) -> bool {
+        let mut changed = false;
+        for two in self.pairs.windows(2).filter(|two| two.iter().all(|pair| pair.on.is_none())) {
+            let [before, lone, after] = [two[0].columns[0], two[0].columns[1], two[1].columns[1]];
+            let most = self.columns[before].height.max(self.columns[after].height);
+            if two[1].columns[0] == lone && self.columns[lone].height > most {
+                self.columns[lone].height = most;
+                changed = true;
+            }
+        }
+        changed
     }
 
     /// Lowers columns until neighbours differ by one level at most.
@@ -84,6 +110,7 @@ impl Chain {
                     changed = true;
                 }
             }
+            changed |= self.lower_lone();
             if !changed {
                 return;
             }

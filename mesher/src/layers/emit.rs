@@ -49,6 +49,8 @@ pub(super) fn emit(graph: &Graph, chains: &[Chain], bare: &Strips) -> Emitted {
         divisions: bare.divisions.clone(),
         pins: bare.pins.clone(),
         tags: vec![Tag::default()],
+        bare: bare.bare.clone(),
+        notes: bare.notes.clone(),
         ..Strips::default()
     };
     let out = Emitted { result, edges: Vec::new(), cells: Vec::new(), covered: Vec::new() };
@@ -176,10 +178,7 @@ impl Emitter<'_> {
     }
 
     fn cell(&mut self, corners: [u32; 4], pole: Option<Point>, chain: usize, columns: [usize; 2]) {
-        let n = if corners[2] == corners[3] { 3 } else { 4 };
-        let points = corners.map(|v| self.out.result.point(self.graph, v));
-        let mean = |k: usize| points[..n].iter().map(|p| p[k]).sum::<f64>() / n as f64;
-        self.out.result.cells.push(Cell { inside: [mean(0), mean(1)], pole });
+        self.out.result.cells.push(Cell { corners, pole });
         self.out.cells.push(StripCell { corners, chain, columns });
     }
 

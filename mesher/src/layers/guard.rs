@@ -4,6 +4,7 @@
 use super::columns::Chain;
 use super::emit::Emitted;
 use crate::ids::Point;
+use crate::intersect::segments_meet;
 use crate::noding::Graph;
 use crate::predicates::orient;
 use crate::tree::{Item, Tree};
@@ -29,7 +30,7 @@ pub(super) fn lower_colliding(graph: &Graph, emitted: &Emitted, chains: &mut [Ch
             let other = other as usize;
             let (other_ids, other_ends) = segments[other];
             let share = ids.iter().any(|&i| i != u32::MAX && other_ids.contains(&i));
-            if other != own && !share && crosses(ends, other_ends) {
+            if other != own && !share && segments_meet(ends, other_ends) {
                 hit.extend(edge.columns.map(|c| (edge.chain, c)));
             }
             false
@@ -81,15 +82,4 @@ fn segments(graph: &Graph, emitted: &Emitted) -> (Vec<Segment>, usize) {
 
 fn item([a, b]: [Point; 2]) -> Item {
     Item { lo: [a[0].min(b[0]), a[1].min(b[1])], hi: [a[0].max(b[0]), a[1].max(b[1])], weight: 0.0 }
-}
-
-/// Whether two segments have a point in common.
-fn crosses([a, b]: [Point; 2], [c, d]: [Point; 2]) -> bool {
-    let apart = |k: usize| a[k].max(b[k]) < c[k].min(d[k]) || c[k].max(d[k]) < a[k].min(b[k]);
-    if apart(0) || apart(1) {
-        return false;
-    }
-    let (p, q) = (orient(a, b, c), orient(a, b, d));
-    let (r, s) = (orient(c, d, a), orient(c, d, b));
-    p * q <= 0.0 && r * s <= 0.0
 }

@@ -7,6 +7,11 @@
     reason = "tests; each file uses some of it, and a region takes an optional strip"
 )]
 
+pub(crate) mod generator;
+pub(crate) mod laws;
+pub(crate) mod random;
+pub(crate) mod shrink;
+
 use mesher::{Drawing, Layers, Limits, Mesh, Outline, Point, Region, RegionId};
 
 pub(crate) const AIR: RegionId = RegionId(0);
