@@ -31,6 +31,7 @@ pub(crate) fn finish(
         bends: Vec::new(),
         curves: Vec::new(),
         notes,
+        merges: graph.merges.clone(),
         domain_area: drawing.domain.area(),
         finder: OnceLock::new(),
     };
