@@ -32,6 +32,7 @@ pub(crate) fn finish(
         bends: Vec::with_capacity(faces.points.len() + count),
         curves: Vec::new(),
         notes,
+        merges: graph.merges.clone(),
         domain_area: drawing.domain.area(),
         finder: OnceLock::new(),
     };

@@ -30,7 +30,7 @@ pub enum OutlineError {
     },
     /// An arc whose end points are at different distances from its centre.
     #[error(
-        "arc {piece} starts {start_radius} m and ends {end_radius} m from its centre; the two must be equal to 1e-9 of themselves"
+        "arc {piece} starts {start_radius} m and ends {end_radius} m from its centre; the two must be equal to {tolerance:e} of themselves"
     )]
     NotOnCircle {
         /// Index of the piece.
@@ -39,6 +39,8 @@ pub enum OutlineError {
         start_radius: f64,
         /// Distance of its end from the centre, in metres.
         end_radius: f64,
+        /// Share of the radius by which the two may differ.
+        tolerance: f64,
     },
     /// The last piece does not return to the start.
     #[error("the outline ends {gap} m from its start; let the last piece end exactly there")]
@@ -47,7 +49,7 @@ pub enum OutlineError {
         gap: f64,
     },
     /// Two pieces cross or touch.
-    #[error("pieces {first} and {second} of the outline meet at ({r}, {z}) m; an outline may not cross or touch itself", r = .at[0], z = .at[1])]
+    #[error("the outline crosses or touches itself at ({r}, {z}) m, where its pieces {first} and {second} meet; give its points in order, one way round", r = .at[0], z = .at[1])]
     SelfCrossing {
         /// Index of one piece.
         first: usize,
@@ -71,6 +73,36 @@ pub enum OutlineError {
         value: f64,
         /// Largest value that fits, in metres.
         limit: f64,
+    },
+    /// A fillet or chamfer that does not fit between its neighbours.
+    #[error("the {what} of {value} m at corner {corner}, ({r}, {z}) m, does not fit: at most {limit} m does, next to the corners beside it; reduce it or theirs", r = .at[0], z = .at[1])]
+    CornerTooLarge {
+        /// Name of the dimension.
+        what: &'static str,
+        /// Index of the corner; 0 is the start.
+        corner: usize,
+        /// Where the corner stands.
+        at: Point,
+        /// Value as given, in metres.
+        value: f64,
+        /// Largest value that fits with the neighbours as they are, in metres.
+        limit: f64,
+    },
+    /// A fillet or chamfer where the outline runs straight on or back.
+    #[error("the outline does not turn at corner {corner}, ({r}, {z}) m; remove its fillet or chamfer", r = .at[0], z = .at[1])]
+    NoCorner {
+        /// Index of the corner; 0 is the start.
+        corner: usize,
+        /// Where it stands.
+        at: Point,
+    },
+    /// A hole that leaves its outline, or meets it or another hole.
+    #[error("hole {hole} is not inside the outline and clear of the other holes at ({r}, {z}) m; move or shrink it", r = .at[0], z = .at[1])]
+    BadHole {
+        /// Index of the hole.
+        hole: usize,
+        /// A point of it where that is so.
+        at: Point,
     },
 }
 

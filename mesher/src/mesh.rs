@@ -2,6 +2,7 @@
 //! edge `e` of a triangle joins its vertices `e` and `(e + 1) % 3`; metres.
 
 use crate::ids::{CurveId, NO_TRIANGLE, Point, RegionId, cross, distance, sub};
+use crate::merges::Merge;
 use crate::note::MeshNote;
 use crate::tree::{Item, Tree};
 use std::sync::OnceLock;
@@ -52,7 +53,45 @@ pub(crate) enum Bend {
     Polar(Point),
 }
 
-/// A conforming mesh of triangles.
+/// A conforming mesh of triangles, made by [`crate::triangulate`].
+///
+/// ```
+/// use mesher::{Drawing, Limits, Outline, Region, RegionId, triangulate};
+///
+/// // A disc of 20 mm radius in a box, with a bore of 8 mm radius that the box shows through.
+/// let (air, steel) = (RegionId(0), RegionId(7));
+/// let bore = Outline::circle([0.05, 0.0], 0.008)?;
+/// let disc = Outline::circle([0.05, 0.0], 0.020)?.with_holes(&[bore])?;
+/// let drawing = Drawing {
+///     domain: Outline::rectangle([0.0, -0.05], [0.1, 0.05])?,
+///     domain_region: air,
+///     domain_size: 0.01,
+///     regions: vec![Region { id: steel, outline: disc, interior_size: 0.004, surface_size: 0.003, layers: None }],
+///     gradation: 0.4,
+///     boundary_size: None,
+/// };
+/// let mesh = triangulate(&drawing, &Limits::default(), &|| false)?;
+///
+/// // The area is exact, arcs included.
+/// let area = std::f64::consts::PI * (0.020f64.powi(2) - 0.008f64.powi(2));
+/// assert!((mesh.region_area(steel) / area - 1.0).abs() < 1e-12);
+///
+/// // Two loops bound the ring, and their edges are those between it and the air.
+/// let loops = mesh.boundary_loops(steel);
+/// assert_eq!(loops.len(), 2);
+/// assert_eq!(loops.iter().map(Vec::len).sum::<usize>(), mesh.edges_between(steel, air).count());
+///
+/// // The edges on the first half of the outer circle add up to its length.
+/// let length: f64 = mesh.edges_of_piece(0, 0).map(|e| mesh.edge_length(e)).sum();
+/// assert!((length / (std::f64::consts::PI * 0.020) - 1.0).abs() < 1e-12);
+///
+/// // Where is a point, and how good are the triangles?
+/// let (triangle, _) = mesh.locate([0.065, 0.0]).ok_or("outside")?;
+/// assert_eq!(mesh.regions()[triangle], steel);
+/// let quality = mesh.quality();
+/// assert!(quality.min_angle_deg > 20.0 && quality.strip_triangles == 0);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
+/// ```
 #[derive(Debug, Clone)]
 pub struct Mesh {
     pub(crate) vertices: Vec<Point>,
@@ -64,6 +103,7 @@ pub struct Mesh {
     pub(crate) bends: Vec<Bend>,
     pub(crate) curves: Vec<Curve>,
     pub(crate) notes: Vec<MeshNote>,
+    pub(crate) merges: Vec<Merge>,
     /// Area of the domain outline, in square metres.
     pub(crate) domain_area: f64,
     pub(crate) finder: OnceLock<Tree>,
@@ -113,6 +153,11 @@ impl Mesh {
     /// Where the mesh differs from what the drawing asked for.
     pub fn notes(&self) -> &[MeshNote] {
         &self.notes
+    }
+
+    /// What the outlines of the drawing have in common, or were made to have where they come too close to tell apart.
+    pub fn merges(&self) -> &[Merge] {
+        &self.merges
     }
 
     /// Corners of a triangle, in metres.

@@ -1,10 +1,14 @@
-//! Closed outlines of lines and circular arcs. Convention: points `[r, z]` in metres; an outline is turned counter-clockwise when it
-//! is made, so that its inside is on the left; piece indices refer to that order. Source: elementary plane geometry.
+//! Closed outlines of lines and circular arcs, with holes. Convention: points `[r, z]` in metres; an outline is turned counter-clockwise
+//! when it is made and its holes clockwise, so that its inside is on the left; piece indices refer to that order, the pieces of holes
+//! follow those of the outline itself. Source: elementary plane geometry.
 
 use crate::error::OutlineError;
 use crate::ids::{Point, along, distance, left_of, sub};
 use crate::intersect::meetings;
 use crate::span::{Kind, Span};
+
+/// How far the ends of an arc may differ in their distance from the centre, over the greater one.
+const ON_CIRCLE: f64 = 1e-9;
 
 /// One stretch of an outline, from the end of the piece before it.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -41,10 +45,12 @@ impl Piece {
     }
 }
 
-/// A closed loop of pieces that does not cross itself, counter-clockwise.
+/// A closed loop of pieces that does not cross itself, counter-clockwise, and the holes in it.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Outline {
     spans: Vec<Span>,
+    /// Where each loop begins in `spans`: the outline itself, then its holes.
+    loops: Vec<usize>,
     lo: Point,
     hi: Point,
 }
@@ -82,10 +88,50 @@ impl Outline {
         if area < 0.0 {
             spans = spans.iter().rev().map(Span::reversed).collect();
         }
-        Ok(Self { spans, lo, hi })
+        Ok(Self { spans, loops: vec![0], lo, hi })
     }
 
-    /// Number of pieces.
+    /// The outline with holes in it, besides those it has. What was drawn under a region shows through its holes.
+    ///
+    /// # Errors
+    /// If a hole leaves the outline, or touches it or another hole, or has holes itself.
+    pub fn with_holes(&self, holes: &[Self]) -> Result<Self, OutlineError> {
+        let mut whole = self.clone();
+        let tolerance = 1e-11 * distance(self.lo, self.hi);
+        for (hole, inner) in holes.iter().enumerate() {
+            let meeting = |span: &Span| whole.spans.iter().find_map(|s| meetings(s, span, tolerance).first().copied());
+            let around_another = whole.spans.iter().any(|s| inner.contains(s.start));
+            let at = inner.start();
+            if let Some(at) = inner.spans.iter().find_map(meeting) {
+                return Err(OutlineError::BadHole { hole, at });
+            }
+            if around_another || inner.loops.len() > 1 || !whole.contains(at) {
+                return Err(OutlineError::BadHole { hole, at });
+            }
+            whole.loops.push(whole.spans.len());
+            whole.spans.extend(inner.spans.iter().rev().map(Span::reversed));
+        }
+        Ok(whole)
+    }
+
+    /// The holes, each as an outline of its own.
+    pub fn holes(&self) -> Vec<Self> {
+        (1..self.loops.len())
+            .map(|k| {
+                let spans: Vec<Span> = self.loop_spans(k).iter().rev().map(Span::reversed).collect();
+                let (lo, hi) = bounds_of(&spans);
+                Self { spans, loops: vec![0], lo, hi }
+            })
+            .collect()
+    }
+
+    /// The spans of loop `k`: 0 is the outline itself.
+    fn loop_spans(&self, k: usize) -> &[Span] {
+        let end = self.loops.get(k + 1).copied().unwrap_or(self.spans.len());
+        &self.spans[self.loops[k]..end]
+    }
+
+    /// Number of pieces, those of holes included.
     pub fn len(&self) -> usize {
         self.spans.len()
     }
@@ -100,26 +146,26 @@ impl Outline {
         self.spans[0].start
     }
 
-    /// The pieces, counter-clockwise.
+    /// The pieces of the outline itself, counter-clockwise; those of its holes are in [`Outline::holes`].
     pub fn pieces(&self) -> Vec<Piece> {
         let piece = |s: &Span| match s.kind {
             Kind::Line => Piece::Line { to: s.end },
             Kind::Arc { centre, sweep, .. } => Piece::Arc { to: s.end, centre, counter_clockwise: sweep > 0.0 },
         };
-        self.spans.iter().map(piece).collect()
+        self.loop_spans(0).iter().map(piece).collect()
     }
 
-    /// The point of piece `piece` at parameter `t` in 0..1 (in proportion to length); `None` if there is no such piece.
+    /// The point of piece `piece`, holes counted on, at parameter `t` in 0..1 (in proportion to length); `None` if there is no such piece.
     pub fn point(&self, piece: usize, t: f64) -> Option<Point> {
         self.spans.get(piece).map(|s| s.at(t))
     }
 
-    /// Enclosed area in square metres, arcs included exactly.
+    /// Enclosed area in square metres, arcs included exactly, holes left out.
     pub fn area(&self) -> f64 {
         self.spans.iter().map(|s| s.area_about(self.start())).sum()
     }
 
-    /// Length of the outline in metres.
+    /// Length of the outline and its holes in metres.
     pub fn perimeter(&self) -> f64 {
         self.spans.iter().map(Span::length).sum()
     }
@@ -129,7 +175,7 @@ impl Outline {
         (self.lo, self.hi)
     }
 
-    /// Whether a point is inside; arcs count exactly, points on the outline go either way.
+    /// Whether a point is inside and in no hole; arcs count exactly, points on the outline go either way.
     pub fn contains(&self, p: Point) -> bool {
         if p[0] < self.lo[0] || p[1] < self.lo[1] || p[0] > self.hi[0] || p[1] > self.hi[1] {
             return false;
@@ -183,7 +229,8 @@ impl Outline {
                 Piece::Arc { to: moved(to), centre: moved(centre), counter_clockwise }
             }
         });
-        Self::new(moved(self.start()), pieces.collect())
+        let holes = self.holes().iter().map(|hole| hole.translated(shift)).collect::<Result<Vec<_>, _>>()?;
+        Self::new(moved(self.start()), pieces.collect())?.with_holes(&holes)
     }
 
     pub(crate) fn spans(&self) -> &[Span] {
@@ -225,8 +272,8 @@ fn check_pieces(start: Point, pieces: &[Piece]) -> Result<(), OutlineError> {
             }
             let (start_radius, end_radius) = (distance(from, centre), distance(to, centre));
             let apart = (start_radius - end_radius).abs();
-            if apart > 1e-9 * start_radius.max(end_radius) || start_radius == 0.0 {
-                return Err(OutlineError::NotOnCircle { piece: i, start_radius, end_radius });
+            if apart > ON_CIRCLE * start_radius.max(end_radius) || start_radius == 0.0 {
+                return Err(OutlineError::NotOnCircle { piece: i, start_radius, end_radius, tolerance: ON_CIRCLE });
             }
         }
         let d = sub(from, to);
