@@ -4,6 +4,7 @@ use crate::assemble::{finish, straighten};
 use crate::chords::untangle;
 use crate::drawing::{Drawing, Limits, OUTSIDE};
 use crate::error::MeshError;
+use crate::facing::Facing;
 use crate::ids::Point;
 use crate::layers;
 use crate::mesh::{Mesh, straight_area};
@@ -114,10 +115,11 @@ fn plan(drawing: &Drawing, graph: &Graph, max_turn: f64) -> (Plan, SizeField, Ve
     let gaps = Gaps::new(graph);
     let field = |sources| SizeField::new(sources, drawing.gradation, drawing.domain_size);
     let rough = field(sources(graph, &sizes, &gaps));
-    let mut strips = layers::build(drawing, graph, &rough, max_turn);
+    let mut facing = Facing::new(graph, &gaps);
+    let mut strips = layers::build(drawing, graph, &rough, max_turn, &mut facing);
     let field = if strips.is_empty() { rough } else { field(strips.sources(graph, &sizes, &gaps)) };
     let notes = std::mem::take(&mut strips.notes);
-    let mut plan = Plan::new(drawing, graph, strips, &field, max_turn);
+    let mut plan = Plan::new(drawing, graph, strips, &field, max_turn, facing);
     untangle(&mut plan, graph.tolerance);
     (plan, field, notes)
 }

@@ -11,6 +11,7 @@ mod loops;
 mod positions;
 
 use crate::drawing::{Drawing, Layers, Region};
+use crate::facing::Facing;
 use crate::ids::{Point, distance};
 use crate::noding::Graph;
 use crate::note::{MeshNote, NoteReason};
@@ -98,7 +99,7 @@ fn depths(region: &Region, layers: &Layers, extent: f64) -> Vec<f64> {
 }
 
 /// Lays strips along every surface that asks for one. `field` is the element size without strips.
-pub(crate) fn build(drawing: &Drawing, graph: &Graph, field: &SizeField, max_turn: f64) -> Strips {
+pub(crate) fn build(drawing: &Drawing, graph: &Graph, field: &SizeField, max_turn: f64, facing: &mut Facing) -> Strips {
     let mut strips = Strips::none(graph);
     let mut loops = Vec::new();
     for (k, region) in drawing.regions.iter().enumerate() {
@@ -111,7 +112,7 @@ pub(crate) fn build(drawing: &Drawing, graph: &Graph, field: &SizeField, max_tur
     if loops.is_empty() {
         return strips;
     }
-    divide_surfaces(graph, &loops, field, max_turn, &mut strips);
+    divide_surfaces(graph, &loops, field, max_turn, facing, &mut strips);
     let mut chains: Vec<Chain> = loops.iter().flat_map(|l| chains(graph, l, &strips)).collect();
     let bare = strips;
     let mut strips = emit::emit(graph, &chains, &bare);

@@ -11,6 +11,7 @@ mod chords;
 mod constrain;
 mod drawing;
 mod error;
+mod facing;
 mod ids;
 mod intersect;
 mod layers;

@@ -2,6 +2,7 @@
 //! drawing come first; a tag is 1 + the index of its entry; stretches come first among the tags.
 
 use crate::drawing::Drawing;
+use crate::facing::Facing;
 use crate::ids::Point;
 use crate::layers::Strips;
 use crate::noding::Graph;
@@ -40,7 +41,14 @@ pub(crate) struct Plan {
 }
 
 impl Plan {
-    pub(crate) fn new(drawing: &Drawing, graph: &Graph, strips: Strips, field: &SizeField, max_turn: f64) -> Self {
+    pub(crate) fn new(
+        drawing: &Drawing,
+        graph: &Graph,
+        strips: Strips,
+        field: &SizeField,
+        max_turn: f64,
+        mut facing: Facing,
+    ) -> Self {
         let mut plan = Self { points: graph.points.clone(), nodes: graph.points.len(), ..Self::default() };
         plan.points.extend(&strips.points);
         for (i, stretch) in graph.stretches.iter().enumerate() {
@@ -51,7 +59,7 @@ impl Plan {
             plan.tags.push(Tag { ends: Some(stretch.ends), sides: Some(stretch.sides), circle, pole: None });
             let chain = match &strips.divisions[i] {
                 Some(fixed) => fixed.clone(),
-                None => plan.divide(drawing, graph, i, &strips, field, max_turn),
+                None => plan.divide(drawing, graph, i, &strips, field, max_turn, &mut facing),
             };
             plan.edges.extend(chain.windows(2).map(|e| (e[0], e[1], i as u32 + 1)));
         }
@@ -71,6 +79,7 @@ impl Plan {
         strips: &Strips,
         field: &SizeField,
         max_turn: f64,
+        facing: &mut Facing,
     ) -> Vec<u32> {
         let stretch = &graph.stretches[index];
         let cap = stretch.sides.iter().fold(drawing.domain_size, |least, &side| {
@@ -83,13 +92,15 @@ impl Plan {
         let to = tail.last().map_or(1.0, |pin| pin.0);
         let span = &stretch.span;
         let fewest = (f64::from(pieces_of_turn(span, max_turn)) * (to - from)).ceil() as u32;
-        let marks = divide(span, from, to, fewest, |t| field.at(span.at(t)).min(cap));
+        let mut marks = divide(span, from, to, fewest, |t| field.at(span.at(t)).min(cap));
+        facing.match_marks(index, &mut marks, |t| field.at(span.at(t)));
         for &t in &marks[1..marks.len() - 1] {
             self.points.push(span.at(t));
             chain.push(self.points.len() as u32 - 1);
         }
         chain.extend(tail.iter().rev().map(|pin| pin.1));
         chain.push(stretch.ends[1]);
+        facing.place(index, chain.iter().map(|&v| self.points[v as usize]));
         chain
     }
 }

@@ -48,11 +48,10 @@ fn movable(mesh: &Triangulation) -> Vec<bool> {
     movable
 }
 
-/// What lies around a free vertex: faces, and their other corners counter-clockwise.
+/// What lies around a free vertex: faces, and the places of their other corners counter-clockwise.
 #[derive(Default)]
 struct Ring {
     faces: Vec<u32>,
-    corners: Vec<u32>,
     places: Vec<Point>,
 }
 
@@ -68,12 +67,19 @@ struct Smoother {
 impl Smoother {
     /// Marks the free vertices of every face that is not good enough.
     fn find_due(&mut self, mesh: &Triangulation) {
-        for face in mesh.faces.iter().filter(|f| f.side != NONE && f.cell == NONE) {
-            let [a, b, c] = face.v.map(|v| mesh.point(v));
-            if sine_squared(a, b, c) < GOOD_ENOUGH {
-                for v in face.v {
-                    self.due[v as usize] = self.movable[v as usize];
-                }
+        for (t, face) in mesh.faces.iter().enumerate() {
+            if face.side != NONE && face.cell == NONE {
+                self.judge(mesh, t as u32);
+            }
+        }
+    }
+
+    /// Marks the free vertices of a face that is not good enough.
+    fn judge(&mut self, mesh: &Triangulation, face: u32) {
+        let [a, b, c] = mesh.corners(face);
+        if sine_squared(a, b, c) < GOOD_ENOUGH {
+            for v in mesh.faces[face as usize].v {
+                self.due[v as usize] = self.movable[v as usize];
             }
         }
     }
@@ -92,32 +98,30 @@ impl Smoother {
         };
         mesh.points[v as usize] = better;
         self.faces.extend(&self.ring.faces);
-        self.due[v as usize] = true;
-        for &w in &self.ring.corners {
-            self.due[w as usize] = self.movable[w as usize];
-        }
     }
 
-    /// Flips the edges of the faces that have changed, and of those that change by it, until all are Delaunay.
+    /// Flips the edges of the faces that have changed, and of those that change by it, until all are Delaunay; then judges them.
     fn flip(&mut self, mesh: &mut Triangulation) {
-        while let Some(t) = self.faces.pop() {
+        let mut next = 0;
+        while let Some(&t) = self.faces.get(next) {
+            next += 1;
             for i in 0..3 {
                 let face = &mesh.faces[t as usize];
                 let n = face.n[i];
                 if face.side == NONE || face.cell != NONE || face.tag[i] != 0 || n == NONE {
                     continue;
                 }
-                let (face, w) = (face.v, mesh.faces[(n >> 2) as usize].v[(n & 3) as usize]);
+                let w = mesh.faces[(n >> 2) as usize].v[(n & 3) as usize];
                 let [a, b, c] = mesh.corners(t);
                 if in_circle(a, b, c, mesh.point(w)) > 0.0 {
                     mesh.flip(4 * t + i as u32);
                     self.faces.extend([t, n >> 2]);
-                    for v in face.into_iter().chain([w]) {
-                        self.due[v as usize] = self.movable[v as usize];
-                    }
                     break;
                 }
             }
+        }
+        for t in std::mem::take(&mut self.faces) {
+            self.judge(mesh, t);
         }
     }
 }
@@ -126,17 +130,14 @@ impl Ring {
     /// Gathers the faces around a vertex that lies inside the triangulation.
     fn fill(&mut self, mesh: &Triangulation, v: u32) {
         self.faces.clear();
-        self.corners.clear();
         self.places.clear();
         let start = mesh.face_at[v as usize];
         let mut t = start;
         loop {
             let face = &mesh.faces[t as usize];
             let k = mesh.position(t, v);
-            let corner = face.v[NEXT[k]];
             self.faces.push(t);
-            self.corners.push(corner);
-            self.places.push(mesh.point(corner));
+            self.places.push(mesh.point(face.v[NEXT[k]]));
             t = face.n[NEXT[k]] >> 2;
             if t == start {
                 return;

@@ -4,6 +4,7 @@
 use super::Strips;
 use super::junction::Style;
 use super::loops::Loop;
+use crate::facing::Facing;
 use crate::noding::Graph;
 use crate::size_field::{SizeField, divide, pieces_of_turn};
 use crate::span::Span;
@@ -15,7 +16,14 @@ const SPACING_GROWTH: f64 = 1.5;
 const SPACING_GRADATION: f64 = 0.45;
 
 /// Divides every stretch that carries a strip on either side.
-pub(super) fn divide_surfaces(graph: &Graph, loops: &[Loop], field: &SizeField, max_turn: f64, strips: &mut Strips) {
+pub(super) fn divide_surfaces(
+    graph: &Graph,
+    loops: &[Loop],
+    field: &SizeField,
+    max_turn: f64,
+    facing: &mut Facing,
+    strips: &mut Strips,
+) {
     for (i, stretch) in graph.stretches.iter().enumerate() {
         let mut users: Vec<(&Loop, usize)> = loops
             .iter()
@@ -31,7 +39,13 @@ pub(super) fn divide_surfaces(graph: &Graph, loops: &[Loop], field: &SizeField, 
         let [head, tail] = [false, true].map(|at_end| {
             users.iter().map(|&(l, k)| reserve(l, k, at_end)).find(|r| r.len() > 1).unwrap_or_else(|| vec![0.0])
         });
-        let marks = marks(&stretch.span, length, head, tail, field, max_turn);
+        let [head, tail] = steps(length, head, tail, |x| field.at(stretch.span.at(x / length)));
+        let mut middle = middle(&stretch.span, &head, &tail, field, max_turn);
+        facing.match_marks(i, &mut middle, |t| field.at(stretch.span.at(t)));
+        let mut marks: Vec<f64> = head[..head.len() - 1].iter().map(|x| x / length).collect();
+        marks.extend(middle);
+        marks.extend(tail[..tail.len() - 1].iter().rev().map(|x| 1.0 - x / length));
+        facing.place(i, marks.iter().map(|&t| stretch.span.at(t)));
         let mut chain = vec![stretch.ends[0]];
         for &t in &marks[1..marks.len() - 1] {
             chain.push(strips.add_point(graph, stretch.span.at(t)));
@@ -62,16 +76,8 @@ fn reserve(l: &Loop, k: usize, at_end: bool) -> Vec<f64> {
     }
 }
 
-fn marks(
-    span: &Span,
-    length: f64,
-    mut head: Vec<f64>,
-    mut tail: Vec<f64>,
-    field: &SizeField,
-    max_turn: f64,
-) -> Vec<f64> {
-    let size = |x: f64| field.at(span.at(x / length));
-    // Steps wider than the surface size are left to the even division.
+/// The steps at both ends, without those wider than the surface size (left to the even division) and those that would meet.
+fn steps(length: f64, mut head: Vec<f64>, mut tail: Vec<f64>, size: impl Fn(f64) -> f64) -> [Vec<f64>; 2] {
     for (steps, from_end) in [(&mut head, false), (&mut tail, true)] {
         let fits = |w: &[f64]| w[1] - w[0] <= 1.3 * size(if from_end { length - w[1] } else { w[1] });
         let kept = 1 + steps.windows(2).take_while(|w| fits(w)).count();
@@ -84,19 +90,21 @@ fn marks(
             tail.pop();
         }
     }
+    [head, tail]
+}
+
+/// Parameters of the columns between the steps, those at the last steps included.
+fn middle(span: &Span, head: &[f64], tail: &[f64], field: &SizeField, max_turn: f64) -> Vec<f64> {
+    let length = span.length();
     let spacing = |steps: &[f64]| match steps {
         [.., a, b] => (b - a) * SPACING_GROWTH,
         _ => f64::INFINITY,
     };
-    let (h0, h1) = (spacing(&head), spacing(&tail));
+    let (h0, h1) = (spacing(head), spacing(tail));
     let (x0, x1) = (head[head.len() - 1], length - tail[tail.len() - 1]);
     let fewest = (f64::from(pieces_of_turn(span, max_turn)) * (x1 - x0) / length - 1e-9).ceil() as u32;
-    let middle = divide(span, x0 / length, x1 / length, fewest, |t| {
+    divide(span, x0 / length, x1 / length, fewest, |t| {
         let x = t * length;
-        size(x).min(h0 + SPACING_GRADATION * (x - x0)).min(h1 + SPACING_GRADATION * (x1 - x))
-    });
-    let mut marks: Vec<f64> = head[..head.len() - 1].iter().map(|x| x / length).collect();
-    marks.extend(middle);
-    marks.extend(tail[..tail.len() - 1].iter().rev().map(|x| 1.0 - x / length));
-    marks
+        field.at(span.at(t)).min(h0 + SPACING_GRADATION * (x - x0)).min(h1 + SPACING_GRADATION * (x1 - x))
+    })
 }
