@@ -21,7 +21,7 @@ pub(crate) fn finish(
 ) -> Mesh {
     let mut triangle_of = vec![NONE; faces.faces.len()];
     let mut vertex_of = vec![NONE; faces.points.len()];
-    let count = faces.faces.iter().filter(|f| f.side != NONE).count();
+    let count = faces.faces.iter().filter(|f| f.side().is_some()).count();
     let mut mesh = Mesh {
         vertices: Vec::with_capacity(faces.points.len()),
         triangles: Vec::with_capacity(count),
@@ -36,7 +36,7 @@ pub(crate) fn finish(
         domain_area: drawing.domain.area(),
         finder: OnceLock::new(),
     };
-    for (t, face) in faces.faces.iter().enumerate().filter(|(_, f)| f.side != NONE) {
+    for (t, (face, side)) in faces.faces.iter().enumerate().filter_map(|(t, f)| Some((t, (f, f.side()?)))) {
         triangle_of[t] = mesh.triangles.len() as u32;
         mesh.triangles.push(face.v.map(|v| {
             let number = &mut vertex_of[v as usize];
@@ -46,8 +46,8 @@ pub(crate) fn finish(
             }
             *number
         }));
-        mesh.regions.push(drawing.id_of(face.side));
-        mesh.strip.push(face.cell != NONE);
+        mesh.regions.push(drawing.id_of(side));
+        mesh.strip.push(!face.is_free());
     }
     let curve_of = curves(graph, plan, &mut mesh);
     add_edges(plan, faces, &triangle_of, &curve_of, &mut mesh);
@@ -124,16 +124,16 @@ fn add_edges(plan: &Plan, faces: &Triangulation, triangle_of: &[u32], curve_of: 
             let second = if other == NONE { NO_TRIANGLE } else { other };
             let curve = if tag == 0 { None } else { curve_of[tag as usize - 1] };
             mesh.edges.push(Edge { vertices: [a.min(b), a.max(b)], triangles: [triangle, second], curve });
-            mesh.bends.push(bend(plan, face.cell, tag));
+            mesh.bends.push(bend(plan, faces.cell(t as u32), tag));
         }
         mesh.triangle_edges.push(own);
     }
 }
 
 /// How an edge is bent: by its constraint, or if it is the diagonal of a strip cell by the pole of that cell.
-fn bend(plan: &Plan, cell: u32, tag: u32) -> Bend {
+fn bend(plan: &Plan, cell: Option<u32>, tag: u32) -> Bend {
     if tag == 0 {
-        let pole = if cell == NONE { None } else { plan.cells[cell as usize].pole };
+        let pole = cell.and_then(|cell| plan.cells[cell as usize].pole);
         return pole.map_or(Bend::Straight, Bend::Polar);
     }
     let tag = &plan.tags[tag as usize - 1];

@@ -175,7 +175,7 @@ fn label_sides(drawing: &Drawing, plan: &Plan, mesh: &mut Triangulation) {
         .collect();
     for (face, &g) in mesh.faces.iter_mut().zip(&group) {
         let side = sides[g as usize];
-        face.side = if side == OUTSIDE { NONE } else { side };
+        face.set_side((side != OUTSIDE).then_some(side));
     }
 }
 
@@ -195,7 +195,5 @@ fn label_cells(plan: &Plan, mesh: &mut Triangulation) {
             cell_of[group[(link >> 2) as usize] as usize] = i as u32;
         }
     }
-    for (t, face) in mesh.faces.iter_mut().enumerate() {
-        face.cell = cell_of[group[t] as usize];
-    }
+    mesh.set_cells(group.into_iter().map(|g| cell_of[g as usize]).collect());
 }

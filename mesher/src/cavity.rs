@@ -3,8 +3,7 @@
 //! Watson, "Computing the n-dimensional Delaunay tessellation", 1981; constrained edges bound the cavity.
 
 use crate::ids::{Point, cross, sub};
-use crate::predicates::in_circle;
-use crate::triangulate::{Face, LAST, NEXT, NONE, Triangulation};
+use crate::triangulate::{Circle, Face, LAST, NEXT, NONE, Triangulation};
 
 /// More faces than this are no cavity but a sign that the triangulation is not Delaunay here.
 const MOST_FACES: usize = 200;
@@ -42,8 +41,7 @@ impl Triangulation {
             let i = (link & 3) as usize;
             let (n, tag) = (face.n[i], face.tag[i]);
             if tag == 0 && n != NONE && cavity.faces.len() < MOST_FACES {
-                let [a, b, c] = self.corners(n >> 2);
-                if in_circle(a, b, c, p) > 0.0 {
+                if self.is_in_circle(n >> 2, p) {
                     let j = (n & 3) as usize;
                     cavity.faces.push(n >> 2);
                     cavity.open.extend([(n & !3) | LAST[j] as u32, (n & !3) | NEXT[j] as u32]);
@@ -71,8 +69,13 @@ impl Triangulation {
         for (k, rim) in cavity.rim.iter().enumerate() {
             let after = if k + 1 == count { number(0) } else { number(k + 1) };
             let [a, b] = rim.ends;
-            self.faces[here as usize] =
-                Face { v: [p, a, b], n: [rim.outside, 4 * after + 2, 4 * before + 1], tag: [rim.tag, 0, 0], ..old };
+            self.faces[here as usize] = Face {
+                v: [p, a, b],
+                n: [rim.outside, 4 * after + 2, 4 * before + 1],
+                tag: [rim.tag, 0, 0],
+                circle: Circle::through(self.point(p), self.point(a), self.point(b)),
+                ..old
+            };
             if rim.outside != NONE {
                 self.faces[(rim.outside >> 2) as usize].n[(rim.outside & 3) as usize] = 4 * here;
             }

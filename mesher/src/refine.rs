@@ -5,10 +5,11 @@
 use crate::cavity::Cavity;
 use crate::error::MeshError;
 use crate::ids::{Point, along, between, distance, distance_squared, dot, sub};
+use crate::mesh::straight_area;
 use crate::plan::Tag;
-use crate::predicates::{circumcircle, orient};
+use crate::predicates::orient;
 use crate::size_field::SizeField;
-use crate::triangulate::{LAST, NEXT, NONE, Place, Triangulation};
+use crate::triangulate::{Circle, Face, LAST, NEXT, NONE, Place, Triangulation};
 
 /// Circumradius over shortest edge at 28 degrees: `1 / (2 sin 28)`.
 const RADIUS_EDGE: f64 = 1.065_027_2;
@@ -20,6 +21,8 @@ const LEG: f64 = 1.04;
 const FLOOR: f64 = 0.12;
 /// Cosine of the lens angle: a point that sees a constrained edge under more than 120 degrees encroaches on it.
 const LENS: f64 = 0.5;
+/// Usual area of a face over the square of the wanted size.
+const FACE_AREA: f64 = 0.36;
 /// Mark of a vertex that is a node of the drawing.
 const NODE: u32 = u32::MAX;
 
@@ -61,6 +64,7 @@ pub(crate) fn refine(
     let on = marks(mesh, nodes);
     let mut refiner =
         Refiner { mesh, sizes, tags, wanted, on, queue: Vec::new(), cavity: Cavity::default(), encroached: Vec::new() };
+    refiner.reserve(budget.max_triangles);
     refiner.mesh.fresh = (0..refiner.mesh.faces.len() as u32).collect();
     refiner.queue_fresh();
     let mut steps = 0u32;
@@ -87,7 +91,7 @@ pub(crate) fn refine(
 /// Wanted size at every vertex of a face that may be refined; the others are not asked for.
 fn wanted(mesh: &Triangulation, field: &SizeField) -> Vec<f64> {
     let mut wanted = vec![f64::NAN; mesh.points.len()];
-    for face in mesh.faces.iter().filter(|f| f.side != NONE && f.cell == NONE) {
+    for face in mesh.faces.iter().filter(|f| f.is_free()) {
         for v in face.v.map(|v| v as usize) {
             if wanted[v].is_nan() {
                 wanted[v] = field.at(mesh.points[v]);
@@ -113,21 +117,39 @@ fn marks(mesh: &Triangulation, nodes: usize) -> Vec<u32> {
 }
 
 impl Refiner<'_> {
+    /// Makes room for about as many faces as the sizes at the corners of the present ones ask for, but not for more than `most`.
+    fn reserve(&mut self, most: usize) {
+        let free = (0..self.mesh.faces.len() as u32).filter(|&t| self.mesh.faces[t as usize].is_free());
+        let count: f64 =
+            free.map(|t| straight_area(self.mesh.corners(t)) / (FACE_AREA * self.size_of(t).powi(2))).sum();
+        let count = (count as usize).min(most);
+        self.mesh.faces.reserve(count);
+        self.mesh.points.reserve(count / 2);
+        self.mesh.face_at.reserve(count / 2);
+        self.wanted.reserve(count / 2);
+        self.on.reserve(count / 2);
+    }
+
     fn queue_fresh(&mut self) {
-        for &t in &self.mesh.fresh {
+        self.mesh.find_circles();
+        for t in self.mesh.fresh.drain(..) {
             let face = &self.mesh.faces[t as usize];
-            if face.side != NONE && face.cell == NONE {
+            if face.is_free() {
                 self.queue.push((t, face.v));
             }
         }
-        self.mesh.fresh.clear();
+    }
+
+    /// Largest element in what a face belongs to.
+    fn cap(&self, face: &Face) -> f64 {
+        face.side().map_or(f64::INFINITY, |side| self.sizes.caps[side as usize])
     }
 
     /// Wanted size in a face.
     fn size_of(&self, face: u32) -> f64 {
         let face = &self.mesh.faces[face as usize];
         let mean = face.v.iter().map(|&v| self.wanted[v as usize]).sum::<f64>() / 3.0;
-        mean.min(self.sizes.caps[face.side as usize])
+        mean.min(self.cap(face))
     }
 
     /// Where a point is to be added for a face that is too large or too sharp.
@@ -140,7 +162,7 @@ impl Refiner<'_> {
                 i = k;
             }
         }
-        let (centre, radius_squared) = circumcircle(a, b, c);
+        let Circle { centre, radius_squared } = self.mesh.faces[face as usize].circle;
         let size = self.size_of(face);
         let large = radius_squared > (RADIUS_SIZE * size).powi(2);
         let sharp = radius_squared > RADIUS_EDGE * RADIUS_EDGE * squares[i];
@@ -183,7 +205,7 @@ impl Refiner<'_> {
         let half_angle = (0.5 / RADIUS_EDGE).asin() * 0.5;
         let mut reach = depth.min(0.95 * 0.5 * shortest / half_angle.tan());
         let size = 0.5 * (self.wanted[x as usize] + self.wanted[y as usize]);
-        let size = size.min(self.sizes.caps[f.side as usize]);
+        let size = size.min(self.cap(f));
         if shortest < 1.5 * size {
             let leg = (LEG * size).max(0.75 * shortest);
             let square = (leg * leg - 0.25 * shortest * shortest).max(0.25 * shortest * shortest);
@@ -274,7 +296,7 @@ impl Refiner<'_> {
         let face = self.mesh.faces[(link >> 2) as usize];
         let i = (link & 3) as usize;
         let (tag, n) = (face.tag[i], face.n[i]);
-        if tag == 0 || n == NONE || face.cell != NONE || self.mesh.faces[(n >> 2) as usize].cell != NONE {
+        if tag == 0 || n == NONE || self.mesh.cell(link >> 2).is_some() || self.mesh.cell(n >> 2).is_some() {
             return false;
         }
         let (a, b) = self.mesh.edge(link);

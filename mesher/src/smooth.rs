@@ -23,15 +23,15 @@ pub(crate) fn smooth(mesh: &mut Triangulation, passes: usize) {
     let mut smoother = Smoother { due: vec![false; movable.len()], movable, ring: Ring::default(), faces: Vec::new() };
     smoother.find_due(mesh);
     for _ in 0..passes {
+        let mut moved = false;
         for v in 0..mesh.points.len() as u32 {
-            if smoother.due[v as usize] {
-                smoother.visit(mesh, v);
+            if std::mem::take(&mut smoother.due[v as usize]) {
+                moved |= smoother.visit(mesh, v);
             }
         }
-        if smoother.faces.is_empty() {
+        if !moved {
             return;
         }
-        smoother.flip(mesh);
     }
 }
 
@@ -39,7 +39,7 @@ fn movable(mesh: &Triangulation) -> Vec<bool> {
     let mut movable: Vec<bool> = mesh.face_at.iter().map(|&f| f != NONE).collect();
     for face in &mesh.faces {
         for i in 0..3 {
-            if face.tag[i] != 0 || face.side == NONE || face.cell != NONE {
+            if face.tag[i] != 0 || !face.is_free() {
                 movable[face.v[NEXT[i]] as usize] = false;
                 movable[face.v[LAST[i]] as usize] = false;
             }
@@ -68,7 +68,7 @@ impl Smoother {
     /// Marks the free vertices of every face that is not good enough.
     fn find_due(&mut self, mesh: &Triangulation) {
         for (t, face) in mesh.faces.iter().enumerate() {
-            if face.side != NONE && face.cell == NONE {
+            if face.is_free() {
                 self.judge(mesh, t as u32);
             }
         }
@@ -84,20 +84,21 @@ impl Smoother {
         }
     }
 
-    /// Moves a vertex if that is better for the worst angle around it.
-    fn visit(&mut self, mesh: &mut Triangulation, v: u32) {
-        self.due[v as usize] = false;
+    /// Moves a vertex if that is better for the worst angle around it; whether it was.
+    fn visit(&mut self, mesh: &mut Triangulation, v: u32) -> bool {
         self.ring.fill(mesh, v);
         let here = mesh.point(v);
         let before = self.ring.worst(here);
         if before > GOOD_ENOUGH {
-            return;
+            return false;
         }
         let Some(better) = self.ring.better(here, before) else {
-            return;
+            return false;
         };
         mesh.points[v as usize] = better;
         self.faces.extend(&self.ring.faces);
+        self.flip(mesh);
+        true
     }
 
     /// Flips the edges of the faces that have changed, and of those that change by it, until all are Delaunay; then judges them.
@@ -108,7 +109,7 @@ impl Smoother {
             for i in 0..3 {
                 let face = &mesh.faces[t as usize];
                 let n = face.n[i];
-                if face.side == NONE || face.cell != NONE || face.tag[i] != 0 || n == NONE {
+                if !face.is_free() || face.tag[i] != 0 || n == NONE {
                     continue;
                 }
                 let w = mesh.faces[(n >> 2) as usize].v[(n & 3) as usize];
@@ -120,9 +121,10 @@ impl Smoother {
                 }
             }
         }
-        for t in std::mem::take(&mut self.faces) {
-            self.judge(mesh, t);
+        for k in 0..self.faces.len() {
+            self.judge(mesh, self.faces[k]);
         }
+        self.faces.clear();
     }
 }
 

@@ -2,25 +2,74 @@
 //! vertex `i`; a link is `4 * face + edge`. Source: C. L. Lawson, "Software for C1 surface interpolation", 1977 (insertion with
 //! flips); S. W. Sloan, "A fast algorithm for generating constrained Delaunay triangulations", 1993 (constraints by flips).
 
-use crate::ids::Point;
+use crate::ids::{Point, distance_squared};
 use crate::order::{along_curve, bounds};
-use crate::predicates::{in_circle, orient};
+use crate::predicates::{circumcircle, in_circle, orient};
 
 pub(crate) const NONE: u32 = u32::MAX;
+/// Relative difference of squared distances below which a known circle does not settle whether a point is inside.
+const CLOSE_CALL: f64 = 1e-7;
 pub(crate) const NEXT: [usize; 3] = [1, 2, 0];
 pub(crate) const LAST: [usize; 3] = [2, 0, 1];
 
+/// Set in the side of a face that is part of a strip.
+const STRIP: u32 = 1 << 31;
+
+/// The circle through the corners of a face.
 #[derive(Debug, Clone, Copy)]
+pub(crate) struct Circle {
+    pub(crate) centre: Point,
+    /// Square of the radius; not a number where the circle is not known.
+    pub(crate) radius_squared: f64,
+}
+
+impl Circle {
+    const UNKNOWN: Self = Self { centre: [0.0; 2], radius_squared: f64::NAN };
+
+    pub(crate) fn through(a: Point, b: Point, c: Point) -> Self {
+        let (centre, radius_squared) = circumcircle(a, b, c);
+        Self { centre, radius_squared }
+    }
+
+    pub(crate) fn is_known(&self) -> bool {
+        !self.radius_squared.is_nan()
+    }
+}
+
+/// One cache line.
+#[derive(Debug, Clone, Copy)]
+#[repr(align(64))]
 pub(crate) struct Face {
     pub(crate) v: [u32; 3],
     /// Links to the neighbours.
     pub(crate) n: [u32; 3],
     /// Constraint along each edge: 0 for none, else 1 + its index.
     pub(crate) tag: [u32; 3],
-    /// What it belongs to: see [`crate::drawing`].
+    /// What it belongs to (see [`crate::drawing`]), with a mark on faces of strips; `NONE` outside the domain.
     pub(crate) side: u32,
-    /// Strip cell it is part of, or `NONE`.
-    pub(crate) cell: u32,
+    /// Kept up to date by the refinement alone.
+    pub(crate) circle: Circle,
+}
+
+impl Face {
+    /// The same face with other corners, neighbours still to be linked.
+    fn with(self, v: [u32; 3], tag: [u32; 3]) -> Self {
+        Self { v, n: [NONE; 3], tag, circle: Circle::UNKNOWN, ..self }
+    }
+
+    /// Inside the domain and not part of a strip.
+    pub(crate) fn is_free(&self) -> bool {
+        self.side & STRIP == 0
+    }
+
+    /// What it belongs to; none outside the domain.
+    pub(crate) fn side(&self) -> Option<u32> {
+        (self.side != NONE).then_some(self.side & !STRIP)
+    }
+
+    pub(crate) fn set_side(&mut self, side: Option<u32>) {
+        self.side = side.unwrap_or(NONE);
+    }
 }
 
 /// Where a point lies.
@@ -37,6 +86,8 @@ pub(crate) enum Place {
 pub(crate) struct Triangulation {
     pub(crate) points: Vec<Point>,
     pub(crate) faces: Vec<Face>,
+    /// Strip cell of every face; faces made later are part of none.
+    cells: Vec<u32>,
     /// One face of every vertex.
     pub(crate) face_at: Vec<u32>,
     /// Faces made or changed since this list was last emptied.
@@ -75,11 +126,50 @@ impl Triangulation {
             [m[0] + reach, m[1] + reach],
             [m[0] - reach, m[1] + reach],
         ]);
-        let face = |v, n| Face { v, n, tag: [0; 3], side: NONE, cell: NONE };
+        let face = |v, n| Face { v, n, tag: [0; 3], side: NONE, circle: Circle::UNKNOWN };
         let faces = vec![face([b, b + 1, b + 2], [NONE, 6, NONE]), face([b, b + 2, b + 3], [NONE, NONE, 1])];
         let mut face_at = vec![NONE; points.len()];
         face_at[b as usize..].copy_from_slice(&[0, 0, 0, 1]);
-        Self { points, faces, face_at, fresh: Vec::new(), last: 0, stack: Vec::new() }
+        Self { points, faces, cells: Vec::new(), face_at, fresh: Vec::new(), last: 0, stack: Vec::new() }
+    }
+
+    /// Names the strip cell of every face.
+    pub(crate) fn set_cells(&mut self, cells: Vec<u32>) {
+        for (face, _) in self.faces.iter_mut().zip(&cells).filter(|(_, cell)| **cell != NONE) {
+            face.side |= STRIP;
+        }
+        self.cells = cells;
+    }
+
+    /// Strip cell a face is part of.
+    pub(crate) fn cell(&self, face: u32) -> Option<u32> {
+        self.cells.get(face as usize).copied().filter(|&cell| cell != NONE)
+    }
+
+    /// Finds the circles of the fresh faces that may be refined and whose circle is not known.
+    pub(crate) fn find_circles(&mut self) {
+        for k in 0..self.fresh.len() {
+            let t = self.fresh[k];
+            let face = &self.faces[t as usize];
+            if face.is_free() && !face.circle.is_known() {
+                let [a, b, c] = self.corners(t);
+                self.faces[t as usize].circle = Circle::through(a, b, c);
+            }
+        }
+    }
+
+    /// Whether a point lies in the circle of a face; the circle that is known settles all but close calls.
+    pub(crate) fn is_in_circle(&self, face: u32, p: Point) -> bool {
+        let circle = &self.faces[face as usize].circle;
+        let square = distance_squared(p, circle.centre);
+        if square < circle.radius_squared * (1.0 - CLOSE_CALL) {
+            return true;
+        }
+        if square > circle.radius_squared * (1.0 + CLOSE_CALL) {
+            return false;
+        }
+        let [a, b, c] = self.corners(face);
+        in_circle(a, b, c, p) > 0.0
     }
 
     pub(crate) fn point(&self, v: u32) -> Point {
@@ -153,7 +243,7 @@ impl Triangulation {
         let old = self.faces[face as usize];
         let a = self.faces.len() as u32;
         let b = a + 1;
-        let make = |v: [u32; 3], tag: u32| Face { v, n: [NONE; 3], tag: [tag, 0, 0], ..old };
+        let make = |v: [u32; 3], tag: u32| old.with(v, [tag, 0, 0]);
         self.faces[face as usize] = make([p, old.v[1], old.v[2]], old.tag[0]);
         self.faces.push(make([p, old.v[2], old.v[0]], old.tag[1]));
         self.faces.push(make([p, old.v[0], old.v[1]], old.tag[2]));
@@ -178,8 +268,8 @@ impl Triangulation {
         let tag = old.tag[i];
         let (v, a, b) = (old.v[i], old.v[NEXT[i]], old.v[LAST[i]]);
         let t2 = self.faces.len() as u32;
-        self.faces[t as usize] = Face { v: [p, b, v], n: [NONE; 3], tag: [old.tag[NEXT[i]], 0, tag], ..old };
-        self.faces.push(Face { v: [p, v, a], n: [NONE; 3], tag: [old.tag[LAST[i]], tag, 0], ..old });
+        self.faces[t as usize] = old.with([p, b, v], [old.tag[NEXT[i]], 0, tag]);
+        self.faces.push(old.with([p, v, a], [old.tag[LAST[i]], tag, 0]));
         self.link(t, 0, old.n[NEXT[i]]);
         self.link(t2, 0, old.n[LAST[i]]);
         self.link(t, 1, 4 * t2 + 2);
@@ -192,8 +282,8 @@ impl Triangulation {
             let old = self.faces[u as usize];
             let w = old.v[j];
             let u2 = self.faces.len() as u32;
-            self.faces[u as usize] = Face { v: [p, a, w], n: [NONE; 3], tag: [old.tag[NEXT[j]], 0, tag], ..old };
-            self.faces.push(Face { v: [p, w, b], n: [NONE; 3], tag: [old.tag[LAST[j]], tag, 0], ..old });
+            self.faces[u as usize] = old.with([p, a, w], [old.tag[NEXT[j]], 0, tag]);
+            self.faces.push(old.with([p, w, b], [old.tag[LAST[j]], tag, 0]));
             self.link(u, 0, old.n[NEXT[j]]);
             self.link(u2, 0, old.n[LAST[j]]);
             self.link(u, 1, 4 * u2 + 2);
@@ -233,8 +323,8 @@ impl Triangulation {
         let (p, a, b, w) = (one.v[i], one.v[NEXT[i]], one.v[LAST[i]], two.v[j]);
         let (bp, pa) = (NEXT[i], LAST[i]);
         let (aw, wb) = (NEXT[j], LAST[j]);
-        self.faces[t as usize] = Face { v: [p, a, w], n: [NONE; 3], tag: [two.tag[aw], 0, one.tag[pa]], ..one };
-        self.faces[u as usize] = Face { v: [p, w, b], n: [NONE; 3], tag: [two.tag[wb], one.tag[bp], 0], ..two };
+        self.faces[t as usize] = one.with([p, a, w], [two.tag[aw], 0, one.tag[pa]]);
+        self.faces[u as usize] = two.with([p, w, b], [two.tag[wb], one.tag[bp], 0]);
         self.link(t, 0, two.n[aw]);
         self.link(t, 2, one.n[pa]);
         self.link(u, 0, two.n[wb]);
