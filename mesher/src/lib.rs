@@ -14,6 +14,7 @@ mod error;
 mod facing;
 mod ids;
 mod intersect;
+mod lattice;
 mod layers;
 mod merges;
 mod mesh;

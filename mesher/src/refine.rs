@@ -4,7 +4,9 @@
 
 use crate::cavity::Cavity;
 use crate::error::MeshError;
+use crate::facing::NARROW;
 use crate::ids::{Point, along, between, distance, distance_squared, dot, sub};
+use crate::lattice::lay;
 use crate::mesh::straight_area;
 use crate::plan::Tag;
 use crate::predicates::orient;
@@ -60,11 +62,11 @@ pub(crate) fn refine(
     nodes: usize,
     budget: &Budget,
 ) -> Result<(), MeshError> {
-    let wanted = wanted(mesh, sizes.field);
-    let on = marks(mesh, nodes);
+    let (wanted, on) = (wanted(mesh, sizes.field), marks(mesh, nodes));
     let mut refiner =
         Refiner { mesh, sizes, tags, wanted, on, queue: Vec::new(), cavity: Cavity::default(), encroached: Vec::new() };
     refiner.reserve(budget.max_triangles);
+    refiner.lay_lattice(budget.max_triangles);
     refiner.mesh.fresh = (0..refiner.mesh.faces.len() as u32).collect();
     refiner.queue_fresh();
     let mut steps = 0u32;
@@ -107,7 +109,9 @@ fn marks(mesh: &Triangulation, nodes: usize) -> Vec<u32> {
         for i in 0..3 {
             if face.tag[i] != 0 {
                 for v in [face.v[NEXT[i]], face.v[LAST[i]]] {
-                    on[v as usize] = face.tag[i];
+                    // Stretches of the drawing have lower tags than edges of strips.
+                    let known = &mut on[v as usize];
+                    *known = if *known == 0 { face.tag[i] } else { face.tag[i].min(*known) };
                 }
             }
         }
@@ -128,6 +132,14 @@ impl Refiner<'_> {
         self.mesh.face_at.reserve(count / 2);
         self.wanted.reserve(count / 2);
         self.on.reserve(count / 2);
+    }
+
+    /// Lays a lattice where the size is even.
+    fn lay_lattice(&mut self, most: usize) {
+        self.mesh.fresh = (0..self.mesh.faces.len() as u32).collect();
+        self.mesh.find_circles();
+        self.wanted.extend(lay(self.mesh, self.sizes.field, self.sizes.caps, most / 2 + 1));
+        self.on.resize(self.wanted.len(), 0);
     }
 
     fn queue_fresh(&mut self) {
@@ -186,13 +198,22 @@ impl Refiner<'_> {
         if on_x == 0 || on_y == 0 {
             return false;
         }
-        if shortest < FLOOR * size {
+        if shortest < FLOOR * size || (shortest < NARROW * size && self.bridges(f.tag[i], x, y)) {
             return true;
         }
         f.tag[i] == 0 && on_x != on_y && on_x != NODE && on_y != NODE && {
             let ends = |tag: u32| self.tags[tag as usize - 1].ends;
             matches!((ends(on_x), ends(on_y)), (Some(p), Some(q)) if p.iter().any(|e| q.contains(e)))
         }
+    }
+
+    /// Whether an edge joins two stretches that have no node in common.
+    fn bridges(&self, tag: u32, x: u32, y: u32) -> bool {
+        let ends = |v: u32| match self.on[v as usize] {
+            NODE => Some([v; 2]),
+            on => self.tags[on as usize - 1].ends,
+        };
+        tag == 0 && matches!((ends(x), ends(y)), (Some(p), Some(q)) if p.iter().all(|end| !q.contains(end)))
     }
 
     /// The circumcentre, or a point nearer to the shortest edge that makes a good triangle with it.

@@ -38,7 +38,12 @@ impl SizeField {
 
     /// Size at a point that is known to be at most `bound`; a close bound makes it faster.
     pub(crate) fn at_most(&self, p: Point, bound: f64) -> f64 {
-        self.tree.least(p, self.gradation, bound.min(self.largest), |i| {
+        self.without_cap(p, bound.min(self.largest))
+    }
+
+    /// What the sources ask for at a point, if under `limit`.
+    pub(crate) fn without_cap(&self, p: Point, limit: f64) -> f64 {
+        self.tree.least(p, self.gradation, limit, |i| {
             let source = &self.sources[i as usize];
             source.size + self.gradation * distance_to_segment(p, source.ends)
         })

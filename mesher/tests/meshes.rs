@@ -3,7 +3,7 @@
 
 mod common;
 
-use common::{coil, mesh};
+use common::{coil, mesh, region};
 use mesher::{Drawing, Layers, Limits, MeshError, NO_TRIANGLE, Outline, triangulate};
 
 fn half_disc() -> Outline {
@@ -108,4 +108,30 @@ fn sizes_out_of_range_are_refused_by_name() {
         with(&|d| d.regions[0].layers = Some(Layers { first: 1e-4, growth: 1.5, count: 0 }))
             .contains("number of layers")
     );
+}
+
+#[test]
+fn vertices_face_each_other_across_a_narrow_gap() {
+    for (gap, layers) in [(1e-4, None), (1e-5, None), (1e-6, None), (1e-5, common::strip(0.0005))] {
+        let inner = region(common::BILLET, common::rectangle([0.0, -0.05], [0.02, 0.05]), 0.006, 0.004, layers);
+        let outer = common::rectangle([0.02 + gap, -0.06], [0.03, 0.06]);
+        let section =
+            common::drawing(half_disc(), 0.05, vec![inner, region(common::LINER, outer, 0.006, 0.004, layers)]);
+        let mesh = mesh(&section);
+        let across = |p: [f64; 2]| p[0] > 0.02 - 1e-9 && p[0] < 0.02 + gap + 1e-9 && p[1].abs() < 0.0499;
+        let cells: Vec<usize> =
+            (0..mesh.triangles().len()).filter(|&t| mesh.corners(t).into_iter().all(across)).collect();
+        let largest = cells.iter().map(|&t| largest_angle_deg(mesh.corners(t))).fold(0.0, f64::max);
+        assert!(largest < 95.0, "gap {gap} m: {largest} degrees");
+        assert!((40..2500).contains(&cells.len()), "gap {gap} m: {} triangles in it", cells.len());
+    }
+}
+
+fn largest_angle_deg(corners: [[f64; 2]; 3]) -> f64 {
+    let at = |i: usize| {
+        let [p, q, r] = [0, 1, 2].map(|k| corners[(i + k) % 3]);
+        let (u, v) = ([q[0] - p[0], q[1] - p[1]], [r[0] - p[0], r[1] - p[1]]);
+        (u[0] * v[1] - u[1] * v[0]).atan2(u[0] * v[0] + u[1] * v[1]).to_degrees()
+    };
+    at(0).max(at(1)).max(at(2))
 }

@@ -143,9 +143,10 @@ fn the_edges_of_the_quality_report_are_those_of_the_mesh() {
     let (low, high) =
         (lengths.iter().copied().fold(f64::INFINITY, f64::min), lengths.iter().copied().fold(0.0, f64::max));
     assert!((quality.shortest_edge_m / low - 1.0).abs() < 1e-12 && (quality.longest_edge_m / high - 1.0).abs() < 1e-12);
-    // A bare billet: the corner cells of its strip are as wide as the first layer is thick, a third of the skin depth of 0.5 mm.
-    let bare = mesh_of_billet().quality();
-    assert!((bare.shortest_edge_m * 3.0 / 0.0005 - 1.0).abs() < 1e-9, "{bare:?}");
+    // A bare billet: the corner cells of its strip are as wide as the first layer is thick, a third of the skin depth of 0.5 mm;
+    // free triangles outside that corner may have edges a little shorter.
+    let shortest = mesh_of_billet().quality().shortest_edge_m * 3.0 / 0.0005;
+    assert!((0.9..1.0 + 1e-9).contains(&shortest), "{shortest}");
 }
 
 #[test]
