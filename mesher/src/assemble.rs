@@ -27,6 +27,7 @@ pub(crate) fn finish(
         regions: Vec::new(),
         strip: Vec::new(),
         triangle_edges: Vec::new(),
+        reference: Vec::new(),
         edges: Vec::new(),
         bends: Vec::new(),
         curves: Vec::new(),
@@ -49,6 +50,7 @@ pub(crate) fn finish(
     }
     let curve_of = curves(graph, plan, &mut mesh);
     add_edges(plan, faces, &triangle_of, &curve_of, &mut mesh);
+    mesh.reference = mesh.longest_edges();
     let tips: Vec<u32> = graph.cusps(CUSP).into_iter().map(|v| vertex_of[v as usize]).collect();
     straighten(drawing, Some(&tips), &mut mesh);
     mesh
