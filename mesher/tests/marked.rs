@@ -10,7 +10,7 @@ use common::{
     BILLET, BORE, assert_area, assert_nodes_on_arcs, assert_outline_present, coil, drawing, mesh, rectangle, region,
     strip,
 };
-use mesher::{Drawing, Limits, Mesh, MeshDefect, MeshError, Outline, Point, RegionId, triangulate};
+use mesher::{Drawing, Layers, Limits, Mesh, MeshDefect, MeshError, Outline, Point, RegionId, triangulate};
 use proptest::prelude::*;
 use proptest::test_runner::RngSeed;
 use std::f64::consts::PI;
@@ -316,6 +316,22 @@ fn thin_layers_on_a_sphere_neither_fold_nor_leave_their_rings() {
                 "delta {delta}: radius {radius} m is {part} eighths of a layer"
             );
         }
+    }
+}
+
+#[test]
+fn steps_at_the_end_of_a_strip_on_an_arc_do_not_fold() {
+    // A disc cut by the axis off its centre; its strip goes down in steps there, flatter than the arc below them stands off its chord.
+    let disc = Outline::circle([0.01, 0.07], 0.02).unwrap();
+    let layers = Layers { first: 0.0005, growth: 1.5, count: 5 };
+    let first = mesh(&drawing(half_disc(), 0.05, vec![region(BILLET, disc, 0.023, 0.0115, Some(layers))]));
+    let area = 0.02 * 0.02 * (2.0 * PI / 3.0 + 0.25 * 3f64.sqrt());
+    for seed in 1..12 {
+        let (mut mesh, mut dice) = (first.clone(), Dice(seed));
+        for _ in 0..3 {
+            mesh = refined(&mesh, &dice.marks(&mesh, 0.08));
+        }
+        assert_area(&mesh, BILLET, area);
     }
 }
 
