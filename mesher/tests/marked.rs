@@ -397,7 +397,7 @@ fn a_corner_refined_down_to_rounding_is_refused_in_words() {
 
 proptest! {
     #![proptest_config(ProptestConfig {
-        cases: 150,
+        cases: 80,
         failure_persistence: None,
         rng_seed: RngSeed::Fixed(1), ..ProptestConfig::default() })]
 
@@ -405,7 +405,7 @@ proptest! {
     fn any_marks_on_a_random_section_leave_a_mesh_that_fills_the_domain(
         drawing in section(), seed in 1u64.., share in prop_oneof![Just(0.02), Just(0.2), Just(1.0)],
     ) {
-        let limits = Limits { max_triangles: 100_000 };
+        let limits = Limits { max_triangles: 40_000 };
         let first = triangulate(&drawing, &limits, &|| false);
         prop_assume!(first.is_ok());
         let (mut mesh, mut dice) = (first.unwrap(), Dice(seed));
