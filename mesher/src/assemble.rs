@@ -28,6 +28,7 @@ pub(crate) fn finish(
         regions: Vec::with_capacity(count),
         strip: Vec::with_capacity(count),
         triangle_edges: Vec::with_capacity(count),
+        reference: Vec::with_capacity(count),
         edges: Vec::with_capacity(faces.points.len() + count),
         bends: Vec::with_capacity(faces.points.len() + count),
         curves: Vec::new(),
@@ -51,6 +52,7 @@ pub(crate) fn finish(
     }
     let curve_of = curves(graph, plan, &mut mesh);
     add_edges(plan, faces, &triangle_of, &curve_of, &mut mesh);
+    mesh.reference = mesh.longest_edges();
     let tips: Vec<u32> = graph.cusps(CUSP).into_iter().map(|v| vertex_of[v as usize]).collect();
     straighten(drawing, Some(&tips), &mut mesh);
     mesh

@@ -145,6 +145,27 @@ pub enum MeshError {
     /// The finished mesh did not pass its own check.
     #[error("the mesh is defective: {0}; enlarge the narrowest gap or the smallest angle of the drawing")]
     Defective(#[from] MeshDefect),
+    /// The marks are not one a triangle.
+    #[error("{marks} marks were given for {triangles} triangles; give one mark for each triangle of this mesh")]
+    WrongMarks {
+        /// How many marks there are.
+        marks: usize,
+        /// How many triangles there are.
+        triangles: usize,
+    },
+    /// Refining the marked triangles would pass the triangle budget.
+    #[error(
+        "refining the marked triangles makes {needed} triangles, more than the {limit} allowed; mark fewer, or allow more"
+    )]
+    RefinedTooFar {
+        /// How many triangles there would be.
+        needed: usize,
+        /// The budget.
+        limit: usize,
+    },
+    /// The refined mesh did not pass its check.
+    #[error("the marked triangles cannot be refined: {0}; leave them unmarked there")]
+    Unrefinable(#[source] MeshDefect),
 }
 
 /// What is wrong with a mesh.

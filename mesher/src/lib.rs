@@ -1,7 +1,7 @@
 //! Outlines to triangles: sized, layered, curved meshes of meridian sections. Convention: points `[r, z]` in metres; the crate knows no
 //! physics: regions are identities, sizes are lengths. The way from a drawing to a mesh: outlines are noded into a plane graph, strips
 //! of thin layers are laid along the surfaces that ask for them, everything is triangulated under constraints, refined to a size field,
-//! smoothed and checked.
+//! smoothed and checked. A finished mesh can be refined where it is marked ([`Mesh::refined`]).
 
 mod assemble;
 mod build;
@@ -16,6 +16,7 @@ mod ids;
 mod intersect;
 mod lattice;
 mod layers;
+mod marked;
 mod merges;
 mod mesh;
 mod nodes;

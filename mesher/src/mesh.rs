@@ -99,6 +99,8 @@ pub struct Mesh {
     pub(crate) regions: Vec<RegionId>,
     pub(crate) strip: Vec<bool>,
     pub(crate) triangle_edges: Vec<[u32; 3]>,
+    /// Local edge of every triangle that is halved first when it is refined.
+    pub(crate) reference: Vec<u8>,
     pub(crate) edges: Vec<Edge>,
     pub(crate) bends: Vec<Bend>,
     pub(crate) curves: Vec<Curve>,

@@ -53,8 +53,14 @@ impl Mesh {
 
     /// Point of an edge at parameter `t` from its first vertex, on its true curve.
     pub(crate) fn edge_point(&self, edge: usize, t: f64) -> Point {
-        let [a, b] = self.edges[edge].vertices.map(|v| self.vertices[v as usize]);
-        let (centre, radius) = match self.bends[edge] {
+        self.bends[edge].point(self.edges[edge].vertices.map(|v| self.vertices[v as usize]), t)
+    }
+}
+
+impl Bend {
+    /// Point at parameter `t` from the first of two ends.
+    pub(crate) fn point(self, [a, b]: [Point; 2], t: f64) -> Point {
+        let (centre, radius) = match self {
             Bend::Straight => return between(a, b, t),
             Bend::Arc(centre, radius) => (centre, Some(radius)),
             Bend::Polar(centre) => (centre, None),

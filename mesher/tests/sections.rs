@@ -4,8 +4,11 @@
 
 mod common;
 
-use common::{AIR, BILLET, BORE, LINER, assert_area, coil, drawing, mesh, rectangle, region, strip};
-use mesher::{Drawing, Mesh, NO_TRIANGLE, NoteReason, Outline, RegionId, Shape};
+use common::{
+    AIR, BILLET, BORE, LINER, assert_area, assert_nodes_on_arcs, assert_outline_present, coil, drawing, mesh,
+    rectangle, region, strip,
+};
+use mesher::{Mesh, NO_TRIANGLE, NoteReason, Outline, RegionId, Shape};
 use std::f64::consts::PI;
 
 fn half_disc() -> Outline {
@@ -14,52 +17,6 @@ fn half_disc() -> Outline {
 
 fn strip_triangles_of(mesh: &Mesh, id: RegionId) -> usize {
     (0..mesh.triangles().len()).filter(|&t| mesh.strip_triangles()[t] && mesh.regions()[t] == id).count()
-}
-
-/// Every node of every edge that lies on an arc is on its circle to 1e-12 of the domain's size.
-fn assert_nodes_on_arcs(mesh: &Mesh, extent: f64) -> usize {
-    let mut arcs = 0;
-    for order in [1, 2, 3] {
-        let nodes = mesh.nodes(order);
-        let per_edge = order - 1;
-        for (e, edge) in mesh.edges().iter().enumerate() {
-            let Some(Shape::Arc { centre, radius }) = edge.curve.map(|c| mesh.curve(c).shape) else {
-                continue;
-            };
-            arcs += 1;
-            let inner = (0..per_edge).map(|k| nodes.vertex_count + e * per_edge + k);
-            for i in edge.vertices.iter().map(|&v| v as usize).chain(inner) {
-                let p = nodes.points[i];
-                let off = ((p[0] - centre[0]).hypot(p[1] - centre[1]) - radius).abs();
-                assert!(off < 1e-12 * extent, "node {i} is {off:e} m off its circle of radius {radius} m");
-            }
-        }
-    }
-    arcs
-}
-
-/// The edges along a region's outline add up to its length.
-fn assert_outline_present(mesh: &Mesh, drawing: &Drawing, index: usize, wanted: f64) {
-    let mut length = 0.0;
-    for edge in mesh.edges() {
-        let Some(curve) = edge.curve.map(|c| mesh.curve(c)) else {
-            continue;
-        };
-        if curve.on_regions.iter().any(|on| on.0 == index) {
-            let [a, b] = edge.vertices.map(|v| mesh.vertices()[v as usize]);
-            let chord = (a[0] - b[0]).hypot(a[1] - b[1]);
-            length += match curve.shape {
-                Shape::Line => chord,
-                Shape::Arc { radius, .. } => 2.0 * radius * (0.5 * chord / radius).asin(),
-            };
-        }
-    }
-    let error = (length - wanted).abs() / wanted;
-    assert!(
-        error < 1e-12,
-        "edges of region {index} of {} are {length} m long, wanted {wanted} m",
-        drawing.regions.len()
-    );
 }
 
 #[test]
