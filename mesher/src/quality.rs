@@ -1,5 +1,5 @@
-//! How good the triangles are. Convention: angles in degrees, of straight-sided triangles; Jacobians of the quadratic map over the
-//! straight-sided one.
+//! How good the triangles are. Convention: angles in degrees, of straight-sided triangles; Jacobians of the quadratic and
+//! cubic maps over the straight-sided one.
 
 use crate::ids::{Point, cross, distance_squared, sub};
 use crate::mesh::Mesh;
@@ -19,7 +19,7 @@ pub struct Quality {
     pub share_below_30: f64,
     /// Share of triangles whose smallest angle is below 40 degrees.
     pub share_below_40: f64,
-    /// Smallest Jacobian of the quadratic map over that of the straight-sided triangle, strips included.
+    /// Smallest Jacobian of the quadratic and cubic maps over that of the straight-sided triangle, strips included.
     pub min_scaled_jacobian: f64,
 }
 

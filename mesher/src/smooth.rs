@@ -22,6 +22,7 @@ pub(crate) fn smooth(mesh: &mut Triangulation, passes: usize) {
             }
         }
     }
+    while flip_all(mesh) {}
 }
 
 fn movable(mesh: &Triangulation) -> Vec<bool> {
