@@ -5,9 +5,9 @@ use crate::ids::{NO_TRIANGLE, Point, between, cross, sub};
 use crate::mesh::{Bend, Mesh, straight_area};
 use crate::predicates::orient;
 
-/// Barycentric points at which the Jacobian of the quadratic map must be positive: vertices, edge middles, the six points of a
-/// quadrature of degree 4 (D. A. Dunavant, 1985) and the centroid.
-const SAMPLES: [[f64; 3]; 13] = {
+/// Barycentric points at which the Jacobians of the quadratic and of the cubic map must be positive: vertices, middles and quarters of the
+/// edges, the six points of a quadrature of degree 4 (D. A. Dunavant, 1985) and the centroid.
+const SAMPLES: [[f64; 3]; 19] = {
     const A: f64 = 0.445_948_490_915_965;
     const B: f64 = 0.091_576_213_509_771;
     const T: f64 = 1.0 / 3.0;
@@ -18,6 +18,12 @@ const SAMPLES: [[f64; 3]; 13] = {
         [0.5, 0.5, 0.0],
         [0.0, 0.5, 0.5],
         [0.5, 0.0, 0.5],
+        [0.75, 0.25, 0.0],
+        [0.25, 0.75, 0.0],
+        [0.0, 0.75, 0.25],
+        [0.0, 0.25, 0.75],
+        [0.25, 0.0, 0.75],
+        [0.75, 0.0, 0.25],
         [A, A, 1.0 - 2.0 * A],
         [A, 1.0 - 2.0 * A, A],
         [1.0 - 2.0 * A, A, A],
@@ -28,7 +34,7 @@ const SAMPLES: [[f64; 3]; 13] = {
     ]
 };
 
-/// Least Jacobian of a quadratic map over that of the straight-sided triangle.
+/// Least Jacobian of a curved map over that of the straight-sided triangle.
 pub(crate) const LEAST_RATIO: f64 = 0.02;
 
 impl Mesh {
@@ -123,30 +129,69 @@ impl Mesh {
         triangles
     }
 
-    /// Least Jacobian of the quadratic map of a triangle over that of the straight-sided one; 1 for straight sides.
+    /// Least Jacobian of the quadratic and of the cubic map of a triangle over that of the straight-sided one; 1 for straight sides.
     pub(crate) fn least_jacobian(&self, triangle: usize) -> f64 {
-        let edges = self.triangle_edges[triangle];
-        if edges.iter().all(|&e| matches!(self.bends[e as usize], Bend::Straight)) {
+        let edges = self.triangle_edges[triangle].map(|e| e as usize);
+        if edges.iter().all(|&e| matches!(self.bends[e], Bend::Straight)) {
             return 1.0;
         }
         let corners = self.corners(triangle);
         let [a, b, c] = corners;
         let whole = cross(sub(b, a), sub(c, a));
-        let bulge = [0, 1, 2].map(|e| {
-            let middle = self.edge_point(edges[e] as usize, 0.5);
-            sub(middle, between(corners[e], corners[(e + 1) % 3], 0.5))
-        });
-        let ratio = |s: &[f64; 3]| jacobian(corners, bulge, *s) / whole;
+        // How far the point of local edge `e` at `t` from its first corner lies off the chord.
+        let bulge = |e: usize, t: f64| {
+            let straight = between(corners[e], corners[NEXT[e]], t);
+            let ahead = self.edges[edges[e]].vertices[0] == self.triangles[triangle][e];
+            sub(self.edge_point(edges[e], if ahead { t } else { 1.0 - t }), straight)
+        };
+        let middle = [0, 1, 2].map(|e| bulge(e, 0.5));
+        let thirds = [0, 1, 2].map(|e| [bulge(e, THIRD), bulge(e, 2.0 * THIRD)]);
+        let ratio = |l: &[f64; 3]| {
+            let quadratic = jacobian(corners, &quadratic(middle, *l));
+            let cubic = jacobian(corners, &cubic(thirds, *l));
+            quadratic.min(cubic) / whole
+        };
         SAMPLES.iter().map(ratio).fold(f64::INFINITY, f64::min)
     }
 }
 
-/// Jacobian determinant of `x = sum L_i x_i + 4 sum L_e L_(e+1) bulge_e` with respect to `(L_1, L_2)`.
-fn jacobian([a, b, c]: [Point; 3], bulge: [Point; 3], l: [f64; 3]) -> f64 {
-    // Derivatives of the three edge bubbles L0 L1, L1 L2, L2 L0 with L0 = 1 - L1 - L2.
-    let by_one = [l[0] - l[1], l[2], -l[2]];
-    let by_two = [-l[1], l[1], l[0] - l[2]];
-    let column =
-        |side: Point, by: [f64; 3]| [0, 1].map(|k| side[k] + 4.0 * (0..3).map(|e| by[e] * bulge[e][k]).sum::<f64>());
-    cross(column(sub(b, a), by_one), column(sub(c, a), by_two))
+const THIRD: f64 = 1.0 / 3.0;
+const NEXT: [usize; 3] = [1, 2, 0];
+
+/// Derivatives of the displacement of a map from the straight-sided one with respect to the three barycentric coordinates.
+type Slopes = [Point; 3];
+
+/// Displacement `sum 4 L_a L_b bulge` over the edges.
+fn quadratic(bulge: [Point; 3], l: [f64; 3]) -> Slopes {
+    let mut slopes = [[0.0; 2]; 3];
+    for (a, b) in [(0, 1), (1, 2), (2, 0)] {
+        for k in 0..2 {
+            slopes[a][k] += 4.0 * l[b] * bulge[a][k];
+            slopes[b][k] += 4.0 * l[a] * bulge[a][k];
+        }
+    }
+    slopes
+}
+
+/// Displacement `sum 9/2 L_a L_b ((3 L_a - 1) bulge_1 + (3 L_b - 1) bulge_2)` over the edges, and `27/4 L_0 L_1 L_2` times all bulges.
+fn cubic(bulges: [[Point; 2]; 3], l: [f64; 3]) -> Slopes {
+    let all = [0, 1].map(|k| bulges.iter().flatten().map(|b| b[k]).sum::<f64>());
+    let mut slopes = [0, 1, 2].map(|i| {
+        let others = 6.75 * l[NEXT[i]] * l[NEXT[NEXT[i]]];
+        [others * all[0], others * all[1]]
+    });
+    for (a, b) in [(0, 1), (1, 2), (2, 0)] {
+        let [one, two] = bulges[a];
+        for k in 0..2 {
+            slopes[a][k] += 4.5 * l[b] * ((6.0 * l[a] - 1.0) * one[k] + (3.0 * l[b] - 1.0) * two[k]);
+            slopes[b][k] += 4.5 * l[a] * ((3.0 * l[a] - 1.0) * one[k] + (6.0 * l[b] - 1.0) * two[k]);
+        }
+    }
+    slopes
+}
+
+/// Jacobian determinant with respect to `(L_1, L_2)`, `L_0 = 1 - L_1 - L_2`.
+fn jacobian([a, b, c]: [Point; 3], slopes: &Slopes) -> f64 {
+    let column = |side: Point, i: usize| [0, 1].map(|k| side[k] + slopes[i][k] - slopes[0][k]);
+    cross(column(sub(b, a), 1), column(sub(c, a), 2))
 }

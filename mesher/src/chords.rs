@@ -1,6 +1,7 @@
 //! Chords of arcs that get in each other's way, or in the way of other lines. Two arcs may run closer together than the height of an edge's
 //! arc over its chord; then their chords cross although they do not. Such edges are divided at matching points, each opposite an end
-//! of the other, until the chords lie as the arcs do. Convention: as in [`crate::plan`]. Source: elementary plane geometry.
+//! of the other, until the chords lie as the arcs do. Two curves between the same two nodes need a point on one of them at least.
+//! Convention: as in [`crate::plan`]. Source: elementary plane geometry.
 
 use crate::ids::{Point, distance};
 use crate::intersect::segments_meet;
@@ -57,7 +58,9 @@ fn cuts(plan: &Plan, stirred: &[bool], tolerance: f64) -> Vec<(usize, Point)> {
             let (c, d, _) = plan.edges[f];
             let apart = [a, b].iter().all(|v| *v != c && *v != d);
             let between = |v: u32| v != a && v != b && under(span, point(v), tolerance);
-            if !(apart && segments_meet(ends[e], ends[f])) && !between(c) && !between(d) {
+            let drawn = |edge: usize| plan.tags[plan.edges[edge].2 as usize - 1].ends.is_some();
+            let twins = ([a, b] == [c, d] || [a, b] == [d, c]) && drawn(e) && drawn(f);
+            if !twins && !(apart && segments_meet(ends[e], ends[f])) && !between(c) && !between(d) {
                 return false;
             }
             let before = cuts.len();

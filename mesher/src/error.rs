@@ -199,8 +199,8 @@ pub enum MeshDefect {
         /// Index of the edge.
         edge: usize,
     },
-    /// The quadratic map of a triangle is not one to one.
-    #[error("the quadratic map of triangle {triangle} at ({r}, {z}) m has a Jacobian of {ratio} of its mean", r = .at[0], z = .at[1])]
+    /// The quadratic or the cubic map of a triangle is not one to one.
+    #[error("the curved map of triangle {triangle} at ({r}, {z}) m has a Jacobian of {ratio} of its mean", r = .at[0], z = .at[1])]
     Inverted {
         /// Index of the triangle.
         triangle: usize,

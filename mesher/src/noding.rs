@@ -228,6 +228,13 @@ fn settle(sources: &[Source], cuts: &mut [Vec<Point>], nodes: &mut Nodes) {
             }
             for point in meetings(&one.1, &two.1, reach) {
                 let node = nodes.place(point);
+                if let Some(domain) =
+                    [one, two].iter().find(|p| sources[p.0].domain_piece.is_some() && !p.2.contains(&node))
+                {
+                    // The outline of the domain stays where it is.
+                    let span = &sources[domain.0].span;
+                    nodes.points[node as usize] = span.at(span.project(nodes.points[node as usize]));
+                }
                 for (source, _, ends) in [one, two] {
                     if !ends.contains(&node) {
                         cuts[*source].push(nodes.points[node as usize]);

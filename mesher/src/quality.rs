@@ -1,5 +1,5 @@
-//! How good the triangles are. Convention: angles in degrees, of straight-sided triangles; Jacobians of the quadratic map over the
-//! straight-sided one.
+//! How good the triangles are. Convention: angles in degrees, of straight-sided triangles; Jacobians of the quadratic and
+//! cubic maps over the straight-sided one.
 
 use crate::ids::{Point, RegionId, cross, distance_squared, sub};
 use crate::mesh::Mesh;
@@ -34,7 +34,7 @@ pub struct Quality {
     pub shortest_edge_m: f64,
     /// Longest edge from end to end, in metres, strips included.
     pub longest_edge_m: f64,
-    /// Smallest Jacobian of the quadratic map over that of the straight-sided triangle, strips included.
+    /// Smallest Jacobian of the quadratic and cubic maps over that of the straight-sided triangle, strips included.
     pub min_scaled_jacobian: f64,
 }
 

@@ -16,6 +16,9 @@ const OF_HALF_WALL: f64 = 0.8;
 /// A column stays this far inside the steps of a corner that it is no part of.
 const CLEAR: f64 = 0.85;
 
+/// The surface about a corner, in first layers: as far as the first step of the sharpest corner at which steps are matched.
+const ABOUT_CORNER: f64 = 4.5;
+
 /// Where the top of a column is shared with another.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(super) struct Step {
@@ -62,22 +65,30 @@ pub(super) struct Height {
 }
 
 impl Chain {
-    /// What stands on every stretch of the chain.
+    /// What stands on every stretch of the chain. Surface about a corner, where strips go down in steps, is not counted as bare.
     pub(super) fn heights(&self) -> Vec<Height> {
         let mut out: Vec<Height> = Vec::new();
         for pair in &self.pairs {
             let Some(on) = pair.on else { continue };
             let stretch = self.whole.uses[on].stretch;
             let tallest = pair.columns.iter().map(|&c| self.columns[c].height).max().unwrap_or(0);
+            let bare = tallest == 0 && !self.is_at_corner(pair.columns, &self.whole.uses[on].span);
             match out.last_mut() {
                 Some(last) if last.stretch == stretch => {
                     last.tallest = last.tallest.max(tallest);
-                    last.bare |= tallest == 0;
+                    last.bare |= bare;
                 }
-                _ => out.push(Height { stretch, tallest, bare: tallest == 0 }),
+                _ => out.push(Height { stretch, tallest, bare }),
             }
         }
         out
+    }
+
+    /// Whether both columns stand within a few first layers of one end of a stretch.
+    fn is_at_corner(&self, columns: [usize; 2], span: &Span) -> bool {
+        let reach = ABOUT_CORNER * self.whole.depths[1];
+        let near = |end: Point| columns.iter().all(|&c| distance(self.columns[c].points[0], end) <= reach);
+        near(span.start) || near(span.end)
     }
 
     /// Lowers columns in the midst of a fan that would stand alone; whether there were any.

@@ -9,10 +9,15 @@ use std::f64::consts::TAU;
 const MERGED: f64 = 2e-9;
 /// Edges from a gap, a small angle or a short stretch beyond which angles are bounded.
 const AWAY: usize = 3;
+/// The same for strips, whose edges are never divided.
+const AWAY_FROM_STRIPS: usize = 1;
 /// Drawing angles under this one, in degrees, are small.
 const SMALL_DEG: f64 = 60.0;
-/// Least angle away from strips, gaps, small angles and short stretches, in degrees.
-pub(crate) const LEAST_DEG: f64 = 25.0;
+/// A gap under this share of the size asked for is narrow.
+const NARROW: f64 = 0.3;
+/// Least angle away from strips, gaps, small angles and short stretches, in degrees: of any mesh, and of nearly all.
+const LEAST_DEG: f64 = 12.0;
+pub(crate) const GOOD_DEG: f64 = 25.0;
 
 type Broken = Result<(), String>;
 
@@ -24,8 +29,10 @@ pub(crate) fn obeys(drawing: &Drawing, mesh: &Mesh) -> Broken {
     outlines(drawing, mesh)?;
     nodes_on_arcs(mesh, extent(drawing))?;
     delaunay(mesh)?;
+    curved_maps(mesh)?;
+    layers(drawing, mesh)?;
     strips_or_notes(drawing, mesh)?;
-    let (least, at) = least_angle_away(mesh);
+    let (least, at) = least_angle_away(drawing, mesh);
     if least >= LEAST_DEG {
         Ok(())
     } else {
@@ -38,7 +45,7 @@ pub(crate) fn extent(drawing: &Drawing) -> f64 {
     distance(lo, hi)
 }
 
-fn distance(a: Point, b: Point) -> f64 {
+pub(crate) fn distance(a: Point, b: Point) -> f64 {
     (a[0] - b[0]).hypot(a[1] - b[1])
 }
 
@@ -61,7 +68,7 @@ fn areas(drawing: &Drawing, mesh: &Mesh) -> Broken {
     ids.dedup();
     let covered: f64 = ids.iter().map(|&id| mesh.region_area(id)).sum();
     let whole = drawing.domain.area();
-    if (covered - whole).abs() > 1e-12 * whole + 2.0 * MERGED * extent(drawing) * drawing.domain.perimeter() * 1e-3 {
+    if (covered - whole).abs() > 1e-12 * whole {
         return Err(format!("the regions cover {covered:e} m2 of {whole:e} m2"));
     }
     for k in (0..drawing.regions.len()).filter(|&k| untouched(drawing, k)) {
@@ -91,17 +98,18 @@ fn touches(a: &Outline, b: &Outline, near: f64) -> bool {
 /// Whether a region is inside the domain and no other region with an area in common with it is painted over it or shares its identity.
 fn untouched(drawing: &Drawing, k: usize) -> bool {
     let region = &drawing.regions[k];
-    let inside = |t: f64| {
-        (0..region.outline.len()).all(|i| region.outline.point(i, t).is_some_and(|p| drawing.domain.contains(p)))
-    };
+    // Well inside, so that no arc reaches out between two points looked at.
+    let far = 1e-3 * extent(drawing);
+    let well = |p: Point| drawing.domain.contains(p) && drawing.domain.distance(p) > far;
+    let inside = |t: f64| (0..region.outline.len()).all(|i| region.outline.point(i, t).is_some_and(well));
     let alone = |(j, other): (usize, &mesher::Region)| {
         j == k || other.id != region.id && (j < k || !region.outline.overlaps(&other.outline))
     };
-    region.id != AIR && drawing.regions.iter().enumerate().all(alone) && (0..20).all(|i| inside(f64::from(i) / 20.0))
+    region.id != AIR && drawing.regions.iter().enumerate().all(alone) && (0..100).all(|i| inside(f64::from(i) / 100.0))
 }
 
 /// Parameter of the point of a piece nearest to `p`, in 0..1 in proportion to length.
-fn project(from: Point, piece: &Piece, p: Point) -> f64 {
+pub(crate) fn project(from: Point, piece: &Piece, p: Point) -> f64 {
     match *piece {
         Piece::Line { to } => {
             let d = [to[0] - from[0], to[1] - from[1]];
@@ -213,6 +221,136 @@ fn nodes_on_arcs(mesh: &Mesh, extent: f64) -> Broken {
     Ok(())
 }
 
+/// Lagrange polynomial that is 1 at `n / order` and 0 at the places before it, and its derivative.
+fn lagrange(order: usize, n: usize, l: f64) -> (f64, f64) {
+    (0..n).fold((1.0, 0.0), |(value, slope), s| {
+        let (factor, by) = ((order as f64 * l - s as f64) / (s as f64 + 1.0), order as f64 / (s as f64 + 1.0));
+        (value * factor, slope * factor + value * by)
+    })
+}
+
+/// Barycentric multi-indices of the nodes of an element, in the order of the mesh's node sets.
+fn indices(order: usize) -> Vec<[usize; 3]> {
+    let mut all = vec![[order, 0, 0], [0, order, 0], [0, 0, order]];
+    for e in 0..3 {
+        for m in 1..order {
+            let mut index = [0; 3];
+            (index[e], index[(e + 1) % 3]) = (order - m, m);
+            all.push(index);
+        }
+    }
+    if order == 3 {
+        all.push([1, 1, 1]);
+    }
+    all
+}
+
+/// Derivatives of the basis at a place with respect to the second and third barycentric coordinate, the first falling as either grows.
+fn slopes(order: usize, l: [f64; 3]) -> Vec<[f64; 2]> {
+    let slope = |index: [usize; 3]| {
+        let of = [0, 1, 2].map(|c| lagrange(order, index[c], l[c]));
+        let by = |c: usize| of[c].1 * of[(c + 1) % 3].0 * of[(c + 2) % 3].0;
+        [by(1) - by(0), by(2) - by(0)]
+    };
+    indices(order).into_iter().map(slope).collect()
+}
+
+/// Jacobian determinant of the map through an element's nodes.
+fn jacobian(nodes: &[Point], slopes: &[[f64; 2]]) -> f64 {
+    let entry = |k: usize, c: usize| nodes.iter().zip(slopes).map(|(p, s)| p[k] * s[c]).sum::<f64>();
+    entry(0, 0) * entry(1, 1) - entry(1, 0) * entry(0, 1)
+}
+
+/// The quadratic and cubic maps of all elements keep their orientation. Source of the basis: P. G. Ciarlet, "The finite element method for
+/// elliptic problems", section 2.2.
+fn curved_maps(mesh: &Mesh) -> Broken {
+    for order in [2, 3] {
+        let places: Vec<Vec<[f64; 2]>> = (0..=6)
+            .flat_map(|i| (0..=6 - i).map(move |j| [i, j, 6 - i - j].map(|n| f64::from(n) / 6.0)))
+            .map(|l| slopes(order, l))
+            .collect();
+        let set = mesh.nodes(order);
+        let per = (order + 1) * (order + 2) / 2;
+        for (t, element) in set.elements.chunks(per).enumerate() {
+            let nodes: Vec<Point> = element.iter().map(|&n| set.points[n as usize]).collect();
+            let [a, b, c] = [nodes[0], nodes[1], nodes[2]];
+            let whole = (b[0] - a[0]) * (c[1] - a[1]) - (b[1] - a[1]) * (c[0] - a[0]);
+            // In a triangle far longer than it is high, rounding decides.
+            if whole < 1e-10 * (distance(a, b) + distance(b, c)).powi(2) {
+                continue;
+            }
+            let least = places.iter().map(|s| jacobian(&nodes, s)).fold(f64::INFINITY, f64::min);
+            if least <= 0.0 {
+                return Err(format!(
+                    "the map of order {order} of triangle {t} at {a:?} turns over: {:.2e}",
+                    least / whole
+                ));
+            }
+        }
+    }
+    Ok(())
+}
+
+/// Depths of the levels of a strip as asked for, 0 first.
+fn depths(layers: &mesher::Layers) -> Vec<f64> {
+    let thickness = (0..layers.count).map(|k| layers.first * layers.growth.powi(k as i32));
+    let mut depth = 0.0;
+    std::iter::once(0.0)
+        .chain(thickness.map(|t| {
+            depth += t;
+            depth
+        }))
+        .collect()
+}
+
+/// Every strip vertex of a region on which nothing lies stands at the depth of a level below its outline; no strip below a fillet is
+/// deeper than 0.7 of its radius; layers beyond those asked for grow by 1.6 at most.
+fn layers(drawing: &Drawing, mesh: &Mesh) -> Broken {
+    for k in (0..drawing.regions.len()).filter(|&k| untouched(drawing, k) && !merged(drawing)) {
+        let region = &drawing.regions[k];
+        if let Some(layers) = &region.layers {
+            layers_below(mesh, region.id, &[&region.outline], layers, extent(drawing))?;
+        }
+    }
+    Ok(())
+}
+
+/// As [`layers`] for one region bounded by the given outlines.
+pub(crate) fn layers_below(
+    mesh: &Mesh,
+    id: mesher::RegionId,
+    outlines: &[&Outline],
+    layers: &mesher::Layers,
+    extent: f64,
+) -> Broken {
+    let rounding = 1e-12 * extent + 1e-9 * layers.first;
+    let mut found: Vec<(f64, Point)> = Vec::new();
+    for (t, triangle) in mesh.triangles().iter().enumerate() {
+        if mesh.strip_triangles()[t] && mesh.regions()[t] == id {
+            for p in triangle.map(|v| mesh.vertices()[v as usize]) {
+                let depth = outlines.iter().map(|o| o.distance(p)).fold(f64::INFINITY, f64::min);
+                found.push((depth, p));
+            }
+        }
+    }
+    found.sort_by(|a, b| a.0.total_cmp(&b.0));
+    found.dedup_by(|next, kept| next.0 - kept.0 < 2.0 * rounding);
+    for (k, (depth, p)) in found.iter().enumerate() {
+        let wanted = depths(layers);
+        if let Some(wanted) = wanted.get(k) {
+            if (depth - wanted).abs() > 4.0 * rounding {
+                return Err(format!("level {k} at {p:?} is {depth:e} m deep, wanted {wanted:e} m"));
+            }
+        } else if k >= 2 {
+            let growth = (depth - found[k - 1].0) / (found[k - 1].0 - found[k - 2].0);
+            if growth > layers.growth.max(1.6) + 1e-6 {
+                return Err(format!("level {k} at {p:?} grows by {growth}"));
+            }
+        }
+    }
+    Ok(())
+}
+
 /// No free edge has a vertex opposite to it inside the circle of the other side.
 fn delaunay(mesh: &Mesh) -> Broken {
     let coord = |v: u32| robust::Coord { x: mesh.vertices()[v as usize][0], y: mesh.vertices()[v as usize][1] };
@@ -253,45 +391,58 @@ fn delaunay(mesh: &Mesh) -> Broken {
     }
 }
 
-/// A surface that asks for a strip and has none on some edge is named in a note.
+/// A surface that asks for a strip and has none on some edge is named in a note, unless the edge is within a few first layers of a corner.
 fn strips_or_notes(drawing: &Drawing, mesh: &Mesh) -> Broken {
+    let corners = corners(mesh);
     for edge in mesh.edges().iter().filter(|e| e.triangles[1] != NO_TRIANGLE) {
         let regions = edge.triangles.map(|t| mesh.regions()[t as usize]);
         if edge.curve.is_none() || regions[0] == regions[1] {
             continue;
         }
         for (side, &id) in regions.iter().enumerate() {
-            let asks = drawing.regions.iter().any(|r| r.id == id && r.layers.is_some());
+            let asked = drawing.regions.iter().filter(|r| r.id == id).find_map(|r| r.layers);
             let bare = !mesh.strip_triangles()[edge.triangles[side] as usize];
             let says = |n: &MeshNote| n.region == id && matches!(n.reason, NoteReason::NoStrip { .. });
-            if asks && bare && !mesh.notes().iter().any(says) {
-                let at = mesh.vertices()[edge.vertices[0] as usize];
-                return Err(format!("region {} has no strip at {at:?} and no note says so", id.0));
+            let (Some(layers), true, false) = (asked, bare, mesh.notes().iter().any(says)) else {
+                continue;
+            };
+            let ends = edge.vertices.map(|v| mesh.vertices()[v as usize]);
+            let about = |corner: &Point| ends.iter().all(|p| distance(*p, *corner) < 4.6 * layers.first);
+            if !corners.iter().any(about) {
+                return Err(format!("region {} has no strip at {:?} and no note says so", id.0, ends[0]));
             }
         }
     }
     Ok(())
 }
 
-/// Smallest angle of the triangles that touch no strip and none of whose vertices is within [`AWAY`] edges of a gap, a small angle or a short
-/// stretch, in degrees; and where it is. Constraints are the curves and the inner ends of strips. A gap is where a free edge joins two
-/// of them and is shorter than a constraint it starts from; a short stretch is a constraint under half its neighbour.
-pub(crate) fn least_angle_away(mesh: &Mesh) -> (f64, Point) {
-    let mut near = troubled(mesh);
-    for _ in 0..AWAY {
-        let before = near.clone();
-        for edge in mesh.edges() {
-            let [a, b] = edge.vertices.map(|v| v as usize);
-            near[a] |= before[b];
-            near[b] |= before[a];
+/// Vertices at which different curves of the drawing end.
+fn corners(mesh: &Mesh) -> Vec<Point> {
+    let mut of: Vec<Option<mesher::CurveId>> = vec![None; mesh.vertices().len()];
+    let mut corner = vec![false; of.len()];
+    for edge in mesh.edges() {
+        let drawn = edge.curve.filter(|&c| mesh.curve(c).on_domain.is_some() || !mesh.curve(c).on_regions.is_empty());
+        for v in edge.vertices.map(|v| v as usize).into_iter().filter(|_| drawn.is_some()) {
+            corner[v] |= of[v].is_some_and(|known| Some(known) != drawn);
+            of[v] = drawn;
         }
     }
+    corner.iter().zip(mesh.vertices()).filter(|(c, _)| **c).map(|(_, p)| *p).collect()
+}
+
+/// Smallest angle of the triangles none of whose vertices is within [`AWAY`] edges of a gap, a small angle or a short stretch, or within
+/// [`AWAY_FROM_STRIPS`] edges of a strip, in degrees; and where it is. Constraints are the curves and the inner ends of strips. A gap is where a free edge joins two
+/// of them and is shorter than a constraint it starts from, or than [`NARROW`] times the size asked for; a short stretch is a constraint
+/// under half its neighbour.
+pub(crate) fn least_angle_away(drawing: &Drawing, mesh: &Mesh) -> (f64, Point) {
+    let near = spread(mesh, troubled(drawing, mesh), AWAY);
     let mut strip = vec![false; near.len()];
     for (triangle, _) in mesh.triangles().iter().zip(mesh.strip_triangles()).filter(|(_, s)| **s) {
         for &v in triangle {
             strip[v as usize] = true;
         }
     }
+    let strip = spread(mesh, strip, AWAY_FROM_STRIPS);
     let mut least = (180.0, [0.0; 2]);
     for (t, triangle) in mesh.triangles().iter().enumerate() {
         if mesh.strip_triangles()[t] || triangle.iter().any(|&v| near[v as usize] || strip[v as usize]) {
@@ -309,6 +460,19 @@ pub(crate) fn least_angle_away(mesh: &Mesh) -> (f64, Point) {
     least
 }
 
+/// Marks what is within `steps` edges of what is marked.
+fn spread(mesh: &Mesh, mut marked: Vec<bool>, steps: usize) -> Vec<bool> {
+    for _ in 0..steps {
+        let before = marked.clone();
+        for edge in mesh.edges() {
+            let [a, b] = edge.vertices.map(|v| v as usize);
+            marked[a] |= before[b];
+            marked[b] |= before[a];
+        }
+    }
+    marked
+}
+
 fn direction(a: Point, b: Point) -> f64 {
     (b[1] - a[1]).atan2(b[0] - a[0])
 }
@@ -319,14 +483,28 @@ fn turn(a: f64, b: f64) -> f64 {
     turn.min(TAU - turn)
 }
 
+/// Smallest element asked for by the regions around every vertex, in metres.
+fn wanted(drawing: &Drawing, mesh: &Mesh) -> Vec<f64> {
+    let mut wanted = vec![f64::INFINITY; mesh.vertices().len()];
+    for (triangle, id) in mesh.triangles().iter().zip(mesh.regions()) {
+        let of_region = drawing.regions.iter().filter(|r| r.id == *id).map(|r| r.surface_size);
+        let size = of_region.fold(drawing.domain_size, f64::min);
+        for &v in triangle {
+            wanted[v as usize] = wanted[v as usize].min(size);
+        }
+    }
+    wanted
+}
+
 /// Vertices at gaps, small angles and short stretches.
-fn troubled(mesh: &Mesh) -> Vec<bool> {
+fn troubled(drawing: &Drawing, mesh: &Mesh) -> Vec<bool> {
     let point = |v: u32| mesh.vertices()[v as usize];
     let free = |t: u32| t == NO_TRIANGLE || !mesh.strip_triangles()[t as usize];
     let held = |e: &mesher::Edge| {
         let [s, t] = e.triangles.map(free);
         e.curve.is_some() && (s || t) || s != t
     };
+    let wanted = wanted(drawing, mesh);
     let mut troubled = vec![false; mesh.vertices().len()];
     let mut leaving: Vec<Vec<(f64, f64)>> = vec![Vec::new(); mesh.vertices().len()];
     for edge in mesh.edges().iter().filter(|e| held(e)) {
@@ -345,7 +523,8 @@ fn troubled(mesh: &Mesh) -> Vec<bool> {
         let length = distance(point(edge.vertices[0]), point(edge.vertices[1]));
         let longest = |v: u32| leaving[v as usize].iter().map(|l| l.1).fold(0.0, f64::max);
         let [a, b] = edge.vertices.map(longest);
-        if a > 0.0 && b > 0.0 && length < a.max(b) {
+        let asked = edge.vertices.map(|v| wanted[v as usize]);
+        if a > 0.0 && b > 0.0 && (length < a.max(b) || length < NARROW * asked[0].min(asked[1])) {
             for v in edge.vertices {
                 troubled[v as usize] = true;
             }

@@ -7,6 +7,7 @@
     reason = "tests; each file uses some of it, and a region takes an optional strip"
 )]
 
+pub(crate) mod features;
 pub(crate) mod generator;
 pub(crate) mod laws;
 pub(crate) mod random;
