@@ -477,7 +477,7 @@ fn the_section_is_filled_by_part_and_the_mesh_shows_its_lines() {
     let count = |image: &Pixels, colour: [u8; 3]| image.bytes.chunks(3).filter(|c| *c == colour).count();
     let (bar, copper) = (count(&drawn, [198, 214, 232]), count(&drawn, [224, 158, 110]));
     assert!(bar > 50_000 && copper > 4000, "{bar} pixels of the bar, {copper} of copper");
-    let mesh = decoded(&draw_mesh(&section, "a section").unwrap());
+    let mesh = decoded(&draw_mesh(&section, None, "a section").unwrap());
     let [left, right, top, bottom] = rim(&mesh);
     let blue = |x: usize, y: usize| mesh.at(x, y) == [198, 214, 232];
     let middle = (left..right).filter(|&x| blue(x, (3 * top + bottom) / 4 + 20)).count();

@@ -160,6 +160,11 @@ impl Outline {
         self.spans.get(piece).map(|s| s.at(t))
     }
 
+    /// Whether piece `piece`, holes counted on, is an arc; false if there is no such piece.
+    pub fn is_arc(&self, piece: usize) -> bool {
+        self.spans.get(piece).is_some_and(|s| matches!(s.kind, Kind::Arc { .. }))
+    }
+
     /// Enclosed area in square metres, arcs included exactly, holes left out.
     pub fn area(&self) -> f64 {
         self.spans.iter().map(|s| s.area_about(self.start())).sum()

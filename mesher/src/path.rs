@@ -139,13 +139,16 @@ impl Path {
         Outline::new(start, pieces)
     }
 
-    /// Drops a last point that only repeats the start, keeping the arc that leads there.
+    /// Drops a last point that only repeats the start, keeping the arc that leads there and the treatment of either.
     fn join_ends(&mut self) {
         if let [first, .., last] = self.nodes.as_mut_slice()
             && first.at == last.at
-            && last.treatment == Treatment::Sharp
+            && (first.treatment == Treatment::Sharp || last.treatment == Treatment::Sharp)
         {
             first.arc = last.arc;
+            if first.treatment == Treatment::Sharp {
+                first.treatment = last.treatment;
+            }
             self.nodes.pop();
         }
     }
