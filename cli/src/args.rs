@@ -109,7 +109,8 @@ fn close_up(text: &str) -> Result<CloseUp, String> {
     let [r, z, width] = items[..] else {
         return Err("expected three lengths with commas between, such as \"30 mm, 100 mm, 5 mm\"".to_owned());
     };
-    let length = |text: &str| length_m(text).map_err(|error| error.to_string());
+    let wrong = |text: &str| format!("`{}` is not a length with its unit, such as \"5 mm\"", text.trim());
+    let length = |text: &str| length_m(text).map_err(|_| wrong(text));
     let (r_m, z_m, width_m) = (length(r)?, length(z)?, length(width)?);
     if width_m < LEAST_CLOSE_UP_M {
         return Err(format!("the width is {width}; it must be at least 0.001 mm"));

@@ -103,6 +103,9 @@ impl Record {
         let moved_m = distance(wanted, at);
         if moved_m > self.rounding {
             self.moved(outline, node, at, MergeKind::CornerMoved { moved_m });
+        } else if let Some(owner) = self.owners.get_mut(node as usize).filter(|o| **o == OutlineOf::Domain) {
+            // A corner that stands on the edge of the domain says more than the edge.
+            *owner = outline;
         }
     }
 

@@ -25,6 +25,7 @@ const ENTRY: f64 = 38.0;
 /// Most entries of the list of bodies.
 const MOST_ENTRIES: usize = 12;
 pub(super) const TEXT: f64 = 25.0;
+const LEAST_TEXT: f64 = 17.0;
 
 /// A body with its sizes.
 struct Body {
@@ -246,8 +247,11 @@ fn list(canvas: &mut Canvas, frame: &Frame, bodies: &[Body]) -> Result<(), Pictu
     for body in bodies.iter().take(MOST_ENTRIES) {
         canvas.fill([left, baseline - 20.0], [left + 34.0, baseline + 2.0], body.colour);
         canvas.frame([left, baseline - 20.0], [left + 34.0, baseline + 2.0], 1.2, OUTLINE);
-        let text = canvas.shortened(&description(body), TEXT, canvas.width() - left - 80.0)?;
-        canvas.text(&text, [left + 50.0, baseline], lettering(TEXT, Align::Left))?;
+        let (text, room) = (description(body), canvas.width() - left - 80.0);
+        // A long line is set smaller before it is cut.
+        let size = (TEXT * room / canvas.text_width(&text, TEXT)?).clamp(LEAST_TEXT, TEXT).floor();
+        let text = canvas.shortened(&text, size, room)?;
+        canvas.text(&text, [left + 50.0, baseline], lettering(size, Align::Left))?;
         baseline += ENTRY;
     }
     if bodies.len() > MOST_ENTRIES {

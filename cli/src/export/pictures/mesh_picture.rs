@@ -4,26 +4,26 @@
 use mesher::Mesh;
 use solver::results::{RegionName, Section};
 
-use super::canvas::{Align, Canvas, GREY_INK, INK, lettering};
-use super::frame::{Frame, Margins, aspect, is_turned};
+use super::canvas::{Align, Canvas, GREY_INK, INK, Lettering, PAPER, lettering};
+use super::frame::{Frame, Margins, aspect};
 use super::heading::{HEADING, Heading};
 use super::image::{Image, Rgb};
 use super::layer::{AIR, OUTLINE, kind_colour, pixels, stroke_edges};
 use super::raster::{View, misses, paint};
 use super::sheet::{Extent, Sheet};
-use super::ticks::{millimetres, round_step};
+use super::ticks::{millimetres, round_step, three_digits};
 use super::window::Window;
 use super::{PictureError, grouped};
 
 /// Space round the bodies, as a fraction of their extent.
 const MARGIN: f64 = 0.05;
 /// A map this much wider than high has its legend below.
-const FLAT: f64 = 1.5;
+const FLAT: f64 = 2.4;
 /// Side of the close-up.
 const INSET: f64 = 460.0;
-/// Space taken by close-up and legend beside a map, and below it.
+/// Space taken beside a map, and below it past the labels of its axis.
 const BESIDE: f64 = 660.0;
-const BELOW: f64 = 110.0 + 60.0 + INSET + 20.0;
+const LABELS: f64 = 110.0;
 /// Size of the text and height of a line of the legend.
 const TEXT: f64 = 25.0;
 const ENTRY: f64 = 38.0;
@@ -36,8 +36,11 @@ const STRIP_SHARE: f64 = 0.5;
 /// Fine pixels between mesh lines from which on they are drawn in full; closer ones fade, or strips would be all line.
 const FULL_LINE: f64 = 9.0;
 const LEAST_LINE: f64 = 0.1;
-/// A close-up is this many times as wide as the strip it shows is thick.
-const CLOSE_UP_WIDTH: f64 = 5.0;
+/// A close-up is at most this many times as wide as the strip it shows is thick, and as its thinnest triangle is high.
+const STRIP_WIDTHS: f64 = 5.0;
+const TRIANGLE_WIDTHS: f64 = 30.0;
+/// Name of the close-up.
+const TAG: &str = "A";
 
 /// A square of the section, metres.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -72,43 +75,37 @@ pub(super) fn draw(
     let mesh = &section.mesh;
     let whole = Window { both_sides: false, both_halves: false, ..Window::round(sheet, MARGIN) };
     let window = close_up.map_or(whole, |c| c.window());
-    let below = is_turned(&window) || aspect(&window) > FLAT;
-    let margins = match (close_up, below) {
-        (Some(_), _) => Margins { left: 140.0, right: BESIDE, top: HEADING, bottom: 110.0 },
-        (None, true) => Margins { left: 140.0, right: 60.0, top: HEADING, bottom: BELOW },
-        (None, false) => Margins { left: 140.0, right: BESIDE, top: HEADING, bottom: 110.0 },
+    let inset = if close_up.is_none() { strip_corner(sheet, mesh, &whole) } else { None };
+    let rows = legend_rows(sheet, mesh);
+    let below = aspect(&window) > FLAT;
+    let high = if inset.is_some() { INSET + 50.0 } else { 0.0 }.max(ENTRY * rows.len() as f64);
+    let margins = if below {
+        Margins { left: 140.0, right: 60.0, top: HEADING, bottom: LABELS + 40.0 + high + 30.0 }
+    } else {
+        Margins { left: 140.0, right: BESIDE, top: HEADING, bottom: LABELS }
     };
-    let below = below && close_up.is_none();
     let frame = Frame::fit(window, margins);
-    let mut canvas = Canvas::new(frame.size[0], frame.size[1])?;
+    let column = if below { [60.0, frame.to[1] + LABELS + 40.0] } else { [frame.to[0] + 60.0, frame.from[1]] };
+    let beside = if inset.is_some() { INSET + 76.0 } else { 0.0 } + ENTRY * rows.len() as f64 + 20.0;
+    let height = if below { frame.size[1] } else { frame.size[1].max((column[1] + beside) as usize) };
+    let mut canvas = Canvas::new(frame.size[0], height)?;
     put_map(&mut canvas, &frame, sheet, mesh);
     frame.axes(&mut canvas)?;
-    scale_bar(&mut canvas, &frame)?;
-    let column = if below { [60.0, frame.to[1] + 150.0] } else { [frame.to[0] + 60.0, frame.from[1]] };
-    let inset = if close_up.is_none() { strip_corner(sheet, mesh, &whole) } else { None };
+    scale_bar(&mut canvas, &frame, frame.to[1] + 76.0)?;
     let mut legend_at = column;
     if let Some(inset) = inset {
         put_inset(&mut canvas, &frame, inset, column, (sheet, mesh))?;
-        legend_at = if below { [column[0] + INSET + 60.0, column[1]] } else { [column[0], column[1] + INSET + 66.0] };
+        legend_at = if below { [column[0] + INSET + 60.0, column[1]] } else { [column[0], column[1] + INSET + 76.0] };
     }
-    legend(&mut canvas, sheet, mesh, legend_at)?;
-    Heading { title: "Mesh".into(), job: title.to_owned(), note: note(sheet, mesh) }.draw(&mut canvas)?;
-    Ok(canvas)
-}
-
-fn note(sheet: &Sheet<'_>, mesh: &Mesh) -> String {
-    let quality = mesh.quality();
-    format!(
-        "{} triangles of order {}, {} nodes \u{b7} outside strips least angle {:.1}\u{b0}, mean of the least {:.1}\u{b0} \
-         \u{b7} edges {} to {} mm",
+    legend(&mut canvas, &rows, legend_at)?;
+    let note = format!(
+        "{} triangles of order {}, {} nodes",
         grouped(sheet.element_count()),
         sheet.order,
-        grouped(sheet.points.len()),
-        quality.min_angle_deg,
-        quality.mean_min_angle_deg,
-        millimetres(quality.shortest_edge_m),
-        millimetres(quality.longest_edge_m),
-    )
+        grouped(sheet.points.len())
+    );
+    Heading { title: "Mesh".into(), job: title.to_owned(), note }.draw(&mut canvas)?;
+    Ok(canvas)
 }
 
 fn put_map(canvas: &mut Canvas, frame: &Frame, sheet: &Sheet<'_>, mesh: &Mesh) {
@@ -184,7 +181,8 @@ fn strip_corner(sheet: &Sheet<'_>, mesh: &Mesh, window: &Window) -> Option<Close
     let extent = Extent::of(strip.iter().flat_map(|&e| corners(sheet, e)))?;
     let largest = 0.5 * (window.r[1] - window.r[0]).min(window.z[1] - window.z[0]);
     let body_size = (extent.r[1] - extent.r[0]).max(extent.z[1] - extent.z[0]);
-    let width_m = (CLOSE_UP_WIDTH * thickness).min(body_size).min(largest);
+    let least = strip.iter().map(|&e| least_height(sheet, e)).fold(f64::INFINITY, f64::min);
+    let width_m = (STRIP_WIDTHS * thickness).min(TRIANGLE_WIDTHS * least).min(body_size).min(largest);
     (width_m > 0.0).then_some(CloseUp { r_m: corner[0] - 0.3 * width_m, z_m: corner[1] - 0.3 * width_m, width_m })
 }
 
@@ -215,86 +213,86 @@ fn put_inset(
     let frame = Frame::inside(window, main.turned, at, INSET);
     put_map(canvas, &frame, sheet, mesh);
     canvas.frame(frame.from, frame.to, 2.0, INK);
-    scale_bar(canvas, &frame)?;
+    scale_bar(canvas, &frame, frame.to[1] + 27.0)?;
+    let caption = format!("{TAG}: {} mm wide", three_digits(1e3 * inset.width_m));
+    canvas.text(&caption, [frame.from[0], frame.to[1] + 36.0], lettering(TEXT, Align::Left))?;
     let [a, b] = [main.place([window.r[0], window.z[0]]), main.place([window.r[1], window.z[1]])];
     let middle = [0.5 * (a[0] + b[0]), 0.5 * (a[1] + b[1])];
     let half = (0.5 * (b[0] - a[0]).abs()).max(6.0);
     let (low, high) = (middle.map(|v| v - half), middle.map(|v| v + half));
-    canvas.frame(low, high, 4.0, super::canvas::PAPER);
-    canvas.frame(low, high, 2.0, INK);
-    let from = if main.turned { [middle[0], high[1]] } else { [high[0], middle[1]] };
-    let to = if main.turned {
-        [frame.from[0] + 0.5 * INSET, frame.from[1]]
-    } else {
-        [frame.from[0], frame.from[1] + 0.5 * INSET]
-    };
-    canvas.polyline(&[from, to], 1.2, GREY_INK, &[12.0, 7.0]);
-    let text =
-        format!("close-up at r = {}, z = {} mm", millimetres(rounded(inset.r_m)), millimetres(rounded(inset.z_m)));
-    canvas.text(&text, [frame.from[0], frame.to[1] + 34.0], lettering(TEXT, Align::Left))
+    canvas.frame(low, high, 5.0, PAPER);
+    canvas.frame(low, high, 2.2, INK);
+    let tag = [high[0] + 8.0, low[1] - 30.0];
+    canvas.fill(tag, [tag[0] + 28.0, tag[1] + 30.0], PAPER);
+    canvas.frame(tag, [tag[0] + 28.0, tag[1] + 30.0], 1.5, INK);
+    canvas.text(TAG, [tag[0] + 14.0, tag[1] + 24.0], lettering(TEXT, Align::Centre))
 }
 
-/// Metres to hundredths of a millimetre.
-fn rounded(metres: f64) -> f64 {
-    (metres * 1e5).round() * 1e-5
-}
-
-/// A bar of a round length in the lower left corner of a map.
-fn scale_bar(canvas: &mut Canvas, frame: &Frame) -> Result<(), PictureError> {
+/// A bar of a round length, right-aligned with a map, at height `y` below it.
+fn scale_bar(canvas: &mut Canvas, frame: &Frame, y: f64) -> Result<(), PictureError> {
     let per_metre = frame.pixels_per_metre();
-    let room = frame.to[0] - frame.from[0];
-    let length = round_step(0.25 * room / per_metre, 1) * 0.5;
+    let length = 0.5 * round_step(0.25 * (frame.to[0] - frame.from[0]) / per_metre, 1);
     if length <= 0.0 {
         return Ok(());
     }
-    let text = format!("{} mm", millimetres(length));
-    let width = (length * per_metre).max(canvas.text_width(&text, TEXT)?);
-    let (left, bottom) = (frame.from[0] + 14.0, frame.to[1] - 14.0);
-    canvas.fill([left, bottom - 52.0], [left + width + 24.0, bottom], super::canvas::PAPER);
-    canvas.frame([left, bottom - 52.0], [left + width + 24.0, bottom], 1.0, GREY_INK);
-    let (a, b) = (left + 12.0, left + 12.0 + length * per_metre);
-    canvas.line([a, bottom - 12.0], [b, bottom - 12.0], 3.0, INK);
-    for x in [a, b] {
-        canvas.line([x, bottom - 19.0], [x, bottom - 5.0], 2.0, INK);
+    let (left, right) = (frame.to[0] - length * per_metre, frame.to[0]);
+    canvas.line([left, y], [right, y], 3.0, INK);
+    for x in [left, right] {
+        canvas.line([x, y - 8.0], [x, y + 8.0], 2.0, INK);
     }
-    canvas.text(&text, [0.5 * (2.0 * left + 24.0 + width), bottom - 24.0], lettering(TEXT, Align::Centre))
+    canvas.text(&format!("{} mm", millimetres(length)), [left - 12.0, y + 9.0], lettering(TEXT, Align::Right))
 }
 
-/// Colours of bodies and strips with their numbers of triangles.
-fn legend(canvas: &mut Canvas, sheet: &Sheet<'_>, mesh: &Mesh, at: [f64; 2]) -> Result<(), PictureError> {
-    let room = canvas.width() - at[0] - 80.0;
-    let mut baseline = at[1] + 24.0;
+/// A line of the legend: a swatch in two colours, or none, and a text.
+struct Row {
+    swatch: Option<[Rgb; 2]>,
+    text: String,
+}
+
+/// Colours of bodies and strips with their numbers of triangles, then the shape of triangles outside strips.
+fn legend_rows(sheet: &Sheet<'_>, mesh: &Mesh) -> Vec<Row> {
     let bodies = bodies(sheet, mesh);
     let more = bodies.len().saturating_sub(MOST_ENTRIES);
+    let mut rows = Vec::new();
     for (name, colour, [all, strip]) in bodies.into_iter().take(MOST_ENTRIES) {
-        let both = [[at[0], at[0] + 22.0], [at[0] + 22.0, at[0] + 44.0]];
-        let strip_colour = if strip > 0 { mixed(colour, STRIP, STRIP_SHARE) } else { colour };
-        for ([left, right], colour) in both.into_iter().zip([colour, strip_colour]) {
-            canvas.fill([left, baseline - 20.0], [right, baseline + 2.0], colour);
-        }
-        canvas.frame([at[0], baseline - 20.0], [at[0] + 44.0, baseline + 2.0], 1.2, OUTLINE);
-        let strips = if strip > 0 { format!(", {} in strips", grouped(strip)) } else { String::new() };
-        let text = canvas.shortened(&format!("{name}: {}{strips}", grouped(all)), TEXT, room)?;
-        canvas.text(&text, [at[0] + 58.0, baseline], lettering(TEXT, Align::Left))?;
-        baseline += ENTRY;
+        let (second, strips) = if strip > 0 {
+            (mixed(colour, STRIP, STRIP_SHARE), format!(", {} in strips", grouped(strip)))
+        } else {
+            (colour, String::new())
+        };
+        let noun = if all == 1 { "triangle" } else { "triangles" };
+        rows.push(Row { swatch: Some([colour, second]), text: format!("{name}: {} {noun}{strips}", grouped(all)) });
     }
+    let plain = |text: String| Row { swatch: None, text };
     if more > 0 {
-        canvas.text(&format!("and {more} more"), [at[0] + 58.0, baseline], lettering(TEXT, Align::Left))?;
-        baseline += ENTRY;
+        rows.push(plain(format!("and {more} more")));
     }
-    let any = mesh.strip_triangles().iter().any(|&s| s);
-    let words: &[&str] = if any {
-        &["numbers of triangles; darker:", "strips of thin layers along surfaces"]
-    } else {
-        &["numbers of triangles; no strips"]
-    };
-    for line in words {
-        canvas.text(
-            line,
-            [at[0], baseline],
-            super::canvas::Lettering { colour: GREY_INK, ..lettering(TEXT, Align::Left) },
-        )?;
-        baseline += 0.85 * ENTRY;
+    let quality = mesh.quality();
+    if quality.strip_triangles > 0 {
+        rows.push(plain("second colour: strips of thin layers".into()));
+    }
+    let outside = if quality.strip_triangles > 0 { " outside strips" } else { "" };
+    rows.push(plain(format!("least angle{outside} {:.1}\u{b0}", quality.min_angle_deg)));
+    rows.push(plain(format!("mean of the least angles {:.1}\u{b0}", quality.mean_min_angle_deg)));
+    let edges = [quality.shortest_edge_m, quality.longest_edge_m].map(|m| three_digits(1e3 * m));
+    rows.push(plain(format!("edges from {} to {} mm", edges[0], edges[1])));
+    rows
+}
+
+fn legend(canvas: &mut Canvas, rows: &[Row], at: [f64; 2]) -> Result<(), PictureError> {
+    let mut baseline = at[1] + 24.0;
+    for row in rows {
+        let mut left = at[0];
+        if let Some([first, second]) = row.swatch {
+            canvas.fill([left, baseline - 20.0], [left + 22.0, baseline + 2.0], first);
+            canvas.fill([left + 22.0, baseline - 20.0], [left + 44.0, baseline + 2.0], second);
+            canvas.frame([left, baseline - 20.0], [left + 44.0, baseline + 2.0], 1.2, OUTLINE);
+            left += 58.0;
+        }
+        let text = canvas.shortened(&row.text, TEXT, canvas.width() - left - 30.0)?;
+        let colour = if row.swatch.is_some() { INK } else { GREY_INK };
+        canvas.text(&text, [left, baseline], Lettering { size: TEXT, align: Align::Left, colour })?;
+        baseline += ENTRY;
     }
     Ok(())
 }
