@@ -167,3 +167,51 @@ pub(crate) fn is_bare_metal(model: &Model, body: &Body) -> bool {
         }
     }
 }
+
+#[cfg(test)]
+mod tests {
+    #![allow(clippy::unwrap_used, reason = "tests")]
+
+    use super::{gap, gap_within, least_distance};
+    use mesher::Outline;
+
+    fn circle(centre: [f64; 2], radius: f64) -> Outline {
+        Outline::circle(centre, radius).unwrap()
+    }
+
+    fn distance(one: &Outline, other: &Outline) -> f64 {
+        least_distance(one, other, f64::INFINITY)
+    }
+
+    #[test]
+    fn distances_of_circles_and_boxes_are_those_of_geometry() {
+        let one = circle([0.05, 0.0], 0.01);
+        // Centres 50 mm apart, on a line that meets no end of a piece.
+        let other = circle([0.08, 0.04], 0.02);
+        assert!((distance(&one, &other) - 0.02).abs() < 1e-12);
+        let around = circle([0.051, 0.002], 0.03);
+        assert!((distance(&one, &around) - (0.02 - 5f64.sqrt() * 1e-3)).abs() < 1e-12, "one inside the other");
+        let corner = Outline::rectangle([0.09, 0.03], [0.1, 0.05]).unwrap();
+        assert!((distance(&one, &corner) - 0.04).abs() < 1e-12, "a corner at 50 mm from the centre");
+        let side = Outline::rectangle([0.07, -0.02], [0.08, 0.03]).unwrap();
+        assert!((distance(&one, &side) - 0.01).abs() < 1e-12);
+    }
+
+    #[test]
+    fn the_nearest_pair_of_two_groups_counts() {
+        let turns: Vec<Outline> = (0..5).map(|k| circle([0.05, 0.02 * f64::from(k)], 0.006)).collect();
+        let turns: Vec<&Outline> = turns.iter().collect();
+        let bar = Outline::rectangle([0.0, 0.071], [0.04, 0.2]).unwrap();
+        assert!((gap_within(&turns) - 0.008).abs() < 1e-12);
+        assert!((gap(&turns, &[&bar]) - 0.004).abs() < 1e-12);
+        assert_eq!(gap_within(&turns[..1]), f64::INFINITY);
+    }
+
+    #[test]
+    fn what_touches_is_no_distance_apart() {
+        let one = Outline::rectangle([0.0, 0.0], [0.03, 0.1]).unwrap();
+        let beside = Outline::rectangle([0.03, 0.02], [0.04, 0.05]).unwrap();
+        assert_eq!(distance(&one, &beside), 0.0);
+        assert!(distance(&circle([0.05, 0.0], 0.01), &circle([0.07, 0.0], 0.01)) < 1e-15);
+    }
+}

@@ -1,7 +1,7 @@
 //! The mesh: every triangle over its body, strips of thin layers in a colour of their own, a close-up where they are thin, a
 //! legend and scale bars. Only the meshed half plane is shown; lengths in millimetres.
 
-use mesher::Mesh;
+use mesher::{ANGLE_CLASS_DEG, Mesh};
 use solver::results::{RegionName, Section};
 
 use super::canvas::{Align, Canvas, GREY_INK, INK, Lettering, PAPER, lettering};
@@ -29,6 +29,7 @@ const TEXT: f64 = 25.0;
 const ENTRY: f64 = 38.0;
 /// Most bodies in the legend.
 const MOST_ENTRIES: usize = 9;
+const CHART_BAR: Rgb = [130, 140, 160];
 const MESH_LINE: Rgb = [70, 76, 92];
 /// Mixed into the colours of bodies where triangles are in strips.
 const STRIP: Rgb = [176, 36, 110];
@@ -39,6 +40,11 @@ const LEAST_LINE: f64 = 0.1;
 /// A close-up is at most this many times as wide as the strip it shows is thick, and as its thinnest triangle is high.
 const STRIP_WIDTHS: f64 = 5.0;
 const TRIANGLE_WIDTHS: f64 = 30.0;
+/// Size of the chart of least angles, and its distance from the legend to its left.
+const CHART: [f64; 2] = [420.0, 180.0];
+const CHART_LEFT: f64 = 520.0;
+/// Height the chart takes with its labels.
+const CHART_ROOM: f64 = CHART[1] + 130.0;
 /// Name of the close-up.
 const TAG: &str = "A";
 
@@ -78,7 +84,7 @@ pub(super) fn draw(
     let inset = if close_up.is_none() { strip_corner(sheet, mesh, &whole) } else { None };
     let rows = legend_rows(sheet, mesh);
     let below = aspect(&window) > FLAT;
-    let high = if inset.is_some() { INSET + 50.0 } else { 0.0 }.max(ENTRY * rows.len() as f64);
+    let high = if inset.is_some() { INSET + 50.0 } else { CHART_ROOM }.max(ENTRY * rows.len() as f64);
     let margins = if below {
         Margins { left: 140.0, right: 60.0, top: HEADING, bottom: LABELS + 40.0 + high + 30.0 }
     } else {
@@ -86,7 +92,7 @@ pub(super) fn draw(
     };
     let frame = Frame::fit(window, margins);
     let column = if below { [60.0, frame.to[1] + LABELS + 40.0] } else { [frame.to[0] + 60.0, frame.from[1]] };
-    let beside = if inset.is_some() { INSET + 76.0 } else { 0.0 } + ENTRY * rows.len() as f64 + 20.0;
+    let beside = if inset.is_some() { INSET + 76.0 } else { 0.0 } + ENTRY * rows.len() as f64 + CHART_ROOM;
     let height = if below { frame.size[1] } else { frame.size[1].max((column[1] + beside) as usize) };
     let mut canvas = Canvas::new(frame.size[0], height)?;
     put_map(&mut canvas, &frame, sheet, mesh);
@@ -98,6 +104,12 @@ pub(super) fn draw(
         legend_at = if below { [column[0] + INSET + 60.0, column[1]] } else { [column[0], column[1] + INSET + 76.0] };
     }
     legend(&mut canvas, &rows, legend_at)?;
+    let chart_at = if below {
+        [legend_at[0] + CHART_LEFT, legend_at[1]]
+    } else {
+        [legend_at[0], legend_at[1] + ENTRY * rows.len() as f64 + 20.0]
+    };
+    angle_chart(&mut canvas, mesh, chart_at)?;
     let note = format!(
         "{} triangles of order {}, {} nodes",
         grouped(sheet.element_count()),
@@ -293,6 +305,28 @@ fn legend(canvas: &mut Canvas, rows: &[Row], at: [f64; 2]) -> Result<(), Picture
         let colour = if row.swatch.is_some() { INK } else { GREY_INK };
         canvas.text(&text, [left, baseline], Lettering { size: TEXT, align: Align::Left, colour })?;
         baseline += ENTRY;
+    }
+    Ok(())
+}
+
+/// Triangles outside strips by their least angle, as bars.
+fn angle_chart(canvas: &mut Canvas, mesh: &Mesh, at: [f64; 2]) -> Result<(), PictureError> {
+    let counts = mesh.quality().least_angle_counts;
+    let (bottom, width) = (at[1] + 44.0 + CHART[1], CHART[0] / counts.len() as f64);
+    let most = counts.into_iter().max().unwrap_or(0).max(1);
+    let style = Lettering { size: TEXT, align: Align::Left, colour: GREY_INK };
+    canvas.text("triangles by least angle", [at[0], at[1] + 24.0], style)?;
+    for (class, &count) in counts.iter().enumerate() {
+        let left = at[0] + width * class as f64;
+        let high = CHART[1] * count as f64 / most as f64;
+        canvas.fill([left + 1.0, bottom - high], [left + width - 1.0, bottom], CHART_BAR);
+    }
+    canvas.line([at[0], bottom], [at[0] + CHART[0], bottom], 1.5, INK);
+    for tick in 0..=4 {
+        let angle = 15.0 * f64::from(tick);
+        let x = at[0] + angle / ANGLE_CLASS_DEG * width;
+        canvas.line([x, bottom], [x, bottom + 8.0], 1.5, INK);
+        canvas.text(&format!("{angle}\u{b0}"), [x, bottom + 36.0], lettering(TEXT, Align::Centre))?;
     }
     Ok(())
 }
