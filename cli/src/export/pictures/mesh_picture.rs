@@ -1,14 +1,15 @@
 //! The mesh: every triangle over its body, strips of thin layers in a colour of their own, a close-up where they are thin, a
 //! legend and scale bars. Only the meshed half plane is shown; lengths in millimetres.
 
-use mesher::{ANGLE_CLASS_DEG, Mesh};
+use mesher::Mesh;
 use solver::results::{RegionName, Section};
 
-use super::canvas::{Align, Canvas, GREY_INK, INK, Lettering, PAPER, lettering};
+use super::canvas::{Align, Canvas, INK, PAPER, lettering};
 use super::frame::{Frame, Margins, aspect};
 use super::heading::{HEADING, Heading};
 use super::image::{Image, Rgb};
 use super::layer::{AIR, OUTLINE, kind_colour, pixels, stroke_edges};
+use super::mesh_legend::{CHART, CHART_ROOM, ENTRY, TEXT, angle_chart, in_strip, legend, legend_rows, mixed};
 use super::raster::{View, misses, paint};
 use super::sheet::{Extent, Sheet};
 use super::ticks::{millimetres, round_step, three_digits};
@@ -20,31 +21,21 @@ const MARGIN: f64 = 0.05;
 /// A map this much wider than high has its legend below.
 const FLAT: f64 = 2.4;
 /// Side of the close-up.
-const INSET: f64 = 460.0;
+const INSET: f64 = 410.0;
 /// Space taken beside a map, and below it past the labels of its axis.
 const BESIDE: f64 = 660.0;
 const LABELS: f64 = 110.0;
-/// Size of the text and height of a line of the legend.
-const TEXT: f64 = 25.0;
-const ENTRY: f64 = 38.0;
-/// Most bodies in the legend.
-const MOST_ENTRIES: usize = 9;
-const CHART_BAR: Rgb = [130, 140, 160];
+/// Height of the close-up with its caption.
+const UNDER_INSET: f64 = INSET + 76.0;
+/// Width of the legend below a map.
+const LEGEND_WIDTH: f64 = 520.0;
 const MESH_LINE: Rgb = [70, 76, 92];
-/// Mixed into the colours of bodies where triangles are in strips.
-const STRIP: Rgb = [176, 36, 110];
-const STRIP_SHARE: f64 = 0.5;
 /// Fine pixels between mesh lines from which on they are drawn in full; closer ones fade, or strips would be all line.
 const FULL_LINE: f64 = 9.0;
 const LEAST_LINE: f64 = 0.1;
 /// A close-up is at most this many times as wide as the strip it shows is thick, and as its thinnest triangle is high.
 const STRIP_WIDTHS: f64 = 5.0;
 const TRIANGLE_WIDTHS: f64 = 30.0;
-/// Size of the chart of least angles, and its distance from the legend to its left.
-const CHART: [f64; 2] = [420.0, 180.0];
-const CHART_LEFT: f64 = 520.0;
-/// Height the chart takes with its labels.
-const CHART_ROOM: f64 = CHART[1] + 130.0;
 /// Name of the close-up.
 const TAG: &str = "A";
 
@@ -92,23 +83,29 @@ pub(super) fn draw(
     };
     let frame = Frame::fit(window, margins);
     let column = if below { [60.0, frame.to[1] + LABELS + 40.0] } else { [frame.to[0] + 60.0, frame.from[1]] };
-    let beside = if inset.is_some() { INSET + 76.0 } else { 0.0 } + ENTRY * rows.len() as f64 + CHART_ROOM;
-    let height = if below { frame.size[1] } else { frame.size[1].max((column[1] + beside) as usize) };
-    let mut canvas = Canvas::new(frame.size[0], height)?;
+    let right_of_inset = if inset.is_some() { INSET + 60.0 } else { 0.0 };
+    let beside = if inset.is_some() { UNDER_INSET } else { 0.0 } + ENTRY * rows.len() as f64 + CHART_ROOM;
+    let chart_left = column[0] + right_of_inset + LEGEND_WIDTH;
+    let size = if below {
+        [frame.size[0].max((chart_left + CHART[0]) as usize + 50), frame.size[1]]
+    } else {
+        [frame.size[0], frame.size[1].max((column[1] + beside) as usize)]
+    };
+    let mut canvas = Canvas::new(size[0], size[1])?;
     put_map(&mut canvas, &frame, sheet, mesh);
     frame.axes(&mut canvas)?;
     scale_bar(&mut canvas, &frame, frame.to[1] + 76.0)?;
-    let mut legend_at = column;
     if let Some(inset) = inset {
         put_inset(&mut canvas, &frame, inset, column, (sheet, mesh))?;
-        legend_at = if below { [column[0] + INSET + 60.0, column[1]] } else { [column[0], column[1] + INSET + 76.0] };
     }
-    legend(&mut canvas, &rows, legend_at)?;
-    let chart_at = if below {
-        [legend_at[0] + CHART_LEFT, legend_at[1]]
-    } else {
-        [legend_at[0], legend_at[1] + ENTRY * rows.len() as f64 + 20.0]
+    let legend_at = match (&inset, below) {
+        (None, _) => column,
+        (Some(_), true) => [column[0] + right_of_inset, column[1]],
+        (Some(_), false) => [column[0], column[1] + UNDER_INSET],
     };
+    legend(&mut canvas, &rows, legend_at)?;
+    let chart_at =
+        if below { [chart_left, column[1]] } else { [legend_at[0], legend_at[1] + ENTRY * rows.len() as f64 + 20.0] };
     angle_chart(&mut canvas, mesh, chart_at)?;
     let note = format!(
         "{} triangles of order {}, {} nodes",
@@ -137,11 +134,7 @@ fn put_map(canvas: &mut Canvas, frame: &Frame, sheet: &Sheet<'_>, mesh: &Mesh) {
 fn fill(sheet: &Sheet<'_>, mesh: &Mesh, element: usize) -> Rgb {
     let colour = kind_colour(sheet.kind(element));
     let strip = mesh.strip_triangles().get(element).copied().unwrap_or(false);
-    if strip { mixed(colour, STRIP, STRIP_SHARE) } else { colour }
-}
-
-fn mixed(from: Rgb, to: Rgb, share: f64) -> Rgb {
-    [0, 1, 2].map(|k| (f64::from(from[k]) + share * (f64::from(to[k]) - f64::from(from[k]))).round() as u8)
+    if strip { in_strip(colour) } else { colour }
 }
 
 /// Draws all mesh lines, fainter where they are closer than can be told apart.
@@ -253,100 +246,4 @@ fn scale_bar(canvas: &mut Canvas, frame: &Frame, y: f64) -> Result<(), PictureEr
         canvas.line([x, y - 8.0], [x, y + 8.0], 2.0, INK);
     }
     canvas.text(&format!("{} mm", millimetres(length)), [left - 12.0, y + 9.0], lettering(TEXT, Align::Right))
-}
-
-/// A line of the legend: a swatch in two colours, or none, and a text.
-struct Row {
-    swatch: Option<[Rgb; 2]>,
-    text: String,
-}
-
-/// Colours of bodies and strips with their numbers of triangles, then the shape of triangles outside strips.
-fn legend_rows(sheet: &Sheet<'_>, mesh: &Mesh) -> Vec<Row> {
-    let bodies = bodies(sheet, mesh);
-    let more = bodies.len().saturating_sub(MOST_ENTRIES);
-    let mut rows = Vec::new();
-    for (name, colour, [all, strip]) in bodies.into_iter().take(MOST_ENTRIES) {
-        let (second, strips) = if strip > 0 {
-            (mixed(colour, STRIP, STRIP_SHARE), format!(", {} in strips", grouped(strip)))
-        } else {
-            (colour, String::new())
-        };
-        let noun = if all == 1 { "triangle" } else { "triangles" };
-        rows.push(Row { swatch: Some([colour, second]), text: format!("{name}: {} {noun}{strips}", grouped(all)) });
-    }
-    let plain = |text: String| Row { swatch: None, text };
-    if more > 0 {
-        rows.push(plain(format!("and {more} more")));
-    }
-    let quality = mesh.quality();
-    if quality.strip_triangles > 0 {
-        rows.push(plain("second colour: strips of thin layers".into()));
-    }
-    let outside = if quality.strip_triangles > 0 { " outside strips" } else { "" };
-    rows.push(plain(format!("least angle{outside} {:.1}\u{b0}", quality.min_angle_deg)));
-    rows.push(plain(format!("mean of the least angles {:.1}\u{b0}", quality.mean_min_angle_deg)));
-    let edges = [quality.shortest_edge_m, quality.longest_edge_m].map(|m| three_digits(1e3 * m));
-    rows.push(plain(format!("edges from {} to {} mm", edges[0], edges[1])));
-    rows
-}
-
-fn legend(canvas: &mut Canvas, rows: &[Row], at: [f64; 2]) -> Result<(), PictureError> {
-    let mut baseline = at[1] + 24.0;
-    for row in rows {
-        let mut left = at[0];
-        if let Some([first, second]) = row.swatch {
-            canvas.fill([left, baseline - 20.0], [left + 22.0, baseline + 2.0], first);
-            canvas.fill([left + 22.0, baseline - 20.0], [left + 44.0, baseline + 2.0], second);
-            canvas.frame([left, baseline - 20.0], [left + 44.0, baseline + 2.0], 1.2, OUTLINE);
-            left += 58.0;
-        }
-        let text = canvas.shortened(&row.text, TEXT, canvas.width() - left - 30.0)?;
-        let colour = if row.swatch.is_some() { INK } else { GREY_INK };
-        canvas.text(&text, [left, baseline], Lettering { size: TEXT, align: Align::Left, colour })?;
-        baseline += ENTRY;
-    }
-    Ok(())
-}
-
-/// Triangles outside strips by their least angle, as bars.
-fn angle_chart(canvas: &mut Canvas, mesh: &Mesh, at: [f64; 2]) -> Result<(), PictureError> {
-    let counts = mesh.quality().least_angle_counts;
-    let (bottom, width) = (at[1] + 44.0 + CHART[1], CHART[0] / counts.len() as f64);
-    let most = counts.into_iter().max().unwrap_or(0).max(1);
-    let style = Lettering { size: TEXT, align: Align::Left, colour: GREY_INK };
-    canvas.text("triangles by least angle", [at[0], at[1] + 24.0], style)?;
-    for (class, &count) in counts.iter().enumerate() {
-        let left = at[0] + width * class as f64;
-        let high = CHART[1] * count as f64 / most as f64;
-        canvas.fill([left + 1.0, bottom - high], [left + width - 1.0, bottom], CHART_BAR);
-    }
-    canvas.line([at[0], bottom], [at[0] + CHART[0], bottom], 1.5, INK);
-    for tick in 0..=4 {
-        let angle = 15.0 * f64::from(tick);
-        let x = at[0] + angle / ANGLE_CLASS_DEG * width;
-        canvas.line([x, bottom], [x, bottom + 8.0], 1.5, INK);
-        canvas.text(&format!("{angle}\u{b0}"), [x, bottom + 36.0], lettering(TEXT, Align::Centre))?;
-    }
-    Ok(())
-}
-
-/// Parts, coils and the air: names, colours, numbers of triangles and of those in strips.
-fn bodies(sheet: &Sheet<'_>, mesh: &Mesh) -> Vec<(String, Rgb, [usize; 2])> {
-    let count = |of: &dyn Fn(&RegionName) -> bool| {
-        let elements = sheet.elements_of(of);
-        let strip = elements.iter().filter(|&&e| mesh.strip_triangles().get(e).copied().unwrap_or(false)).count();
-        [elements.len(), strip]
-    };
-    let mut rows = Vec::new();
-    for (index, name) in sheet.parts() {
-        let counts = count(&|kind| matches!(kind, RegionName::Part(i, _) if *i == index));
-        rows.push((name.to_owned(), kind_colour(&RegionName::Part(index, String::new())), counts));
-    }
-    for (index, name) in sheet.coils() {
-        let counts = count(&|kind| matches!(kind, RegionName::Turn(i, _, _) if *i == index));
-        rows.push((name.to_owned(), kind_colour(&RegionName::Turn(index, 0, String::new())), counts));
-    }
-    rows.push(("air".to_owned(), AIR, count(&|kind| matches!(kind, RegionName::Air))));
-    rows
 }

@@ -18,6 +18,7 @@ mod image;
 mod labels;
 mod layer;
 mod map;
+mod mesh_legend;
 mod mesh_picture;
 mod profile_charts;
 mod profiles;
