@@ -1,8 +1,8 @@
 """Opens every file of a result folder with readers that are not ours and checks that they agree with each other.
 
 Fields are read by VTK and by meshio, pictures by VTK, tables and JSON by Python's own modules. The areas of the parts are
-compared with the shapes in job.json, temperatures with history.csv, and the loss integrated over the workpieces with
-summary.json.
+compared with the shapes in job.json, temperatures with history.csv, and the loss integrated over the workpieces and the
+figures of the mesh with summary.json.
 
 Usage: read_results.py FOLDER
 """
@@ -134,6 +134,46 @@ def compare_areas(name, areas, parts, job):
             check(abs(found / wanted - 1) < 1e-9, f"{name}: section of {part['name']} is {found} m2, not {wanted} m2")
 
 
+def read_mesh_block(mesh, job):
+    """The figures of the mesh agree with each other and with the job."""
+    regions = mesh["regions"]
+    check(list(regions["parts"]) == [part["name"] for part in job["parts"]], "summary.json: mesh: names of parts")
+    check(list(regions["coils"]) == [coil["name"] for coil in job.get("coils", [])], "summary.json: mesh: names of coils")
+    bodies = [regions["air"], *regions["parts"].values(), *regions["coils"].values()]
+    for key in ("triangles", "strip_triangles"):
+        found = sum(body[key] for body in bodies)
+        check(found == mesh[key], f"summary.json: mesh: {key} of the bodies add up to {found}, not {mesh[key]}")
+    counts, outside = mesh["min_angle_counts"], mesh["triangles"] - mesh["strip_triangles"]
+    check(len(counts) == 12 and sum(counts) == outside, "summary.json: mesh: angles are not counted once a triangle")
+    share = sum(counts[6:8]) / outside if outside else 0
+    check(math.isclose(mesh["share_of_min_angles_30_to_40_deg"], share, abs_tol=1e-12), "summary.json: mesh: share of angles")
+    check(0 < mesh["min_angle_deg"] <= mesh["mean_min_angle_deg"] <= 60, "summary.json: mesh: angles")
+    merges = mesh["merges"]
+    moved = merges["corners_moved"] + merges["lines_moved"]
+    check((moved > 0) == (merges["largest_move_m"] > 0) == bool(merges["moves"]), "summary.json: mesh: moves")
+    check(all(isinstance(note, str) and note for note in mesh["notes"] + merges["moves"]), "summary.json: mesh: words")
+
+
+def compare_mesh(name, grid, parts, points, mesh, job):
+    """Triangles by body, edges and angles from the corners of the cells, against the summary."""
+    corners = np.array([[grid.GetCell(c).GetPointId(k) for k in range(3)] for c in range(grid.GetNumberOfCells())])
+    check(len(np.unique(corners)) == mesh["vertices"], f"{name}: vertices")
+    for index, part in enumerate(job["parts"]):
+        found, wanted = int((parts == index).sum()), mesh["regions"]["parts"][part["name"]]["triangles"]
+        check(found == wanted, f"{name}: {found} cells of {part['name']}, the summary has {wanted}")
+    places = points[corners][:, :, :2]
+    sides = np.linalg.norm(places - np.roll(places, -1, axis=1), axis=2)
+    for end, found, wanted in (("shortest", sides.min(), mesh["shortest_edge_m"]), ("longest", sides.max(), mesh["longest_edge_m"])):
+        check(abs(found / wanted - 1) < 1e-9, f"{name}: {end} edge is {found} m, the summary has {wanted} m")
+    a, b, c = sides[:, 0], sides[:, 1], sides[:, 2]
+    cosines = [(x * x + y * y - z * z) / (2 * x * y) for x, y, z in ((a, b, c), (b, c, a), (c, a, b))]
+    least = np.degrees(np.arccos(np.clip(np.max(cosines, axis=0), -1, 1)))
+    for limit, counted in ((30, sum(mesh["min_angle_counts"][:6])), (40, sum(mesh["min_angle_counts"][:8]))):
+        below = int((least < limit).sum())
+        check(below >= counted, f"{name}: {below} cells below {limit} degrees, fewer than {counted} outside strips")
+        check(below <= counted + mesh["strip_triangles"], f"{name}: {below} cells below {limit} degrees, too many")
+
+
 def compare_power(name, grid, areas, parts, points, job, state):
     """The loss over the workpieces, cell mean times the circle of its centroid, against the summary."""
     loss = vtk_to_numpy(grid.GetCellData().GetArray("joule_loss_w_per_m3"))
@@ -190,6 +230,7 @@ def main():
     files = [folder / entry.get("file") for entry in listed]
     check(times == sorted(times), "run.pvd: times are not in order")
     check(sorted(files) == sorted(folder.glob("fields/*.vtu")), "run.pvd does not list the files in fields/")
+    read_mesh_block(summary["mesh"], job)
     check(bool(files), "there are no fields")
     for index, path in enumerate(files):
         grid, points = read_field(path, summary)
@@ -197,6 +238,7 @@ def main():
             areas, parts = vtk_areas(grid), vtk_to_numpy(grid.GetCellData().GetArray("part"))
             check((areas > 0).all(), f"{path.name}: a cell has no area")
             compare_areas(path.name, areas, parts, job)
+            compare_mesh(path.name, grid, parts, points, summary["mesh"], job)
             compare_power(path.name, grid, areas, parts, points, job, summary["states"]["first"])
         if history:
             compare_temperatures(path.name, grid, history)

@@ -5,6 +5,9 @@ use std::path::PathBuf;
 
 use clap::{Args, Parser, Subcommand, ValueEnum};
 
+use crate::export::pictures::CloseUp;
+use crate::lower::length_m;
+
 const AFTER_HELP: &str = "\
 Exit codes: 0 done, 1 bug, 2 usage, 3 job refused, 4 mesh impossible, 5 not converged, 6 output not written,
 7 stopped early on request or at a stage limit (partial results are kept and marked).
@@ -52,7 +55,7 @@ pub enum ProgressChoice {
 /// The commands.
 #[derive(Debug, Subcommand)]
 pub enum Command {
-    /// Read and validate a job, print what was understood, draw the section
+    /// Read and validate a job, print what was understood, draw its mesh or section
     Check(CheckArguments),
     /// Solve a job: fields, losses, heating, maps and tables
     Run(RunArguments),
@@ -67,9 +70,15 @@ pub enum Command {
 pub struct CheckArguments {
     /// The job file
     pub job: PathBuf,
-    /// Draw the section to this PNG file
+    /// Draw the mesh, its bodies and strips to this PNG file
     #[arg(long, value_name = "PNG")]
     pub draw: Option<PathBuf>,
+    /// Draw a square of the mesh alone, such as "30 mm, 100 mm, 5 mm": radius and height of its middle, and its width
+    #[arg(long, value_name = "R,Z,WIDTH", requires = "draw", value_parser = close_up, allow_hyphen_values = true)]
+    pub close_up: Option<CloseUp>,
+    /// Draw the dimensioned section to this PNG file
+    #[arg(long, value_name = "PNG")]
+    pub draw_section: Option<PathBuf>,
 }
 
 /// Arguments of `run`.
@@ -83,6 +92,9 @@ pub struct RunArguments {
     /// Replace an earlier result in the folder
     #[arg(long)]
     pub overwrite: bool,
+    /// Leave out the field files (fields/*.vtu and run.pvd), the largest part of a result
+    #[arg(long)]
+    pub without_fields: bool,
 }
 
 /// Arguments of `materials`.
@@ -92,6 +104,22 @@ pub struct MaterialsArguments {
     pub name: Option<String>,
 }
 
+fn close_up(text: &str) -> Result<CloseUp, String> {
+    let items: Vec<&str> = text.split(',').collect();
+    let [r, z, width] = items[..] else {
+        return Err("expected three lengths with commas between, such as \"30 mm, 100 mm, 5 mm\"".to_owned());
+    };
+    let wrong = |text: &str| format!("`{}` is not a length with its unit, such as \"5 mm\"", text.trim());
+    let length = |text: &str| length_m(text).map_err(|_| wrong(text));
+    let (r_m, z_m, width_m) = (length(r)?, length(z)?, length(width)?);
+    if width_m < LEAST_CLOSE_UP_M {
+        return Err(format!("the width is {width}; it must be at least 0.001 mm"));
+    }
+    Ok(CloseUp { r_m, z_m, width_m })
+}
+
+/// Narrowest square of a mesh that can be asked for, metres.
+const LEAST_CLOSE_UP_M: f64 = 1e-6;
 /// Most threads that may be asked for.
 const MOST_THREADS: usize = 1024;
 

@@ -16,7 +16,9 @@ pub(crate) fn si(value: f64, unit: &str) -> String {
     }
     let magnitude = value.abs();
     let thousands = if magnitude == 0.0 { 0 } else { ((magnitude.log10() + 1e-9) / 3.0).floor() as i32 };
-    let index = (thousands + NO_PREFIX).clamp(0, LAST_PREFIX);
+    // A milli before var would be read as a mega.
+    let least = if unit == "var" { NO_PREFIX } else { 0 };
+    let index = (thousands + NO_PREFIX).clamp(least, LAST_PREFIX);
     let scaled = value / 1000f64.powi(index - NO_PREFIX);
     format!("{} {}{unit}", significant(scaled, 4), PREFIXES[index as usize])
 }
@@ -120,6 +122,8 @@ mod tests {
         assert_eq!(si(0.0, "V"), "0 V");
         assert_eq!(si(-250_000.0, "var"), "-250.0 kvar");
         assert_eq!(si(f64::INFINITY, "m"), "-");
+        assert_eq!(si(0.0125, "var"), "0.01250 var");
+        assert_eq!(si(2.5e6, "var"), "2.500 Mvar");
     }
 
     #[test]

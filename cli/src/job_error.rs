@@ -135,20 +135,25 @@ pub enum JobError {
     /// A profile that does not begin with a point.
     #[error("{place}: a profile begins with a point; write [r, z] first and the arc after it")]
     ProfileStart { place: Place },
-    /// A corner next to an arc.
-    #[error("{place}: a fillet or chamfer needs a straight line on both sides; move it away from the arc")]
-    CornerAtArc { place: Place },
-    /// A corner that takes more than its lines have.
-    #[error("{place}: value {value}: takes {needs_mm:.4} mm of a line that has {has_mm:.4} mm left; reduce it")]
-    CornerTooLarge { place: Place, value: String, needs_mm: f64, has_mm: f64 },
+    /// A corner that does not fit between its neighbours.
+    #[error("{place}: value {value}: does not fit here: at most {} mm do, next to the corners beside it; reduce it or theirs", rounded_down(*.limit_mm))]
+    CornerTooLarge { place: Place, value: String, limit_mm: f64 },
     /// A corner that does not turn.
-    #[error("{place}: the lines before and after this corner run straight on or back; remove the fillet or chamfer")]
+    #[error("{place}: the outline runs straight on or back at this corner; remove the fillet or chamfer")]
     NoCorner { place: Place },
     /// An arc whose ends are not on one circle.
     #[error(
         "{place}: the arc starts {start_mm:.4} mm and ends {end_mm:.4} mm from its centre; correct the centre or an end"
     )]
     ArcRadii { place: Place, start_mm: f64, end_mm: f64 },
+    /// An outline that crosses itself.
+    #[error(
+        "{place}: the outline crosses or touches itself at r = {r_mm:.4} mm, z = {z_mm:.4} mm; list its points in their order round the section"
+    )]
+    CrossesItself { place: Place, r_mm: f64, z_mm: f64 },
+    /// The same point twice in a row.
+    #[error("{place}: value r = {r_mm:.4} mm, z = {z_mm:.4} mm: this point stands twice in a row; remove one")]
+    RepeatedPoint { place: Place, r_mm: f64, z_mm: f64 },
     /// An outline that is none.
     #[error("{place}: {source}")]
     Outline { place: Place, source: OutlineError },
@@ -247,6 +252,11 @@ pub(crate) fn shown(text: &str) -> String {
         short.push('…');
     }
     short
+}
+
+/// Millimetres with four decimals that are never more than the value, so that what a message allows is allowed.
+fn rounded_down(mm: f64) -> String {
+    format!("{:.4}", (1e4 * mm + 1e-6).floor() / 1e4)
 }
 
 fn near_text(near: &str) -> String {

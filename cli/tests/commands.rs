@@ -113,14 +113,111 @@ fn the_schema_is_json_and_accepts_the_example() {
 fn check_prints_what_was_understood_and_draws_the_section() {
     let folder = tempfile::tempdir().unwrap();
     let job = job_in(folder.path(), heated);
-    let png = folder.path().join("section.png");
-    let said = say(&["check", path_text(&job), "--draw", path_text(&png)]);
+    let (png, section) = (folder.path().join("mesh.png"), folder.path().join("section.png"));
+    let said = say(&["check", path_text(&job), "--draw", path_text(&png), "--draw-section", path_text(&section)]);
     assert_eq!(said.code, 0, "{}", said.err);
     // delta = sqrt(rho / (pi f mu0)) = 2.7 mm for 28 nohm m at 1 kHz: closed form.
     for word in ["sphere", "aluminium", "workpiece", "2.7", "50.00 kA/m", "stage `soak`: for 5", "triangles"] {
         assert!(said.out.contains(word), "{word} is missing in\n{}", said.out);
     }
-    assert!(fs::read(&png).unwrap().starts_with(b"\x89PNG\r\n\x1a\n"));
+    assert!(said.out.contains("surface of `sphere`: emissivity"), "{}", said.out);
+    let (whole, section) = (fs::read(&png).unwrap(), fs::read(&section).unwrap());
+    assert!(whole.starts_with(b"\x89PNG\r\n\x1a\n") && section.starts_with(b"\x89PNG\r\n\x1a\n"));
+    assert_ne!(whole, section);
+    let close = ["check", path_text(&job), "--draw", path_text(&png), "--close-up", "18 mm, 5mm,0.4 cm", "--quiet"];
+    assert_eq!(say(&close).code, 0);
+    assert_ne!(fs::read(&png).unwrap(), whole, "a close-up is another picture");
+}
+
+#[test]
+fn a_close_up_without_units_or_without_a_drawing_is_refused_with_exit_2() {
+    for words in ["18 mm, 5 mm", "18, 5, 4", "18 mm, 5 mm, 0 mm", "18 mm, 5 mm, 2 V", ""] {
+        let said = say(&["check", "job.json", "--draw", "mesh.png", "--close-up", words]);
+        assert!(said.code == 2 && said.err.contains("--close-up"), "{words}: {}", said.err);
+    }
+    assert_eq!(say(&["check", "job.json", "--close-up", "18 mm, 5 mm, 4 mm"]).code, 2);
+}
+
+/// A bar in a lining it touches, in a coil of bare turns that touch each other.
+const CROWDED: &str = r#"{
+    "title": "crowded",
+    "parts": [
+        { "name": "bar", "role": "workpiece", "material": "C45", "start": "1500 °C",
+          "shape": { "cylinder": { "diameter": "60 mm", "length": "100 mm" } } },
+        { "name": "shell", "role": "lining", "material": "mica", "outside": { "held_at": "60 °C" }, "top": "insulated",
+          "shape": { "tube": { "inner_diameter": "60 mm", "outer_diameter": "70 mm", "length": "80 mm" } } } ],
+    "coils": [ { "name": "coil", "winding": { "helix": { "turns": 5, "inner_diameter": "76 mm", "pitch": "10 mm" } },
+        "conductor": { "solid_bar": { "axial": "10 mm", "radial": "4 mm" } }, "material": "copper" } ],
+    "supply": { "frequency": "2 kHz", "hold": { "coil_current": "100 A" } },
+    "heating": { "start": "20 °C", "ambient": "20 °C", "stages": [ { "name": "heat", "for": "1 s" } ] }
+}"#;
+
+#[test]
+fn check_tells_gaps_contacts_and_what_they_mean() {
+    let folder = tempfile::tempdir().unwrap();
+    let path = folder.path().join("crowded.json");
+    fs::write(&path, CROWDED).unwrap();
+    let said = say(&["check", path_text(&path)]);
+    assert_eq!(said.code, 0, "{}", said.err);
+    for words in [
+        "`bar` and `shell`: touch along 80.0 mm",
+        "`shell` and `coil`: 3.00 mm apart",
+        "turns of `coil`: touch along 16.0 mm",
+        "outside held at 60 °C; top insulated",
+        "turns of coil `coil` touch each other as bare metal",
+        "parts `bar` and `shell` touch along 80.0 mm",
+        "part `bar` starts at 1500 °C, above its solidus",
+    ] {
+        assert!(said.out.contains(words), "{words} is missing in\n{}", said.out);
+    }
+    assert!(!said.out.contains("too close to tell apart"), "{}", said.out);
+}
+
+#[test]
+fn what_is_too_close_to_tell_apart_is_told_by_check_and_carried_by_the_result() {
+    let folder = tempfile::tempdir().unwrap();
+    // Two discs 0.1 nm apart: points closer than 2e-9 of the meshed space are one.
+    let job = job_in(folder.path(), |job| {
+        job["parts"] = json!([
+            { "name": "lower", "role": "workpiece", "material": "aluminium",
+              "shape": { "disc": { "diameter": "40 mm", "from": "-10 mm", "to": "0 mm" } } },
+            { "name": "upper", "role": "workpiece", "material": "aluminium",
+              "shape": { "disc": { "diameter": "40 mm", "from": "0.0000001 mm", "to": "10 mm" } } }
+        ]);
+        job["mirror_planes"] = json!([]);
+    });
+    let said = say(&["check", path_text(&job)]);
+    assert_eq!(said.code, 0, "{}", said.err);
+    let words =
+        "part `upper` comes too close to part `lower` to tell the two apart: 2 corners moved by at most 1.0e-7 mm";
+    assert!(said.out.contains(words) && said.out.contains("2 corners and 0 lines too close"), "{}", said.out);
+    let out = folder.path().join("result");
+    let run = say(&["run", path_text(&job), "--out", path_text(&out), "--quiet", "--without-fields"]);
+    assert_eq!(run.code, 0, "{}", run.err);
+    let summary = summary(&out);
+    let merges = &summary["mesh"]["merges"];
+    assert_eq!(merges["corners_moved"], 2, "{merges}");
+    assert!((merges["largest_move_m"].as_f64().unwrap() - 1e-10).abs() < 1e-16, "{merges}");
+    let told = |list: &Value| list.as_array().unwrap().iter().any(|w| w.to_string().contains("comes too close"));
+    assert!(told(&summary["warnings"]) && told(&merges["moves"]));
+}
+
+#[test]
+fn a_run_without_fields_leaves_out_only_these() {
+    let folder = tempfile::tempdir().unwrap();
+    let job = job_in(folder.path(), heated);
+    let place = |name: &str| folder.path().join(name);
+    let (with, without) = (place("with"), place("without"));
+    for (out, more) in [(&with, None), (&without, Some("--without-fields"))] {
+        let words: Vec<&str> =
+            ["run", path_text(&job), "--out", path_text(out), "-q"].into_iter().chain(more).collect();
+        assert_eq!(say(&words).code, 0);
+    }
+    assert!(with.join("run.pvd").is_file() && with.join("fields/0000.vtu").is_file());
+    assert!(!without.join("run.pvd").exists() && !without.join("fields").exists());
+    for name in ["summary.json", "states.csv", "history.csv", "job.json", "maps/mesh.png"] {
+        assert_eq!(fs::read(with.join(name)).unwrap(), fs::read(without.join(name)).unwrap(), "{name}");
+    }
 }
 
 #[test]
@@ -154,7 +251,28 @@ fn a_run_writes_the_whole_folder_and_prints_a_digest() {
         assert!(said.out.contains(word), "{word} is missing in\n{}", said.out);
     }
     assert!(said.err.contains("stage heat (1 of 2) starts"), "{}", said.err);
-    assert_eq!(summary(&out)["outcome"], "complete");
+    let summary = summary(&out);
+    assert_eq!(summary["outcome"], "complete");
+    mesh_block_adds_up(&summary["mesh"]);
+}
+
+/// The figures of the mesh agree with each other.
+fn mesh_block_adds_up(mesh: &Value) {
+    let whole = |value: &Value, key: &str| value[key].as_u64().unwrap_or_else(|| unreachable!("{key} in {value}"));
+    let regions = &mesh["regions"];
+    let parts = regions["parts"].as_object().unwrap().values();
+    let coils = regions["coils"].as_object().unwrap().values();
+    let all: Vec<&Value> = std::iter::once(&regions["air"]).chain(parts).chain(coils).collect();
+    for key in ["triangles", "strip_triangles"] {
+        assert_eq!(all.iter().map(|r| whole(r, key)).sum::<u64>(), whole(mesh, key), "{key}");
+    }
+    let counted: u64 = mesh["min_angle_counts"].as_array().unwrap().iter().filter_map(Value::as_u64).sum();
+    assert_eq!(counted, whole(mesh, "triangles") - whole(mesh, "strip_triangles"));
+    let number = |value: &Value, key: &str| value[key].as_f64().unwrap();
+    let least = all.iter().map(|r| number(r, "shortest_edge_m")).fold(f64::INFINITY, f64::min);
+    assert_eq!(least, number(mesh, "shortest_edge_m"));
+    assert!(number(mesh, "min_angle_deg") < number(mesh, "mean_min_angle_deg"));
+    assert!(mesh["notes"].is_array() && mesh["merges"]["moves"].is_array());
 }
 
 #[test]

@@ -115,6 +115,30 @@ fn a_fillet_at_an_acute_corner_removes_the_area_of_geometry() {
 }
 
 #[test]
+fn corners_beside_arcs_are_rounded_and_cut() {
+    // Quarter disc of radius 20: a fillet of 4 at the flat side touches it at sqrt((20 - 4)^2 - 4^2) mm.
+    let arc = |key: &str, size: &str| {
+        let mut arc = json!({ "to": ["0 mm", "20 mm"], "centre": ["0 mm", "0 mm"], "direction": "counter-clockwise" });
+        if !key.is_empty() {
+            arc[key] = json!(size);
+        }
+        json!({ "arc": arc })
+    };
+    let fillet = json!({ "fillet": { "at": ["20 mm", "0 mm"], "radius": "4 mm" } });
+    let rounded = part(&json!({ "profile": [["0 mm", "0 mm"], fillet, arc("", "")] })).outline;
+    let touch = 240f64.sqrt() * 1e-3;
+    assert!((rounded.point(0, 1.0).unwrap()[0] - touch).abs() < 1e-12);
+    // The same corner on the other side, at the end of the arc: the disc is its own mirror image.
+    let top = part(&json!({ "profile": [["0 mm", "0 mm"], ["20 mm", "0 mm"], arc("fillet", "4 mm")] })).outline;
+    assert!((top.area() - rounded.area()).abs() < 1e-15);
+    let cut = part(&json!({ "profile": [["0 mm", "0 mm"], ["20 mm", "0 mm"], arc("chamfer", "4 mm")] })).outline;
+    // The chamfer runs from 4 mm along the arc, an angle of 1/5, to 4 mm down the axis.
+    let (angle, whole) = (0.2f64, 0.25 * PI * 400.0);
+    let removed = 0.5 * 400.0 * angle - 0.5 * 16.0 * 20.0 * angle.sin();
+    assert!((1e6 * cut.area() - (whole - removed)).abs() < 1e-9, "{} mm2", 1e6 * cut.area());
+}
+
+#[test]
 fn an_arc_with_a_rounded_centre_ends_where_it_was_told() {
     let arc = json!({ "arc": { "to": ["7.0711 mm", "7.0711 mm"], "centre": ["0 mm", "0 mm"], "direction": "counter-clockwise" } });
     let area = 1e6 * part(&json!({ "profile": [["0 mm", "0 mm"], ["10 mm", "0 mm"], arc] })).outline.area();

@@ -6,7 +6,7 @@
 use std::f64::consts::PI;
 use std::sync::Arc;
 
-use coilwright::export::pictures::{Picture, PictureError, draw_all, draw_all_named, draw_mesh, draw_section};
+use coilwright::export::pictures::{CloseUp, Picture, PictureError, draw_all, draw_all_named, draw_mesh, draw_section};
 use mesher::{Drawing, Limits, Outline, Point, Region, RegionId};
 use num_complex::Complex64;
 use solver::model::Mirrors;
@@ -477,9 +477,45 @@ fn the_section_is_filled_by_part_and_the_mesh_shows_its_lines() {
     let count = |image: &Pixels, colour: [u8; 3]| image.bytes.chunks(3).filter(|c| *c == colour).count();
     let (bar, copper) = (count(&drawn, [198, 214, 232]), count(&drawn, [224, 158, 110]));
     assert!(bar > 50_000 && copper > 4000, "{bar} pixels of the bar, {copper} of copper");
-    let mesh = decoded(&draw_mesh(&section, "a section").unwrap());
+    let mesh = decoded(&draw_mesh(&section, None, "a section").unwrap());
     let [left, right, top, bottom] = rim(&mesh);
     let blue = |x: usize, y: usize| mesh.at(x, y) == [198, 214, 232];
+    assert!(count(&mesh, [198, 214, 232]) > 10_000, "the bar's own colour, there are no strips");
     let middle = (left..right).filter(|&x| blue(x, (3 * top + bottom) / 4 + 20)).count();
     assert!(bottom > top && middle < (right - left) * 9 / 10, "mesh lines cover part of the bar: {middle}");
+}
+
+/// Half of the light blue of the first part, half of the colour that marks strips.
+const STRIP_IN_BAR: [u8; 3] = [187, 125, 171];
+
+#[test]
+fn strips_are_marked_in_the_mesh_and_a_close_up_shows_them_large() {
+    let layers = Some(mesher::Layers { first: 0.001, growth: 1.5, count: 4 });
+    let bar = Region { layers, ..region(1, rectangle([0.0, RADIUS], [-HALF_LENGTH, HALF_LENGTH]), 0.006) };
+    let drawing = Drawing {
+        domain: Outline::half_disc(0.0, 0.3).unwrap(),
+        domain_region: RegionId(0),
+        domain_size: 0.04,
+        regions: vec![bar],
+        gradation: 0.4,
+        boundary_size: None,
+    };
+    let mesh = mesher::triangulate(&drawing, &Limits::default(), &|| false).unwrap();
+    assert!(mesh.strip_triangles().iter().any(|&s| s));
+    let nodes = Arc::new(mesh.nodes(2));
+    let regions = vec![RegionName::Air, RegionName::Part(0, "billet".into())];
+    let section =
+        Section { mesh: Arc::new(mesh), nodes, regions, mirrors: Mirrors::None, open_boundary: Some((0.3, 0.0)) };
+    let share = |close_up| {
+        let image = decoded(&draw_mesh(&section, close_up, "strips").unwrap());
+        let marked = image.bytes.chunks(3).filter(|c| *c == STRIP_IN_BAR).count();
+        marked as f64 / (image.width * image.height) as f64
+    };
+    let whole = share(None);
+    assert!(whole > 0.02, "{whole}");
+    // A square of 4 mm at the surface, the inner three quarters of it in the strip.
+    let close = share(Some(CloseUp { r_m: RADIUS - 0.001, z_m: 0.0, width_m: 0.004 }));
+    assert!(close > 0.15, "{close}");
+    let core = share(Some(CloseUp { r_m: 0.005, z_m: 0.0, width_m: 0.004 }));
+    assert!(core < 0.001, "the core is in no strip, the legend shows its colour: {core}");
 }

@@ -2,7 +2,7 @@
 //! metres; an outline is the domain's or that of a region, by its index in the drawing.
 
 use crate::drawing::Drawing;
-use crate::ids::{Point, distance};
+use crate::ids::{Point, RegionId, distance};
 use crate::span::Span;
 
 /// Share of the domain's extent under which two points differ by rounding alone.
@@ -24,6 +24,8 @@ pub struct Merge {
     pub at: Point,
     /// The outline that gave way and the one it was brought to; of equals, the earlier one second.
     pub outlines: [OutlineOf; 2],
+    /// Identities of the regions of the two; for the outline of the domain that of the domain.
+    pub regions: [RegionId; 2],
     /// What was done.
     pub kind: MergeKind,
 }
@@ -66,13 +68,22 @@ pub(crate) struct Record {
     /// The outline that placed each node.
     owners: Vec<OutlineOf>,
     merges: Vec<Merge>,
+    domain_region: RegionId,
+    regions: Vec<RegionId>,
     tolerance: f64,
     rounding: f64,
 }
 
 impl Record {
     pub(crate) fn new(drawing: &Drawing, tolerance: f64) -> Self {
-        Self { owners: Vec::new(), merges: Vec::new(), tolerance, rounding: ROUNDING * drawing.extent() }
+        Self {
+            owners: Vec::new(),
+            merges: Vec::new(),
+            domain_region: drawing.domain_region,
+            regions: drawing.regions.iter().map(|r| r.id).collect(),
+            tolerance,
+            rounding: ROUNDING * drawing.extent(),
+        }
     }
 
     /// Distance under which two points are one, in metres.
@@ -92,6 +103,9 @@ impl Record {
         let moved_m = distance(wanted, at);
         if moved_m > self.rounding {
             self.moved(outline, node, at, MergeKind::CornerMoved { moved_m });
+        } else if let Some(owner) = self.owners.get_mut(node as usize).filter(|o| **o == OutlineOf::Domain) {
+            // A corner that stands on the edge of the domain says more than the edge.
+            *owner = outline;
         }
     }
 
@@ -105,22 +119,29 @@ impl Record {
 
     fn moved(&mut self, outline: OutlineOf, node: u32, at: Point, kind: MergeKind) {
         let other = self.owners.get(node as usize).copied().unwrap_or(outline);
-        self.merges.push(Merge { at, outlines: [outline, other], kind });
+        self.add(at, [outline, other], kind);
+    }
+
+    fn add(&mut self, at: Point, outlines: [OutlineOf; 2], kind: MergeKind) {
+        let regions = outlines.map(|of| match of {
+            OutlineOf::Domain => self.domain_region,
+            OutlineOf::Region(index) => self.regions[index],
+        });
+        self.merges.push(Merge { at, outlines, regions, kind });
     }
 
     /// Two spans meet at a point that is not an end of both.
     pub(crate) fn meeting(&mut self, (a, b): (OutlineOf, OutlineOf), (s, t): (&Span, &Span), at: Point) {
         let end = |span: &Span| distance(span.start, at).min(distance(span.end, at)) <= 2.0 * self.tolerance;
         if a != b && !(end(s) && end(t)) {
-            self.merges.push(Merge { at, outlines: [b, a], kind: MergeKind::Divided });
+            self.add(at, [b, a], MergeKind::Divided);
         }
     }
 
     /// A stretch of an outline is one that another outline has brought.
     pub(crate) fn shared(&mut self, outline: OutlineOf, other: OutlineOf, span: &Span) {
         if outline != other {
-            let kind = MergeKind::Shared { length_m: span.length() };
-            self.merges.push(Merge { at: span.at(0.5), outlines: [outline, other], kind });
+            self.add(span.at(0.5), [outline, other], MergeKind::Shared { length_m: span.length() });
         }
     }
 

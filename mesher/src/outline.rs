@@ -3,7 +3,7 @@
 //! follow those of the outline itself. Source: elementary plane geometry.
 
 use crate::error::OutlineError;
-use crate::ids::{Point, along, distance, left_of, sub};
+use crate::ids::{Point, along, cross, distance, left_of, sub};
 use crate::intersect::meetings;
 use crate::span::{Kind, Span};
 
@@ -81,10 +81,15 @@ impl Outline {
             return Err(OutlineError::NotClosed { gap });
         }
         let area: f64 = spans.iter().map(|s| s.area_about(start)).sum();
-        if area.abs() <= 1e-12 * extent * extent || area.is_nan() {
+        let nothing = area.abs() <= 1e-12 * extent * extent || area.is_nan();
+        // The lobes of a figure of eight may add up to nothing: its crossing is what is wrong with it.
+        if nothing && is_straight(&spans, extent) {
             return Err(OutlineError::NoArea { area: area.abs() });
         }
         check_crossings(&spans, 1e-11 * extent)?;
+        if nothing {
+            return Err(OutlineError::NoArea { area: area.abs() });
+        }
         if area < 0.0 {
             spans = spans.iter().rev().map(Span::reversed).collect();
         }
@@ -158,6 +163,11 @@ impl Outline {
     /// The point of piece `piece`, holes counted on, at parameter `t` in 0..1 (in proportion to length); `None` if there is no such piece.
     pub fn point(&self, piece: usize, t: f64) -> Option<Point> {
         self.spans.get(piece).map(|s| s.at(t))
+    }
+
+    /// Whether piece `piece`, holes counted on, is an arc; false if there is no such piece.
+    pub fn is_arc(&self, piece: usize) -> bool {
+        self.spans.get(piece).is_some_and(|s| matches!(s.kind, Kind::Arc { .. }))
     }
 
     /// Enclosed area in square metres, arcs included exactly, holes left out.
@@ -236,6 +246,16 @@ impl Outline {
     pub(crate) fn spans(&self) -> &[Span] {
         &self.spans
     }
+}
+
+/// Whether all pieces lie on one line.
+fn is_straight(spans: &[Span], extent: f64) -> bool {
+    let start = spans[0].start;
+    let reach = |s: &Span| distance(start, s.end);
+    let Some(far) = spans.iter().max_by(|a, b| reach(a).total_cmp(&reach(b))) else { return true };
+    let direction = sub(far.end, start);
+    let off = |s: &Span| cross(direction, sub(s.end, start)).abs();
+    spans.iter().all(|s| s.kind == Kind::Line && off(s) <= 1e-12 * extent * extent)
 }
 
 fn bounds_of(spans: &[Span]) -> (Point, Point) {

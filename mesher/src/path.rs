@@ -7,6 +7,7 @@ use crate::ids::{Point, along, between, cross, distance, dot, left_of, sub};
 use crate::intersect::{circle_circle, line_circle};
 use crate::outline::{Outline, Piece};
 use crate::span::{Kind, Span};
+use std::f64::consts::TAU;
 
 /// How far the ends of an arc may differ in their distance from the centre, over the greater one: rounded dimensions pass.
 const ARC_MISMATCH: f64 = 1e-3;
@@ -139,13 +140,16 @@ impl Path {
         Outline::new(start, pieces)
     }
 
-    /// Drops a last point that only repeats the start, keeping the arc that leads there.
+    /// Drops a last point that only repeats the start, keeping the arc that leads there and the treatment of either.
     fn join_ends(&mut self) {
         if let [first, .., last] = self.nodes.as_mut_slice()
             && first.at == last.at
-            && last.treatment == Treatment::Sharp
+            && (first.treatment == Treatment::Sharp || last.treatment == Treatment::Sharp)
         {
             first.arc = last.arc;
+            if first.treatment == Treatment::Sharp {
+                first.treatment = last.treatment;
+            }
             self.nodes.pop();
         }
     }
@@ -285,12 +289,30 @@ fn centres(before: &Span, after: &Span, left: f64) -> Vec<Point> {
 
 /// The fillet about a centre, if it touches both pieces between their ends.
 fn touching(before: &Span, after: &Span, centre: Point, radius: f64) -> Option<Cut> {
-    let (t, u) = (before.project(centre), after.project(centre));
+    let (t, u) = (foot(before, centre)?, foot(after, centre)?);
     let (reach, leave) = (before.at(t), after.at(u));
     let scale = radius + before.length() + after.length();
     let touches = |p: Point| (distance(p, centre) - radius).abs() <= 1e-9 * scale;
     let taken = [(1.0 - t) * before.length(), u * after.length()];
     (touches(reach) && touches(leave)).then_some(Cut { reach, leave, round: Some((centre, true)), taken })
+}
+
+/// Parameter of the point of a piece whose normal passes through `p`; none beyond its ends.
+fn foot(span: &Span, p: Point) -> Option<f64> {
+    let t = match span.kind {
+        Kind::Line => {
+            let d = sub(span.end, span.start);
+            dot(d, sub(p, span.start)) / dot(d, d)
+        }
+        Kind::Arc { centre, from, sweep, .. } => {
+            let u = sub(p, centre);
+            let turned = ((u[1].atan2(u[0]) - from) * sweep.signum()).rem_euclid(TAU);
+            // What lies between the end and the start is beyond the nearer of the two.
+            let beyond = turned - sweep.abs();
+            if beyond > 0.0 && beyond > TAU - turned { (turned - TAU) / sweep.abs() } else { turned / sweep.abs() }
+        }
+    };
+    (-ROUNDING..=1.0 + ROUNDING).contains(&t).then_some(t.clamp(0.0, 1.0))
 }
 
 /// The refusal of a corner that does not fit into the room it has on both sides, with the largest size that does.

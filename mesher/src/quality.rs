@@ -41,18 +41,20 @@ pub struct Quality {
 impl Mesh {
     /// Shape measures of the mesh.
     pub fn quality(&self) -> Quality {
-        self.quality_of(&(0..self.triangles.len()).collect::<Vec<_>>())
+        self.quality_of(0..self.triangles.len())
     }
 
     /// Shape measures of every region, in the order of their identities.
     pub fn quality_by_region(&self) -> Vec<(RegionId, Quality)> {
         let mut order: Vec<usize> = (0..self.triangles.len()).collect();
         order.sort_by_key(|&t| self.regions[t]);
-        let of_region = |group: &[usize]| (self.regions[group[0]], self.quality_of(group));
+        let of_region = |group: &[usize]| (self.regions[group[0]], self.quality_of(group.iter().copied()));
         order.chunk_by(|&a, &b| self.regions[a] == self.regions[b]).map(of_region).collect()
     }
 
-    fn quality_of(&self, triangles: &[usize]) -> Quality {
+    /// Shape measures of some triangles.
+    pub fn quality_of(&self, triangles: impl IntoIterator<Item = usize>) -> Quality {
+        let triangles: Vec<usize> = triangles.into_iter().collect();
         let strip_triangles = triangles.iter().filter(|&&t| self.strip[t]).count();
         let all_strip = strip_triangles == triangles.len();
         let measured = triangles.iter().filter(|&&t| all_strip || !self.strip[t]);
@@ -63,7 +65,7 @@ impl Mesh {
         for angle in &angles {
             least_angle_counts[((angle / ANGLE_CLASS_DEG) as usize).min(11)] += 1;
         }
-        let [shortest, longest] = self.edge_extremes_squared(triangles);
+        let [shortest, longest] = self.edge_extremes_squared(&triangles);
         let jacobians = triangles.iter().map(|&t| self.least_jacobian(t));
         Quality {
             triangles: angles.len(),

@@ -97,3 +97,13 @@ fn what_lies_outside_the_domain_is_not_told() {
     let mesh = mesh(&drawing(rectangle([0.0, 0.0], [0.8, 0.6]), 0.1, vec![inside, one, other]));
     assert!(mesh.merges().is_empty(), "{:?}", mesh.merges());
 }
+
+#[test]
+fn a_corner_moved_onto_the_corner_of_another_region_on_the_edge_of_the_domain_names_the_region() {
+    let lower = region(RegionId(1), rectangle([0.0, 0.1], [0.2, 0.2]), 0.02, 0.02, None);
+    let upper = region(RegionId(2), rectangle([0.0, 0.2 + 1e-9], [0.2, 0.3]), 0.02, 0.02, None);
+    let mesh = mesh(&drawing(rectangle([0.0, 0.0], [0.8, 0.6]), 0.1, vec![lower, upper]));
+    let moved: Vec<&Merge> = mesh.merges().iter().filter(|m| m.kind.moved_m() > 0.0).collect();
+    assert_eq!(moved.len(), 2, "{moved:?}");
+    assert!(moved.iter().all(|m| m.outlines == [RIGHT, LEFT] && m.regions == [RegionId(2), RegionId(1)]), "{moved:?}");
+}

@@ -164,6 +164,13 @@ fn the_limit_in_a_refusal_is_the_largest_that_fits() {
     };
     assert!((limit - 0.5).abs() < 1e-9, "{limit}");
     assert!(wedge(limit * (1.0 - 1e-9)).is_ok() && wedge(limit * (1.0 + 1e-6)).is_err());
+    // Between lines a fillet takes its radius off each at a right angle; the shorter line is 1 long.
+    let squared =
+        |radius: f64| Outline::path([0.0, 0.0]).line_to([1.0, 0.0]).fillet(radius).line_to([1.0, 3.0]).close();
+    let Err(OutlineError::CornerTooLarge { limit, .. }) = squared(1.2) else {
+        unreachable!("a fillet of 1.2 does not fit on a side of 1")
+    };
+    assert!((limit - 1.0).abs() < 1e-9, "{limit}");
     let chamfered = |size: f64| Outline::path([0.0, 0.0]).line_to([1.0, 0.0]).chamfer(size).line_to([0.0, 3.0]).close();
     let Err(OutlineError::CornerTooLarge { limit, what, .. }) = chamfered(2.0) else {
         unreachable!("a chamfer of 2 does not fit on a side of 1")
@@ -185,6 +192,11 @@ fn every_fault_of_a_path_has_its_own_refusal() {
     let twice = Outline::path([0.0, 0.0]).line_to([0.0, 0.0]).line_to([1.0, 0.0]).line_to([0.0, 1.0]);
     assert!(matches!(twice.close(), Err(OutlineError::ZeroLength { piece: 0, .. })));
     let bow = Outline::path([0.0, 0.0]).line_to([1.0, 1.0]).line_to([1.0, 0.0]).line_to([0.0, 0.8]);
+    let even = Outline::path([0.0, 0.0]).line_to([1.0, 1.0]).line_to([1.0, 0.0]).line_to([0.0, 1.0]);
+    assert!(
+        matches!(even.close(), Err(OutlineError::SelfCrossing { at: [0.5, 0.5], .. })),
+        "its lobes add up to nothing"
+    );
     let refusal = bow.close().unwrap_err();
     assert!(matches!(refusal, OutlineError::SelfCrossing { .. }) && refusal.to_string().contains("crosses or touches"));
 }

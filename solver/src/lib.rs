@@ -4,6 +4,7 @@
 //! clock or touches a file. Lengths are metres, temperatures kelvin, phasors peak values with `e^{+jwt}`; names that
 //! end in `_rms` hold rms values.
 
+pub mod clearance;
 pub mod constants;
 pub mod coupling;
 pub mod error;
@@ -13,6 +14,7 @@ pub mod layout;
 pub mod linalg;
 pub mod magnetics;
 pub mod material;
+pub mod mesh_report;
 pub mod model;
 pub mod observe;
 pub mod overview;

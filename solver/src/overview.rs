@@ -4,9 +4,11 @@ use std::sync::Arc;
 
 use mesher::{Limits, Mesh, NodeSet};
 
+use crate::clearance::{Neighbours, neighbours};
 use crate::error::SolveError;
 use crate::fem::space::Space;
 use crate::layout::{Layout, layout, skin_depth_at};
+use crate::mesh_report::MeshReport;
 use crate::model::{Mirrors, Model};
 use crate::results::{RegionName, Section, Warning};
 use crate::warnings;
@@ -70,22 +72,15 @@ pub struct Overview {
     /// The meshed section.
     pub section: Section,
     /// Size and quality of the mesh.
-    pub mesh: MeshNumbers,
+    pub mesh: MeshReport,
+    /// Nodes of the elements.
+    pub nodes: usize,
+    /// How far bodies stand apart, and where they touch.
+    pub neighbours: Vec<Neighbours>,
     /// One a part.
     pub parts: Vec<PartOverview>,
     /// What can be said before the solve.
     pub warnings: Vec<Warning>,
-}
-
-/// Size and quality of a mesh.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct MeshNumbers {
-    /// Triangles.
-    pub triangles: usize,
-    /// Nodes of the elements.
-    pub nodes: usize,
-    /// Smallest angle in degrees.
-    pub min_angle_deg: f64,
 }
 
 /// What is known of a part before the solve.
@@ -119,15 +114,13 @@ pub fn overview(model: &Model, stop: &dyn Fn() -> bool) -> Result<Overview, Solv
             mass_kg: volume * part.material.density_kg_per_m3,
         })
         .collect();
-    let quality = meshed.mesh.quality();
+    let section = meshed.section(model);
     Ok(Overview {
-        mesh: MeshNumbers {
-            triangles: meshed.mesh.triangles().len(),
-            nodes: meshed.nodes.points.len(),
-            min_angle_deg: quality.min_angle_deg,
-        },
+        mesh: MeshReport::of(&section),
+        nodes: meshed.nodes.points.len(),
+        neighbours: neighbours(model, &meshed),
         parts,
         warnings: warnings::before_solve(model, &meshed),
-        section: meshed.section(model),
+        section,
     })
 }

@@ -82,7 +82,7 @@ pub enum WarningKind {
     SkinUnresolved,
     /// The supply reached a limit.
     SupplyLimit,
-    /// A part began to melt.
+    /// A part began to melt, or is molten from the start.
     Melting,
     /// A part crossed its Curie point.
     Curie,
@@ -98,6 +98,8 @@ pub enum WarningKind {
     StrandLoss,
     /// Parts that touch are in perfect contact.
     PerfectContact,
+    /// Bare metal of a coil touches itself or something else that conducts.
+    BareContact,
     /// The mesher had to change or give up something.
     Mesh,
     /// The cooling water is warmer than usual practice allows.

@@ -1,12 +1,14 @@
 //! What the reader of a result must know, in words.
 
-use mesher::{MeshNote, NoteReason, Outline};
+use mesher::Outline;
 
+use crate::clearance::{is_bare_metal, neighbours};
 use crate::constants::ZERO_CELSIUS_K;
 use crate::material::{RangeNote, RangeUse};
+use crate::mesh_report::{self, Body};
 use crate::model::{ConductorKind, Model, Part, Role};
 use crate::overview::Meshed;
-use crate::results::{Electrical, RegionName, Warning, WarningKind};
+use crate::results::{Electrical, Warning, WarningKind};
 
 /// A disagreement of the Poynting check that is worth a word; the power of a part is then uncertain by about as much.
 const POYNTING_LIMIT: f64 = 0.02;
@@ -65,30 +67,51 @@ pub fn before_solve(model: &Model, meshed: &Meshed) -> Vec<Warning> {
     for part in &model.parts {
         part_warnings(model, part, &mut out);
     }
-    for note in meshed.mesh.notes() {
-        out.add(WarningKind::Mesh, mesh_note(&meshed.layout.regions, note));
+    contact_warnings(model, meshed, &mut out);
+    let (mesh, regions) = (&meshed.mesh, &meshed.layout.regions);
+    for text in mesh_report::notes(mesh, regions).into_iter().chain(mesh_report::moves(mesh, regions)) {
+        out.add(WarningKind::Mesh, text);
     }
     out.into_vec()
 }
 
-fn mesh_note(regions: &[RegionName], note: &MeshNote) -> String {
-    let place = match regions.get(note.region.0 as usize) {
-        Some(RegionName::Part(_, name)) => format!("part `{name}`"),
-        Some(RegionName::Turn(_, _, coil)) => format!("turns of coil `{coil}`"),
-        Some(RegionName::Air) | None => "air".to_owned(),
-    };
-    match note.reason {
-        NoteReason::LayersCut { placed, wanted } => format!(
-            "{place}: {placed} of {wanted} skin layers fit into the wall or fillet; the skin is resolved less deep there"
-        ),
-        NoteReason::NoStrip { size } => {
-            format!("{place}: no skin layers fit; triangles of {:.3} mm stand in for them", 1e3 * size)
+/// What follows from bodies that touch.
+fn contact_warnings(model: &Model, meshed: &Meshed, out: &mut Warnings) {
+    for pair in neighbours(model, meshed).iter().filter(|n| n.touch()) {
+        let coil = pair.bodies.iter().any(|b| matches!(b, Body::Coil(_)));
+        if coil && pair.bodies.iter().all(|b| is_bare_metal(model, b)) {
+            let what = match &pair.bodies {
+                [Body::Coil(one), Body::Coil(other)] if one == other => {
+                    format!("turns of coil `{one}` touch each other")
+                }
+                [one, other] => format!("{} and {} touch", body_words(one), body_words(other)),
+            };
+            let text = format!(
+                "{what} as bare metal: they are solved as if insulated from each other, and in the plant they would be \
+                 short-circuited; leave a gap for the insulation"
+            );
+            out.add(WarningKind::BareContact, text);
         }
-        NoteReason::ArcStraightened => {
-            format!(
-                "{place}: where an arc touches another curve its edges are meshed straight, which moves the surface a little"
-            )
+        if let [Body::Part(one), Body::Part(other)] = &pair.bodies
+            && model.heating.is_some()
+            && pair.contact_m > 0.0
+            && model.parts.iter().filter(|p| p.name == *one || p.name == *other).all(|p| p.role.is_heated())
+        {
+            let text = format!(
+                "parts `{one}` and `{other}` touch along {:.1} mm of the section: heat passes between them without contact \
+                 resistance",
+                1e3 * pair.contact_m
+            );
+            out.add(WarningKind::PerfectContact, text);
         }
+    }
+}
+
+fn body_words(body: &Body) -> String {
+    match body {
+        Body::Air => "air".to_owned(),
+        Body::Part(name) => format!("part `{name}`"),
+        Body::Coil(name) => format!("coil `{name}`"),
     }
 }
 
@@ -102,6 +125,16 @@ fn part_warnings(model: &Model, part: &Part, out: &mut Warnings) {
             part.name
         );
         out.add(WarningKind::LinearPermeability, text);
+    }
+    if let Some(melting) = part.material.melting.as_ref().filter(|m| part.start_k > m.solidus_k) {
+        let text = format!(
+            "part `{}` starts at {:.0} °C, above its solidus of {:.0} °C: it is solved as a body at rest, flow of the melt \
+             is not followed",
+            part.name,
+            part.start_k - ZERO_CELSIUS_K,
+            melting.solidus_k - ZERO_CELSIUS_K
+        );
+        out.add(WarningKind::Melting, text);
     }
     if model.heating.is_some() && part.role == Role::Lining {
         for inner in model.parts.iter().filter(|p| p.role.is_heated() && encloses(&part.outline, &p.outline)) {

@@ -3,8 +3,13 @@
 use std::io::Write;
 use std::sync::atomic::Ordering;
 
+use solver::clearance::Neighbours;
 use solver::constants::skin_depth;
-use solver::model::{Coil, ConductorKind, Drive, Gauge, Heating, Hold, Limits, Mirrors, Model, Role, Stage, StageEnd};
+use solver::mesh_report::Body;
+use solver::model::{
+    Coil, ConductorKind, Drive, Face, FaceCondition, Gauge, Heating, Hold, Limits, Mirrors, Model, Role, Stage,
+    StageEnd, Surface,
+};
 use solver::overview::{Overview, overview};
 
 use super::{on_threads, print, read_job};
@@ -25,13 +30,16 @@ pub(super) fn check(
     out: &mut dyn Write,
     surroundings: &Surroundings,
 ) -> Result<Exit, Failure> {
-    if let Some(path) = &arguments.draw {
+    for path in arguments.draw.iter().chain(&arguments.draw_section) {
         picture_path(path)?;
     }
     let (_, model) = read_job(&arguments.job)?;
     let stop = || surroundings.stop.load(Ordering::Relaxed);
     let seen = on_threads(how, || overview(&model, &stop))??;
     if let Some(path) = &arguments.draw {
+        write_file(path, &pictures::draw_mesh(&seen.section, arguments.close_up, &model.title)?.png)?;
+    }
+    if let Some(path) = &arguments.draw_section {
         write_file(path, &pictures::draw_section(&seen.section, &model.title)?.png)?;
     }
     if !how.quiet {
@@ -46,9 +54,11 @@ fn account(model: &Model, seen: &Overview) -> String {
     page.line(&model.title);
     parts(&mut page, model, seen);
     coils(&mut page, model);
+    neighbours(&mut page, &seen.neighbours);
     drive(&mut page, model);
     if let Some(heating) = &model.heating {
         stages(&mut page, model, heating);
+        surfaces(&mut page, model);
     }
     mesh(&mut page, model, seen);
     if !seen.warnings.is_empty() {
@@ -198,11 +208,92 @@ fn stage_line(stage: &Stage, gauges: &[Gauge]) -> String {
     format!("  stage `{}`: {end}{hold}", stage.name)
 }
 
-fn mesh(page: &mut Page, model: &Model, seen: &Overview) {
-    let size = seen.mesh;
+/// Gaps between bodies, and where they touch.
+fn neighbours(page: &mut Page, neighbours: &[Neighbours]) {
+    if neighbours.is_empty() {
+        return;
+    }
     page.gap();
-    page.line(format!("Mesh: {} triangles of order {}, {} nodes", size.triangles, model.mesh.order, size.nodes));
-    page.line(format!("  smallest angle {:.1} deg, away from the strips along surfaces", size.min_angle_deg));
+    page.line("Gaps, in the section");
+    for pair in neighbours {
+        let what = match &pair.bodies {
+            [one, other] if one == other => format!("turns of {}", body_name(one)),
+            [one, other] => format!("{} and {}", body_name(one), body_name(other)),
+        };
+        let apart = match (pair.touch(), pair.contact_m > 0.0) {
+            (_, true) => format!("touch along {}", millimetres(pair.contact_m)),
+            (true, false) => "touch".to_owned(),
+            (false, false) => format!("{} apart", millimetres(pair.gap_m)),
+        };
+        page.line(format!("  {what}: {apart}"));
+    }
+}
+
+fn body_name(body: &Body) -> String {
+    match body {
+        Body::Air => "air".to_owned(),
+        Body::Part(name) | Body::Coil(name) => format!("`{name}`"),
+    }
+}
+
+/// What happens at the surfaces of heated parts.
+fn surfaces(page: &mut Page, model: &Model) {
+    for part in model.parts.iter().filter(|part| part.role.is_heated()) {
+        let mut words = vec![exchange_words(part.surface)];
+        words.extend(
+            part.faces.iter().map(|(face, condition)| format!("{} {}", face_word(*face), condition_words(*condition))),
+        );
+        page.line(format!("  surface of `{}`: {}", part.name, words.join("; ")));
+    }
+}
+
+fn exchange_words(surface: Surface) -> String {
+    let convection = significant(surface.convection_w_per_m2_k, 3);
+    format!("emissivity {}, convection {convection} W/m2/K", significant(surface.emissivity, 2))
+}
+
+fn face_word(face: Face) -> &'static str {
+    match face {
+        Face::Outside => "outside",
+        Face::Inside => "inside",
+        Face::Top => "top",
+        Face::Bottom => "bottom",
+    }
+}
+
+fn condition_words(condition: FaceCondition) -> String {
+    match condition {
+        FaceCondition::Exchange(surface) => format!("with {}", exchange_words(surface)),
+        FaceCondition::HeldAt(kelvin) => format!("held at {}", degc(kelvin)),
+        FaceCondition::Flux(flux) => format!("takes up {}", si(flux, "W/m2")),
+        FaceCondition::Insulated => "insulated".to_owned(),
+    }
+}
+
+fn mesh(page: &mut Page, model: &Model, seen: &Overview) {
+    let (report, whole) = (&seen.mesh, &seen.mesh.whole);
+    page.gap();
+    page.line(format!(
+        "Mesh: {} triangles of order {}, {} nodes; {} of the triangles in thin strips along surfaces",
+        report.triangles, model.mesh.order, seen.nodes, whole.strip_triangles
+    ));
+    page.line(format!(
+        "  away from strips: smallest angle {:.1} deg, mean of the smallest {:.1} deg, {:.1} % of them from 30 to 40 deg",
+        whole.min_angle_deg,
+        whole.mean_min_angle_deg,
+        100.0 * whole.share_30_to_40
+    ));
+    let (shortest, longest) = (millimetres(whole.shortest_edge_m), millimetres(whole.longest_edge_m));
+    page.line(format!("  edges from {shortest} to {longest}"));
+    let merges = report.merges;
+    if merges.corners_moved + merges.lines_moved > 0 {
+        page.line(format!(
+            "  {} and {} too close to tell apart, moved by at most {}",
+            count(merges.corners_moved, "corner"),
+            count(merges.lines_moved, "line"),
+            millimetres(merges.largest_move_m)
+        ));
+    }
     if let Some((radius_m, _)) = seen.section.open_boundary {
         page.line(format!("  open boundary at a radius of {}", millimetres(radius_m)));
     }

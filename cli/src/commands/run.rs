@@ -38,17 +38,18 @@ pub(super) fn run(
     let solve = begun.elapsed().saturating_sub(read);
 
     let finished = Finished { model: &model, results: &results };
-    on_threads(how, || write_folder(folder, &job, finished, how, (begun, read, solve)))??;
+    let fields = !arguments.without_fields;
+    on_threads(how, || write_folder(folder, &job, finished, (how, fields), (begun, read, solve)))??;
     tell(arguments, how, out, err, finished, surroundings)?;
     Ok(Exit::of(&results.outcome))
 }
 
-/// Writes every file, the summary last.
+/// Writes every file, the summary last; those of the fields only where they are wanted.
 fn write_folder(
     mut folder: Folder,
     job: &Job,
     run: Finished<'_>,
-    how: &How,
+    (how, fields): (&How, bool),
     (begun, read, solve): (Instant, Duration, Duration),
 ) -> Result<(), Failure> {
     let results = run.results;
@@ -57,10 +58,12 @@ fn write_folder(
     folder.write("states.csv", &export::states::table(run)?)?;
     folder.write("history.csv", &export::history::table(run)?)?;
     folder.write("turns.csv", &export::turns::table(run)?)?;
-    for (index, snapshot) in results.snapshots.iter().enumerate() {
-        folder.write(&export::pvd::snapshot_name(index), &export::vtu::snapshot(results, snapshot)?)?;
+    if fields {
+        for (index, snapshot) in results.snapshots.iter().enumerate() {
+            folder.write(&export::pvd::snapshot_name(index), &export::vtu::snapshot(results, snapshot)?)?;
+        }
+        folder.write("run.pvd", &export::pvd::collection(&results.snapshots)?)?;
     }
-    folder.write("run.pvd", &export::pvd::collection(&results.snapshots)?)?;
     let gauges: Vec<String> = run.model.gauges.iter().map(|gauge| gauge.name.clone()).collect();
     for picture in export::pictures::draw_all_named(results, &gauges)? {
         folder.write(&picture.name, &picture.png)?;

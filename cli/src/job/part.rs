@@ -295,9 +295,9 @@ pub enum ProfileStep {
 pub enum ProfileCurve {
     /// A circular arc from the point before it.
     Arc(ProfileArc),
-    /// A corner between two straight lines, rounded.
+    /// A corner that a straight line leads to, rounded; a line or an arc may follow.
     Fillet(ProfileFillet),
-    /// A corner between two straight lines, cut off.
+    /// A corner that a straight line leads to, cut off; a line or an arc may follow.
     Chamfer(ProfileChamfer),
 }
 
@@ -311,6 +311,12 @@ pub struct ProfileArc {
     pub centre: SectionPoint,
     /// Direction of travel, with r to the right and z up.
     pub direction: Direction,
+    /// Radius by which the corner at its end is rounded.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub fillet: Option<Quantity<Length>>,
+    /// Length by which the corner at its end is cut off, along both of its sides.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub chamfer: Option<Quantity<Length>>,
 }
 
 /// Direction of travel along an arc.
@@ -339,6 +345,6 @@ pub struct ProfileFillet {
 pub struct ProfileChamfer {
     /// The corner `[r, z]` before it is cut.
     pub at: SectionPoint,
-    /// Length taken off each of the two lines.
+    /// Length taken off each of the two sides.
     pub size: Quantity<Length>,
 }

@@ -21,8 +21,17 @@ mod supply;
 
 use solver::model::{MeshSettings, Model};
 
-use crate::job::Job;
+use crate::job::units::Length;
+use crate::job::{Job, Place, Quantity};
 use crate::job_error::JobError;
+
+/// A length as it is written in a job, in metres, for options of the command line.
+///
+/// # Errors
+/// Text without a number or a unit of length, a value beyond 100 m.
+pub fn length_m(text: &str) -> Result<f64, JobError> {
+    amount::read(&Quantity::<Length>::of(text), &Place::file("command line"), amount::POSITION).map(|amount| amount.si)
+}
 
 /// What a job means, in SI units.
 ///

@@ -114,7 +114,11 @@ pub(crate) fn meanings() -> Vec<Bad> {
                 "/parts/1/shape",
                 json!({ "profile": [["35 mm", "0 mm"], ["38 mm", "9 mm"], ["38 mm", "0 mm"], ["35 mm", "9 mm"]] }),
             ),
-            &["parts.liner.shape.profile", "outline"],
+            &[
+                "parts.liner.shape.profile",
+                "crosses or touches itself at r = 36.5000 mm, z = 4.5000 mm",
+                "in their order",
+            ],
         ),
         bad(
             "profile that touches itself",
@@ -122,7 +126,7 @@ pub(crate) fn meanings() -> Vec<Bad> {
                 "/parts/1/shape",
                 json!({ "profile": [["34 mm", "0 mm"], ["38 mm", "0 mm"], ["38 mm", "9 mm"], ["36 mm", "0 mm"], ["34 mm", "9 mm"]] }),
             ),
-            &["parts.liner.shape.profile", "may not cross or touch itself"],
+            &["parts.liner.shape.profile", "touches itself at r = 36.0000 mm, z = 0.0000 mm", "in their order"],
         ),
         bad(
             "profile that begins with an arc",
@@ -146,7 +150,39 @@ pub(crate) fn meanings() -> Vec<Bad> {
                 "/parts/1/shape",
                 json!({ "profile": [["35 mm", "0 mm"], { "fillet": { "at": ["38 mm", "0 mm"], "radius": "4 mm" } }, ["38 mm", "9 mm"], ["35 mm", "9 mm"]] }),
             ),
-            &["profile[1]", "4 mm", "3.0000 mm left", "reduce"],
+            &["profile[1].fillet.radius", "4 mm", "at most 3.0000 mm", "reduce"],
+        ),
+        bad(
+            "fillet larger than its arc",
+            Set(
+                "/parts/1/shape",
+                json!({ "profile": [["0 mm", "150 mm"], ["10 mm", "150 mm"], { "arc": { "to": ["0 mm", "160 mm"], "centre": ["0 mm", "150 mm"], "direction": "counter-clockwise", "fillet": "9 mm" } }] }),
+            ),
+            &["profile[2].arc.fillet", "9 mm", "at most 5.0000 mm", "reduce"],
+        ),
+        bad(
+            "fillet and chamfer at one corner",
+            Set(
+                "/parts/1/shape",
+                json!({ "profile": [["0 mm", "150 mm"], ["10 mm", "150 mm"], { "arc": { "to": ["0 mm", "160 mm"], "centre": ["0 mm", "150 mm"], "direction": "counter-clockwise", "fillet": "1 mm", "chamfer": "1 mm" } }] }),
+            ),
+            &["profile[2].arc", "fillet", "chamfer", "remove one"],
+        ),
+        bad(
+            "fillet on a straight line",
+            Set(
+                "/parts/1/shape",
+                json!({ "profile": [["34 mm", "0 mm"], { "fillet": { "at": ["36 mm", "0 mm"], "radius": "1 mm" } }, ["38 mm", "0 mm"], ["38 mm", "9 mm"]] }),
+            ),
+            &["profile[1]", "straight on", "remove"],
+        ),
+        bad(
+            "point twice in a row",
+            Set(
+                "/parts/1/shape",
+                json!({ "profile": [["34 mm", "0 mm"], ["38 mm", "0 mm"], ["38 mm", "0 mm"], ["38 mm", "9 mm"]] }),
+            ),
+            &["profile", "r = 38.0000 mm, z = 0.0000 mm", "twice in a row", "remove"],
         ),
         bad(
             "placed twice",

@@ -1,4 +1,4 @@
-//! The dimensioned section and the mesh. Dimensions are in millimetres, diameters marked so, as on a shop drawing.
+//! The dimensioned section. Dimensions are in millimetres, diameters marked so, as on a shop drawing.
 
 use solver::model::Mirrors;
 use solver::results::RegionName;
@@ -8,7 +8,8 @@ use super::canvas::{Align, Canvas, GREY_INK, INK, lettering};
 use super::frame::{Frame, Margins, is_turned};
 use super::heading::{HEADING, Heading};
 use super::image::Rgb;
-use super::layer::{AIR, COPPER, OUTLINE, kind_colour, paint_kinds, stroke_edges, stroke_outlines};
+use super::labels::name_parts;
+use super::layer::{AIR, COPPER, OUTLINE, kind_colour, paint_kinds, stroke_outlines};
 use super::sheet::{Extent, Sheet};
 use super::ticks::millimetres;
 use super::window::Window;
@@ -23,8 +24,8 @@ const MOST_ROWS: usize = 8;
 const ENTRY: f64 = 38.0;
 /// Most entries of the list of bodies.
 const MOST_ENTRIES: usize = 12;
-const TEXT: f64 = 25.0;
-const MESH_LINE: Rgb = [96, 104, 120];
+pub(super) const TEXT: f64 = 25.0;
+const LEAST_TEXT: f64 = 17.0;
 
 /// A body with its sizes.
 struct Body {
@@ -74,34 +75,11 @@ pub(super) fn section(sheet: &Sheet<'_>, title: &str) -> Result<Canvas, PictureE
     for (row, dimension) in beside.iter().enumerate() {
         draw_beside(&mut canvas, &frame, dimension, frame.to[0] + 50.0 + ROW * row as f64)?;
     }
-    name_parts(&mut canvas, &frame, &bodies)?;
+    name_parts(&mut canvas, &frame, sheet)?;
     list(&mut canvas, &frame, &bodies)?;
     let side = if window.both_sides { "" } else { ", one side of the axis" };
     let note = format!("dimensions in mm, cold{side}");
     Heading { title: "Section".into(), job: title.to_owned(), note }.draw(&mut canvas)?;
-    Ok(canvas)
-}
-
-/// Draws all triangles over the section.
-pub(super) fn mesh(sheet: &Sheet<'_>, title: &str) -> Result<Canvas, PictureError> {
-    let window = Window::round(sheet, MARGIN);
-    let frame = Frame::fit(window, Margins { left: 140.0, right: 60.0, top: HEADING, bottom: 110.0 });
-    let mut half = frame.half_plane(AIR);
-    let view = frame.view();
-    paint_kinds(&mut half, &view, sheet);
-    stroke_edges(&mut half, &view, sheet, &sheet.edges(), 1.3, MESH_LINE);
-    let outlines = sheet.outlines(|kind| !matches!(kind, RegionName::Air));
-    stroke_edges(&mut half, &view, sheet, &outlines, 2.4, OUTLINE);
-    let mut canvas = Canvas::new(frame.size[0], frame.size[1])?;
-    frame.put(&half, &mut canvas);
-    frame.axes(&mut canvas)?;
-    let note = format!(
-        "{} triangles of order {}, {} nodes; the meshed half plane and its mirror image, without the far air",
-        sheet.element_count(),
-        sheet.order,
-        sheet.points.len()
-    );
-    Heading { title: "Mesh".into(), job: title.to_owned(), note }.draw(&mut canvas)?;
     Ok(canvas)
 }
 
@@ -262,24 +240,6 @@ fn arrow(canvas: &mut Canvas, tip: [f64; 2], direction: [f64; 2]) {
     }
 }
 
-/// Writes the names of parts into them where they find room: off the axis, and off the middle, where a mirror plane may be.
-fn name_parts(canvas: &mut Canvas, frame: &Frame, bodies: &[Body]) -> Result<(), PictureError> {
-    for body in bodies.iter().filter(|b| b.turns.is_none()) {
-        let Extent { r, z } = body.extent;
-        let (a, b) = (frame.place([r[0], 0.5 * (z[0] + z[1])]), frame.place([r[1], z[1]]));
-        let width = canvas.text_width(&body.name, TEXT)?;
-        let (room, height) = ((b[0] - a[0]).abs(), (b[1] - a[1]).abs());
-        if width + 16.0 < room && height > 1.3 * TEXT {
-            let at = [0.5 * (a[0] + b[0]), 0.5 * (a[1] + b[1]) + 0.31 * TEXT];
-            canvas.text(&body.name, at, lettering(TEXT, Align::Centre))?;
-        } else if width + 16.0 < height && room > 1.3 * TEXT {
-            let at = [0.5 * (a[0] + b[0]) + 0.31 * TEXT, 0.5 * (a[1] + b[1])];
-            canvas.text_upwards(&body.name, at, lettering(TEXT, Align::Centre))?;
-        }
-    }
-    Ok(())
-}
-
 /// The list of bodies with their sizes and places, below the map.
 fn list(canvas: &mut Canvas, frame: &Frame, bodies: &[Body]) -> Result<(), PictureError> {
     let left = 60.0;
@@ -287,8 +247,11 @@ fn list(canvas: &mut Canvas, frame: &Frame, bodies: &[Body]) -> Result<(), Pictu
     for body in bodies.iter().take(MOST_ENTRIES) {
         canvas.fill([left, baseline - 20.0], [left + 34.0, baseline + 2.0], body.colour);
         canvas.frame([left, baseline - 20.0], [left + 34.0, baseline + 2.0], 1.2, OUTLINE);
-        let text = canvas.shortened(&description(body), TEXT, canvas.width() - left - 80.0)?;
-        canvas.text(&text, [left + 50.0, baseline], lettering(TEXT, Align::Left))?;
+        let (text, room) = (description(body), canvas.width() - left - 80.0);
+        // A long line is set smaller before it is cut.
+        let size = (TEXT * room / canvas.text_width(&text, TEXT)?).clamp(LEAST_TEXT, TEXT).floor();
+        let text = canvas.shortened(&text, size, room)?;
+        canvas.text(&text, [left + 50.0, baseline], lettering(size, Align::Left))?;
         baseline += ENTRY;
     }
     if bodies.len() > MOST_ENTRIES {

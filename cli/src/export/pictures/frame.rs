@@ -91,6 +91,19 @@ impl Frame {
         Self { turned, window, half, scale, from, to, size: size.map(|v| v.ceil() as usize) }
     }
 
+    /// A square window in a square of `side` pixels whose upper left corner is `at`.
+    pub(super) fn inside(window: Window, turned: bool, at: [f64; 2], side: f64) -> Self {
+        let scale = side * OVERSAMPLING as f64 / (window.r[1] - window.r[0]);
+        let from = at.map(f64::floor);
+        let half = [side as usize * OVERSAMPLING; 2];
+        Self { turned, window, half, scale, from, to: from.map(|v| v + side), size: [0; 2] }
+    }
+
+    /// Pixels of the picture a metre.
+    pub(super) fn pixels_per_metre(&self) -> f64 {
+        self.scale / OVERSAMPLING as f64
+    }
+
     /// The view of the half plane that is painted.
     pub(super) fn view(&self) -> View {
         View { left_r: self.window.r[0], top_z: self.window.z[0] + self.half[1] as f64 / self.scale, scale: self.scale }

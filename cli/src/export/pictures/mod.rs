@@ -15,8 +15,11 @@ mod flux_lines;
 mod frame;
 mod heading;
 mod image;
+mod labels;
 mod layer;
 mod map;
+mod mesh_legend;
+mod mesh_picture;
 mod profile_charts;
 mod profiles;
 mod raster;
@@ -30,6 +33,8 @@ use std::sync::Arc;
 
 use rayon::prelude::*;
 use solver::results::{Outcome, RegionName, Results, Section, Snapshot};
+
+pub use mesh_picture::CloseUp;
 
 use canvas::Canvas;
 use map::MapOf;
@@ -115,7 +120,7 @@ pub fn draw_all_named(results: &Results, gauges: &[String]) -> Result<Vec<Pictur
     let job = job.as_str();
     let mut tasks: Vec<Task<'_>> = vec![
         Task::new("maps/section.png", move || drawing::section(sheet, job)),
-        Task::new("maps/mesh.png", move || drawing::mesh(sheet, job)),
+        Task::new("maps/mesh.png", move || mesh_picture::draw(&results.section, sheet, None, job)),
     ];
     add_field_maps(&mut tasks, results, sheet, job);
     add_temperature_maps(&mut tasks, results, sheet, job);
@@ -136,13 +141,13 @@ pub fn draw_section(section: &Section, title: &str) -> Result<Picture, PictureEr
     drawing::section(&Sheet::new(section, &kinds)?, title)?.finish("maps/section.png".into())
 }
 
-/// The mesh over the section, `maps/mesh.png`.
+/// The mesh over the section, `maps/mesh.png`: all bodies, or the square that is asked for.
 ///
 /// # Errors
 /// The section does not fit its mesh, or the picture could not be made.
-pub fn draw_mesh(section: &Section, title: &str) -> Result<Picture, PictureError> {
+pub fn draw_mesh(section: &Section, close_up: Option<CloseUp>, title: &str) -> Result<Picture, PictureError> {
     let kinds = sheet::kinds(section)?;
-    drawing::mesh(&Sheet::new(section, &kinds)?, title)?.finish("maps/mesh.png".into())
+    mesh_picture::draw(section, &Sheet::new(section, &kinds)?, close_up, title)?.finish("maps/mesh.png".into())
 }
 
 /// A picture to be drawn.
@@ -296,6 +301,19 @@ fn heated_by_field(results: &Results) -> Vec<(usize, &str)> {
     parts
 }
 
+/// A count with thin spaces between thousands: `13 824`.
+fn grouped(count: usize) -> String {
+    let digits = count.to_string();
+    let mut text = String::new();
+    for (i, digit) in digits.chars().enumerate() {
+        if i > 0 && (digits.len() - i).is_multiple_of(3) {
+            text.push('\u{2009}');
+        }
+        text.push(digit);
+    }
+    text
+}
+
 /// A name as part of a file name: lower case letters, digits and hyphens.
 fn slug(name: &str) -> String {
     let mut text = String::new();
@@ -312,7 +330,14 @@ fn slug(name: &str) -> String {
 
 #[cfg(test)]
 mod tests {
-    use super::slug;
+    use super::{grouped, slug};
+
+    #[test]
+    fn thousands_are_set_apart() {
+        assert_eq!(grouped(7), "7");
+        assert_eq!(grouped(824), "824");
+        assert_eq!(grouped(1_013_824), "1\u{2009}013\u{2009}824");
+    }
 
     #[test]
     fn names_become_plain_file_names() {

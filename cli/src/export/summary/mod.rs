@@ -1,11 +1,13 @@
 //! `summary.json`: the numbers of a run, nested by name, keys ending in their unit. No wall times, no `NaN`: a number that
 //! does not exist is `null`. Voltages and currents are rms; temperatures degrees Celsius, differences kelvin.
 
+mod mesh;
 mod shape;
 
 pub use shape::{
-    CoilEntry, CountNumbers, EndTemperatures, EndedEarly, EnergyNumbers, EnergyPerTonne, Goal, MeshNumbers, Named,
-    PartEntry, PartTemperatureEntry, StateNumbers, Summary, TerminalNumbers, Totals, WarningEntry,
+    CoilEntry, CountNumbers, EndTemperatures, EndedEarly, EnergyNumbers, EnergyPerTonne, Goal, MergeEntry, MeshNumbers,
+    Named, PartEntry, PartTemperatureEntry, RegionEntries, RegionEntry, StateNumbers, Summary, TerminalNumbers, Totals,
+    WarningEntry,
 };
 use solver::model::{Gauge, StageEnd};
 use solver::results::{
@@ -40,7 +42,7 @@ pub fn summary(run: Finished<'_>) -> Summary {
         ended_early,
         warnings,
         version: env!("CARGO_PKG_VERSION"),
-        mesh: mesh_numbers(run),
+        mesh: mesh::numbers(run),
         counts: count_numbers(results.counts),
         totals: totals(run),
         states: first_and_last(run),
@@ -84,22 +86,11 @@ pub fn warning_word(kind: WarningKind) -> &'static str {
         WarningKind::RingModel => "ring_model",
         WarningKind::StrandLoss => "strand_loss",
         WarningKind::PerfectContact => "perfect_contact",
+        WarningKind::BareContact => "bare_contact",
         WarningKind::Mesh => "mesh",
         WarningKind::Water => "water",
         WarningKind::PoyntingCheck => "poynting_check",
         WarningKind::HoldMissed => "hold_missed",
-    }
-}
-
-fn mesh_numbers(run: Finished<'_>) -> MeshNumbers {
-    let (section, counts) = (&run.results.section, &run.results.counts);
-    MeshNumbers {
-        triangles: section.mesh.triangles().len(),
-        nodes: section.nodes.points.len(),
-        field_unknowns: counts.field_unknowns,
-        heat_unknowns: counts.heat_unknowns,
-        order: section.nodes.order,
-        min_angle_deg: finite(section.mesh.quality().min_angle_deg),
     }
 }
 

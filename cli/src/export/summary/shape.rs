@@ -66,11 +66,15 @@ pub struct WarningEntry {
     pub text: String,
 }
 
-/// The mesh.
+/// The mesh. Angles are those of triangles away from the thin strips along surfaces, as straight-sided ones.
 #[derive(Debug, Clone, Serialize)]
 pub struct MeshNumbers {
     /// Triangles.
     pub triangles: usize,
+    /// Of these, in thin strips along surfaces.
+    pub strip_triangles: usize,
+    /// Vertices of the triangles.
+    pub vertices: usize,
     /// Nodes of the elements.
     pub nodes: usize,
     /// Unknowns of a field solve.
@@ -79,8 +83,69 @@ pub struct MeshNumbers {
     pub heat_unknowns: usize,
     /// Order of the elements.
     pub order: usize,
-    /// Smallest angle away from the thin strips along surfaces.
+    /// Smallest angle.
     pub min_angle_deg: Option<f64>,
+    /// Mean over triangles of the smallest angle.
+    pub mean_min_angle_deg: Option<f64>,
+    /// Share of triangles whose smallest angle is from 30 to 40 degrees.
+    pub share_of_min_angles_30_to_40_deg: Option<f64>,
+    /// Triangles by their smallest angle, 5 degrees a class: 0 to 5, 5 to 10, ... 55 to 60.
+    pub min_angle_counts: [usize; 12],
+    /// Shortest edge, strips included.
+    pub shortest_edge_m: Option<f64>,
+    /// Longest edge, strips included.
+    pub longest_edge_m: Option<f64>,
+    /// By body.
+    pub regions: RegionEntries,
+    /// Where the mesh differs from what was asked for, in words.
+    pub notes: Vec<String>,
+    /// What outlines have in common, or were made to have.
+    pub merges: MergeEntry,
+}
+
+/// Figures of the mesh by body.
+#[derive(Debug, Clone, Serialize)]
+pub struct RegionEntries {
+    /// Air, bores of tubes included.
+    pub air: RegionEntry,
+    /// One a part.
+    pub parts: Named<RegionEntry>,
+    /// One a coil, all of its turns together.
+    pub coils: Named<RegionEntry>,
+}
+
+/// The mesh of a body. Angles away from its strips, unless it has nothing else.
+#[derive(Debug, Clone, Serialize)]
+pub struct RegionEntry {
+    /// Triangles.
+    pub triangles: usize,
+    /// Of these, in thin strips.
+    pub strip_triangles: usize,
+    /// Smallest angle.
+    pub min_angle_deg: Option<f64>,
+    /// Mean over triangles of the smallest angle.
+    pub mean_min_angle_deg: Option<f64>,
+    /// Shortest edge.
+    pub shortest_edge_m: Option<f64>,
+    /// Longest edge.
+    pub longest_edge_m: Option<f64>,
+}
+
+/// How often outlines were made to meet.
+#[derive(Debug, Clone, Serialize)]
+pub struct MergeEntry {
+    /// Corners moved onto a point too close to tell apart.
+    pub corners_moved: usize,
+    /// Lines bent to pass through such a point.
+    pub lines_moved: usize,
+    /// Places where lines that cross or touch were divided.
+    pub lines_divided: usize,
+    /// Stretches that two outlines have in common.
+    pub stretches_shared: usize,
+    /// Largest distance by which anything was moved.
+    pub largest_move_m: Option<f64>,
+    /// What was moved, in words.
+    pub moves: Vec<String>,
 }
 
 /// Work done.
