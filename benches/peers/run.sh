@@ -12,4 +12,18 @@ venv="$target/peers/venv"
 [ -x "$venv/bin/python" ] || python3 -m venv "$venv"
 "$venv/bin/pip" install --quiet --disable-pip-version-check -r benches/peers/requirements.txt
 
+# UMFPACK is in no PyPI package that needs no compiler: Debian's, unpacked beside the venv.
+debian="$target/peers/debian"
+if [ ! -d "$debian" ] && command -v apt-get dpkg-deb >/dev/null; then
+    mkdir -p "$debian.part"
+    if (cd "$debian.part" && apt-get download --quiet libumfpack5 libcholmod3 libamd2 libcamd2 libcolamd2 libccolamd2 \
+        libsuitesparseconfig5 libmetis5 libopenblas0-pthread libgfortran5 libquadmath0 libgomp1); then
+        for package in "$debian.part"/*.deb; do dpkg-deb -x "$package" "$debian.part"; done
+        mv "$debian.part" "$debian"
+    fi
+fi
+libraries="$(find "$debian" -name libumfpack.so.5 -printf '%h\n' 2>/dev/null | head -n 1)"
+
 [ "$what" = solvers ] || "$venv/bin/python" benches/peers/meshers.py "$target/release/sections"
+[ "$what" = meshers ] || LD_LIBRARY_PATH="$libraries:$libraries/openblas-pthread" \
+    "$venv/bin/python" benches/peers/solvers.py "$target/release/systems"
