@@ -1,5 +1,5 @@
 """MKL PARDISO through ctypes. Convention: upper triangle by rows, numbers from 0; complex symmetric (mtype 6) or real positive definite
-(mtype 2). Source: the reference of oneMKL, `pardiso` and its `iparm`.
+(mtype 2). Other parameters are the library's own, ordering by parallel METIS among them. Source: the reference of oneMKL, `pardiso` and its `iparm`.
 """
 
 import ctypes
@@ -41,6 +41,7 @@ class Pardiso:
         self.mkl.pardisoinit(self._at(self.handle), ctypes.byref(ctypes.c_int(self.mtype)), self._at(self.iparm))
         self.iparm[34] = 1  # numbers from 0
         self.iparm[17] = -1  # count the entries of the factor
+        self.iparm[7] = 0  # no refinement of solutions (the default is two steps): the others make none
         self.none = np.zeros(1, dtype=self.dtype)
 
     @staticmethod
