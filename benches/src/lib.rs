@@ -4,4 +4,9 @@
 pub mod angles;
 pub mod boundary;
 pub mod devices;
+pub mod dump;
+pub mod memory;
 pub mod sections;
+pub mod solving;
+pub mod systems;
+pub mod whole;

@@ -15,7 +15,7 @@ use crate::fem::assemble::Scatter;
 use crate::fem::element::point_values;
 use crate::fem::reference::MAX_NODES;
 use crate::fem::space::Space;
-use crate::linalg::{Pattern, Plan};
+use crate::linalg::{Pattern, Plan, SymmetricMatrix};
 use crate::model::{Gauge, Mirrors, Model};
 use crate::results::{EnergyBalance, PartTemperatures};
 
@@ -103,6 +103,14 @@ impl HeatProblem {
             rate_k_per_s: vec![0.0; self.operator.space.len()],
             energy: EnergyBalance { workpiece_mass_kg, ..EnergyBalance::default() },
         }
+    }
+
+    /// Matrix of a stage's equations at a state: heat capacities in J/K plus conductances times `weight_s`, in seconds. Held faces
+    /// are free in it.
+    pub fn matrix(&self, state: &HeatState, weight_s: f64) -> SymmetricMatrix<f64> {
+        let mut matrix = SymmetricMatrix::zeros(Arc::clone(self.plan.pattern()));
+        self.operator.add_tangent(&self.scatter, &state.temperature_k, weight_s, &mut matrix.values);
+        matrix
     }
 
     /// Temperature of each gauge in the order of the model, kelvin.

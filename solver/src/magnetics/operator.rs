@@ -111,6 +111,17 @@ impl Operator {
         self.source.len()
     }
 
+    /// Elimination plan of the system.
+    pub fn plan(&self) -> &Arc<Plan> {
+        &self.plan
+    }
+
+    /// Assembles the system with the given properties.
+    pub fn matrix(&mut self, properties: &PointProperties) -> &SymmetricMatrix<Complex64> {
+        self.assemble(properties);
+        &self.matrix
+    }
+
     /// Border unknown of an element's turn, if it is in a solid turn.
     pub fn border_of_element(&self, e: usize) -> Option<u32> {
         self.border_of_element[e]
