@@ -41,6 +41,7 @@ fn section(order: usize) -> Section {
         regions: vec![bar],
         gradation: 0.5,
         boundary_size: None,
+        line_sizes: Vec::new(),
     };
     let mesh = mesher::triangulate(&drawing, &Limits::default(), &|| false).unwrap();
     let nodes = mesh.nodes(order);

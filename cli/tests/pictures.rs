@@ -59,6 +59,7 @@ fn section(mirrored: bool, order: usize) -> Section {
         regions,
         gradation: 0.3,
         boundary_size: Some(0.05),
+        line_sizes: Vec::new(),
     };
     let mesh = mesher::triangulate(&drawing, &Limits::default(), &|| false).unwrap();
     let nodes = Arc::new(mesh.nodes(order));
@@ -499,6 +500,7 @@ fn strips_are_marked_in_the_mesh_and_a_close_up_shows_them_large() {
         regions: vec![bar],
         gradation: 0.4,
         boundary_size: None,
+        line_sizes: Vec::new(),
     };
     let mesh = mesher::triangulate(&drawing, &Limits::default(), &|| false).unwrap();
     assert!(mesh.strip_triangles().iter().any(|&s| s));

@@ -31,6 +31,17 @@ pub struct Region {
     pub layers: Option<Layers>,
 }
 
+/// A smaller element size along one piece of a region's outline.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct LineSize {
+    /// Index of the region in the drawing.
+    pub region: usize,
+    /// Piece of its outline.
+    pub piece: usize,
+    /// Element size along it, in metres.
+    pub size: f64,
+}
+
 /// A section to be meshed.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Drawing {
@@ -46,6 +57,8 @@ pub struct Drawing {
     pub gradation: f64,
     /// Element size along the arcs of the domain outline, in metres; `domain_size` if not given.
     pub boundary_size: Option<f64>,
+    /// Pieces of outlines along which elements are to be smaller than their region's size.
+    pub line_sizes: Vec<LineSize>,
 }
 
 /// What a mesh may cost.
@@ -88,6 +101,16 @@ impl Drawing {
         if let Some(boundary) = self.boundary_size {
             size("the element size along the domain's arcs in metres", boundary)?;
         }
+        for line in &self.line_sizes {
+            size("the element size along a piece of an outline in metres", line.size)?;
+            let pieces = self.regions.get(line.region).map_or(0, |r| r.outline.len());
+            within(
+                "the number of pieces of an outline with a size of its own",
+                pieces as f64,
+                line.piece as f64,
+                f64::MAX,
+            )?;
+        }
         for region in &self.regions {
             size("a region's interior element size in metres", region.interior_size)?;
             size("a region's surface element size in metres", region.surface_size)?;
@@ -102,7 +125,8 @@ impl Drawing {
 
     /// Smallest element size asked for, in metres.
     pub(crate) fn smallest(&self) -> f64 {
-        self.regions.iter().fold(self.domain_size, |least, r| least.min(r.interior_size).min(r.surface_size))
+        let regions = self.regions.iter().map(|r| r.interior_size.min(r.surface_size));
+        regions.chain(self.line_sizes.iter().map(|line| line.size)).fold(self.domain_size, f64::min)
     }
 
     /// Index into the side convention of the topmost region at a point inside the domain.

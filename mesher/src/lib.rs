@@ -39,7 +39,7 @@ mod tree;
 mod triangulate;
 
 pub use build::triangulate;
-pub use drawing::{Drawing, Layers, Limits, Region};
+pub use drawing::{Drawing, Layers, Limits, LineSize, Region};
 pub use error::{MeshDefect, MeshError, OutlineError};
 pub use ids::{CurveId, NO_TRIANGLE, Point, RegionId};
 pub use merges::{Merge, MergeKind, OutlineOf};

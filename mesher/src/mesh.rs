@@ -69,6 +69,7 @@ pub(crate) enum Bend {
 ///     regions: vec![Region { id: steel, outline: disc, interior_size: 0.004, surface_size: 0.003, layers: None }],
 ///     gradation: 0.4,
 ///     boundary_size: None,
+///     line_sizes: Vec::new(),
 /// };
 /// let mesh = triangulate(&drawing, &Limits::default(), &|| false)?;
 ///

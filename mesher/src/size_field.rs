@@ -80,6 +80,8 @@ pub(crate) fn wanted(drawing: &Drawing, stretch: &Stretch, max_turn: f64) -> f64
     if let (true, true, Some(boundary)) = (arc, stretch.sides.contains(&OUTSIDE), drawing.boundary_size) {
         size = size.min(boundary);
     }
+    let own = drawing.line_sizes.iter().filter(|line| stretch.on_regions.contains(&(line.region, line.piece)));
+    size = own.fold(size, |least, line| least.min(line.size));
     size.min(stretch.span.length() / f64::from(pieces_of_turn(&stretch.span, max_turn)))
 }
 

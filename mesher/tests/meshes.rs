@@ -4,7 +4,7 @@
 mod common;
 
 use common::{coil, mesh, region};
-use mesher::{Drawing, Layers, Limits, MeshError, NO_TRIANGLE, Outline, triangulate};
+use mesher::{Drawing, Layers, Limits, LineSize, MeshError, NO_TRIANGLE, Outline, triangulate};
 
 fn half_disc() -> Outline {
     Outline::half_disc(0.0, 0.5).unwrap()
@@ -134,4 +134,25 @@ fn largest_angle_deg(corners: [[f64; 2]; 3]) -> f64 {
         (u[0] * v[1] - u[1] * v[0]).atan2(u[0] * v[0] + u[1] * v[1]).to_degrees()
     };
     at(0).max(at(1)).max(at(2))
+}
+
+#[test]
+fn a_piece_of_an_outline_can_have_a_size_of_its_own() {
+    let mut section = coil(half_disc(), 0, None);
+    section.line_sizes = vec![LineSize { region: 0, piece: 2, size: 0.0005 }];
+    let mesh = mesh(&section);
+    let lengths = |piece: usize| -> Vec<f64> {
+        let own = |e: &&mesher::Edge| e.curve.is_some_and(|c| mesh.curve(c).on_regions.contains(&(0, piece)));
+        let length = |e: &mesher::Edge| {
+            let [a, b] = e.vertices.map(|v| mesh.vertices()[v as usize]);
+            (a[0] - b[0]).hypot(a[1] - b[1])
+        };
+        mesh.edges().iter().filter(own).map(length).collect()
+    };
+    let (fine, coarse) = (lengths(2), lengths(0));
+    assert!(fine.len() >= 55 && fine.iter().all(|&l| l < 0.00075), "{fine:?}");
+    assert!(coarse.iter().all(|&l| l > 0.002), "{coarse:?}");
+    section.line_sizes[0].piece = 4;
+    let refusal = triangulate(&section, &Limits::default(), &|| false).unwrap_err().to_string();
+    assert!(refusal.contains("piece"), "{refusal}");
 }

@@ -61,13 +61,19 @@ pub fn layout(model: &Model) -> Result<Layout, SolveError> {
             }
         }
     }
+    let largest = model.mesh.largest_m.unwrap_or(f64::INFINITY);
+    for region in &mut drawn {
+        region.interior_size = region.interior_size.min(largest);
+        region.surface_size = region.surface_size.min(largest);
+    }
     let drawing = Drawing {
         domain,
         domain_region: RegionId(0),
-        domain_size: extent / 6.0 / model.mesh.fineness,
+        domain_size: (extent / 6.0 / model.mesh.fineness).min(largest),
         regions: drawn,
         gradation: GRADATION / model.mesh.fineness.max(1.0),
         boundary_size: Some(extent / 14.0 / model.mesh.fineness),
+        line_sizes: Vec::new(),
     };
     Ok(Layout { drawing, regions, open_boundary, skin_depths_m })
 }

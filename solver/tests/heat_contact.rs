@@ -46,6 +46,7 @@ fn core_in_sleeve(
         regions: vec![region(0), region(1)],
         gradation: 0.4,
         boundary_size: None,
+        line_sizes: Vec::new(),
     };
     let mesh = Arc::new(triangulate(&drawing, &Limits::default(), &|| false).unwrap());
     let problem = HeatProblem::new(&mesh, &mesh.nodes(2), &[None, Some(0), Some(1)], &model).unwrap();

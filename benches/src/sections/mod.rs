@@ -105,5 +105,6 @@ fn in_half_disc(radius: f64, regions: Vec<Region>) -> Result<Drawing, OutlineErr
         regions,
         gradation: 0.4,
         boundary_size: Some(radius / 14.0),
+        line_sizes: Vec::new(),
     })
 }

@@ -94,7 +94,7 @@ pub struct Job {
 }
 
 /// How fine the mesh is.
-#[derive(Debug, Clone, Copy, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[derive(Debug, Clone, PartialEq, Serialize, Deserialize, JsonSchema)]
 #[serde(deny_unknown_fields, default)]
 pub struct Mesh {
     /// Elements through the first skin depth of a conducting surface.
@@ -103,6 +103,9 @@ pub struct Mesh {
     /// All sizes are divided by this.
     #[schemars(range(min = 0.1, max = 10.0))]
     pub fineness: f64,
+    /// Largest element anywhere; without it sizes follow the parts alone.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub largest: Option<Quantity<Length>>,
     /// Order of the elements: 1, 2 or 3.
     #[schemars(range(min = 1, max = 3))]
     pub order: u8,
@@ -117,6 +120,7 @@ impl Default for Mesh {
         Self {
             per_skin_depth: settings.per_skin_depth,
             fineness: settings.fineness,
+            largest: None,
             order: settings.order as u8,
             boundary_factor: settings.boundary_factor,
         }

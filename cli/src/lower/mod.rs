@@ -51,7 +51,9 @@ pub fn lower(job: &Job) -> Result<Model, JobError> {
     mirrors::check(mirrors, &parts, &coils, &place)?;
     let gauges = gauges::gauges(job, &parts, mirrors)?;
     let heating = heating::heating(job, &parts, &gauges)?;
+    let largest = place.key("mesh").key("largest");
     let mesh = MeshSettings {
+        largest_m: amount::read_optional(job.mesh.largest.as_ref(), &largest, amount::SIZE)?.map(|a| a.si),
         per_skin_depth: job.mesh.per_skin_depth,
         fineness: job.mesh.fineness,
         order: usize::from(job.mesh.order),

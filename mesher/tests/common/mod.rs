@@ -36,7 +36,15 @@ pub(crate) fn region(
 }
 
 pub(crate) fn drawing(domain: Outline, domain_size: f64, regions: Vec<Region>) -> Drawing {
-    Drawing { domain, domain_region: AIR, domain_size, regions, gradation: 0.4, boundary_size: None }
+    Drawing {
+        domain,
+        domain_region: AIR,
+        domain_size,
+        regions,
+        gradation: 0.4,
+        boundary_size: None,
+        line_sizes: Vec::new(),
+    }
 }
 
 pub(crate) fn rectangle(lo: Point, hi: Point) -> Outline {

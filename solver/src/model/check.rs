@@ -126,6 +126,9 @@ impl Model {
         let mesh = &self.mesh;
         Given("mesh fineness", mesh.fineness, "(no unit)").positive()?;
         Given("elements per skin depth", mesh.per_skin_depth, "(no unit)").positive()?;
+        if let Some(largest) = mesh.largest_m {
+            Given("largest element", largest, "m").positive()?;
+        }
         let factor = mesh.boundary_factor;
         Given("boundary factor", factor, "(no unit)").require(factor > 1.0, "a number above 1")?;
         let order = Given("order of the elements", mesh.order as f64, "(no unit)");

@@ -122,6 +122,8 @@ pub struct MeshSettings {
     pub per_skin_depth: f64,
     /// All sizes are divided by this (1 by default).
     pub fineness: f64,
+    /// Largest element anywhere, in metres; none by default.
+    pub largest_m: Option<f64>,
     /// Order of the elements: 1, 2 (default) or 3.
     pub order: usize,
     /// Radius of the open boundary over the smallest sphere that encloses everything (1.2 by default).
@@ -130,6 +132,6 @@ pub struct MeshSettings {
 
 impl Default for MeshSettings {
     fn default() -> Self {
-        Self { per_skin_depth: 3.0, fineness: 1.0, order: 2, boundary_factor: 1.2 }
+        Self { per_skin_depth: 3.0, fineness: 1.0, largest_m: None, order: 2, boundary_factor: 1.2 }
     }
 }

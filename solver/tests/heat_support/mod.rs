@@ -124,6 +124,7 @@ impl Body {
             }],
             gradation: 0.4,
             boundary_size: None,
+            line_sizes: Vec::new(),
         };
         let mesh = Arc::new(triangulate(&drawing, &Limits::default(), &|| false).unwrap());
         HeatProblem::new(&mesh, &mesh.nodes(self.order), &[None, Some(0)], &model).unwrap()
