@@ -82,15 +82,19 @@ fn attempt(
     stop: &dyn Fn() -> bool,
     max_turn: f64,
 ) -> Result<Mesh, MeshError> {
-    let (plan, field, notes) = plan(drawing, graph, max_turn);
-    if stop() {
-        return Err(MeshError::Stopped);
-    }
     let smallest = drawing.smallest();
     let within = |triangles: usize| {
         let limit = limits.max_triangles;
         if triangles <= limit { Ok(()) } else { Err(MeshError::TooManyTriangles { limit, smallest_m: smallest }) }
     };
+    let sizes: Vec<f64> = graph.stretches.iter().map(|s| wanted(drawing, s, max_turn)).collect();
+    // The edges of the outlines alone, before any of them is made.
+    within(graph.stretches.iter().zip(&sizes).map(|(s, size)| s.span.length() / size).sum::<f64>() as usize)?;
+    let enough = |edges: usize| edges > limits.max_triangles || stop();
+    let (plan, field, notes) = plan(drawing, graph, &sizes, max_turn, &enough);
+    if stop() {
+        return Err(MeshError::Stopped);
+    }
     within(plan.edges.len())?;
     let mut faces = constrained(drawing, graph, &plan)?;
     let caps: Vec<f64> = std::iter::once(drawing.domain_size)
@@ -109,18 +113,23 @@ fn attempt(
     Ok(mesh)
 }
 
-/// The size field, the strips, and what is to be triangulated.
-fn plan(drawing: &Drawing, graph: &Graph, max_turn: f64) -> (Plan, SizeField, Vec<MeshNote>) {
-    let sizes: Vec<f64> = graph.stretches.iter().map(|s| wanted(drawing, s, max_turn)).collect();
+/// The size field, the strips, and what is to be triangulated; `enough` ends it early.
+fn plan(
+    drawing: &Drawing,
+    graph: &Graph,
+    sizes: &[f64],
+    max_turn: f64,
+    enough: &dyn Fn(usize) -> bool,
+) -> (Plan, SizeField, Vec<MeshNote>) {
     let gaps = Gaps::new(graph);
     let field = |sources| SizeField::new(sources, drawing.gradation, drawing.domain_size);
-    let rough = field(sources(graph, &sizes, &gaps));
+    let rough = field(sources(graph, sizes, &gaps));
     let mut facing = Facing::new(graph, &gaps);
-    let mut strips = layers::build(drawing, graph, &rough, max_turn, &mut facing);
-    let field = if strips.is_empty() { rough } else { field(strips.sources(graph, &sizes, &gaps)) };
+    let mut strips = layers::build(drawing, graph, &rough, max_turn, &mut facing, enough);
+    let field = if strips.is_empty() { rough } else { field(strips.sources(graph, sizes, &gaps)) };
     let notes = std::mem::take(&mut strips.notes);
     let mut plan = Plan::new(drawing, graph, strips, &field, max_turn, facing);
-    untangle(&mut plan, graph.tolerance);
+    untangle(&mut plan, graph.tolerance, enough);
     (plan, field, notes)
 }
 
@@ -162,17 +171,14 @@ fn label_sides(drawing: &Drawing, plan: &Plan, mesh: &mut Triangulation) {
             largest[g as usize] = (area, t as u32);
         }
     }
-    let sides: Vec<u32> = says
-        .iter()
-        .zip(&largest)
-        .map(|(said, &(_, face))| match said.as_slice() {
-            [one] => *one,
-            _ => {
-                let [a, b, c] = mesh.corners(face);
-                drawing.side_at([(a[0] + b[0] + c[0]) / 3.0, (a[1] + b[1] + c[1]) / 3.0])
-            }
-        })
-        .collect();
+    let side_of = |said: &[u32], face: u32| {
+        if let [one] = said {
+            return *one;
+        }
+        let [a, b, c] = mesh.corners(face);
+        drawing.side_at([(a[0] + b[0] + c[0]) / 3.0, (a[1] + b[1] + c[1]) / 3.0])
+    };
+    let sides: Vec<u32> = says.iter().zip(&largest).map(|(said, &(_, face))| side_of(said, face)).collect();
     for (face, &g) in mesh.faces.iter_mut().zip(&group) {
         let side = sides[g as usize];
         face.set_side((side != OUTSIDE).then_some(side));
@@ -189,9 +195,9 @@ fn label_cells(plan: &Plan, mesh: &mut Triangulation) {
     for (i, cell) in plan.cells.iter().enumerate() {
         let [a, b, c, d] = cell.corners;
         // A side on an arc may have been divided; the others are edges.
-        let sides = [(a, b), (b, c), (c, d), (d, a)].into_iter().filter(|s| s.0 != s.1);
+        let mut sides = [(a, b), (b, c), (c, d), (d, a)].into_iter().filter(|s| s.0 != s.1);
         let left = |(from, to)| mesh.find(from, to).filter(|&link| mesh.edge(link) == (from, to));
-        if let Some(link) = sides.filter_map(left).next() {
+        if let Some(link) = sides.find_map(left) {
             cell_of[group[(link >> 2) as usize] as usize] = i as u32;
         }
     }

@@ -16,15 +16,15 @@ const ROUNDS: usize = 24;
 const LEAST_SHARE: f64 = 0.02;
 
 /// Divides the arc edges of a plan until their chords cross nothing and nothing lies between chord and arc. What remains after
-/// the last round is found by the triangulation.
-pub(crate) fn untangle(plan: &mut Plan, tolerance: f64) {
+/// the last round is found by the triangulation. `enough` is told the number of edges and ends it early.
+pub(crate) fn untangle(plan: &mut Plan, tolerance: f64, enough: &dyn Fn(usize) -> bool) {
     if plan.tags.iter().all(|tag| tag.circle.is_none()) {
         return;
     }
     // Only what changed in the last round, and what is near it, is looked at again.
     let mut stirred = vec![true; plan.edges.len()];
     for _ in 0..ROUNDS {
-        let cuts = cuts(plan, &stirred, tolerance);
+        let cuts = if enough(plan.edges.len()) { Vec::new() } else { cuts(plan, &stirred, tolerance) };
         if cuts.is_empty() {
             return;
         }
@@ -49,18 +49,9 @@ fn cuts(plan: &Plan, stirred: &[bool], tolerance: f64) -> Vec<(usize, Point)> {
     let tree = Tree::new(&boxes);
     let mut cuts = Vec::new();
     for (e, span) in arcs.iter().enumerate().filter_map(|(e, arc)| Some((e, arc.as_ref()?))) {
-        let (a, b, _) = plan.edges[e];
         tree.any(boxes[e].lo, boxes[e].hi, |f| {
             let f = f as usize;
-            if f == e || !(stirred[e] || stirred[f]) {
-                return false;
-            }
-            let (c, d, _) = plan.edges[f];
-            let apart = [a, b].iter().all(|v| *v != c && *v != d);
-            let between = |v: u32| v != a && v != b && under(span, point(v), tolerance);
-            let drawn = |edge: usize| plan.tags[plan.edges[edge].2 as usize - 1].ends.is_some();
-            let twins = ([a, b] == [c, d] || [a, b] == [d, c]) && drawn(e) && drawn(f);
-            if !twins && !(apart && segments_meet(ends[e], ends[f])) && !between(c) && !between(d) {
+            if f == e || !(stirred[e] || stirred[f]) || !in_the_way(plan, span, [e, f], tolerance) {
                 return false;
             }
             let before = cuts.len();
@@ -77,6 +68,20 @@ fn cuts(plan: &Plan, stirred: &[bool], tolerance: f64) -> Vec<(usize, Point)> {
     cuts.sort_by(|x, y| x.0.cmp(&y.0).then(x.1.total_cmp(&y.1)));
     cuts.dedup_by(|next, kept| next.0 == kept.0 && next.1 - kept.1 < LEAST_SHARE);
     cuts.into_iter().filter_map(|(e, t)| Some((e, arcs[e]?.at(t)))).collect()
+}
+
+/// Whether edge `f` crosses the chord of edge `e`, has an end between that chord and its arc `span`, or is a twin: another curve between the
+/// same nodes.
+fn in_the_way(plan: &Plan, span: &Span, [e, f]: [usize; 2], tolerance: f64) -> bool {
+    let ((a, b, tag), (c, d, other)) = (plan.edges[e], plan.edges[f]);
+    let drawn = |tag: u32| plan.tags[tag as usize - 1].ends.is_some();
+    if [a, b] == [c, d] || [a, b] == [d, c] {
+        return drawn(tag) && drawn(other);
+    }
+    let point = |v: u32| plan.points[v as usize];
+    let between = |v: u32| v != a && v != b && under(span, point(v), tolerance);
+    let apart = [a, b].iter().all(|v| *v != c && *v != d);
+    between(c) || between(d) || apart && segments_meet([point(a), point(b)], [point(c), point(d)])
 }
 
 /// Parameter of the point of an arc opposite `p`, unless it is about an end.

@@ -98,8 +98,16 @@ fn depths(region: &Region, layers: &Layers, extent: f64) -> Vec<f64> {
     depths
 }
 
-/// Lays strips along every surface that asks for one. `field` is the element size without strips.
-pub(crate) fn build(drawing: &Drawing, graph: &Graph, field: &SizeField, max_turn: f64, facing: &mut Facing) -> Strips {
+/// Lays strips along every surface that asks for one. `field` is the element size without strips; `enough` is told the number of edges now
+/// and then, and ends it early.
+pub(crate) fn build(
+    drawing: &Drawing,
+    graph: &Graph,
+    field: &SizeField,
+    max_turn: f64,
+    facing: &mut Facing,
+    enough: &dyn Fn(usize) -> bool,
+) -> Strips {
     let mut strips = Strips::none(graph);
     let mut loops = Vec::new();
     for (k, region) in drawing.regions.iter().enumerate() {
@@ -118,7 +126,7 @@ pub(crate) fn build(drawing: &Drawing, graph: &Graph, field: &SizeField, max_tur
     let mut strips = emit::emit(graph, &chains, &bare);
     for round in 0..GUARD_ROUNDS {
         let last = round + 1 == GUARD_ROUNDS;
-        if !guard::lower_colliding(graph, &strips, &mut chains, last) {
+        if enough(strips.edges.len()) || !guard::lower_colliding(graph, &strips, &mut chains, last) {
             break;
         }
         strips = emit::emit(graph, &chains, &bare);

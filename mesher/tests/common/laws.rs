@@ -275,8 +275,9 @@ fn curved_maps(mesh: &Mesh) -> Broken {
             let nodes: Vec<Point> = element.iter().map(|&n| set.points[n as usize]).collect();
             let [a, b, c] = [nodes[0], nodes[1], nodes[2]];
             let whole = (b[0] - a[0]) * (c[1] - a[1]) - (b[1] - a[1]) * (c[0] - a[0]);
-            // In a triangle far longer than it is high, rounding decides.
-            if whole < 1e-10 * (distance(a, b) + distance(b, c)).powi(2) {
+            // In a triangle far longer than it is high, or about as high as coordinates are rounded, rounding decides.
+            let (long, far) = (distance(a, b) + distance(b, c), distance(a, [0.0; 2]));
+            if whole < 1e-10 * long * long || whole < 1e-13 * far * long {
                 continue;
             }
             let least = places.iter().map(|s| jacobian(&nodes, s)).fold(f64::INFINITY, f64::min);

@@ -1,4 +1,4 @@
-//! Pseudo-random numbers for tests, the same on every machine. Convention: uniform in 0..1 unless said otherwise. Source: SplitMix64,
+//! Pseudo-random numbers for tests, the same on every machine. Convention: uniform in 0..1 unless said otherwise. Source: `SplitMix64`,
 //! G. L. Steele, D. Lea, C. H. Flood, "Fast splittable pseudorandom number generators", 2014.
 
 /// A stream of pseudo-random numbers.

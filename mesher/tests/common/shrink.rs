@@ -29,20 +29,18 @@ pub(crate) fn shrunk(section: &Drawing, fails: &dyn Fn(&Drawing) -> bool) -> (Dr
 
 /// The section in words that can be read back: every outline with all digits.
 pub(crate) fn described(section: &Drawing) -> String {
-    let mut text = format!(
-        "domain {:?} {:?}, size {:e}, gradation {}, boundary {:?}",
+    let domain = format!(
+        "domain from {:?} {:?}, size {:e}, gradation {}, boundary {:?}",
         section.domain.start(),
         section.domain.pieces(),
         section.domain_size,
         section.gradation,
         section.boundary_size
     );
-    for r in &section.regions {
+    let regions = section.regions.iter().map(|r| {
         let (start, pieces) = (r.outline.start(), r.outline.pieces());
-        text += &format!(
-            "\n  region {} from {start:?} {pieces:?}, interior {:e}, surface {:e}, {:?}",
-            r.id.0, r.interior_size, r.surface_size, r.layers
-        );
-    }
-    text
+        let sizes = format!("interior {:e}, surface {:e}, {:?}", r.interior_size, r.surface_size, r.layers);
+        format!("region {} from {start:?} {pieces:?}, {sizes}", r.id.0)
+    });
+    std::iter::once(domain).chain(regions).collect::<Vec<_>>().join("\n  ")
 }
