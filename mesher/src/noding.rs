@@ -4,7 +4,6 @@
 use crate::drawing::{Drawing, OUTSIDE};
 use crate::ids::{Point, along, cross, distance, dot, left_of};
 use crate::intersect::meetings;
-use crate::merges::{Merge, OutlineOf, Record};
 use crate::span::{Kind, Span};
 use std::collections::HashMap;
 
@@ -24,16 +23,6 @@ pub(crate) struct Stretch {
     pub(crate) on_regions: Vec<(usize, usize)>,
 }
 
-impl Stretch {
-    /// The outline that brought it.
-    fn outline(&self) -> OutlineOf {
-        match self.on_regions.first() {
-            Some(&(index, _)) if self.on_domain.is_none() => OutlineOf::Region(index),
-            _ => OutlineOf::Domain,
-        }
-    }
-}
-
 /// The noded drawing.
 #[derive(Debug, Clone)]
 pub(crate) struct Graph {
@@ -41,20 +30,12 @@ pub(crate) struct Graph {
     pub(crate) stretches: Vec<Stretch>,
     /// Distance under which two points are one, in metres.
     pub(crate) tolerance: f64,
-    /// What outlines have in common, or were made to have.
-    pub(crate) merges: Vec<Merge>,
 }
 
 struct Source {
     span: Span,
     domain_piece: Option<usize>,
     region_piece: Option<(usize, usize)>,
-}
-
-impl Source {
-    fn outline(&self) -> OutlineOf {
-        self.region_piece.map_or(OutlineOf::Domain, |(index, _)| OutlineOf::Region(index))
-    }
 }
 
 /// Points merged within a tolerance; first come, first kept.
@@ -89,17 +70,16 @@ pub(crate) fn node(drawing: &Drawing) -> Graph {
     let tolerance = 1e-9 * drawing.extent();
     let sources = sources(drawing);
     let mut nodes = Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
-    let mut record = Record::new(drawing, tolerance);
-    let cuts = cut(&sources, tolerance, &mut record);
-    place_on_domain(&sources, &cuts, &mut nodes, &mut record);
+    let cuts = cut(&sources, tolerance);
+    place_on_domain(&sources, &cuts, &mut nodes);
     for source in &sources {
-        record.placed(source.outline(), nodes.place(source.span.start));
+        nodes.place(source.span.start);
     }
     let mut stretches = Vec::new();
     let mut known: HashMap<[u32; 2], Vec<usize>> = HashMap::new();
     for (source, cuts) in sources.iter().zip(&cuts) {
-        for part in parts(source, cuts, &mut nodes, &mut record) {
-            add(drawing, part, source, &mut record, &mut stretches, &mut known);
+        for part in parts(source, cuts, &mut nodes) {
+            add(drawing, part, source, tolerance, &mut stretches, &mut known);
         }
     }
     for stretch in &mut stretches {
@@ -107,7 +87,7 @@ pub(crate) fn node(drawing: &Drawing) -> Graph {
     }
     stretches.retain(|s| s.sides[0] != s.sides[1]);
     let points = keep_used(&nodes.points, &mut stretches);
-    Graph { points, stretches, tolerance, merges: record.finish(drawing) }
+    Graph { points, stretches, tolerance }
 }
 
 impl Graph {
@@ -150,14 +130,14 @@ fn keep_used(points: &[Point], stretches: &mut [Stretch]) -> Vec<Point> {
 }
 
 /// Places the corners of the domain, then what meets its outline exactly on it: nothing may lie a rounding error outside.
-fn place_on_domain(sources: &[Source], cuts: &[Vec<Point>], nodes: &mut Nodes, record: &mut Record) {
+fn place_on_domain(sources: &[Source], cuts: &[Vec<Point>], nodes: &mut Nodes) {
     let domain = || sources.iter().zip(cuts).filter(|(s, _)| s.domain_piece.is_some());
     for (source, _) in domain() {
-        record.placed(OutlineOf::Domain, nodes.place(source.span.start));
+        nodes.place(source.span.start);
     }
     for (source, cuts) in domain() {
         for &p in cuts {
-            record.placed(OutlineOf::Domain, nodes.place(source.span.at(source.span.project(p))));
+            nodes.place(source.span.at(source.span.project(p)));
         }
     }
 }
@@ -174,7 +154,7 @@ fn sources(drawing: &Drawing) -> Vec<Source> {
 }
 
 /// Points at which each source is to be cut, its own ends included.
-fn cut(sources: &[Source], tolerance: f64, record: &mut Record) -> Vec<Vec<Point>> {
+fn cut(sources: &[Source], tolerance: f64) -> Vec<Vec<Point>> {
     let mut cuts: Vec<Vec<Point>> = sources.iter().map(|s| vec![s.span.start, s.span.end]).collect();
     let boxes: Vec<_> = sources.iter().map(|s| s.span.bounds()).collect();
     for i in 0..sources.len() {
@@ -186,8 +166,6 @@ fn cut(sources: &[Source], tolerance: f64, record: &mut Record) -> Vec<Vec<Point
             for point in meetings(&sources[i].span, &sources[j].span, 2.0 * tolerance) {
                 cuts[i].push(point);
                 cuts[j].push(point);
-                let (a, b) = (&sources[i], &sources[j]);
-                record.meeting((a.outline(), b.outline()), (&a.span, &b.span), point);
             }
         }
     }
@@ -195,23 +173,15 @@ fn cut(sources: &[Source], tolerance: f64, record: &mut Record) -> Vec<Vec<Point
 }
 
 /// The stretches of a source between successive nodes.
-fn parts(source: &Source, cuts: &[Point], nodes: &mut Nodes, record: &mut Record) -> Vec<(Span, [u32; 2])> {
+fn parts(source: &Source, cuts: &[Point], nodes: &mut Nodes) -> Vec<(Span, [u32; 2])> {
     let span = &source.span;
-    let outline = source.outline();
     let mut stops: Vec<(f64, u32)> = cuts
         .iter()
         .enumerate()
         .map(|(i, &p)| (if i < 2 { i as f64 } else { span.project(p) }, nodes.place(p)))
         .collect();
-    for &(_, node) in &stops {
-        record.placed(outline, node);
-    }
-    record.corner(outline, span.start, stops[0].1, nodes.points[stops[0].1 as usize]);
     stops.sort_by(|a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
     stops.dedup_by_key(|stop| stop.1);
-    for &(_, node) in stops.iter().skip(1).rev().skip(1) {
-        record.passes(outline, span, node, nodes.points[node as usize]);
-    }
     stops
         .windows(2)
         .map(|pair| {
@@ -227,18 +197,16 @@ fn add(
     drawing: &Drawing,
     (span, ends): (Span, [u32; 2]),
     source: &Source,
-    record: &mut Record,
+    tolerance: f64,
     stretches: &mut Vec<Stretch>,
     known: &mut HashMap<[u32; 2], Vec<usize>>,
 ) {
-    let tolerance = record.tolerance();
     let key = [ends[0].min(ends[1]), ends[0].max(ends[1])];
     let middle = span.at(0.5);
     let same = known.entry(key).or_default();
     for &i in same.iter() {
         let other: &mut Stretch = &mut stretches[i];
         if distance(other.span.at(0.5), middle) <= 3.0 * tolerance {
-            record.shared(source.outline(), other.outline(), &other.span);
             if let Some(piece) = source.region_piece
                 && !other.on_regions.contains(&piece)
             {
