@@ -4,6 +4,7 @@
 use crate::check::LEAST_RATIO;
 use crate::drawing::Drawing;
 use crate::ids::{CurveId, NO_TRIANGLE};
+use crate::merges::merges;
 use crate::mesh::{Bend, Curve, Edge, Mesh, Shape};
 use crate::noding::{CUSP, Graph};
 use crate::note::{MeshNote, NoteReason};
@@ -33,7 +34,7 @@ pub(crate) fn finish(
         bends: Vec::with_capacity(faces.points.len() + count),
         curves: Vec::new(),
         notes,
-        merges: graph.merges.clone(),
+        merges: merges(drawing, graph),
         domain_area: drawing.domain.area(),
         finder: OnceLock::new(),
     };

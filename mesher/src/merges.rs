@@ -1,8 +1,10 @@
-//! What noding made one: points too close to tell apart, lines divided where they meet, stretches common to two outlines. Convention:
-//! metres; an outline is the domain's or that of a region, by its index in the drawing.
+//! What noding made one: points too close to tell apart, lines divided where they meet, stretches common to two outlines. Found by
+//! comparing the noded graph with the outlines as they were drawn. Convention: metres; an outline is the domain's or that of a region,
+//! by its index in the drawing.
 
 use crate::drawing::Drawing;
 use crate::ids::{Point, RegionId, distance};
+use crate::noding::{Graph, Stretch};
 use crate::span::Span;
 
 /// Share of the domain's extent under which two points differ by rounding alone.
@@ -62,100 +64,90 @@ impl MergeKind {
     }
 }
 
-/// Merges as they happen.
-#[derive(Debug)]
-pub(crate) struct Record {
-    /// The outline that placed each node.
-    owners: Vec<OutlineOf>,
-    merges: Vec<Merge>,
-    domain_region: RegionId,
-    regions: Vec<RegionId>,
-    tolerance: f64,
-    rounding: f64,
+/// An outline at a node.
+#[derive(Debug, Clone, Copy)]
+struct Touch {
+    outline: OutlineOf,
+    /// Whether the node is a corner of the outline or lies between the ends of one of its pieces.
+    corner: bool,
+    /// How far the outline was moved to the node, in metres.
+    moved_m: f64,
 }
 
-impl Record {
-    pub(crate) fn new(drawing: &Drawing, tolerance: f64) -> Self {
-        Self {
-            owners: Vec::new(),
-            merges: Vec::new(),
-            domain_region: drawing.domain_region,
-            regions: drawing.regions.iter().map(|r| r.id).collect(),
-            tolerance,
-            rounding: ROUNDING * drawing.extent(),
-        }
-    }
-
-    /// Distance under which two points are one, in metres.
-    pub(crate) fn tolerance(&self) -> f64 {
-        self.tolerance
-    }
-
-    /// An outline placed a node, or was given one that is there.
-    pub(crate) fn placed(&mut self, outline: OutlineOf, node: u32) {
-        if node as usize == self.owners.len() {
-            self.owners.push(outline);
-        }
-    }
-
-    /// A corner of an outline became a node.
-    pub(crate) fn corner(&mut self, outline: OutlineOf, wanted: Point, node: u32, at: Point) {
-        let moved_m = distance(wanted, at);
-        if moved_m > self.rounding {
-            self.moved(outline, node, at, MergeKind::CornerMoved { moved_m });
-        } else if let Some(owner) = self.owners.get_mut(node as usize).filter(|o| **o == OutlineOf::Domain) {
-            // A corner that stands on the edge of the domain says more than the edge.
-            *owner = outline;
-        }
-    }
-
-    /// A piece of an outline was made to pass through a node between its ends.
-    pub(crate) fn passes(&mut self, outline: OutlineOf, span: &Span, node: u32, at: Point) {
-        let moved_m = span.distance(at);
-        if moved_m > self.rounding {
-            self.moved(outline, node, at, MergeKind::LineMoved { moved_m });
-        }
-    }
-
-    fn moved(&mut self, outline: OutlineOf, node: u32, at: Point, kind: MergeKind) {
-        let other = self.owners.get(node as usize).copied().unwrap_or(outline);
-        self.add(at, [outline, other], kind);
-    }
-
-    fn add(&mut self, at: Point, outlines: [OutlineOf; 2], kind: MergeKind) {
-        let regions = outlines.map(|of| match of {
-            OutlineOf::Domain => self.domain_region,
-            OutlineOf::Region(index) => self.regions[index],
-        });
-        self.merges.push(Merge { at, outlines, regions, kind });
-    }
-
-    /// Two spans meet at a point that is not an end of both.
-    pub(crate) fn meeting(&mut self, (a, b): (OutlineOf, OutlineOf), (s, t): (&Span, &Span), at: Point) {
-        let end = |span: &Span| distance(span.start, at).min(distance(span.end, at)) <= 2.0 * self.tolerance;
-        if a != b && !(end(s) && end(t)) {
-            self.add(at, [b, a], MergeKind::Divided);
-        }
-    }
-
-    /// A stretch of an outline is one that another outline has brought.
-    pub(crate) fn shared(&mut self, outline: OutlineOf, other: OutlineOf, span: &Span) {
-        if outline != other {
-            self.add(span.at(0.5), [outline, other], MergeKind::Shared { length_m: span.length() });
-        }
-    }
-
-    /// The merges inside the domain or on its outline, each once.
-    pub(crate) fn finish(self, drawing: &Drawing) -> Vec<Merge> {
-        let near = 2.0 * self.tolerance;
-        let inside = |m: &Merge| drawing.domain.contains(m.at) || drawing.domain.distance(m.at) <= near;
-        let mut kept: Vec<Merge> = Vec::new();
-        for merge in self.merges.into_iter().filter(inside) {
-            let same = |k: &Merge| k.outlines == merge.outlines && k.kind == merge.kind;
-            if !kept.iter().any(|k| same(k) && distance(k.at, merge.at) <= near) {
-                kept.push(merge);
+/// What the outlines of a drawing have in common in its noded graph, or were made to have; node by node, then stretch by stretch.
+pub(crate) fn merges(drawing: &Drawing, graph: &Graph) -> Vec<Merge> {
+    let rounding = ROUNDING * drawing.extent();
+    let mut at_node: Vec<Vec<Touch>> = vec![Vec::new(); graph.points.len()];
+    for stretch in &graph.stretches {
+        for node in stretch.ends {
+            let p = graph.points[node as usize];
+            for (outline, span) in outlines(drawing, stretch) {
+                add(&mut at_node[node as usize], touch(outline, span, p, 4.0 * graph.tolerance));
             }
         }
-        kept
+    }
+    let mut found = Vec::new();
+    for (touches, &at) in at_node.iter_mut().zip(&graph.points) {
+        touches.sort_by_key(|t| t.outline);
+        moves(touches, at, rounding, &mut found);
+        divisions(touches, at, &mut found);
+    }
+    for stretch in &graph.stretches {
+        let mut both: Vec<OutlineOf> = outlines(drawing, stretch).map(|o| o.0).collect();
+        both.sort_unstable();
+        both.dedup();
+        let kind = MergeKind::Shared { length_m: stretch.span.length() };
+        found.extend(both.iter().skip(1).map(|&other| (stretch.span.at(0.5), [other, both[0]], kind)));
+    }
+    let id = |of: OutlineOf| match of {
+        OutlineOf::Domain => drawing.domain_region,
+        OutlineOf::Region(index) => drawing.regions[index].id,
+    };
+    found.into_iter().map(|(at, outlines, kind)| Merge { at, outlines, regions: outlines.map(id), kind }).collect()
+}
+
+type Found = (Point, [OutlineOf; 2], MergeKind);
+
+/// The outlines that run along a stretch, with the piece of each as it was drawn.
+fn outlines<'a>(drawing: &'a Drawing, stretch: &'a Stretch) -> impl Iterator<Item = (OutlineOf, &'a Span)> {
+    let domain = stretch.on_domain.map(|piece| (OutlineOf::Domain, &drawing.domain.spans()[piece]));
+    let of_region =
+        |&(index, piece): &(usize, usize)| (OutlineOf::Region(index), &drawing.regions[index].outline.spans()[piece]);
+    domain.into_iter().chain(stretch.on_regions.iter().map(of_region))
+}
+
+fn touch(outline: OutlineOf, span: &Span, p: Point, near: f64) -> Touch {
+    let to_end = distance(span.start, p).min(distance(span.end, p));
+    let corner = to_end <= near;
+    Touch { outline, corner, moved_m: if corner { to_end } else { span.distance(p) } }
+}
+
+/// Adds a touch unless that outline is there; a corner counts more than a line.
+fn add(touches: &mut Vec<Touch>, new: Touch) {
+    match touches.iter_mut().find(|t| t.outline == new.outline) {
+        Some(known) if new.corner && !known.corner => *known = new,
+        Some(_) => {}
+        None => touches.push(new),
+    }
+}
+
+/// Outlines that were moved to a node, each with one that was there: a region says more than the edge of the domain.
+fn moves(touches: &[Touch], at: Point, rounding: f64, found: &mut Vec<Found>) {
+    let stays = |t: &&Touch| t.moved_m <= rounding;
+    let region = touches.iter().find(|t| stays(t) && t.outline != OutlineOf::Domain);
+    let owner = region.or_else(|| touches.iter().find(stays));
+    for moved in touches.iter().filter(|t| t.moved_m > rounding) {
+        let other = owner.or_else(|| touches.iter().find(|t| t.outline != moved.outline));
+        let moved_m = moved.moved_m;
+        let kind = if moved.corner { MergeKind::CornerMoved { moved_m } } else { MergeKind::LineMoved { moved_m } };
+        found.push((at, [moved.outline, other.unwrap_or(moved).outline], kind));
+    }
+}
+
+/// Pairs of outlines that meet at a node which is not a corner of both.
+fn divisions(touches: &[Touch], at: Point, found: &mut Vec<Found>) {
+    for (i, later) in touches.iter().enumerate() {
+        let divided = touches[..i].iter().filter(|earlier| !(earlier.corner && later.corner));
+        found.extend(divided.map(|earlier| (at, [later.outline, earlier.outline], MergeKind::Divided)));
     }
 }

@@ -5,7 +5,6 @@
 use crate::drawing::{Drawing, OUTSIDE};
 use crate::ids::{Point, cross, distance, dot};
 use crate::intersect::meetings;
-use crate::merges::{Merge, OutlineOf, Record};
 use crate::sides::{Run, sides};
 use crate::span::{Kind, Span};
 use std::collections::HashMap;
@@ -30,16 +29,6 @@ pub(crate) struct Stretch {
     pub(crate) runs: Vec<Run>,
 }
 
-impl Stretch {
-    /// The outline that brought it.
-    fn outline(&self) -> OutlineOf {
-        match self.on_regions.first() {
-            Some(&(index, _)) if self.on_domain.is_none() => OutlineOf::Region(index),
-            _ => OutlineOf::Domain,
-        }
-    }
-}
-
 /// The noded drawing.
 #[derive(Debug, Clone)]
 pub(crate) struct Graph {
@@ -47,20 +36,12 @@ pub(crate) struct Graph {
     pub(crate) stretches: Vec<Stretch>,
     /// Distance under which two points are one, in metres.
     pub(crate) tolerance: f64,
-    /// What outlines have in common, or were made to have.
-    pub(crate) merges: Vec<Merge>,
 }
 
 struct Source {
     span: Span,
     domain_piece: Option<usize>,
     region_piece: Option<(usize, usize)>,
-}
-
-impl Source {
-    fn outline(&self) -> OutlineOf {
-        self.region_piece.map_or(OutlineOf::Domain, |(index, _)| OutlineOf::Region(index))
-    }
 }
 
 /// Points merged within a tolerance; first come, first kept.
@@ -95,20 +76,17 @@ pub(crate) fn node(drawing: &Drawing) -> Graph {
     let tolerance = 1e-9 * drawing.extent();
     let sources = sources(drawing);
     let mut nodes = Nodes { points: Vec::new(), cells: HashMap::new(), origin: drawing.domain.bounds().0, tolerance };
-    let mut record = Record::new(drawing, tolerance);
-    let mut cuts = cut(&sources, tolerance, &mut record);
-    place_on_domain(&sources, &cuts, &mut nodes, &mut record);
+    let mut cuts = cut(&sources, tolerance);
+    place_on_domain(&sources, &cuts, &mut nodes);
     for source in &sources {
-        record.placed(source.outline(), nodes.place(source.span.start));
+        nodes.place(source.span.start);
     }
     settle(&sources, &mut cuts, &mut nodes);
     let mut stretches = Vec::new();
     let mut known: HashMap<[u32; 2], Vec<usize>> = HashMap::new();
     for (source, cuts) in sources.iter().zip(&cuts) {
-        let stops = stops(source, cuts, &mut nodes);
-        tell(source, &stops, &nodes, &mut record);
-        for part in parts(source, &stops, &nodes) {
-            add(drawing, part, source, &mut record, &mut stretches, &mut known);
+        for part in parts(source, cuts, &mut nodes) {
+            add(drawing, part, source, tolerance, &mut stretches, &mut known);
         }
     }
     for stretch in &mut stretches {
@@ -116,7 +94,7 @@ pub(crate) fn node(drawing: &Drawing) -> Graph {
     }
     stretches.retain(|s| s.sides[0] != s.sides[1]);
     let points = keep_used(&nodes.points, &mut stretches);
-    Graph { points, stretches, tolerance, merges: record.finish(drawing) }
+    Graph { points, stretches, tolerance }
 }
 
 impl Graph {
@@ -159,14 +137,14 @@ fn keep_used(points: &[Point], stretches: &mut [Stretch]) -> Vec<Point> {
 }
 
 /// Places the corners of the domain, then what meets its outline exactly on it: nothing may lie a rounding error outside.
-fn place_on_domain(sources: &[Source], cuts: &[Vec<Point>], nodes: &mut Nodes, record: &mut Record) {
+fn place_on_domain(sources: &[Source], cuts: &[Vec<Point>], nodes: &mut Nodes) {
     let domain = || sources.iter().zip(cuts).filter(|(s, _)| s.domain_piece.is_some());
     for (source, _) in domain() {
-        record.placed(OutlineOf::Domain, nodes.place(source.span.start));
+        nodes.place(source.span.start);
     }
     for (source, cuts) in domain() {
         for &p in cuts {
-            record.placed(OutlineOf::Domain, nodes.place(source.span.at(source.span.project(p))));
+            nodes.place(source.span.at(source.span.project(p)));
         }
     }
 }
@@ -183,7 +161,7 @@ fn sources(drawing: &Drawing) -> Vec<Source> {
 }
 
 /// Points at which each source is to be cut, its own ends included.
-fn cut(sources: &[Source], tolerance: f64, record: &mut Record) -> Vec<Vec<Point>> {
+fn cut(sources: &[Source], tolerance: f64) -> Vec<Vec<Point>> {
     let mut cuts: Vec<Vec<Point>> = sources.iter().map(|s| vec![s.span.start, s.span.end]).collect();
     let boxes: Vec<_> = sources.iter().map(|s| s.span.bounds()).collect();
     for i in 0..sources.len() {
@@ -195,8 +173,6 @@ fn cut(sources: &[Source], tolerance: f64, record: &mut Record) -> Vec<Vec<Point
             for point in meetings(&sources[i].span, &sources[j].span, 2.0 * tolerance) {
                 cuts[i].push(point);
                 cuts[j].push(point);
-                let (a, b) = (&sources[i], &sources[j]);
-                record.meeting((a.outline(), b.outline()), (&a.span, &b.span), point);
             }
         }
     }
@@ -212,10 +188,7 @@ fn settle(sources: &[Source], cuts: &mut [Vec<Point>], nodes: &mut Nodes) {
             .iter()
             .zip(cuts.iter())
             .enumerate()
-            .flat_map(|(i, (source, cuts))| {
-                let stops = stops(source, cuts, nodes);
-                parts(source, &stops, nodes).into_iter().map(move |p| (i, p.0, p.1))
-            })
+            .flat_map(|(i, (source, cuts))| parts(source, cuts, nodes).into_iter().map(move |p| (i, p.0, p.1)))
             .collect();
         let boxes: Vec<_> = all.iter().map(|part| part.1.bounds()).collect();
         let mut next = vec![false; sources.len()];
@@ -250,8 +223,8 @@ fn settle(sources: &[Source], cuts: &mut [Vec<Point>], nodes: &mut Nodes) {
     }
 }
 
-/// Nodes along a source with their parameters, in its direction of travel.
-fn stops(source: &Source, cuts: &[Point], nodes: &mut Nodes) -> Vec<(f64, u32)> {
+/// The stretches of a source between successive nodes.
+fn parts(source: &Source, cuts: &[Point], nodes: &mut Nodes) -> Vec<(Span, [u32; 2])> {
     let span = &source.span;
     let mut stops: Vec<(f64, u32)> = cuts
         .iter()
@@ -269,30 +242,13 @@ fn stops(source: &Source, cuts: &[Point], nodes: &mut Nodes) -> Vec<(f64, u32)> 
         }
     }
     stops
-}
-
-/// The stretches of a source between its stops.
-fn parts(source: &Source, stops: &[(f64, u32)], nodes: &Nodes) -> Vec<(Span, [u32; 2])> {
-    stops
         .windows(2)
         .map(|pair| {
             let [(a, i), (b, j)] = [pair[0], pair[1]];
             let (start, end) = (nodes.points[i as usize], nodes.points[j as usize]);
-            (source.span.part(a, b, start, end), [i, j])
+            (span.part(a, b, start, end), [i, j])
         })
         .collect()
-}
-
-/// Tells which nodes a source runs through, and how far its corner has moved.
-fn tell(source: &Source, stops: &[(f64, u32)], nodes: &Nodes, record: &mut Record) {
-    let (span, outline) = (&source.span, source.outline());
-    for &(_, node) in stops {
-        record.placed(outline, node);
-    }
-    record.corner(outline, span.start, stops[0].1, nodes.points[stops[0].1 as usize]);
-    for &(_, node) in stops.iter().skip(1).rev().skip(1) {
-        record.passes(outline, span, node, nodes.points[node as usize]);
-    }
 }
 
 /// Adds a stretch, or the name of its source to a coincident one; drops it outside the domain.
@@ -300,11 +256,10 @@ fn add(
     drawing: &Drawing,
     (span, ends): (Span, [u32; 2]),
     source: &Source,
-    record: &mut Record,
+    tolerance: f64,
     stretches: &mut Vec<Stretch>,
     known: &mut HashMap<[u32; 2], Vec<usize>>,
 ) {
-    let tolerance = record.tolerance();
     let key = [ends[0].min(ends[1]), ends[0].max(ends[1])];
     let middle = span.at(0.5);
     let region = source.region_piece.map(|piece| piece.0);
@@ -312,7 +267,6 @@ fn add(
     for &i in same.iter() {
         let other: &mut Stretch = &mut stretches[i];
         if distance(other.span.at(0.5), middle) <= 3.0 * tolerance {
-            record.shared(source.outline(), other.outline(), &other.span);
             if let Some(piece) = source.region_piece
                 && !other.on_regions.contains(&piece)
             {

@@ -89,13 +89,15 @@ pub(super) fn legend(canvas: &mut Canvas, rows: &[Row], at: [f64; 2]) -> Result<
     Ok(())
 }
 
-/// Triangles outside strips by their least angle, as bars.
+/// Draws the triangles outside strips by their least angle, as bars.
 pub(super) fn angle_chart(canvas: &mut Canvas, mesh: &Mesh, at: [f64; 2]) -> Result<(), PictureError> {
-    let counts = mesh.quality().least_angle_counts;
+    let quality = mesh.quality();
+    let counts = quality.least_angle_counts;
+    let outside = if quality.strip_triangles > 0 { " outside strips" } else { "" };
     let (bottom, width) = (at[1] + 44.0 + CHART[1], CHART[0] / counts.len() as f64);
     let most = counts.into_iter().max().unwrap_or(0).max(1);
     let style = Lettering { size: TEXT, align: Align::Left, colour: GREY_INK };
-    canvas.text("triangles by least angle", [at[0], at[1] + 24.0], style)?;
+    canvas.text(&format!("triangles{outside} by least angle"), [at[0], at[1] + 24.0], style)?;
     for (class, &count) in counts.iter().enumerate() {
         let left = at[0] + width * class as f64;
         let high = CHART[1] * count as f64 / most as f64;
