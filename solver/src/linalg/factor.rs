@@ -59,7 +59,9 @@ impl<T: Scalar> Factor<T> {
         let references = pivot_references(&plan, values);
         let (pool, limit) = (&self.pool, pivot_limit(plan.n()));
         let task = Task { plan: &plan, matrix: values, references: &references, pool, limit };
-        task.siblings(&plan.roots, &mut self.values)?.into_iter().for_each(|block| pool.give(block));
+        for block in task.siblings(&plan.roots, &mut self.values)? {
+            pool.give(block);
+        }
         self.complete = true;
         Ok(())
     }
@@ -170,7 +172,9 @@ impl<T: Scalar> Task<'_, T> {
             rest = after;
             let blocks = stack.split_off(stack.len() - front.children.len());
             stack.push(self.front(front, panel, &blocks)?);
-            blocks.into_iter().for_each(|block| self.pool.give(block));
+            for block in blocks {
+                self.pool.give(block);
+            }
         }
         Ok(())
     }

@@ -101,11 +101,11 @@ impl<T: Scalar> NegativeProduct<'_, T> {
         let sums = sums::<T, S, V, COLUMNS>(simd, a, b, self.stride, self.depth);
         let rows = row..row + V * lanes::<T, S>();
         let zero = T::splat(simd, T::ZERO);
-        for w in 0..COLUMNS {
+        for (w, sums) in sums.iter().enumerate() {
             let target = &mut self.target[(column + w) * self.order..][rows.clone()];
             let target = &mut T::vectors_mut::<S>(target).0[..V];
             for v in 0..V {
-                target[v] = T::minus(simd, zero, sums[w][v]);
+                target[v] = T::minus(simd, zero, sums[v]);
             }
         }
     }
@@ -159,10 +159,10 @@ impl<T: Scalar, const W: usize> LeftUpdate<'_, T, W> {
     fn tile<S: Simd, const V: usize>(&mut self, simd: S, row: usize) {
         let sums = sums::<T, S, V, W>(simd, &self.a[row..], self.b, self.stride, self.depth);
         let rows = row..row + V * lanes::<T, S>();
-        for w in 0..W {
-            let target = &mut T::vectors_mut::<S>(&mut self.target[w][rows.clone()]).0[..V];
+        for (target, sums) in self.target.iter_mut().zip(&sums) {
+            let target = &mut T::vectors_mut::<S>(&mut target[rows.clone()]).0[..V];
             for v in 0..V {
-                target[v] = T::minus(simd, target[v], sums[w][v]);
+                target[v] = T::minus(simd, target[v], sums[v]);
             }
         }
     }
