@@ -33,6 +33,8 @@ const MOST_CUTS: usize = 30;
 pub(super) struct Tangent {
     pub(super) matrix: SymmetricMatrix<f64>,
     pub(super) factor: Option<Factor<f64>>,
+    /// Room for element blocks.
+    blocks: Vec<f64>,
 }
 
 /// One stage to be solved.
@@ -151,7 +153,8 @@ impl Solver<'_> {
     fn renew(&mut self, stage: &Stage, temperature: &[f64]) -> Result<(), StepFailure> {
         let matrix = &mut self.tangent.matrix;
         matrix.values.fill(0.0);
-        self.operator.add_tangent(self.scatter, temperature, stage.weight, &mut matrix.values);
+        let blocks = &mut self.tangent.blocks;
+        self.operator.add_tangent(self.scatter, temperature, stage.weight, blocks, &mut matrix.values);
         for &slot in self.held_slots {
             matrix.values[slot as usize] = 0.0;
         }
@@ -232,7 +235,7 @@ impl Solver<'_> {
 impl Tangent {
     /// An empty tangent on the plan's pattern.
     pub(super) fn new(plan: &Plan) -> Self {
-        Self { matrix: SymmetricMatrix::zeros(Arc::clone(plan.pattern())), factor: None }
+        Self { matrix: SymmetricMatrix::zeros(Arc::clone(plan.pattern())), factor: None, blocks: Vec::new() }
     }
 }
 

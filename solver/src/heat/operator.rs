@@ -150,13 +150,14 @@ impl Operator {
     }
 
     /// Adds the tangent of `storage - w rate` at `t` to `values`, in J/K; `w` in seconds.
-    pub(super) fn add_tangent(&self, scatter: &Scatter, t: &[f64], w: f64, values: &mut [f64]) {
+    /// `buffer` is room for element blocks.
+    pub(super) fn add_tangent(&self, scatter: &Scatter, t: &[f64], w: f64, buffer: &mut Vec<f64>, values: &mut [f64]) {
         let local = match self.space.reference().node_count() {
             3 => Self::local_tangent::<3>,
             6 => Self::local_tangent::<6>,
             _ => Self::local_tangent::<MAX_NODES>,
         };
-        add_blocks(scatter, values, |e, _, block: &mut Block<f64>| local(self, e, t, w, block));
+        add_blocks(scatter, buffer, values, |e, _, block: &mut Block<f64>| local(self, e, t, w, block));
     }
 
     fn local_tangent<const N: usize>(&self, e: usize, t: &[f64], w: f64, block: &mut Block<f64>) {

@@ -8,14 +8,17 @@
 
 use faer::linalg::matmul::matmul;
 use faer::{Accum, MatMut, MatRef, Par};
+use pulp::Arch;
 
-use super::narrow::{NARROW, eliminate_narrow};
+use super::narrow::{NARROW, eliminate_narrow, narrow_width, update_narrow};
 use super::scalar::Scalar;
+use super::tile::{COLUMNS, NegativeProduct};
 
-/// Order below which a symmetric update is one full product.
-const SMALL_UPDATE: usize = 48;
 /// Multiplications from which a product is split in two tasks.
 const PARALLEL: usize = 1 << 19;
+/// Most columns eliminated one narrow block after the other.
+const WIDE: usize = 128;
+
 /// A pivot that cannot be divided by.
 pub(super) struct BadPivot {
     /// Column of the panel.
@@ -46,8 +49,15 @@ impl<T: Scalar> Panel<'_, T> {
 
     fn eliminate_columns(&mut self, start: usize, end: usize) -> Result<(), BadPivot> {
         let width = end - start;
-        if width <= NARROW {
-            return eliminate_narrow(self, start, end);
+        if width <= WIDE {
+            let mut block = start;
+            while block < end {
+                let block_end = block + narrow_width(end - block);
+                update_narrow(self, start, block, block_end);
+                eliminate_narrow(self, block, block_end)?;
+                block = block_end;
+            }
+            return Ok(());
         }
         let middle = start + (width / 2).next_multiple_of(NARROW);
         self.eliminate_columns(start, middle)?;
@@ -67,18 +77,35 @@ impl<T: Scalar> Panel<'_, T> {
         subtract_product(target, lower, scaled);
     }
 
-    /// Subtracts from the symmetric `border` block (lower triangle) what the pivots contribute to it.
-    pub(super) fn update_border(&self, border: &mut [T]) {
+    /// Sets the symmetric `border` block (lower triangle) to what the pivots contribute to it.
+    pub(super) fn set_border(&self, border: &mut [T]) {
         let (height, pivots) = (self.height, self.references.len());
         let order = height - pivots;
-        if order == 0 || pivots == 0 {
+        if order == 0 {
             return;
         }
-        let lower = MatRef::from_column_major_slice_with_stride(&self.values[pivots..], order, pivots, height);
-        let scaled = MatRef::from_column_major_slice_with_stride(&self.scaled[pivots..], order, pivots, height);
-        let target = MatMut::from_column_major_slice_mut(border, order, order);
-        subtract_symmetric(target, lower, scaled);
+        let (a, b) = (&self.values[pivots..], &self.scaled[pivots..]);
+        set_columns(NegativeProduct { target: border, a, b, stride: height, order, depth: pivots, first: 0 });
     }
+}
+
+/// Sets the columns of a border, in two tasks of like size if they are many.
+fn set_columns<T: Scalar>(product: NegativeProduct<'_, T>) {
+    let NegativeProduct { target, a, b, stride, order, depth, first } = product;
+    let columns = target.len() / order;
+    // Columns grow shorter to the right: the left half of the work is in the first third or less.
+    let (height, last_height) = (order - first, order - first - columns);
+    let half = height - ((height * height + last_height * last_height) as f64 / 2.0).sqrt() as usize;
+    let work = columns * (height + last_height) / 2 * depth;
+    let half = half.next_multiple_of(COLUMNS);
+    if work < 2 * PARALLEL || half >= columns {
+        Arch::new().dispatch(NegativeProduct { target, a, b, stride, order, depth, first });
+        return;
+    }
+    let (left, right) = target.split_at_mut(half * order);
+    let left = NegativeProduct { target: left, a, b, stride, order, depth, first };
+    let right = NegativeProduct { target: right, a, b, stride, order, depth, first: first + half };
+    rayon::join(|| set_columns(left), || set_columns(right));
 }
 
 /// `C -= A B^T`, all entries.
@@ -90,35 +117,13 @@ fn subtract_product<T: Scalar>(target: MatMut<'_, T>, a: MatRef<'_, T>, b: MatRe
         let half = (rows / 2).next_multiple_of(8);
         let (top, bottom) = target.split_at_row_mut(half);
         let (a_top, a_bottom) = a.split_at_row(half);
-        rayon::join(|| subtract_product(top, a_top, b), || subtract_product(bottom, a_bottom, b));
+        let first = || subtract_product(top, a_top, b);
+        rayon::join(first, || subtract_product(bottom, a_bottom, b));
     } else {
         let half = (cols / 2).next_multiple_of(8);
         let (left, right) = target.split_at_col_mut(half);
         let (b_left, b_right) = b.split_at_row(half);
-        rayon::join(|| subtract_product(left, a, b_left), || subtract_product(right, a, b_right));
-    }
-}
-
-/// `C -= A B^T` where the result is symmetric and only its lower triangle is wanted.
-fn subtract_symmetric<T: Scalar>(target: MatMut<'_, T>, a: MatRef<'_, T>, b: MatRef<'_, T>) {
-    let (order, depth) = (a.nrows(), a.ncols());
-    if order <= SMALL_UPDATE {
-        matmul(target, Accum::Add, a, b.transpose(), -T::ONE, Par::Seq);
-        return;
-    }
-    let half = (order / 2).next_multiple_of(8);
-    let (top, _, bottom, last) = target.split_at_mut(half, half);
-    let (a_top, a_last) = a.split_at_row(half);
-    let (b_top, b_last) = b.split_at_row(half);
-    let corners = || {
-        subtract_symmetric(top, a_top, b_top);
-        subtract_symmetric(last, a_last, b_last);
-    };
-    let rectangle = || subtract_product(bottom, a_last, b_top);
-    if order * order * depth < 2 * PARALLEL {
-        corners();
-        rectangle();
-    } else {
-        rayon::join(corners, rectangle);
+        let first = || subtract_product(left, a, b_left);
+        rayon::join(first, || subtract_product(right, a, b_right));
     }
 }

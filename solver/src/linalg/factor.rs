@@ -8,21 +8,23 @@ use std::fmt;
 use std::ops::Range;
 use std::sync::Arc;
 
-use super::dense::Panel;
+use super::dense::{BadPivot, Panel};
 use super::error::{Datum, LinalgError};
 use super::matrix::check_length;
 use super::plan::{Front, Plan};
+use super::pool::Pool;
 use super::scalar::Scalar;
 
 /// Smallest work of a subtree, in operations, that is worth a task.
 const TASK_WORK: f64 = 3e5;
 
 /// Factor of a symmetric matrix: unit lower `L` and diagonal `D`.
-#[derive(Clone)]
 pub struct Factor<T> {
     pub(super) plan: Arc<Plan>,
     /// Panels of the fronts; reciprocal pivots on their diagonals.
     pub(super) values: Vec<T>,
+    /// Blocks between fronts, kept for the next factorisation.
+    pool: Pool<T>,
     /// Whether `values` hold a factor: false after a failure.
     pub(super) complete: bool,
 }
@@ -34,7 +36,8 @@ impl<T: Scalar> Factor<T> {
     /// As [`Factor::refactor`].
     pub fn new(plan: &Arc<Plan>, values: &[T]) -> Result<Self, LinalgError> {
         let storage = vec![T::ZERO; plan.panel_values()];
-        let mut factor = Self { plan: Arc::clone(plan), values: storage, complete: false };
+        let pool = Pool::new(plan.largest_block());
+        let mut factor = Self { plan: Arc::clone(plan), values: storage, pool, complete: false };
         factor.refactor(values)?;
         Ok(factor)
     }
@@ -54,8 +57,11 @@ impl<T: Scalar> Factor<T> {
             return Err(LinalgError::NotFinite { what: Datum::MatrixValues, index });
         }
         let references = pivot_references(&plan, values);
-        let task = Task { plan: &plan, matrix: values, references: &references, limit: pivot_limit(plan.n()) };
-        task.siblings(&plan.roots, &mut self.values, &mut Workspace::default())?;
+        let (pool, limit) = (&self.pool, pivot_limit(plan.n()));
+        let task = Task { plan: &plan, matrix: values, references: &references, pool, limit };
+        for block in task.siblings(&plan.roots, &mut self.values)? {
+            pool.give(block);
+        }
         self.complete = true;
         Ok(())
     }
@@ -101,50 +107,25 @@ fn pivot_references<T: Scalar>(plan: &Plan, values: &[T]) -> Vec<f64> {
     plan.order.iter().map(|&unknown| sizes[unknown as usize]).collect()
 }
 
-/// Memory that fronts eliminated one after the other use in turn.
-#[derive(Default)]
-struct Workspace<T> {
-    /// Room for `L D` of a panel; what an earlier front left in it is never read.
-    scaled: Vec<T>,
-    /// Border blocks that were added into their parents.
-    spare: Vec<Vec<T>>,
-}
-
-impl<T: Scalar> Workspace<T> {
-    /// A square block of this order, by columns, with zeros on and below the diagonal.
-    fn lower_zeros(&mut self, order: usize) -> Vec<T> {
-        let mut block = self.spare.pop().unwrap_or_default();
-        block.resize(order * order, T::ZERO);
-        for column in 0..order {
-            block[column * order + column..(column + 1) * order].fill(T::ZERO);
-        }
-        block
-    }
-}
-
 /// What all fronts of one factorisation share.
 #[derive(Clone, Copy)]
 struct Task<'a, T> {
     plan: &'a Plan,
     matrix: &'a [T],
     references: &'a [f64],
+    pool: &'a Pool<T>,
     limit: f64,
 }
 
 impl<T: Scalar> Task<'_, T> {
     /// Factorises sibling subtrees, whose panels fill `panels`; returns their border blocks in order.
-    fn siblings(
-        &self,
-        fronts: &[u32],
-        panels: &mut [T],
-        workspace: &mut Workspace<T>,
-    ) -> Result<Vec<Vec<T>>, LinalgError> {
+    fn siblings(&self, fronts: &[u32], panels: &mut [T]) -> Result<Vec<Vec<T>>, LinalgError> {
         let work = |list: &[u32]| list.iter().map(|&k| self.plan.fronts[k as usize].work).sum::<f64>();
         let [.., last] = fronts else {
             return Ok(Vec::new());
         };
         if fronts.len() == 1 {
-            return Ok(vec![self.subtree(*last as usize, panels, workspace)?]);
+            return Ok(vec![self.subtree(*last as usize, panels)?]);
         }
         let (left, right) = fronts.split_at(fronts.len() / 2);
         let start = |k: u32| {
@@ -153,13 +134,10 @@ impl<T: Scalar> Task<'_, T> {
         };
         let (left_panels, right_panels) = panels.split_at_mut(start(right[0]) - start(left[0]));
         let (blocks, more) = if work(left).min(work(right)) < TASK_WORK {
-            let blocks = self.siblings(left, left_panels, workspace)?;
-            (Ok(blocks), self.siblings(right, right_panels, workspace))
+            let blocks = self.siblings(left, left_panels)?;
+            (Ok(blocks), self.siblings(right, right_panels))
         } else {
-            rayon::join(
-                || self.siblings(left, left_panels, workspace),
-                || self.siblings(right, right_panels, &mut Workspace::default()),
-            )
+            rayon::join(|| self.siblings(left, left_panels), || self.siblings(right, right_panels))
         };
         let mut blocks = blocks?;
         blocks.append(&mut more?);
@@ -167,104 +145,112 @@ impl<T: Scalar> Task<'_, T> {
     }
 
     /// Factorises front `k` with all below it; returns its border block.
-    fn subtree(&self, k: usize, panels: &mut [T], workspace: &mut Workspace<T>) -> Result<Vec<T>, LinalgError> {
+    fn subtree(&self, k: usize, panels: &mut [T]) -> Result<Vec<T>, LinalgError> {
         let fronts = &self.plan.fronts;
         let subtree = fronts[k].subtree..k + 1;
         let mut stack = Vec::new();
         let heavy = |k: u32| fronts[k as usize].work >= TASK_WORK;
         let branch = self.plan.branch(k, heavy);
         if fronts[branch].work < 2.0 * TASK_WORK {
-            self.sequence(subtree, panels, &mut stack, workspace)?;
+            self.sequence(subtree, panels, &mut stack)?;
             return Ok(stack.pop().unwrap_or_default());
         }
         let offset = |k: usize| fronts[k].panel.start - fronts[subtree.start].panel.start;
         let (before, rest) = panels.split_at_mut(offset(fronts[branch].subtree));
         let (below, after) = rest.split_at_mut(offset(branch) - before.len());
-        self.sequence(subtree.start..fronts[branch].subtree, before, &mut stack, workspace)?;
-        stack.append(&mut self.siblings(self.plan.children(&fronts[branch]), below, workspace)?);
-        self.sequence(branch..subtree.end, after, &mut stack, workspace)?;
+        self.sequence(subtree.start..fronts[branch].subtree, before, &mut stack)?;
+        stack.append(&mut self.siblings(self.plan.children(&fronts[branch]), below)?);
+        self.sequence(branch..subtree.end, after, &mut stack)?;
         Ok(stack.pop().unwrap_or_default())
     }
 
     /// Factorises successive fronts, one after the other; `stack` holds the border blocks not yet added to a parent.
-    fn sequence(
-        &self,
-        fronts: Range<usize>,
-        panels: &mut [T],
-        stack: &mut Vec<Vec<T>>,
-        workspace: &mut Workspace<T>,
-    ) -> Result<(), LinalgError> {
+    fn sequence(&self, fronts: Range<usize>, panels: &mut [T], stack: &mut Vec<Vec<T>>) -> Result<(), LinalgError> {
         let mut rest = panels;
         for front in &self.plan.fronts[fronts] {
             let (panel, after) = rest.split_at_mut(front.panel.len());
             rest = after;
             let blocks = stack.split_off(stack.len() - front.children.len());
-            stack.push(self.front(front, panel, blocks, workspace)?);
+            stack.push(self.front(front, panel, &blocks)?);
+            for block in blocks {
+                self.pool.give(block);
+            }
         }
         Ok(())
     }
 
-    /// Assembles one front from the matrix and its children's blocks, and eliminates its pivots.
-    fn front(
-        &self,
-        front: &Front,
-        panel: &mut [T],
-        children: Vec<Vec<T>>,
-        workspace: &mut Workspace<T>,
-    ) -> Result<Vec<T>, LinalgError> {
+    /// Assembles one front from the matrix and its children's blocks, and eliminates its pivots; returns its border block.
+    fn front(&self, front: &Front, panel: &mut [T], children: &[Vec<T>]) -> Result<Vec<T>, LinalgError> {
         panel.fill(T::ZERO);
-        let mut border = workspace.lower_zeros(front.border);
         for &[slot, place] in &self.plan.scatter[front.entries.clone()] {
             panel[place as usize] = self.matrix[slot as usize];
         }
-        for (&child, block) in self.plan.children(front).iter().zip(children) {
-            let rows = self.plan.fronts[child as usize].rows.clone();
-            add_block(front, &self.plan.relative[rows], &block, panel, &mut border);
-            workspace.spare.push(block);
+        let places = |child: u32| &self.plan.relative[self.plan.fronts[child as usize].rows.clone()];
+        let children = || self.plan.children(front).iter().zip(children);
+        for (&child, block) in children() {
+            add_to_panel(front, places(child), block, panel);
         }
+        let mut scaled = self.pool.take(panel.len());
         let columns = front.first..front.first + front.pivots;
-        workspace.scaled.resize(workspace.scaled.len().max(panel.len()), T::ZERO);
         let mut panel = Panel {
             values: panel,
-            scaled: &mut workspace.scaled,
+            scaled: &mut scaled,
             height: front.height(),
             references: &self.references[columns],
             limit: self.limit,
         };
-        panel.eliminate().map_err(|bad| {
-            let unknown = self.plan.order[front.first + bad.column] as usize;
-            if bad.ratio.is_nan() {
-                LinalgError::NotFinite { what: Datum::Pivots, index: unknown }
-            } else {
-                LinalgError::ZeroPivot { unknown, ratio: bad.ratio, limit: self.limit }
-            }
-        })?;
-        panel.update_border(&mut border);
+        panel.eliminate().map_err(|bad| self.refusal(front, &bad))?;
+        let mut border = self.pool.take(front.border * front.border);
+        panel.set_border(&mut border[..front.border * front.border]);
+        for (&child, block) in children() {
+            add_to_border(front, places(child), block, &mut border);
+        }
+        self.pool.give(scaled);
         Ok(border)
+    }
+
+    fn refusal(&self, front: &Front, bad: &BadPivot) -> LinalgError {
+        let unknown = self.plan.order[front.first + bad.column] as usize;
+        if bad.ratio.is_nan() {
+            LinalgError::NotFinite { what: Datum::Pivots, index: unknown }
+        } else {
+            LinalgError::ZeroPivot { unknown, ratio: bad.ratio, limit: self.limit }
+        }
     }
 }
 
-/// Adds a child's block (lower triangle) into a front; `relative` are its rows in the front, rising.
-fn add_block<T: Scalar>(front: &Front, relative: &[u32], block: &[T], panel: &mut [T], border: &mut [T]) {
-    let order = relative.len();
-    for (column, &target) in relative.iter().enumerate() {
-        let (target, rows) = (target as usize, &relative[column..]);
-        let source = &block[column * order + column..(column + 1) * order];
-        let (destination, shift) = if target < front.pivots {
-            (&mut panel[target * front.height()..][..front.height()], 0)
-        } else {
-            (&mut border[(target - front.pivots) * front.border..][..front.border], front.pivots)
-        };
-        let last = rows[rows.len() - 1] as usize;
-        if last - target == rows.len() - 1 {
-            let run = &mut destination[target - shift..=last - shift];
-            for (to, &from) in run.iter_mut().zip(source) {
-                *to += from;
-            }
-        } else {
-            for (&row, &from) in rows.iter().zip(source) {
-                destination[row as usize - shift] += from;
-            }
+/// Adds to a panel what a child leaves on its columns; `places` are the rows of the child's block in the front, rising.
+fn add_to_panel<T: Scalar>(front: &Front, places: &[u32], block: &[T], panel: &mut [T]) {
+    let order = places.len();
+    for (column, &target) in places.iter().enumerate() {
+        if target as usize >= front.pivots {
+            break;
+        }
+        let target = &mut panel[target as usize * front.height()..][..front.height()];
+        add_column(target, 0, &places[column..], &block[column * order + column..(column + 1) * order]);
+    }
+}
+
+/// Adds to a border block what a child leaves on it.
+fn add_to_border<T: Scalar>(front: &Front, places: &[u32], block: &[T], border: &mut [T]) {
+    let order = places.len();
+    let first = places.partition_point(|&place| (place as usize) < front.pivots);
+    for (column, &target) in places.iter().enumerate().skip(first) {
+        let target = &mut border[(target as usize - front.pivots) * front.border..][..front.border];
+        add_column(target, front.pivots, &places[column..], &block[column * order + column..(column + 1) * order]);
+    }
+}
+
+/// Adds entries to the rows `places`, less `shift`, of a column; in one run where these rows follow each other.
+fn add_column<T: Scalar>(target: &mut [T], shift: usize, places: &[u32], entries: &[T]) {
+    let (first, last) = (places[0] as usize, places[places.len() - 1] as usize);
+    if last - first == places.len() - 1 {
+        for (to, &from) in target[first - shift..=last - shift].iter_mut().zip(entries) {
+            *to += from;
+        }
+    } else {
+        for (&row, &from) in places.iter().zip(entries) {
+            target[row as usize - shift] += from;
         }
     }
 }

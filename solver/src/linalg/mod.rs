@@ -28,11 +28,13 @@ mod narrow;
 mod order;
 mod pattern;
 mod plan;
+mod pool;
 mod scalar;
 mod separator;
 mod solve;
 mod supernodes;
 mod sweep;
+mod tile;
 mod vector;
 
 pub use checked_solve::{BACKWARD_ERROR_LIMIT, Solved, checked_solve};

@@ -4,27 +4,54 @@
 //! registers: all their entries in these columns are loaded once, made final in turn, and stored once.
 //! Convention and storage as in `dense`.
 
-use faer::traits::pulp::{Arch, Simd, WithSimd};
+use pulp::{Arch, Simd, WithSimd};
 
 use super::dense::{BadPivot, Panel};
 use super::scalar::Scalar;
+use super::tile::{LeftUpdate, MOST_LANES, lanes};
 
 /// Most columns taken together.
 pub(super) const NARROW: usize = 8;
 
+/// Columns taken together where `left` are to be eliminated: a power of two.
+pub(super) fn narrow_width(left: usize) -> usize {
+    (1 << left.ilog2()).min(NARROW)
+}
+
 /// Eliminates columns `start..end`, at most [`NARROW`] of them, of which all earlier updates are done.
 pub(super) fn eliminate_narrow<T: Scalar>(panel: &mut Panel<'_, T>, start: usize, end: usize) -> Result<(), BadPivot> {
     match end - start {
-        0 => Ok(()),
         1 => eliminate::<T, 1>(panel, start),
         2 => eliminate::<T, 2>(panel, start),
-        3 => eliminate::<T, 3>(panel, start),
         4 => eliminate::<T, 4>(panel, start),
-        5 => eliminate::<T, 5>(panel, start),
-        6 => eliminate::<T, 6>(panel, start),
-        7 => eliminate::<T, 7>(panel, start),
         _ => eliminate::<T, NARROW>(panel, start),
     }
+}
+
+/// Subtracts from columns `start..end`, at most [`NARROW`] of them, what columns `from..start` contribute.
+pub(super) fn update_narrow<T: Scalar>(panel: &mut Panel<'_, T>, from: usize, start: usize, end: usize) {
+    if from == start {
+        return;
+    }
+    match end - start {
+        1 => update::<T, 1>(panel, from, start),
+        2 => update::<T, 2>(panel, from, start),
+        4 => update::<T, 4>(panel, from, start),
+        _ => update::<T, NARROW>(panel, from, start),
+    }
+}
+
+fn update<T: Scalar, const W: usize>(panel: &mut Panel<'_, T>, from: usize, start: usize) {
+    let height = panel.height;
+    let (done, open) = panel.values.split_at_mut(start * height);
+    let corner = from * height + start;
+    Arch::new().dispatch(LeftUpdate::<T, W> {
+        target: rows_below(&mut open[..W * height], height, start),
+        a: &done[corner..],
+        b: &panel.scaled[corner..],
+        stride: height,
+        depth: start - from,
+    });
 }
 
 fn eliminate<T: Scalar, const W: usize>(panel: &mut Panel<'_, T>, start: usize) -> Result<(), BadPivot> {
@@ -103,6 +130,16 @@ fn check_pivot<T: Scalar>(pivot: T, reference: f64, limit: f64) -> Result<(), f6
     }
 }
 
+/// Makes `W` vectors of entries final: `x` becomes a row of `L D`.
+#[inline(always)]
+fn finish<T: Scalar, S: Simd, const W: usize>(simd: S, lower: &[[T::Vector<S>; W]; W], x: &mut [T::Vector<S>; W]) {
+    for column in 0..W {
+        for target in column + 1..W {
+            x[target] = T::times_plus(simd, lower[column][target], x[column], x[target]);
+        }
+    }
+}
+
 /// The rows below the block, compiled for the vector unit found at run time.
 struct Below<'a, T, const W: usize> {
     values: [&'a mut [T]; W],
@@ -116,6 +153,7 @@ impl<T: Scalar, const W: usize> WithSimd for Below<'_, T, W> {
     #[inline(always)]
     fn with_simd<S: Simd>(self, simd: S) {
         let Block { negative_lower, reciprocals } = self.block;
+        let rows = self.values[0].len();
         let values = self.values.map(|column| T::vectors_mut::<S>(column));
         let scaled = self.scaled.map(|column| T::vectors_mut::<S>(column));
         let zero = T::splat(simd, T::ZERO);
@@ -131,24 +169,29 @@ impl<T: Scalar, const W: usize> WithSimd for Below<'_, T, W> {
             for column in 0..W {
                 x[column] = values[column].0[group];
             }
+            finish::<T, S, W>(simd, &lower, &mut x);
             for column in 0..W {
-                let done = x[column];
-                scaled[column].0[group] = done;
-                values[column].0[group] = T::times(simd, inverse[column], done);
-                for target in column + 1..W {
-                    x[target] = T::times_plus(simd, lower[column][target], done, x[target]);
-                }
+                scaled[column].0[group] = x[column];
+                values[column].0[group] = T::times(simd, inverse[column], x[column]);
             }
         }
-        for row in 0..values[0].1.len() {
-            for column in 0..W {
-                let done = values[column].1[row];
-                scaled[column].1[row] = done;
-                values[column].1[row] = done * reciprocals[column];
-                for target in column + 1..W {
-                    values[target].1[row] += negative_lower[column][target] * done;
-                }
-            }
+        let rest = rows % lanes::<T, S>();
+        if rest == 0 {
+            return;
+        }
+        // The last rows pass in vectors filled up with zeros.
+        let mut x = [zero; W];
+        let mut all = [T::ZERO; MOST_LANES];
+        for column in 0..W {
+            all[..rest].copy_from_slice(values[column].1);
+            x[column] = T::vectors::<S>(&all[..lanes::<T, S>()]).0[0];
+        }
+        finish::<T, S, W>(simd, &lower, &mut x);
+        for column in 0..W {
+            T::vectors_mut::<S>(&mut all[..lanes::<T, S>()]).0[0] = x[column];
+            scaled[column].1.copy_from_slice(&all[..rest]);
+            T::vectors_mut::<S>(&mut all[..lanes::<T, S>()]).0[0] = T::times(simd, inverse[column], x[column]);
+            values[column].1.copy_from_slice(&all[..rest]);
         }
     }
 }

@@ -134,6 +134,11 @@ impl Plan {
         }
     }
 
+    /// Values of the largest panel or border block.
+    pub(super) fn largest_block(&self) -> usize {
+        self.fronts.iter().map(|front| front.panel.len().max(front.border * front.border)).max().unwrap_or(0)
+    }
+
     /// Values of the factor, panels one after the other.
     pub(super) fn panel_values(&self) -> usize {
         self.fronts.last().map_or(0, |front| front.panel.end)

@@ -4,8 +4,8 @@
 use std::iter::Sum;
 use std::ops::{Add, AddAssign, Div, Mul, MulAssign, Neg, Sub, SubAssign};
 
-use faer::traits::pulp::Simd;
 use num_complex::Complex64;
+use pulp::Simd;
 
 /// A field element with the arithmetic of a direct solver.
 pub trait Scalar:
@@ -63,6 +63,9 @@ pub trait Scalar:
     /// `a + b`, lane by lane.
     fn plus<S: Simd>(simd: S, a: Self::Vector<S>, b: Self::Vector<S>) -> Self::Vector<S>;
 
+    /// `a - b`, lane by lane.
+    fn minus<S: Simd>(simd: S, a: Self::Vector<S>, b: Self::Vector<S>) -> Self::Vector<S>;
+
     /// Sum over the lanes.
     fn sum_of_lanes<S: Simd>(simd: S, a: Self::Vector<S>) -> Self;
 }
@@ -116,6 +119,11 @@ impl Scalar for f64 {
     #[inline(always)]
     fn plus<S: Simd>(simd: S, a: S::f64s, b: S::f64s) -> S::f64s {
         simd.add_f64s(a, b)
+    }
+
+    #[inline(always)]
+    fn minus<S: Simd>(simd: S, a: S::f64s, b: S::f64s) -> S::f64s {
+        simd.sub_f64s(a, b)
     }
 
     #[inline(always)]
@@ -182,6 +190,11 @@ impl Scalar for Complex64 {
     #[inline(always)]
     fn plus<S: Simd>(simd: S, a: S::c64s, b: S::c64s) -> S::c64s {
         simd.add_c64s(a, b)
+    }
+
+    #[inline(always)]
+    fn minus<S: Simd>(simd: S, a: S::c64s, b: S::c64s) -> S::c64s {
+        simd.sub_c64s(a, b)
     }
 
     #[inline(always)]

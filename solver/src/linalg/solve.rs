@@ -5,7 +5,7 @@
 //! in parallel when the plan says they are large, so the result is the same to the last bit for any number of threads.
 //! Convention: inside, right-hand sides are taken in groups, and the values of one unknown for a group lie together.
 
-use faer::traits::pulp::Arch;
+use pulp::Arch;
 
 use super::error::{Datum, LinalgError};
 use super::factor::Factor;

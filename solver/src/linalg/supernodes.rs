@@ -44,9 +44,9 @@ impl Supernode {
         let zeros = self.zeros();
         match self.pivots {
             0..=4 => true,
-            5..=16 => zeros < 0.5,
-            17..=48 => zeros < 0.15,
-            _ => zeros < 0.05,
+            5..=16 => zeros < 0.3,
+            17..=48 => zeros < 0.12,
+            _ => zeros < 0.04,
         }
     }
 }

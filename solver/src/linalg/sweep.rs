@@ -7,7 +7,7 @@
 
 use std::ops::Range;
 
-use faer::traits::pulp::{Simd, WithSimd};
+use pulp::{Simd, WithSimd};
 
 use super::plan::{Front, Plan};
 use super::scalar::Scalar;

@@ -1,7 +1,7 @@
 //! Dot products and multiples of vectors, in vector registers.
 //! Convention: to be called inside a run-time dispatch, which compiles them for the unit `S`.
 
-use faer::traits::pulp::Simd;
+use pulp::Simd;
 
 use super::scalar::Scalar;
 

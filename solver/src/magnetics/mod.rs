@@ -15,6 +15,7 @@
 
 pub mod conductor;
 pub mod drive;
+mod element_forms;
 pub mod maps;
 pub mod open_boundary;
 pub mod operator;

@@ -5,12 +5,13 @@ use std::sync::Arc;
 use num_complex::Complex64;
 
 use super::conductor::Turns;
+use super::element_forms::ElementForms;
 use super::open_boundary::{Exterior, slice_source};
 use super::properties::PointProperties;
 use super::unit_field::UnitField;
 use crate::error::SolveError;
-use crate::fem::assemble::{Block, Scatter, add_blocks};
-use crate::fem::element::{ElementPoints, PointValues};
+use crate::fem::assemble::{Scatter, add_blocks};
+use crate::fem::element::PointValues;
 use crate::fem::space::Space;
 use crate::linalg::{Factor, LinalgError, Pattern, Plan, SymmetricMatrix, checked_solve};
 use crate::model::{Drive, Mirrors, Model};
@@ -28,6 +29,9 @@ pub struct Operator {
     exterior_slots: Vec<u32>,
     exterior_block: Vec<f64>,
     scatter: Scatter,
+    forms: ElementForms,
+    /// Room for element blocks.
+    blocks: Vec<Complex64>,
     plan: Arc<Plan>,
     matrix: SymmetricMatrix<Complex64>,
     factor: Option<Factor<Complex64>>,
@@ -67,6 +71,10 @@ impl Operator {
             exterior_block: exterior.as_ref().map(Exterior::block).unwrap_or_default(),
             factor: None,
             source: vec![Complex64::ZERO; n],
+            forms: ElementForms::new(&space, &border_of_element, |e| {
+                !matches!(regions[space.region(e).0 as usize], RegionName::Air)
+            }),
+            blocks: Vec::new(),
             surfaces_m2: space.surface_by_region(regions.len()),
             space,
             turns,
@@ -167,10 +175,9 @@ impl Operator {
 
     fn assemble(&mut self, properties: &PointProperties) {
         self.matrix.values.fill(Complex64::ZERO);
-        let (space, borders, omega) = (&self.space, &self.border_of_element, self.omega);
-        add_blocks(&self.scatter, &mut self.matrix.values, |e, points, out| {
-            space.fill(e, points);
-            element_block(points, properties.sigma(e), properties.nu(e), omega, borders[e].is_some(), out);
+        let (space, forms, omega) = (&self.space, &self.forms, self.omega);
+        add_blocks(&self.scatter, &mut self.blocks, &mut self.matrix.values, |e, points, out| {
+            forms.block(space, e, (properties.sigma(e), properties.nu(e)), omega, points, out);
         });
         for (&slot, &k) in self.exterior_slots.iter().zip(&self.exterior_block) {
             self.matrix.values[slot as usize] += k;
@@ -216,38 +223,6 @@ fn plan(pattern: &Arc<Pattern>, space: &Space, ring: &[u32], n: usize) -> Result
     coordinates.resize(n, [0.0; 2]);
     let last: Vec<u32> = ring.iter().copied().chain(space.len() as u32..n as u32).collect();
     Plan::new(Arc::clone(pattern), Some(&coordinates), &last).map(Arc::new)
-}
-
-/// Lower triangle of `K + j w M` of an element, with the row of its turn's voltage last where it has one.
-fn element_block(
-    points: &ElementPoints,
-    sigma: &[f64],
-    nu: &[f64],
-    omega: f64,
-    border: bool,
-    out: &mut Block<Complex64>,
-) {
-    let n = points.nodes;
-    for ((p, &sigma), &nu) in points.points().iter().zip(sigma).zip(nu) {
-        let (k, m) = (nu * p.volume, omega * sigma * p.volume);
-        let mut slot = 0;
-        for i in 0..n {
-            let (ri, zi) = curl(p, i);
-            let (bz, br, a) = (k * zi, k * ri, m * p.r * p.r * p.value[i]);
-            for j in 0..=i {
-                let (rj, zj) = curl(p, j);
-                out[slot] += Complex64::new(bz * zj + br * rj, a * p.value[j]);
-                slot += 1;
-            }
-        }
-        if border {
-            for j in 0..n {
-                out[slot].im -= m * p.value[j];
-                slot += 1;
-            }
-            out[slot].im += m / (p.r * p.r);
-        }
-    }
 }
 
 /// `(-B_r, B_z)` of basis function `i`: `(r u_z, 2 u + r u_r)`.

@@ -1,0 +1,140 @@
+//! Element blocks of `K + j w M`, with the row of a solid turn's voltage last where an element has one.
+//!
+//! Stored once a mesh: the block of `K` for a reluctivity of 1 m/H, and in conductors that of `M` for 1 S/m. They make
+//! the block of an element whose properties are the same at all its points; where they vary, it is integrated anew.
+//! Convention: lower triangle by rows; equation (3) of [`super`].
+
+use num_complex::Complex64;
+
+use super::operator::curl;
+use crate::fem::assemble::{Block, map_elements};
+use crate::fem::element::ElementPoints;
+use crate::fem::reference::{MAX_NODES, MAX_POINTS};
+use crate::fem::space::Space;
+
+/// Most entries of a block, the voltage row included.
+const MOST_ENTRIES: usize = (MAX_NODES + 1) * (MAX_NODES + 2) / 2;
+
+/// Blocks of unit properties, element-major.
+#[derive(Debug)]
+pub(super) struct ElementForms {
+    /// Entries of an element's block without a voltage row.
+    entries: usize,
+    stiffness: Vec<f64>,
+    /// Blocks of `M` of the conductors, voltage row included.
+    mass: Vec<f64>,
+    /// Where each element's block of `M` begins, and where the last ends; empty outside conductors.
+    mass_starts: Vec<u32>,
+    bordered: Vec<bool>,
+}
+
+impl ElementForms {
+    /// Integrates the forms of all elements; `conducts` tells which may carry eddy currents.
+    pub(super) fn new(space: &Space, borders: &[Option<u32>], conducts: impl Fn(usize) -> bool + Sync) -> Self {
+        let nodes = space.reference().node_count();
+        let entries = nodes * (nodes + 1) / 2;
+        let bordered: Vec<bool> = borders.iter().map(Option::is_some).collect();
+        let integral = integral(nodes);
+        let rows = map_elements(space.element_count(), |e, points| {
+            space.fill(e, points);
+            let mut sums = Sums::default();
+            integral(points, &[1.0; MAX_POINTS], &[1.0; MAX_POINTS], bordered[e], &mut sums);
+            let length = entries + if bordered[e] { nodes + 1 } else { 0 };
+            let mass = if conducts(e) { sums.mass[..length].to_vec() } else { Vec::new() };
+            (sums.stiffness, mass)
+        });
+        let mut out = Self { entries, stiffness: Vec::new(), mass: Vec::new(), mass_starts: vec![0], bordered };
+        for (stiffness, mass) in rows {
+            out.stiffness.extend_from_slice(&stiffness[..entries]);
+            out.mass.extend_from_slice(&mass);
+            out.mass_starts.push(out.mass.len() as u32);
+        }
+        out
+    }
+
+    /// Block of element `e` with conductivities in S/m and reluctivities in m/H at its points, at `omega` in rad/s.
+    ///
+    /// `out` arrives as zeros; `points` is room for the element's points.
+    pub(super) fn block(
+        &self,
+        space: &Space,
+        e: usize,
+        (sigma, nu): (&[f64], &[f64]),
+        omega: f64,
+        points: &mut ElementPoints,
+        out: &mut Block<Complex64>,
+    ) {
+        let mass = &self.mass[self.mass_starts[e] as usize..self.mass_starts[e + 1] as usize];
+        if same(nu) && same(sigma) && (sigma[0] == 0.0 || mass.len() == out.len()) {
+            for (out, form) in out.iter_mut().zip(&self.stiffness[e * self.entries..][..self.entries]) {
+                out.re = nu[0] * form;
+            }
+            let weight = omega * sigma[0];
+            for (out, form) in out.iter_mut().zip(mass) {
+                out.im = weight * form;
+            }
+            return;
+        }
+        space.fill(e, points);
+        let mut sums = Sums::default();
+        integral(points.nodes)(points, sigma, nu, self.bordered[e], &mut sums);
+        for (out, (stiffness, mass)) in out.iter_mut().zip(sums.stiffness.iter().zip(&sums.mass)) {
+            *out = Complex64::new(*stiffness, omega * mass);
+        }
+    }
+}
+
+fn same(values: &[f64]) -> bool {
+    values.iter().all(|&value| value == values[0])
+}
+
+/// Integrals over one element.
+struct Sums {
+    /// `int nu (...)` of equation (1).
+    stiffness: [f64; MOST_ENTRIES],
+    /// `int sigma (r u - W / r)(r v - Y / r)`.
+    mass: [f64; MOST_ENTRIES],
+}
+
+impl Default for Sums {
+    fn default() -> Self {
+        Self { stiffness: [0.0; MOST_ENTRIES], mass: [0.0; MOST_ENTRIES] }
+    }
+}
+
+type Integral = fn(&ElementPoints, &[f64], &[f64], bool, &mut Sums);
+
+/// The integral over an element of so many nodes; a constant number lets the compiler unroll the inner loops.
+fn integral(nodes: usize) -> Integral {
+    match nodes {
+        3 => integrate::<3>,
+        6 => integrate::<6>,
+        _ => integrate::<MAX_NODES>,
+    }
+}
+
+fn integrate<const N: usize>(points: &ElementPoints, sigma: &[f64], nu: &[f64], border: bool, out: &mut Sums) {
+    for ((p, &sigma), &nu) in points.points().iter().zip(sigma).zip(nu) {
+        let (k, m) = (nu * p.volume, sigma * p.volume);
+        let (mut b, mut u) = ([(0.0, 0.0); N], [0.0; N]);
+        for i in 0..N {
+            b[i] = curl(p, i);
+            u[i] = p.r * p.value[i];
+        }
+        let mut slot = 0;
+        for i in 0..N {
+            for j in 0..=i {
+                out.stiffness[slot] += k * (b[i].0 * b[j].0 + b[i].1 * b[j].1);
+                out.mass[slot] += m * (u[i] * u[j]);
+                slot += 1;
+            }
+        }
+        if border {
+            for value in &p.value[..N] {
+                out.mass[slot] -= m * value;
+                slot += 1;
+            }
+            out.mass[slot] += m / (p.r * p.r);
+        }
+    }
+}
