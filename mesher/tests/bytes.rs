@@ -137,7 +137,7 @@ proptest! {
             }
         }
         let drawing =
-            Drawing { domain, domain_region: RegionId(9), domain_size, regions, gradation, boundary_size: None };
+            Drawing { domain, domain_region: RegionId(9), domain_size, regions, gradation, boundary_size: None, line_sizes: Vec::new() };
         // A hang shows as questions without end: each stands for hundreds of steps.
         let asked = Cell::new(0);
         let stop = || {
