@@ -10,7 +10,7 @@ use crate::layers;
 use crate::mesh::{Mesh, straight_area};
 use crate::noding::{Graph, node};
 use crate::note::{MeshNote, NoteReason};
-use crate::plan::Plan;
+use crate::plan::{Plan, Wishes};
 use crate::refine::{Budget, Sizes, refine};
 use crate::size_field::{Gaps, SizeField, sources, wanted};
 use crate::smooth::smooth;
@@ -128,7 +128,7 @@ fn plan(
     let mut strips = layers::build(drawing, graph, &rough, max_turn, &mut facing, enough);
     let field = if strips.is_empty() { rough } else { field(strips.sources(graph, sizes, &gaps)) };
     let notes = std::mem::take(&mut strips.notes);
-    let mut plan = Plan::new(drawing, graph, strips, &field, max_turn, facing);
+    let mut plan = Plan::new(&Wishes { drawing, graph, field: &field, max_turn }, strips, facing);
     untangle(&mut plan, graph.tolerance, enough);
     (plan, field, notes)
 }

@@ -27,7 +27,7 @@ pub(crate) struct Cavity {
 }
 
 impl Triangulation {
-    /// Gathers the faces around `seed` whose circle holds `p`. True if the point sees the whole rim, so that a fan fits.
+    /// Gathers the faces whose circle holds `p`, from one of them on; the rim begins at its edge `start`. True if the point sees the whole rim, so that a fan fits.
     pub(crate) fn find_cavity(&self, start: u32, p: Point, cavity: &mut Cavity) -> bool {
         cavity.faces.clear();
         cavity.rim.clear();
@@ -40,13 +40,12 @@ impl Triangulation {
             let face = &self.faces[(link >> 2) as usize];
             let i = (link & 3) as usize;
             let (n, tag) = (face.n[i], face.tag[i]);
-            if tag == 0 && n != NONE && cavity.faces.len() < MOST_FACES {
-                if self.is_in_circle(n >> 2, p) {
-                    let j = (n & 3) as usize;
-                    cavity.faces.push(n >> 2);
-                    cavity.open.extend([(n & !3) | LAST[j] as u32, (n & !3) | NEXT[j] as u32]);
-                    continue;
-                }
+            let open = tag == 0 && n != NONE && cavity.faces.len() < MOST_FACES;
+            if open && self.is_in_circle(n >> 2, p) {
+                let j = (n & 3) as usize;
+                cavity.faces.push(n >> 2);
+                cavity.open.extend([(n & !3) | LAST[j] as u32, (n & !3) | NEXT[j] as u32]);
+                continue;
             }
             let ends = [face.v[NEXT[i]], face.v[LAST[i]]];
             let [a, b] = ends.map(|v| self.point(v));

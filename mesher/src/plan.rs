@@ -40,15 +40,19 @@ pub(crate) struct Plan {
     pub(crate) cells: Vec<Cell>,
 }
 
+/// What a plan follows.
+#[derive(Debug, Clone, Copy)]
+pub(crate) struct Wishes<'a> {
+    pub(crate) drawing: &'a Drawing,
+    pub(crate) graph: &'a Graph,
+    pub(crate) field: &'a SizeField,
+    /// Largest turn of an edge along an arc, in radians.
+    pub(crate) max_turn: f64,
+}
+
 impl Plan {
-    pub(crate) fn new(
-        drawing: &Drawing,
-        graph: &Graph,
-        strips: Strips,
-        field: &SizeField,
-        max_turn: f64,
-        mut facing: Facing,
-    ) -> Self {
+    pub(crate) fn new(wishes: &Wishes, strips: Strips, mut facing: Facing) -> Self {
+        let graph = wishes.graph;
         let mut plan = Self { points: graph.points.clone(), nodes: graph.points.len(), ..Self::default() };
         plan.points.extend(&strips.points);
         for (i, stretch) in graph.stretches.iter().enumerate() {
@@ -59,7 +63,7 @@ impl Plan {
             plan.tags.push(Tag { ends: Some(stretch.ends), sides: Some(stretch.sides), circle, pole: None });
             let chain = match &strips.divisions[i] {
                 Some(fixed) => fixed.clone(),
-                None => plan.divide(drawing, graph, i, &strips, field, max_turn, &mut facing),
+                None => plan.divide(wishes, i, &strips, &mut facing),
             };
             plan.edges.extend(chain.windows(2).map(|e| (e[0], e[1], i as u32 + 1)));
         }
@@ -71,16 +75,8 @@ impl Plan {
     }
 
     /// Vertices along a stretch that no strip divides, through those a strip has put on it.
-    fn divide(
-        &mut self,
-        drawing: &Drawing,
-        graph: &Graph,
-        index: usize,
-        strips: &Strips,
-        field: &SizeField,
-        max_turn: f64,
-        facing: &mut Facing,
-    ) -> Vec<u32> {
+    fn divide(&mut self, wishes: &Wishes, index: usize, strips: &Strips, facing: &mut Facing) -> Vec<u32> {
+        let Wishes { drawing, graph, field, max_turn } = *wishes;
         let stretch = &graph.stretches[index];
         let cap = stretch.sides.iter().fold(drawing.domain_size, |least, &side| {
             drawing.region_of(side).map_or(least, |r| least.min(r.interior_size))
