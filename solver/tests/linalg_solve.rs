@@ -9,6 +9,7 @@ use std::sync::Arc;
 use linalg_support::{faer_lu, laplacian, pattern_of, quadratic_grid, relative_difference, wavy, with_threads};
 use num_complex::Complex64;
 use proptest::prelude::*;
+use proptest::test_runner::RngSeed;
 use solver::linalg::{Datum, Factor, LinalgError, Pattern, Plan, SymmetricMatrix, checked_solve};
 
 fn plan(pattern: &Arc<Pattern>, points: Option<&[[f64; 2]]>, last: &[u32]) -> Arc<Plan> {
@@ -40,7 +41,12 @@ fn edges(n: u32, most: usize) -> impl Strategy<Value = Vec<Edge>> {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig { cases: 48, failure_persistence: None, ..ProptestConfig::default() })]
+    #![proptest_config(ProptestConfig {
+        cases: 48,
+        failure_persistence: None,
+        rng_seed: RngSeed::Fixed(20_240_601),
+        ..ProptestConfig::default()
+    })]
 
     #[test]
     fn random_accretive_systems_agree_with_lu_for_every_order(
@@ -293,7 +299,8 @@ fn refactoring_gives_the_same_bits_as_a_first_factorisation() {
 
 #[test]
 fn one_two_and_five_threads_give_the_same_bits() {
-    let (matrix, points, last) = bordered(60, 2);
+    // Large enough for fronts whose borders are shared out among threads.
+    let (matrix, points, last) = bordered(130, 2);
     let rhs = wavy(points.len());
     let run = || {
         let factor = Factor::new(&plan(&matrix.pattern, Some(&points), &last), &matrix.values).unwrap();

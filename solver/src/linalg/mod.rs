@@ -32,6 +32,7 @@ mod pool;
 mod scalar;
 mod separator;
 mod solve;
+mod storage;
 mod supernodes;
 mod sweep;
 mod tile;

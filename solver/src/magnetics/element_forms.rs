@@ -138,3 +138,55 @@ fn integrate<const N: usize>(points: &ElementPoints, sigma: &[f64], nu: &[f64], 
         }
     }
 }
+
+#[cfg(test)]
+#[allow(clippy::unwrap_used, reason = "tests")]
+mod tests {
+    use std::sync::Arc;
+
+    use mesher::{Drawing, Limits, Outline, RegionId, triangulate};
+
+    use super::*;
+
+    fn disc(order: usize) -> Space {
+        let drawing = Drawing {
+            domain: Outline::rectangle([0.01, 0.0], [0.02, 0.01]).unwrap(),
+            domain_region: RegionId(0),
+            domain_size: 0.004,
+            regions: Vec::new(),
+            gradation: 0.4,
+            boundary_size: None,
+        };
+        let mesh = Arc::new(triangulate(&drawing, &Limits::default(), &|| false).unwrap());
+        Space::new(&mesh, &mesh.nodes(order), |_| true)
+    }
+
+    #[test]
+    fn stored_forms_give_the_integral_with_and_without_a_voltage_row() {
+        for order in 1..=3 {
+            let space = disc(order);
+            let nodes = space.reference().node_count();
+            let borders: Vec<Option<u32>> = (0..space.element_count()).map(|e| (e % 2 == 0).then_some(999)).collect();
+            let forms = ElementForms::new(&space, &borders, |e| e % 3 > 0);
+            let (sigma, nu, omega) = (3e6, 7e5, 2e4);
+            let count = space.reference().point_count();
+            let uniform = (vec![sigma; count], vec![nu; count]);
+            // A relative change of 1e-14 at one point makes the integral the way.
+            let mut varied = uniform.clone();
+            (varied.0[0], varied.1[0]) = (sigma * (1.0 + 1e-14), nu * (1.0 + 1e-14));
+            let mut points = ElementPoints::default();
+            for (e, border) in borders.iter().enumerate() {
+                let length = nodes * (nodes + 1) / 2 + if border.is_some() { nodes + 1 } else { 0 };
+                let [mut stored, mut integrated] = [0; 2].map(|_| vec![Complex64::ZERO; length]);
+                forms.block(&space, e, (&uniform.0, &uniform.1), omega, &mut points, &mut stored);
+                forms.block(&space, e, (&varied.0, &varied.1), omega, &mut points, &mut integrated);
+                let size = integrated.iter().fold([0.0_f64; 2], |m, v| [m[0].max(v.re.abs()), m[1].max(v.im.abs())]);
+                assert!(size[0] > 0.0 && size[1] > 0.0, "element {e} has no stiffness or no mass");
+                for (k, (a, b)) in stored.iter().zip(&integrated).enumerate() {
+                    let off = [(a.re - b.re).abs() / size[0], (a.im - b.im).abs() / size[1]];
+                    assert!(off[0] < 1e-12 && off[1] < 1e-12, "order {order}, element {e}, entry {k}: {a} and {b}");
+                }
+            }
+        }
+    }
+}
