@@ -2,7 +2,9 @@
 //!
 //! A panel of `height` rows holds the pivot columns. After elimination it holds, below the diagonal, the unit lower
 //! factor `L`, and on the diagonal the reciprocals of the pivots `D`. A second panel receives `L D`, so that every
-//! update is one matrix product `C -= L (L D)^T`, done by faer. Products are split by their size alone.
+//! update is a matrix product `C -= L (L D)^T`: in vector registers within a panel of up to [`WIDE`] columns and for the
+//! border (modules `narrow` and `tile`), by faer between the halves of wider panels. Products are split by their size
+//! alone.
 //! Convention: storage by columns; entries above the diagonal are never read.
 //! Source: G. H. Golub and C. F. Van Loan, Matrix Computations (4th ed.), section 4.1 (`L D L^T`).
 
@@ -93,7 +95,7 @@ impl<T: Scalar> Panel<'_, T> {
 fn set_columns<T: Scalar>(product: NegativeProduct<'_, T>) {
     let NegativeProduct { target, a, b, stride, order, depth, first } = product;
     let columns = target.len() / order;
-    // Columns grow shorter to the right: the left half of the work is in the first third or less.
+    // Columns grow shorter to the right, so half of the work is in less than half of them.
     let (height, last_height) = (order - first, order - first - columns);
     let half = height - ((height * height + last_height * last_height) as f64 / 2.0).sqrt() as usize;
     let work = columns * (height + last_height) / 2 * depth;

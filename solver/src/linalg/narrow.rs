@@ -179,7 +179,7 @@ impl<T: Scalar, const W: usize> WithSimd for Below<'_, T, W> {
         if rest == 0 {
             return;
         }
-        // The last rows pass in vectors filled up with zeros.
+        // The last rows pass in vectors of which only the first lanes count.
         let mut x = [zero; W];
         let mut all = [T::ZERO; MOST_LANES];
         for column in 0..W {

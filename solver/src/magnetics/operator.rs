@@ -161,15 +161,14 @@ impl Operator {
     /// A factorisation that fails, or a solution that does not satisfy its equations.
     pub fn solve(&mut self, properties: &PointProperties) -> Result<UnitField, LinalgError> {
         self.assemble(properties);
-        let factor = match self.factor.take() {
-            Some(mut factor) => {
+        let factor = match &mut self.factor {
+            Some(factor) => {
                 factor.refactor(&self.matrix.values)?;
                 factor
             }
-            None => Factor::new(&self.plan, &self.matrix.values)?,
+            none => none.insert(Factor::new(&self.plan, &self.matrix.values)?),
         };
-        let solved = checked_solve(&self.matrix, &factor, &self.source)?;
-        self.factor = Some(factor);
+        let solved = checked_solve(&self.matrix, factor, &self.source)?;
         Ok(UnitField::new(self, properties, solved.x, solved.backward_error))
     }
 
