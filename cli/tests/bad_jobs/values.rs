@@ -76,6 +76,11 @@ pub(crate) fn values() -> Vec<Bad> {
             &["heating.step_tolerance", "2 °C", "\"2 K\""],
         ),
         bad(
+            "elements of no size",
+            Set("/mesh", json!({ "largest": "0 mm" })),
+            &["mesh.largest", "0 mm", "from 1 um to 100 m"],
+        ),
+        bad(
             "zero power",
             Set("/supply/hold/workpiece_power", json!("0 kW")),
             &["supply.hold.workpiece_power", "0 kW", "MW"],

@@ -109,7 +109,7 @@ impl HeatProblem {
     /// are free in it.
     pub fn matrix(&self, state: &HeatState, weight_s: f64) -> SymmetricMatrix<f64> {
         let mut matrix = SymmetricMatrix::zeros(Arc::clone(self.plan.pattern()));
-        self.operator.add_tangent(&self.scatter, &state.temperature_k, weight_s, &mut matrix.values);
+        self.operator.add_tangent(&self.scatter, &state.temperature_k, weight_s, &mut Vec::new(), &mut matrix.values);
         matrix
     }
 

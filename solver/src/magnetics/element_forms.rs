@@ -156,6 +156,7 @@ mod tests {
             regions: Vec::new(),
             gradation: 0.4,
             boundary_size: None,
+            line_sizes: Vec::new(),
         };
         let mesh = Arc::new(triangulate(&drawing, &Limits::default(), &|| false).unwrap());
         Space::new(&mesh, &mesh.nodes(order), |_| true)
