@@ -14,7 +14,6 @@ use super::matrix::check_length;
 use super::plan::{Front, Plan};
 use super::pool::Pool;
 use super::scalar::Scalar;
-use super::storage::Storage;
 
 /// Smallest work of a subtree, in operations, that is worth a task.
 const TASK_WORK: f64 = 3e5;
@@ -23,7 +22,7 @@ const TASK_WORK: f64 = 3e5;
 pub struct Factor<T> {
     pub(super) plan: Arc<Plan>,
     /// Panels of the fronts; reciprocal pivots on their diagonals.
-    values: Storage<T>,
+    pub(super) values: Vec<T>,
     /// Blocks between fronts, kept for the next factorisation.
     pool: Pool<T>,
     /// Whether `values` hold a factor: false after a failure.
@@ -36,7 +35,7 @@ impl<T: Scalar> Factor<T> {
     /// # Errors
     /// As [`Factor::refactor`].
     pub fn new(plan: &Arc<Plan>, values: &[T]) -> Result<Self, LinalgError> {
-        let storage = Storage::zeros(plan.panel_values());
+        let storage = vec![T::ZERO; plan.panel_values()];
         let pool = Pool::new(plan.largest_block());
         let mut factor = Self { plan: Arc::clone(plan), values: storage, pool, complete: false };
         factor.refactor(values)?;
@@ -60,16 +59,11 @@ impl<T: Scalar> Factor<T> {
         let references = pivot_references(&plan, values);
         let (pool, limit) = (&self.pool, pivot_limit(plan.n()));
         let task = Task { plan: &plan, matrix: values, references: &references, pool, limit };
-        for block in task.siblings(&plan.roots, self.values.values_mut())? {
+        for block in task.siblings(&plan.roots, &mut self.values)? {
             pool.give(block);
         }
         self.complete = true;
         Ok(())
-    }
-
-    /// Panels of the fronts.
-    pub(super) fn panels(&self) -> &[T] {
-        self.values.values()
     }
 
     /// Plan this factor follows.

@@ -32,7 +32,6 @@ mod pool;
 mod scalar;
 mod separator;
 mod solve;
-mod storage;
 mod supernodes;
 mod sweep;
 mod tile;

@@ -10,7 +10,6 @@ use pulp::Simd;
 /// A field element with the arithmetic of a direct solver.
 pub trait Scalar:
     faer::traits::ComplexField
-    + bytemuck::Pod
     + Copy
     + Send
     + Sync

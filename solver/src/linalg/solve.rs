@@ -51,7 +51,7 @@ impl<T: Scalar> Factor<T> {
         for &unknown in &plan.order {
             x.extend(rhs.iter().skip(unknown as usize).step_by(n).copied());
         }
-        let sweep = Sweep { plan, values: self.panels(), width };
+        let sweep = Sweep { plan, values: &self.values, width };
         sweep.forward_siblings(&plan.roots, &mut x);
         sweep.backward_siblings(&plan.roots, Vec::new(), &mut x);
         for (&unknown, values) in plan.order.iter().zip(x.chunks_exact(width)) {
