@@ -25,6 +25,8 @@ const FLOOR: f64 = 0.12;
 const LENS: f64 = 0.5;
 /// Usual area of a face over the square of the wanted size.
 const FACE_AREA: f64 = 0.36;
+/// Times that every face is looked at.
+const LOOKS: usize = 3;
 /// Mark of a vertex that is a node of the drawing.
 const NODE: u32 = u32::MAX;
 
@@ -69,22 +71,11 @@ pub(crate) fn refine(
     refiner.lay_lattice(budget.max_triangles);
     refiner.mesh.fresh = (0..refiner.mesh.faces.len() as u32).collect();
     refiner.queue_fresh();
-    let mut steps = 0u32;
-    while let Some((face, vertices)) = refiner.queue.pop() {
-        if refiner.mesh.faces[face as usize].v != vertices {
-            continue;
-        }
-        steps += 1;
-        if steps.is_multiple_of(512) && (budget.stop)() {
-            return Err(MeshError::Stopped);
-        }
-        // A quarter more for what lies outside the domain; the finished mesh is counted exactly.
-        if refiner.mesh.faces.len() > budget.max_triangles + budget.max_triangles / 4 + 1000 {
-            return Err(MeshError::TooManyTriangles { limit: budget.max_triangles, smallest_m: budget.smallest });
-        }
-        if let Some((target, base)) = refiner.target(face) {
-            refiner.insert(4 * face + base, vertices, target);
-            refiner.queue_fresh();
+    for _ in 0..LOOKS {
+        refiner.work_off(budget)?;
+        refiner.queue_unfinished();
+        if refiner.queue.is_empty() {
+            break;
         }
     }
     Ok(())
@@ -147,6 +138,39 @@ impl Refiner<'_> {
         for t in self.mesh.fresh.drain(..) {
             let face = &self.mesh.faces[t as usize];
             if face.is_free() {
+                self.queue.push((t, face.v));
+            }
+        }
+    }
+
+    /// Refines until the queue is empty.
+    fn work_off(&mut self, budget: &Budget) -> Result<(), MeshError> {
+        let mut steps = 0u32;
+        while let Some((face, vertices)) = self.queue.pop() {
+            if self.mesh.faces[face as usize].v != vertices {
+                continue;
+            }
+            steps += 1;
+            if steps.is_multiple_of(512) && (budget.stop)() {
+                return Err(MeshError::Stopped);
+            }
+            // A quarter more for what lies outside the domain; the finished mesh is counted exactly.
+            if self.mesh.faces.len() > budget.max_triangles + budget.max_triangles / 4 + 1000 {
+                return Err(MeshError::TooManyTriangles { limit: budget.max_triangles, smallest_m: budget.smallest });
+            }
+            if let Some((target, base)) = self.target(face) {
+                self.insert(4 * face + base, vertices, target);
+                self.queue_fresh();
+            }
+        }
+        Ok(())
+    }
+
+    /// Queues the faces that could not be mended when they were looked at: what stood in their way may be gone.
+    fn queue_unfinished(&mut self) {
+        for t in 0..self.mesh.faces.len() as u32 {
+            let face = &self.mesh.faces[t as usize];
+            if face.is_free() && self.target(t).is_some() {
                 self.queue.push((t, face.v));
             }
         }
