@@ -2,7 +2,7 @@
 //! are never touched; edges shorter than a share of the wanted size are left alone, so that narrow gaps and small input angles end.
 //! Source: A. Üngör, "Off-centers", 2004; J. R. Shewchuk, "Delaunay refinement algorithms", 2002 (lenses, concentric shells).
 
-use crate::cavity::Cavity;
+use crate::cavity::{Cavity, Rim};
 use crate::error::MeshError;
 use crate::facing::NARROW;
 use crate::ids::{Point, along, between, distance, distance_squared, dot, sub};
@@ -23,6 +23,8 @@ const LEG: f64 = 1.04;
 const FLOOR: f64 = 0.12;
 /// Cosine of the lens angle: a point that sees a constrained edge under more than 120 degrees encroaches on it.
 const LENS: f64 = 0.5;
+/// A point that sees a fixed edge under a wide angle stays this share of the wanted size away from it.
+const CLEAR: f64 = 0.4;
 /// Usual area of a face over the square of the wanted size.
 const FACE_AREA: f64 = 0.36;
 /// Times that every face is looked at.
@@ -264,7 +266,7 @@ impl Refiner<'_> {
         // The target lies in the circle of the face that asks for it, so that face is part of the cavity.
         let face = base >> 2;
         if !self.mesh.find_cavity(base, target, &mut self.cavity) {
-            self.insert_hidden(face, vertices, target);
+            self.insert_hidden(base, vertices, target);
             return;
         }
         self.collect_encroached(target);
@@ -272,11 +274,25 @@ impl Refiner<'_> {
             self.add(vertices, target);
         } else if self.split_encroached() {
             self.queue.push((face, vertices));
+        } else if self.keeps_clear(face, target) {
+            self.add(vertices, target);
         }
     }
 
+    /// Whether a point stays clear of the encroached edges, none of which may be split, and of the corners around it.
+    fn keeps_clear(&self, face: u32, x: Point) -> bool {
+        let apart = CLEAR * self.size_of(face);
+        let from_edge = |&[a, b]: &[u32; 2]| {
+            let (a, b) = (self.mesh.point(a), self.mesh.point(b));
+            orient(a, b, x) > apart * distance(a, b)
+        };
+        let from_corner = |rim: &Rim| distance(self.mesh.point(rim.ends[0]), x) > apart;
+        self.encroached.iter().all(from_edge) && self.cavity.rim.iter().all(from_corner)
+    }
+
     /// The same for a point that its face may not see, or that lies on an edge.
-    fn insert_hidden(&mut self, face: u32, vertices: [u32; 3], target: Point) {
+    fn insert_hidden(&mut self, base: u32, vertices: [u32; 3], target: Point) {
+        let face = base >> 2;
         let blocking = match self.mesh.locate(target, face, true) {
             Place::Behind(link) => link,
             Place::OnEdge(link) if self.mesh.tag(link) != 0 => link,
@@ -286,6 +302,24 @@ impl Refiner<'_> {
         };
         if self.split(blocking) {
             self.queue.push((face, vertices));
+        } else {
+            self.insert_nearer(base, vertices, target);
+        }
+    }
+
+    /// Adds a point on this side of an edge that may not be split, between the shortest edge of the face and the target behind it.
+    fn insert_nearer(&mut self, base: u32, vertices: [u32; 3], target: Point) {
+        let (x, y) = self.mesh.edge(base);
+        let middle = between(self.mesh.point(x), self.mesh.point(y), 0.5);
+        for share in [0.5, 0.25] {
+            let x = between(middle, target, share);
+            if self.mesh.find_cavity(base, x, &mut self.cavity) {
+                self.collect_encroached(x);
+                if self.keeps_clear(base >> 2, x) {
+                    self.add(vertices, x);
+                    return;
+                }
+            }
         }
     }
 
@@ -328,7 +362,8 @@ impl Refiner<'_> {
     /// Splits the encroached edges; whether any could be.
     fn split_encroached(&mut self) -> bool {
         let mut changed = false;
-        for [a, b] in std::mem::take(&mut self.encroached) {
+        for k in 0..self.encroached.len() {
+            let [a, b] = self.encroached[k];
             if let Some(link) = self.mesh.find(a, b) {
                 changed |= self.split(link);
             }
