@@ -126,6 +126,12 @@ fn plan(
     let rough = field(sources(graph, sizes, &gaps));
     let mut facing = Facing::new(graph, &gaps);
     let mut strips = layers::build(drawing, graph, &rough, max_turn, &mut facing, enough);
+    if strips.notes.iter().any(|n| matches!(n.reason, NoteReason::NoStrip { .. })) {
+        // Where no strip fits, elements are small instead, and the strips beside them are divided for that.
+        let rough = field(strips.sources(graph, sizes, &gaps));
+        facing = Facing::new(graph, &gaps);
+        strips = layers::build(drawing, graph, &rough, max_turn, &mut facing, enough);
+    }
     let field = if strips.is_empty() { rough } else { field(strips.sources(graph, sizes, &gaps)) };
     let notes = std::mem::take(&mut strips.notes);
     let mut plan = Plan::new(&Wishes { drawing, graph, field: &field, max_turn }, strips, facing);
@@ -141,6 +147,7 @@ fn constrained(drawing: &Drawing, graph: &Graph, plan: &Plan) -> Result<Triangul
     for &(a, b, tag) in &plan.edges {
         mesh.constrain(a, b, tag).map_err(|crossed| too_close(crossed.at))?;
     }
+    mesh.make_delaunay();
     label_sides(drawing, plan, &mut mesh);
     label_cells(plan, &mut mesh);
     Ok(mesh)

@@ -5,9 +5,6 @@
 use crate::ids::{Point, cross, sub};
 use crate::triangulate::{Circle, Face, LAST, NEXT, NONE, Triangulation};
 
-/// More faces than this are no cavity but a sign that the triangulation is not Delaunay here.
-const MOST_FACES: usize = 200;
-
 /// One edge of a cavity's rim.
 #[derive(Debug, Clone, Copy)]
 pub(crate) struct Rim {
@@ -29,6 +26,8 @@ pub(crate) struct Cavity {
 impl Triangulation {
     /// Gathers the faces whose circle holds `p`, from one of them on; the rim begins at its edge `start`. True if the point sees the whole rim, so that a fan fits.
     pub(crate) fn find_cavity(&self, start: u32, p: Point, cavity: &mut Cavity) -> bool {
+        // Faces with corners on one circle are all part of the cavity, but none twice.
+        let most = self.faces.len();
         cavity.faces.clear();
         cavity.rim.clear();
         cavity.open.clear();
@@ -40,7 +39,7 @@ impl Triangulation {
             let face = &self.faces[(link >> 2) as usize];
             let i = (link & 3) as usize;
             let (n, tag) = (face.n[i], face.tag[i]);
-            let open = tag == 0 && n != NONE && cavity.faces.len() < MOST_FACES;
+            let open = tag == 0 && n != NONE && cavity.faces.len() < most;
             if open && self.is_in_circle(n >> 2, p) {
                 let j = (n & 3) as usize;
                 cavity.faces.push(n >> 2);
@@ -52,7 +51,7 @@ impl Triangulation {
             sees_all &= is_left(a, b, p);
             cavity.rim.push(Rim { ends, outside: n, tag });
         }
-        sees_all && cavity.faces.len() < MOST_FACES
+        sees_all && cavity.faces.len() < most
     }
 
     /// Replaces a cavity by a fan around vertex `p`, which must see its whole rim.

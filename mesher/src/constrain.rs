@@ -19,7 +19,8 @@ enum Ahead {
 }
 
 impl Triangulation {
-    /// Makes the segment from `a` to `b` an edge (or several, through vertices that lie on it) and tags it.
+    /// Makes the segment from `a` to `b` an edge (or several, through vertices that lie on it) and tags it. What it crossed is left as it
+    /// comes: see [`Self::make_delaunay`].
     ///
     /// # Errors
     /// If it crosses another constrained edge.
@@ -48,10 +49,9 @@ impl Triangulation {
             Ahead::Nothing => return Err(Crossed { at: self.point(a) }),
         };
         let (crossed, end) = self.crossed(a, b, first)?;
-        let made = self.clear(a, end, crossed)?;
+        self.clear(a, end, crossed)?;
         let link = self.find(a, end).ok_or(Crossed { at: self.point(a) })?;
         self.mark(link, tag);
-        self.restore(made);
         Ok(end)
     }
 
@@ -112,10 +112,9 @@ impl Triangulation {
         Err(Crossed { at: from })
     }
 
-    /// Flips the crossed edges away; returns the edges made.
-    fn clear(&mut self, a: u32, b: u32, mut edges: VecDeque<(u32, u32)>) -> Result<Vec<(u32, u32)>, Crossed> {
+    /// Flips the crossed edges away.
+    fn clear(&mut self, a: u32, b: u32, mut edges: VecDeque<(u32, u32)>) -> Result<(), Crossed> {
         let (from, to) = (self.point(a), self.point(b));
-        let mut made = Vec::new();
         let mut patience = 64 * edges.len() * edges.len() + 1000;
         while let Some((x, y)) = edges.pop_front() {
             patience -= 1;
@@ -136,36 +135,28 @@ impl Triangulation {
             let apart = [p, w].iter().all(|&v| v != a && v != b);
             if apart && orient(from, to, pp) * orient(from, to, pw) < 0.0 {
                 edges.push_back((p, w));
-            } else {
-                made.push((p, w));
             }
         }
-        Ok(made)
+        Ok(())
     }
 
-    /// Flips edges made by a constraint until they are Delaunay again.
-    fn restore(&mut self, mut made: Vec<(u32, u32)>) {
-        for _ in 0..20 {
-            let mut changed = false;
-            for edge in &mut made {
-                let Some(link) = self.find(edge.0, edge.1) else {
-                    continue;
-                };
-                let (t, i) = (link >> 2, (link & 3) as usize);
-                let face = self.faces[t as usize];
-                if face.tag[i] != 0 || face.n[i] == NONE {
+    /// Flips free edges until all are Delaunay.
+    pub(crate) fn make_delaunay(&mut self) {
+        let mut open: Vec<u32> = (0..self.faces.len() as u32).collect();
+        while let Some(t) = open.pop() {
+            for i in 0..3 {
+                let face = &self.faces[t as usize];
+                let n = face.n[i];
+                if face.tag[i] != 0 || n == NONE {
                     continue;
                 }
-                let w = self.faces[(face.n[i] >> 2) as usize].v[(face.n[i] & 3) as usize];
+                let w = self.faces[(n >> 2) as usize].v[(n & 3) as usize];
                 let [a, b, c] = self.corners(t);
                 if in_circle(a, b, c, self.point(w)) > 0.0 {
-                    *edge = (face.v[i], w);
-                    self.flip(link);
-                    changed = true;
+                    self.flip(4 * t + i as u32);
+                    open.extend([t, n >> 2]);
+                    break;
                 }
-            }
-            if !changed {
-                return;
             }
         }
     }

@@ -197,17 +197,13 @@ impl Mesh {
 
     /// Area of a region in square metres, arcs included exactly.
     pub fn region_area(&self, id: RegionId) -> f64 {
-        let straight: f64 =
-            (0..self.triangles.len()).filter(|&t| self.regions[t] == id).map(|t| straight_area(self.corners(t))).sum();
-        let mut curved = 0.0;
-        for (edge, bend) in self.edges.iter().zip(&self.bends) {
-            for t in edge.triangles {
-                if t != NO_TRIANGLE && self.regions[t as usize] == id {
-                    curved += self.segment_area(edge, *bend, t);
-                }
-            }
-        }
-        straight + curved
+        let own = |t: u32| t != NO_TRIANGLE && self.regions[t as usize] == id;
+        let straight = (0..self.triangles.len()).filter(|&t| own(t as u32)).map(|t| straight_area(self.corners(t)));
+        let curved = self.edges.iter().zip(&self.bends).flat_map(|(edge, &bend)| {
+            let sides = edge.triangles.into_iter().filter(|&t| own(t));
+            sides.map(move |t| self.segment_area(edge, bend, t))
+        });
+        sum(straight.chain(curved))
     }
 
     /// Area between an edge's arc and its chord, positive where it adds to the triangle.
@@ -218,12 +214,24 @@ impl Mesh {
         let [a, b] = edge.vertices.map(|v| self.vertices[v as usize]);
         let half = (0.5 * distance(a, b) / radius).min(1.0).asin();
         let area = 0.5 * radius * radius * (2.0 * half - (2.0 * half).sin());
-        let corners = self.corners(triangle as usize);
-        let inside = [0, 1].map(|k| corners.iter().map(|c| c[k]).sum::<f64>() / 3.0);
-        let chord = sub(b, a);
-        let same = cross(chord, sub(centre, a)) * cross(chord, sub(inside, a)) > 0.0;
+        // The triangle lies to the left of its edge; where the centre does too, the arc bulges away from it.
+        let corners = self.triangles[triangle as usize];
+        let forward = (0..3).any(|k| [corners[k], corners[(k + 1) % 3]] == edge.vertices);
+        let same = (cross(sub(b, a), sub(centre, a)) > 0.0) == forward;
         if same { area } else { -area }
     }
+}
+
+/// Sum with the rounding errors carried along: many small areas add up to one that is right in its last digits.
+/// Source: A. Neumaier, "Rundungsfehleranalyse einiger Verfahren zur Summation endlicher Summen", 1974.
+pub(crate) fn sum(values: impl Iterator<Item = f64>) -> f64 {
+    let (mut total, mut lost) = (0.0f64, 0.0);
+    for value in values {
+        let next = total + value;
+        lost += if total.abs() >= value.abs() { (total - next) + value } else { (value - next) + total };
+        total = next;
+    }
+    total + lost
 }
 
 pub(crate) fn straight_area([a, b, c]: [Point; 3]) -> f64 {

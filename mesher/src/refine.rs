@@ -2,7 +2,7 @@
 //! are never touched; edges shorter than a share of the wanted size are left alone, so that narrow gaps and small input angles end.
 //! Source: A. Üngör, "Off-centers", 2004; J. R. Shewchuk, "Delaunay refinement algorithms", 2002 (lenses, concentric shells).
 
-use crate::cavity::{Cavity, Rim};
+use crate::cavity::Cavity;
 use crate::error::MeshError;
 use crate::facing::NARROW;
 use crate::ids::{Point, along, between, distance, distance_squared, dot, sub};
@@ -23,12 +23,8 @@ const LEG: f64 = 1.04;
 const FLOOR: f64 = 0.12;
 /// Cosine of the lens angle: a point that sees a constrained edge under more than 120 degrees encroaches on it.
 const LENS: f64 = 0.5;
-/// A point that sees a fixed edge under a wide angle stays this share of the wanted size away from it.
-const CLEAR: f64 = 0.4;
 /// Usual area of a face over the square of the wanted size.
 const FACE_AREA: f64 = 0.36;
-/// Times that every face is looked at.
-const LOOKS: usize = 3;
 /// Mark of a vertex that is a node of the drawing.
 const NODE: u32 = u32::MAX;
 
@@ -73,11 +69,22 @@ pub(crate) fn refine(
     refiner.lay_lattice(budget.max_triangles);
     refiner.mesh.fresh = (0..refiner.mesh.faces.len() as u32).collect();
     refiner.queue_fresh();
-    for _ in 0..LOOKS {
-        refiner.work_off(budget)?;
-        refiner.queue_unfinished();
-        if refiner.queue.is_empty() {
-            break;
+    let mut steps = 0u32;
+    while let Some((face, vertices)) = refiner.queue.pop() {
+        if refiner.mesh.faces[face as usize].v != vertices {
+            continue;
+        }
+        steps += 1;
+        if steps.is_multiple_of(512) && (budget.stop)() {
+            return Err(MeshError::Stopped);
+        }
+        // A quarter more for what lies outside the domain; the finished mesh is counted exactly.
+        if refiner.mesh.faces.len() > budget.max_triangles + budget.max_triangles / 4 + 1000 {
+            return Err(MeshError::TooManyTriangles { limit: budget.max_triangles, smallest_m: budget.smallest });
+        }
+        if let Some((target, base)) = refiner.target(face) {
+            refiner.insert(4 * face + base, vertices, target);
+            refiner.queue_fresh();
         }
     }
     Ok(())
@@ -140,39 +147,6 @@ impl Refiner<'_> {
         for t in self.mesh.fresh.drain(..) {
             let face = &self.mesh.faces[t as usize];
             if face.is_free() {
-                self.queue.push((t, face.v));
-            }
-        }
-    }
-
-    /// Refines until the queue is empty.
-    fn work_off(&mut self, budget: &Budget) -> Result<(), MeshError> {
-        let mut steps = 0u32;
-        while let Some((face, vertices)) = self.queue.pop() {
-            if self.mesh.faces[face as usize].v != vertices {
-                continue;
-            }
-            steps += 1;
-            if steps.is_multiple_of(512) && (budget.stop)() {
-                return Err(MeshError::Stopped);
-            }
-            // A quarter more for what lies outside the domain; the finished mesh is counted exactly.
-            if self.mesh.faces.len() > budget.max_triangles + budget.max_triangles / 4 + 1000 {
-                return Err(MeshError::TooManyTriangles { limit: budget.max_triangles, smallest_m: budget.smallest });
-            }
-            if let Some((target, base)) = self.target(face) {
-                self.insert(4 * face + base, vertices, target);
-                self.queue_fresh();
-            }
-        }
-        Ok(())
-    }
-
-    /// Queues the faces that could not be mended when they were looked at: what stood in their way may be gone.
-    fn queue_unfinished(&mut self) {
-        for t in 0..self.mesh.faces.len() as u32 {
-            let face = &self.mesh.faces[t as usize];
-            if face.is_free() && self.target(t).is_some() {
                 self.queue.push((t, face.v));
             }
         }
@@ -266,7 +240,7 @@ impl Refiner<'_> {
         // The target lies in the circle of the face that asks for it, so that face is part of the cavity.
         let face = base >> 2;
         if !self.mesh.find_cavity(base, target, &mut self.cavity) {
-            self.insert_hidden(base, vertices, target);
+            self.insert_hidden(face, vertices, target);
             return;
         }
         self.collect_encroached(target);
@@ -274,25 +248,11 @@ impl Refiner<'_> {
             self.add(vertices, target);
         } else if self.split_encroached() {
             self.queue.push((face, vertices));
-        } else if self.keeps_clear(face, target) {
-            self.add(vertices, target);
         }
     }
 
-    /// Whether a point stays clear of the encroached edges, none of which may be split, and of the corners around it.
-    fn keeps_clear(&self, face: u32, x: Point) -> bool {
-        let apart = CLEAR * self.size_of(face);
-        let from_edge = |&[a, b]: &[u32; 2]| {
-            let (a, b) = (self.mesh.point(a), self.mesh.point(b));
-            orient(a, b, x) > apart * distance(a, b)
-        };
-        let from_corner = |rim: &Rim| distance(self.mesh.point(rim.ends[0]), x) > apart;
-        self.encroached.iter().all(from_edge) && self.cavity.rim.iter().all(from_corner)
-    }
-
     /// The same for a point that its face may not see, or that lies on an edge.
-    fn insert_hidden(&mut self, base: u32, vertices: [u32; 3], target: Point) {
-        let face = base >> 2;
+    fn insert_hidden(&mut self, face: u32, vertices: [u32; 3], target: Point) {
         let blocking = match self.mesh.locate(target, face, true) {
             Place::Behind(link) => link,
             Place::OnEdge(link) if self.mesh.tag(link) != 0 => link,
@@ -302,24 +262,6 @@ impl Refiner<'_> {
         };
         if self.split(blocking) {
             self.queue.push((face, vertices));
-        } else {
-            self.insert_nearer(base, vertices, target);
-        }
-    }
-
-    /// Adds a point on this side of an edge that may not be split, between the shortest edge of the face and the target behind it.
-    fn insert_nearer(&mut self, base: u32, vertices: [u32; 3], target: Point) {
-        let (x, y) = self.mesh.edge(base);
-        let middle = between(self.mesh.point(x), self.mesh.point(y), 0.5);
-        for share in [0.5, 0.25] {
-            let x = between(middle, target, share);
-            if self.mesh.find_cavity(base, x, &mut self.cavity) {
-                self.collect_encroached(x);
-                if self.keeps_clear(base >> 2, x) {
-                    self.add(vertices, x);
-                    return;
-                }
-            }
         }
     }
 
@@ -362,8 +304,7 @@ impl Refiner<'_> {
     /// Splits the encroached edges; whether any could be.
     fn split_encroached(&mut self) -> bool {
         let mut changed = false;
-        for k in 0..self.encroached.len() {
-            let [a, b] = self.encroached[k];
+        for [a, b] in std::mem::take(&mut self.encroached) {
             if let Some(link) = self.mesh.find(a, b) {
                 changed |= self.split(link);
             }

@@ -435,6 +435,7 @@ mod tests {
                     assert!(ours.constrain(a, b, 1).is_ok());
                 }
             }
+            ours.make_delaunay();
             let found = edges(&ours, count);
             let wanted: BTreeSet<(u32, u32)> = theirs
                 .undirected_edges()

@@ -156,3 +156,14 @@ fn a_piece_of_an_outline_can_have_a_size_of_its_own() {
     let refusal = triangulate(&section, &Limits::default(), &|| false).unwrap_err().to_string();
     assert!(refusal.contains("piece"), "{refusal}");
 }
+
+#[test]
+fn a_round_part_with_hundreds_of_edges_on_its_circle_is_refined_inside() {
+    // Before the first point inside, all its triangles have the same circle.
+    let disc = Outline::circle([0.1, 0.0], 0.05).unwrap();
+    let section = common::drawing(half_disc(), 0.05, vec![region(common::BILLET, disc, 0.004, 0.0005, None)]);
+    let mesh = mesh(&section);
+    let q = mesh.quality();
+    let inside = mesh.regions().iter().filter(|id| **id == common::BILLET).count();
+    assert!(inside > 2000 && q.min_angle_deg > 30.0, "{inside} triangles, {q:?}");
+}
