@@ -24,8 +24,9 @@ const LAYERS: [usize; 3] = [2, 1, 0];
 /// `None` where no surface in loss-free space fits between the part and the next conductor.
 pub fn power_into(field: &UnitField, operator: &Operator, properties: &PointProperties, region: u32) -> Option<f64> {
     let space = operator.space();
+    let free = properties.map_rows(|sigma, _| sigma.iter().all(|&s| s == 0.0));
     let clear: Vec<bool> = (0..space.element_count())
-        .map(|e| properties.sigma(e).iter().all(|&s| s == 0.0) && operator.border_of_element(e).is_none())
+        .map(|e| free[properties.row(e)] && operator.border_of_element(e).is_none())
         .collect();
     let current: Vec<bool> = stranded_elements(operator);
     let own: Vec<bool> = (0..space.element_count()).map(|e| space.region(e).0 == region).collect();
