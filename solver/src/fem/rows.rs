@@ -1,7 +1,8 @@
-//! One element at several reference points at once: rows with a number a point, which loops carry through vector registers.
+//! One element at several reference points at once: rows with a number a point, for loops in vector registers.
 //!
-//! The numbers are those of [`super::element::point_values`] to the bit: the same operations in the same order, none of them fused.
-//! Convention: `N` nodes and `P` points; to be called inside a run-time dispatch, which compiles it for the vector unit at hand.
+//! The numbers are those of [`super::element::point_values`] to the bit: the same operations in the same order, none of
+//! them fused. Convention: `N` nodes and `P` points; to be called inside a run-time dispatch, which compiles it for the
+//! vector unit at hand.
 
 use mesher::Point;
 

@@ -1,4 +1,4 @@
-//! The field system of one mesh: pattern and plan once, values and factor as often as properties or the frequency change.
+//! The field system of one mesh: pattern and plan once, values and factor whenever properties or frequency change.
 
 use std::sync::Arc;
 
