@@ -34,10 +34,14 @@ struct HeatedTemperatures<'a> {
 }
 
 impl PointTemperatures for HeatedTemperatures<'_> {
-    fn at(&self, triangle: usize, out: &mut [f64]) -> bool {
-        let Some(element) = self.element_of_triangle[triangle] else { return false };
-        self.heat.temperature_at_points(self.state, element as usize, out);
-        true
+    fn is_heated(&self, triangle: usize) -> bool {
+        self.element_of_triangle[triangle].is_some()
+    }
+
+    fn at(&self, triangle: usize, out: &mut [f64]) {
+        if let Some(element) = self.element_of_triangle[triangle] {
+            self.heat.temperature_at_points(self.state, element as usize, out);
+        }
     }
 }
 

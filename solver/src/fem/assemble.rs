@@ -11,7 +11,7 @@ use super::element::ElementPoints;
 use crate::linalg::{LinalgError, Pattern, Scalar};
 
 /// Elements a task computes before the next is handed out.
-const CHUNK: usize = 64;
+pub(crate) const CHUNK: usize = 64;
 /// Chunks whose blocks are in memory at a time.
 const GROUP: usize = 256;
 /// Ranges of the matrix that are added to in parallel.

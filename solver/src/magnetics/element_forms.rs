@@ -5,9 +5,10 @@
 //! Convention: lower triangle by rows; equation (3) of [`super`].
 
 use num_complex::Complex64;
+use rayon::prelude::*;
 
 use super::operator::curl;
-use crate::fem::assemble::{Block, map_elements};
+use crate::fem::assemble::{Block, CHUNK};
 use crate::fem::element::ElementPoints;
 use crate::fem::reference::{MAX_NODES, MAX_POINTS};
 use crate::fem::space::Space;
@@ -30,26 +31,29 @@ pub(super) struct ElementForms {
 
 impl ElementForms {
     /// Integrates the forms of all elements; `conducts` tells which may carry eddy currents.
-    pub(super) fn new(space: &Space, borders: &[Option<u32>], conducts: impl Fn(usize) -> bool + Sync) -> Self {
+    pub(super) fn new(space: &Space, borders: &[Option<u32>], conducts: impl Fn(usize) -> bool) -> Self {
         let nodes = space.reference().node_count();
         let entries = nodes * (nodes + 1) / 2;
         let bordered: Vec<bool> = borders.iter().map(Option::is_some).collect();
+        let mass_starts = mass_starts(&bordered, nodes, conducts);
+        let mut stiffness = vec![0.0; bordered.len() * entries];
+        let mut mass = vec![0.0; mass_starts[bordered.len()] as usize];
+        let chunks: Vec<_> = stiffness.chunks_mut(CHUNK * entries).zip(by_chunk(&mut mass, &mass_starts)).collect();
         let integral = integral(nodes);
-        let rows = map_elements(space.element_count(), |e, points| {
-            space.fill(e, points);
-            let mut sums = Sums::default();
-            integral(points, &[1.0; MAX_POINTS], &[1.0; MAX_POINTS], bordered[e], &mut sums);
-            let length = entries + if bordered[e] { nodes + 1 } else { 0 };
-            let mass = if conducts(e) { sums.mass[..length].to_vec() } else { Vec::new() };
-            (sums.stiffness, mass)
+        let starts = &mass_starts;
+        chunks.into_par_iter().enumerate().for_each_init(ElementPoints::default, |points, (k, (stiffness, mass))| {
+            let first = starts[k * CHUNK];
+            for (i, stiffness) in stiffness.chunks_exact_mut(entries).enumerate() {
+                let e = k * CHUNK + i;
+                space.fill(e, points);
+                let mut sums = Sums::default();
+                integral(points, &[1.0; MAX_POINTS], &[1.0; MAX_POINTS], bordered[e], &mut sums);
+                stiffness.copy_from_slice(&sums.stiffness[..entries]);
+                let mass = &mut mass[(starts[e] - first) as usize..(starts[e + 1] - first) as usize];
+                mass.copy_from_slice(&sums.mass[..mass.len()]);
+            }
         });
-        let mut out = Self { entries, stiffness: Vec::new(), mass: Vec::new(), mass_starts: vec![0], bordered };
-        for (stiffness, mass) in rows {
-            out.stiffness.extend_from_slice(&stiffness[..entries]);
-            out.mass.extend_from_slice(&mass);
-            out.mass_starts.push(out.mass.len() as u32);
-        }
-        out
+        Self { entries, stiffness, mass, mass_starts, bordered }
     }
 
     /// Block of element `e` with conductivities in S/m and reluctivities in m/H at its points, at `omega` in rad/s.
@@ -82,6 +86,29 @@ impl ElementForms {
             *out = Complex64::new(*stiffness, omega * mass);
         }
     }
+}
+
+/// Where each element's block of `M` begins, and where the last ends.
+fn mass_starts(bordered: &[bool], nodes: usize, conducts: impl Fn(usize) -> bool) -> Vec<u32> {
+    let entries = nodes * (nodes + 1) / 2;
+    let mut out = vec![0];
+    for (e, &bordered) in bordered.iter().enumerate() {
+        let own = if conducts(e) { entries + if bordered { nodes + 1 } else { 0 } } else { 0 };
+        out.push(out[e] + own as u32);
+    }
+    out
+}
+
+/// The blocks of every [`CHUNK`] elements.
+fn by_chunk<'a>(blocks: &'a mut [f64], starts: &[u32]) -> Vec<&'a mut [f64]> {
+    let (mut out, mut rest, mut start) = (Vec::new(), blocks, 0);
+    for ends in starts[1..].chunks(CHUNK) {
+        let end = ends[ends.len() - 1];
+        let (own, after) = rest.split_at_mut((end - start) as usize);
+        out.push(own);
+        (rest, start) = (after, end);
+    }
+    out
 }
 
 fn same(values: &[f64]) -> bool {
@@ -152,7 +179,7 @@ mod tests {
         let drawing = Drawing {
             domain: Outline::rectangle([0.01, 0.0], [0.02, 0.01]).unwrap(),
             domain_region: RegionId(0),
-            domain_size: 0.004,
+            domain_size: 0.001,
             regions: Vec::new(),
             gradation: 0.4,
             boundary_size: None,
@@ -166,6 +193,7 @@ mod tests {
     fn stored_forms_give_the_integral_with_and_without_a_voltage_row() {
         for order in 1..=3 {
             let space = disc(order);
+            assert!(space.element_count() > 2 * CHUNK, "several chunks of elements");
             let nodes = space.reference().node_count();
             let borders: Vec<Option<u32>> = (0..space.element_count()).map(|e| (e % 2 == 0).then_some(999)).collect();
             let forms = ElementForms::new(&space, &borders, |e| e % 3 > 0);

@@ -1,13 +1,14 @@
 //! Fields at the nodes of every element, for maps and files.
 
 use num_complex::Complex64;
+use rayon::prelude::*;
 
+use super::field_rows::LocalField;
 use super::operator::Operator;
 use super::properties::PointProperties;
-use super::unit_field::{UnitField, electric_field, flux_density, local, stranded};
-use crate::fem::assemble::map_elements;
-use crate::fem::element::point_values;
-use crate::fem::reference::MAX_NODES;
+use super::unit_field::{UnitField, stranded};
+use crate::fem::assemble::CHUNK;
+use crate::fem::rows::BasisRows;
 use crate::model::Model;
 use crate::results::{FieldMaps, RegionName};
 
@@ -21,64 +22,76 @@ pub fn maps(
     regions: &[RegionName],
     model: &Model,
 ) -> FieldMaps {
+    match operator.space().reference().order() {
+        1 => node_maps::<3>(field, operator, properties, regions, model),
+        2 => node_maps::<6>(field, operator, properties, regions, model),
+        _ => node_maps::<10>(field, operator, properties, regions, model),
+    }
+}
+
+fn node_maps<const N: usize>(
+    field: &UnitField,
+    operator: &Operator,
+    properties: &PointProperties,
+    regions: &[RegionName],
+    model: &Model,
+) -> FieldMaps {
     let space = operator.space();
     let windings: Vec<Option<(f64, f64)>> = regions.iter().map(|r| stranded(operator, model, r)).collect();
     let nearest = nearest_points(operator);
-    let rows = map_elements(space.element_count(), |e, _| {
-        let winding = windings[space.region(e).0 as usize];
-        element_rows(field, operator, (properties.sigma(e), properties.nu(e)), &nearest, winding, e)
-    });
-    let potential = space.points().iter().zip(&field.x).map(|(p, u)| u * p[0]).collect();
+    let basis = BasisRows::<N, N>::new(space.reference().node_shapes(), &[1.0; N]);
+    let count = space.element_count() * N;
     let mut out = FieldMaps {
-        vector_potential_wb_per_m: potential,
-        joule_loss_w_per_m3: Vec::new(),
-        current_density_a_per_m2: Vec::new(),
-        flux_density_t: Vec::new(),
-        field_strength_a_per_m: Vec::new(),
-        force_density_n_per_m3: Vec::new(),
+        vector_potential_wb_per_m: space.points().iter().zip(&field.x).map(|(p, u)| u * p[0]).collect(),
+        joule_loss_w_per_m3: vec![0.0; count],
+        current_density_a_per_m2: vec![Complex64::ZERO; count],
+        flux_density_t: vec![[Complex64::ZERO; 2]; count],
+        field_strength_a_per_m: vec![[Complex64::ZERO; 2]; count],
+        force_density_n_per_m3: vec![[0.0; 2]; count],
     };
-    for row in rows.into_iter().flatten() {
-        out.joule_loss_w_per_m3.push(row.loss);
-        out.current_density_a_per_m2.push(row.current);
-        out.flux_density_t.push(row.flux);
-        out.field_strength_a_per_m.push(row.field);
-        out.force_density_n_per_m3.push(row.force);
-    }
+    let electric = out.joule_loss_w_per_m3.par_chunks_mut(N).zip(out.current_density_a_per_m2.par_chunks_mut(N));
+    let magnetic = out.flux_density_t.par_chunks_mut(N).zip(out.field_strength_a_per_m.par_chunks_mut(N));
+    let rows = electric.zip(magnetic).zip(out.force_density_n_per_m3.par_chunks_mut(N)).with_min_len(CHUNK);
+    rows.enumerate().for_each(|(e, (((loss, current), (flux, strength)), force))| {
+        let at = ElementNodes { loss, current, flux, strength, force };
+        let local = LocalField::new(operator, &basis, &field.x, e);
+        let winding = windings[space.region(e).0 as usize];
+        at.fill(&local, (properties.sigma(e), properties.nu(e)), &nearest, winding);
+    });
     out
 }
 
-struct NodeRow {
-    loss: f64,
-    current: Complex64,
-    flux: [Complex64; 2],
-    field: [Complex64; 2],
-    force: [f64; 2],
+/// What the maps hold of one element, one entry a node.
+struct ElementNodes<'a> {
+    loss: &'a mut [f64],
+    current: &'a mut [Complex64],
+    flux: &'a mut [[Complex64; 2]],
+    strength: &'a mut [[Complex64; 2]],
+    force: &'a mut [[f64; 2]],
 }
 
-fn element_rows(
-    field: &UnitField,
-    operator: &Operator,
-    (sigma, nu): (&[f64], &[f64]),
-    nearest: &[usize],
-    winding: Option<(f64, f64)>,
-    e: usize,
-) -> Vec<NodeRow> {
-    let space = operator.space();
-    let mut corners = [[0.0; 2]; MAX_NODES];
-    let n = space.corners(e, &mut corners);
-    let (u, w) = local(operator, &field.x, e);
-    let at_node = |(shape, &q): (_, &usize)| {
-        let p = point_values(shape, 1.0, &corners[..n]);
-        let electric = electric_field(&p, &u, w, operator.omega());
-        let (current, loss) = match winding {
-            Some((sigma, j)) => (Complex64::from(j), 0.5 * j * j / sigma),
-            None => (electric * sigma[q], 0.5 * sigma[q] * electric.norm_sqr()),
-        };
-        let flux = flux_density(&p, &u);
-        let force = [0.5 * (current * flux[1].conj()).re, -0.5 * (current * flux[0].conj()).re];
-        NodeRow { loss, current, flux, field: [flux[0] * nu[q], flux[1] * nu[q]], force }
-    };
-    space.reference().node_shapes().iter().zip(nearest).map(at_node).collect()
+impl ElementNodes<'_> {
+    fn fill<const N: usize>(
+        self,
+        field: &LocalField<'_, N, N>,
+        (sigma, nu): (&[f64], &[f64]),
+        nearest: &[usize],
+        winding: Option<(f64, f64)>,
+    ) {
+        let (electric, [b_r, b_z]) = (field.electric(), field.flux());
+        for (i, &q) in nearest.iter().enumerate() {
+            let (electric, flux) = (electric.at(i), [b_r.at(i), b_z.at(i)]);
+            let (current, loss) = match winding {
+                Some((sigma, j)) => (Complex64::from(j), 0.5 * j * j / sigma),
+                None => (electric * sigma[q], 0.5 * sigma[q] * electric.norm_sqr()),
+            };
+            self.loss[i] = loss;
+            self.current[i] = current;
+            self.flux[i] = flux;
+            self.strength[i] = [flux[0] * nu[q], flux[1] * nu[q]];
+            self.force[i] = [0.5 * (current * flux[1].conj()).re, -0.5 * (current * flux[0].conj()).re];
+        }
+    }
 }
 
 /// Quadrature point nearest to each node of the reference element.

@@ -13,9 +13,15 @@
 //! pivoting (N. J. Higham, Math. Comp. 67, 1998). Every integrand is a polynomial times a coefficient: nothing is
 //! singular on the axis, and a uniform axial field is represented exactly.
 
+#![allow(
+    clippy::inline_always,
+    reason = "code inside a run-time dispatch is compiled for its vector unit only if inlined there"
+)]
+
 pub mod conductor;
 pub mod drive;
 mod element_forms;
+mod field_rows;
 pub mod maps;
 pub mod open_boundary;
 pub mod operator;

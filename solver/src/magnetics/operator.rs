@@ -1,4 +1,4 @@
-//! The field system of one mesh and frequency: pattern and plan once, values and factor as often as properties change.
+//! The field system of one mesh: pattern and plan once, values and factor whenever properties or frequency change.
 
 use std::sync::Arc;
 
@@ -17,7 +17,7 @@ use crate::linalg::{Factor, LinalgError, Pattern, Plan, SymmetricMatrix, checked
 use crate::model::{Drive, Mirrors, Model};
 use crate::results::RegionName;
 
-/// Everything of the field problem that does not change with temperature.
+/// Everything of the field problem that does not change with temperature, and room for what does.
 #[derive(Debug)]
 pub struct Operator {
     space: Arc<Space>,
@@ -35,6 +35,8 @@ pub struct Operator {
     plan: Arc<Plan>,
     matrix: SymmetricMatrix<Complex64>,
     factor: Option<Factor<Complex64>>,
+    /// Source of one ampere in each meshed turn.
+    turn_sources: Vec<Vec<(u32, f64)>>,
     source: Vec<Complex64>,
     surfaces_m2: Vec<f64>,
 }
@@ -70,6 +72,7 @@ impl Operator {
             copies: if half { 2.0 } else { 1.0 },
             exterior_block: exterior.as_ref().map(Exterior::block).unwrap_or_default(),
             factor: None,
+            turn_sources: (0..turns.meshed.len()).map(|k| turns.source(&space, k)).collect(),
             source: vec![Complex64::ZERO; n],
             forms: ElementForms::new(&space, &border_of_element, |e| {
                 !matches!(regions[space.region(e).0 as usize], RegionName::Air)
@@ -102,6 +105,21 @@ impl Operator {
     /// Angular frequency in rad/s.
     pub fn omega(&self) -> f64 {
         self.omega
+    }
+
+    /// Changes the frequency; plan, stored forms and the memory of the factor remain.
+    ///
+    /// The mesh remains too: it must be fine enough for the skin depth at `frequency_hz`.
+    ///
+    /// # Errors
+    /// [`SolveError::Value`] where the frequency is not a positive number; the operator is then as before.
+    pub fn set_frequency(&mut self, frequency_hz: f64) -> Result<(), SolveError> {
+        if !(frequency_hz > 0.0 && frequency_hz.is_finite()) {
+            let (place, expected) = ("frequency".to_owned(), "a number above 0");
+            return Err(SolveError::Value { place, value: frequency_hz, unit: "Hz", expected });
+        }
+        self.omega = std::f64::consts::TAU * frequency_hz;
+        Ok(())
     }
 
     /// Meshed sections in the whole device: 2 with one mirror plane, else 1.
@@ -138,6 +156,11 @@ impl Operator {
     /// Source vector of one ampere (peak) through the coils, or of an applied field of 1 A/m (peak).
     pub fn source(&self) -> &[Complex64] {
         &self.source
+    }
+
+    /// Source of a unit coil current in meshed turn `k`: `(unknown, value)` pairs.
+    pub fn turn_source(&self, k: usize) -> &[(u32, f64)] {
+        &self.turn_sources[k]
     }
 
     /// Quadratic form `u^H K_ext u` of the field outside the sphere, in A^2 H; zero for a slice.
@@ -188,8 +211,7 @@ impl Operator {
         match model.drive {
             Drive::Supply { .. } => {
                 for (k, turn) in self.turns.meshed.iter().enumerate() {
-                    let source = self.turns.source(&self.space, k);
-                    pairs.extend(source.into_iter().map(|(i, v)| (i, turn.sign * v)));
+                    pairs.extend(self.turn_sources[k].iter().map(|&(i, v)| (i, turn.sign * v)));
                 }
             }
             Drive::AppliedField { .. } => match &self.exterior {

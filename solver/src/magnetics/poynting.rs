@@ -9,11 +9,12 @@
 //! the power balance it says little about the mesh inside the part.
 
 use num_complex::Complex64;
+use rayon::prelude::*;
 
 use super::operator::Operator;
 use super::properties::PointProperties;
 use super::unit_field::{UnitField, electric_field, flux_density, local};
-use crate::fem::assemble::map_elements;
+use crate::fem::assemble::{CHUNK, map_elements};
 use crate::fem::space::Space;
 
 /// Layers of air elements on which `chi` stays 1, tried from the largest.
@@ -24,15 +25,18 @@ const LAYERS: [usize; 3] = [2, 1, 0];
 /// `None` where no surface in loss-free space fits between the part and the next conductor.
 pub fn power_into(field: &UnitField, operator: &Operator, properties: &PointProperties, region: u32) -> Option<f64> {
     let space = operator.space();
+    let free = properties.map_rows(|sigma, _| sigma.iter().all(|&s| s == 0.0));
     let clear: Vec<bool> = (0..space.element_count())
-        .map(|e| properties.sigma(e).iter().all(|&s| s == 0.0) && operator.border_of_element(e).is_none())
+        .map(|e| free[properties.row(e)] && operator.border_of_element(e).is_none())
         .collect();
     let current: Vec<bool> = stranded_elements(operator);
     let own: Vec<bool> = (0..space.element_count()).map(|e| space.region(e).0 == region).collect();
     LAYERS.iter().find_map(|&layers| {
         let chi = weights(space, &own, layers);
-        let usable =
-            (0..space.element_count()).all(|e| own[e] || (clear[e] && !current[e]) || flat_zero(space, &chi, e));
+        let usable = (0..space.element_count())
+            .into_par_iter()
+            .with_min_len(CHUNK)
+            .all(|e| own[e] || (clear[e] && !current[e]) || flat_zero(space, &chi, e));
         usable.then(|| flux(field, operator, properties, &chi, &own))
     })
 }
@@ -54,6 +58,8 @@ fn weights(space: &Space, own: &[bool], layers: usize) -> Vec<f64> {
     (0..space.element_count()).filter(|&e| own[e]).for_each(|e| mark(&mut chi, e));
     for _ in 0..layers {
         let touched: Vec<usize> = (0..space.element_count())
+            .into_par_iter()
+            .with_min_len(CHUNK)
             .filter(|&e| space.element(e)[..3].iter().any(|&n| chi[n as usize] == 1.0))
             .collect();
         for e in touched {
@@ -71,7 +77,7 @@ fn flux(field: &UnitField, operator: &Operator, properties: &PointProperties, ch
     let space = operator.space();
     let omega = operator.omega();
     map_elements(space.element_count(), |e, points| {
-        let c: Vec<f64> = space.element(e)[..3].iter().map(|&n| chi[n as usize]).collect();
+        let c = [0, 1, 2].map(|k| chi[space.element(e)[k] as usize]);
         if own[e] || c.iter().all(|&v| v == c[0]) {
             return 0.0;
         }
@@ -93,7 +99,7 @@ fn flux(field: &UnitField, operator: &Operator, properties: &PointProperties, ch
 }
 
 /// Gradient of the linear function with values `c` at the corners of element `e`, 1/m.
-fn corner_gradient(space: &Space, e: usize, c: &[f64]) -> [f64; 2] {
+fn corner_gradient(space: &Space, e: usize, c: &[f64; 3]) -> [f64; 2] {
     let [a, b, d] = [0, 1, 2].map(|k| space.points()[space.element(e)[k] as usize]);
     let (x1, y1, x2, y2) = (b[0] - a[0], b[1] - a[1], d[0] - a[0], d[1] - a[1]);
     let det = x1 * y2 - x2 * y1;

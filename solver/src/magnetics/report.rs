@@ -259,13 +259,17 @@ fn extremes_by_region(
     let space = operator.space();
     let frequency = operator.omega() / std::f64::consts::TAU;
     let mut by_region = vec![Extremes { loss: 0.0, skin: f64::INFINITY, field: 0.0 }; regions];
+    let least_skin_depths = properties.map_rows(|sigma, nu| {
+        let conducting = sigma.iter().zip(nu).filter(|(s, _)| **s > 0.0);
+        conducting.fold(f64::INFINITY, |least, (&sigma, &nu)| {
+            least.min(skin_depth(frequency, sigma, 1.0 / (nu * crate::constants::MU_0)))
+        })
+    });
     for (e, sums) in field.by_element.iter().enumerate() {
         let slot = &mut by_region[space.region(e).0 as usize];
         slot.loss = slot.loss.max(sums.largest_loss_w_per_m3);
         slot.field = slot.field.max(sums.largest_field_a_per_m);
-        for (&sigma, &nu) in properties.sigma(e).iter().zip(properties.nu(e)).filter(|(s, _)| **s > 0.0) {
-            slot.skin = slot.skin.min(skin_depth(frequency, sigma, 1.0 / (nu * crate::constants::MU_0)));
-        }
+        slot.skin = slot.skin.min(least_skin_depths[properties.row(e)]);
     }
     by_region
 }

@@ -4,11 +4,15 @@
 //! Region sums are for the meshed section; [`super::report`] multiplies by the number of sections.
 
 use num_complex::Complex64;
+use pulp::{Arch, Simd, WithSimd};
+use rayon::prelude::*;
 
+use super::field_rows::LocalField;
 use super::operator::{Operator, curl};
 use super::properties::PointProperties;
-use crate::fem::assemble::map_elements;
+use crate::fem::assemble::CHUNK;
 use crate::fem::element::PointValues;
+use crate::fem::rows::BasisRows;
 use crate::model::{ConductorKind, Model};
 use crate::results::RegionName;
 
@@ -47,37 +51,21 @@ pub struct ElementSums {
 impl UnitField {
     /// Derives losses and energy from a solution.
     pub fn new(operator: &Operator, properties: &PointProperties, x: Vec<Complex64>, backward_error: f64) -> Self {
-        let space = operator.space();
-        let stride = properties.stride;
-        let omega = operator.omega();
-        let rows = map_elements(space.element_count(), |e, points| {
-            space.fill(e, points);
-            let (u, w) = local(operator, &x, e);
-            let mut sums = ElementSums::default();
-            let mut loss = Vec::with_capacity(stride);
-            for ((p, &sigma), &nu) in points.points().iter().zip(properties.sigma(e)).zip(properties.nu(e)) {
-                let density = if sigma > 0.0 { 0.5 * sigma * electric_field(p, &u, w, omega).norm_sqr() } else { 0.0 };
-                let b = flux_density(p, &u);
-                let square = b[0].norm_sqr() + b[1].norm_sqr();
-                loss.push(density);
-                sums.loss_w += density * p.volume;
-                sums.energy_j += 0.25 * nu * square * p.volume;
-                sums.largest_loss_w_per_m3 = sums.largest_loss_w_per_m3.max(density);
-                sums.largest_field_a_per_m = sums.largest_field_a_per_m.max(nu * square.sqrt());
-            }
-            (loss, sums)
-        });
-        let energy: f64 = rows.iter().map(|r| r.1.energy_j).sum();
+        let (loss_w_per_m3, by_element) = match operator.space().reference().order() {
+            1 => losses::<3, 9>(operator, properties, &x),
+            2 => losses::<6, 16>(operator, properties, &x),
+            _ => losses::<10, 25>(operator, properties, &x),
+        };
+        let energy: f64 = by_element.iter().map(|sums| sums.energy_j).sum();
         let exterior = if operator.turns().meshed.is_empty() { 0.0 } else { 0.25 * operator.exterior_form(&x) };
         let work: f64 = x.iter().zip(operator.source()).map(|(x, b)| (x.conj() * b).im).sum();
-        let (losses, by_element): (Vec<_>, Vec<_>) = rows.into_iter().unzip();
         Self {
-            stride,
-            loss_w_per_m3: losses.concat(),
+            stride: properties.stride,
+            loss_w_per_m3,
             by_element,
             energy_j: energy + exterior,
             backward_error,
-            source_power_w: 0.5 * omega * work,
+            source_power_w: 0.5 * operator.omega() * work,
             x,
         }
     }
@@ -99,10 +87,87 @@ impl UnitField {
     /// Voltage of meshed turn `k`, volts (peak phasor), its stranded resistance included.
     pub fn turn_voltage(&self, operator: &Operator, k: usize) -> Complex64 {
         let turn = &operator.turns().meshed[k];
-        let linked: Complex64 =
-            operator.turns().source(operator.space(), k).iter().map(|&(i, v)| self.x[i as usize] * v).sum();
+        let linked: Complex64 = operator.turn_source(k).iter().map(|&(i, v)| self.x[i as usize] * v).sum();
         let induced = Complex64::I * operator.omega() * linked / turn.share;
         induced + turn.sign * turn.stranded_resistance_ohm / turn.share
+    }
+}
+
+/// Loss densities and sums of all elements, of `N` nodes and `P` points each.
+fn losses<const N: usize, const P: usize>(
+    operator: &Operator,
+    properties: &PointProperties,
+    x: &[Complex64],
+) -> (Vec<f64>, Vec<ElementSums>) {
+    let reference = operator.space().reference();
+    let basis = BasisRows::<N, P>::new(reference.shapes(), reference.weights());
+    let count = operator.space().element_count();
+    let (mut losses, mut sums) = (vec![0.0; count * P], vec![ElementSums::default(); count]);
+    let chunks = losses.par_chunks_mut(CHUNK * P).zip(sums.par_chunks_mut(CHUNK));
+    chunks.enumerate().for_each(|(k, (losses, sums))| {
+        Arch::new().dispatch(LossChunk { operator, properties, x, basis: &basis, first: k * CHUNK, losses, sums });
+    });
+    (losses, sums)
+}
+
+/// Losses of some neighbouring elements; those that do not conduct are left at zero.
+struct LossChunk<'a, const N: usize, const P: usize> {
+    operator: &'a Operator,
+    properties: &'a PointProperties,
+    x: &'a [Complex64],
+    basis: &'a BasisRows<N, P>,
+    first: usize,
+    losses: &'a mut [f64],
+    sums: &'a mut [ElementSums],
+}
+
+impl<const N: usize, const P: usize> WithSimd for LossChunk<'_, N, P> {
+    type Output = ();
+
+    #[inline(always)]
+    fn with_simd<S: Simd>(self, _: S) {
+        let losses = self.losses.as_chunks_mut::<P>().0;
+        for (i, (losses, sums)) in losses.iter_mut().zip(self.sums).enumerate() {
+            let e = self.first + i;
+            let field = LocalField::new(self.operator, self.basis, self.x, e);
+            let sigma = self.properties.sigma(e);
+            if sigma.iter().any(|&s| s > 0.0) {
+                add_losses(&field, sigma, losses, sums);
+            }
+            add_energy(&field, self.properties.nu(e), sums);
+        }
+    }
+}
+
+#[inline(always)]
+fn add_losses<const N: usize, const P: usize>(
+    field: &LocalField<'_, N, P>,
+    sigma: &[f64],
+    losses: &mut [f64; P],
+    sums: &mut ElementSums,
+) {
+    let electric = field.electric();
+    for (q, (loss, &sigma)) in losses.iter_mut().zip(sigma).enumerate() {
+        *loss = if sigma > 0.0 { 0.5 * sigma * electric.at(q).norm_sqr() } else { 0.0 };
+    }
+    for (loss, volume) in losses.iter().zip(&field.geometry.volume) {
+        sums.loss_w += loss * volume;
+        sums.largest_loss_w_per_m3 = sums.largest_loss_w_per_m3.max(*loss);
+    }
+}
+
+#[inline(always)]
+fn add_energy<const N: usize, const P: usize>(field: &LocalField<'_, N, P>, nu: &[f64], sums: &mut ElementSums) {
+    let [b_r, b_z] = field.flux();
+    let (mut energy, mut strength) = ([0.0; P], [0.0; P]);
+    for (q, &nu) in nu.iter().enumerate().take(P) {
+        let square = b_r.at(q).norm_sqr() + b_z.at(q).norm_sqr();
+        energy[q] = 0.25 * nu * square * field.geometry.volume[q];
+        strength[q] = nu * square.sqrt();
+    }
+    for (energy, strength) in energy.iter().zip(&strength) {
+        sums.energy_j += energy;
+        sums.largest_field_a_per_m = sums.largest_field_a_per_m.max(*strength);
     }
 }
 
