@@ -118,6 +118,8 @@ fn coils(page: &mut Page, model: &Model) {
 
 fn coil_row(coil: &Coil, frequency_hz: f64) -> Vec<String> {
     let [inner, outer, bottom, top] = extent(coil);
+    // Half a length minus half a length may leave a rounding error.
+    let bottom = if bottom.abs() < 1e-9 * (top - bottom) { 0.0 } else { bottom };
     let sigma = coil.material.electrical_conductivity_s_per_m(coil.temperature_k);
     let conductor = match coil.conductor {
         ConductorKind::Solid if coil.turns.iter().any(|turn| turn.bore.is_some()) => "tube".to_owned(),
@@ -278,7 +280,7 @@ fn mesh(page: &mut Page, model: &Model, seen: &Overview) {
         report.triangles, model.mesh.order, seen.nodes, whole.strip_triangles
     ));
     page.line(format!(
-        "  away from strips: smallest angle {:.1} deg, mean of the smallest {:.1} deg, {:.1} % of them from 30 to 40 deg",
+        "  outside strips: smallest angle {:.1} deg, mean of the smallest {:.1} deg, {:.1} % of them from 30 to 40 deg",
         whole.min_angle_deg,
         whole.mean_min_angle_deg,
         100.0 * whole.share_30_to_40
